@@ -1,0 +1,67 @@
+package display
+
+import (
+	"bufio"
+	"fmt"
+	"os"
+	"sync"
+)
+
+// A Sink takes what a running program shows and answers what it asks. The
+// kernel sets one; elsewhere the terminal serves. Methods may be called from
+// several goroutines and return when the reader's side has taken the call.
+type Sink interface {
+	// Show shows v. With a non-empty id the place can be shown again by a
+	// later call with the same id and replace set.
+	Show(v View, id string, replace bool)
+	// Clear takes back what the running cell has shown; with wait, only when
+	// something new is shown.
+	Clear(wait bool)
+	// Ask asks the reader for a line of text; secret hides what is typed.
+	Ask(prompt string, secret bool) (string, error)
+}
+
+var (
+	sinkMu sync.Mutex // guards sink
+	sink   Sink       = terminal{}
+)
+
+// SetSink makes s the place where values are shown. Nil restores the terminal.
+func SetSink(s Sink) {
+	sinkMu.Lock()
+	defer sinkMu.Unlock()
+	if s == nil {
+		s = terminal{}
+	}
+	sink = s
+}
+
+// Current returns the sink in force.
+func Current() Sink {
+	sinkMu.Lock()
+	defer sinkMu.Unlock()
+	return sink
+}
+
+// terminal is the sink of a program without a front end.
+type terminal struct{}
+
+func (terminal) Show(v View, _ string, _ bool) {
+	if s, ok := v.Data["text/plain"].(string); ok {
+		fmt.Println(s)
+	}
+}
+
+func (terminal) Clear(bool) {}
+
+func (terminal) Ask(prompt string, _ bool) (string, error) {
+	fmt.Print(prompt)
+	s := bufio.NewScanner(os.Stdin)
+	if !s.Scan() {
+		if err := s.Err(); err != nil {
+			return "", err
+		}
+		return "", fmt.Errorf("display: Ask: standard input is closed")
+	}
+	return s.Text(), nil
+}
