@@ -1,0 +1,246 @@
+package socket
+
+import (
+	"bytes"
+	"errors"
+	"net"
+	"os"
+	"sync"
+	"time"
+)
+
+// writeStep is how many bytes the writer takes on at a time.
+const writeStep = 1 << 20
+
+// An outbox holds the bytes that wait for one peer. Whole messages go in;
+// neither side waits for the other while it holds the lock.
+type outbox struct {
+	wake chan struct{} // tells the writer that there is something, or nothing more
+	room chan struct{} // tells the one who waits for room or emptiness to look again
+
+	mu     sync.Mutex // guards the fields below
+	chunks [][]byte   // in order; the writer takes all of them
+	queued int        // bytes in chunks and in the writer's hands
+	moved  time.Time  // when the network last took some of them
+	slow   bool       // messages are dropped until the queue is below half
+	killed bool
+}
+
+func (o *outbox) init() {
+	o.wake = make(chan struct{}, 1)
+	o.room = make(chan struct{}, 1)
+}
+
+// signal leaves a token in c, unless there is one.
+func signal(c chan struct{}) {
+	select {
+	case c <- struct{}{}:
+	default:
+	}
+}
+
+// put queues one message: large parts, which the outbox keeps, and then a
+// small one, which it copies. There is no limit here, since whoever
+// sends has waited for room, and what passes through zmq4 meanwhile is little.
+func (o *outbox) put(parts [][]byte, small []byte) {
+	o.mu.Lock()
+	defer o.mu.Unlock()
+	o.append(parts, small)
+}
+
+// putIfBelow queues a message unless as many bytes are waiting.
+func (o *outbox) putIfBelow(limit int, small []byte) {
+	o.mu.Lock()
+	defer o.mu.Unlock()
+	if o.queued < limit {
+		o.append(nil, small)
+	}
+}
+
+// append is put with the lock held. Small messages share a chunk, so that a
+// burst of them leaves with few system calls.
+func (o *outbox) append(parts [][]byte, small []byte) {
+	if o.killed {
+		return
+	}
+	o.chunks = append(o.chunks, parts...)
+	for _, part := range parts {
+		o.queued += len(part)
+	}
+	o.queued += len(small)
+	last := len(o.chunks) - 1
+	switch {
+	case len(small) == 0:
+	case last >= 0 && len(o.chunks[last])+len(small) <= smallPiece:
+		o.chunks[last] = append(o.chunks[last], small...)
+	default:
+		o.chunks = append(o.chunks, bytes.Clone(small))
+	}
+	signal(o.wake)
+}
+
+// refuses reports whether a message that begins now is to be dropped. With
+// hard the limit itself decides, otherwise only Send makes a peer slow.
+func (o *outbox) refuses(limit int, hard bool) bool {
+	o.mu.Lock()
+	defer o.mu.Unlock()
+	if hard && o.queued > limit {
+		o.slow = true
+	}
+	return o.killed || o.isSlow(limit)
+}
+
+// isSlow tells, with the lock held, whether the peer is slow still.
+func (o *outbox) isSlow(limit int) bool {
+	if o.slow && o.queued < limit/2 {
+		o.slow = false
+	}
+	return o.slow
+}
+
+// kill empties the outbox for good.
+func (o *outbox) kill() {
+	o.mu.Lock()
+	defer o.mu.Unlock()
+	o.killed = true
+	o.chunks, o.queued = nil, 0
+	signal(o.wake)
+	signal(o.room)
+}
+
+// take returns all chunks, or nothing if there are none.
+func (o *outbox) take() [][]byte {
+	o.mu.Lock()
+	defer o.mu.Unlock()
+	chunks := o.chunks
+	o.chunks = nil
+	return chunks
+}
+
+// sent counts n bytes off.
+func (o *outbox) sent(n int) {
+	if n == 0 {
+		return
+	}
+	o.mu.Lock()
+	defer o.mu.Unlock()
+	if !o.killed {
+		o.queued -= n
+	}
+	o.moved = time.Now()
+	signal(o.room)
+}
+
+// write is the goroutine that writes to the peer's connection, until it fails
+// or is closed.
+func (p *peer) write() {
+	for {
+		chunks := p.outbox.take()
+		if chunks == nil {
+			select {
+			case <-p.wake:
+				continue
+			case <-p.done:
+				return
+			}
+		}
+		for len(chunks) > 0 {
+			var step net.Buffers
+			step, chunks = cut(chunks, writeStep)
+			for len(step) > 0 {
+				// A deadline shows the bytes that have left in time; the rest of
+				// the step stays in it.
+				p.c.SetWriteDeadline(time.Now().Add(p.l.lim.step))
+				n, err := step.WriteTo(p.c)
+				p.outbox.sent(int(n))
+				if err != nil && !errors.Is(err, os.ErrDeadlineExceeded) {
+					return
+				}
+				if p.dead() {
+					return
+				}
+			}
+		}
+	}
+}
+
+// cut divides chunks after n bytes.
+func cut(chunks [][]byte, n int) (first net.Buffers, rest [][]byte) {
+	for i, c := range chunks {
+		if len(c) <= n {
+			n -= len(c)
+			continue
+		}
+		if n == 0 {
+			return chunks[:i:i], chunks[i:]
+		}
+		first = append(append(first, chunks[:i]...), c[:n:n])
+		chunks[i] = c[n:]
+		return first, chunks[i:]
+	}
+	return chunks, nil
+}
+
+// waitRoom waits until n more bytes may be queued, and reports whether they
+// may. An empty outbox takes everything. It waits for a peer that has taken
+// nothing for the time of stall, counted from start, and for any peer at most
+// for that of patience; then the peer is slow. It gives up when the socket closes.
+func (p *peer) waitRoom(n int, start time.Time) bool {
+	lim := &p.l.lim
+	o := &p.outbox
+	var timer *time.Timer
+	for {
+		o.mu.Lock()
+		if o.killed || o.isSlow(lim.queue) {
+			o.mu.Unlock()
+			return false
+		}
+		if o.queued == 0 || o.queued+n <= lim.queue {
+			o.mu.Unlock()
+			return true
+		}
+		stalled := start
+		if o.moved.After(start) {
+			stalled = o.moved
+		}
+		now := time.Now()
+		wait := min(stalled.Add(lim.stall).Sub(now), start.Add(lim.patience).Sub(now))
+		if wait <= 0 {
+			o.slow = true
+			o.mu.Unlock()
+			return false
+		}
+		o.mu.Unlock()
+		if timer == nil {
+			timer = time.NewTimer(wait)
+			defer timer.Stop()
+		} else {
+			timer.Reset(wait)
+		}
+		select {
+		case <-o.room:
+		case <-timer.C:
+		case <-p.l.stopping:
+			return false
+		}
+	}
+}
+
+// waitEmpty waits until everything has left, and returns how many bytes have
+// not when until fires.
+func (p *peer) waitEmpty(until <-chan struct{}) int {
+	o := &p.outbox
+	for {
+		o.mu.Lock()
+		n := o.queued
+		o.mu.Unlock()
+		if n == 0 {
+			return 0
+		}
+		select {
+		case <-o.room:
+		case <-until:
+			return n
+		}
+	}
+}
