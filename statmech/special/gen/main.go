@@ -1,0 +1,11 @@
+// Gen writes the coefficient tables of package special. It is run by
+// go generate in that package's folder; its output depends on nothing but this
+// source, so that a second run leaves no difference.
+//
+// Every coefficient is computed with math/big at 320 bits and rounded once to
+// float64.
+package main
+
+func main() {
+	debyeTables()
+}
