@@ -1,0 +1,7 @@
+//go:build !unix
+
+package compile
+
+import "os/exec"
+
+func alone(*exec.Cmd) {}

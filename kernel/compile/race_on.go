@@ -1,0 +1,6 @@
+//go:build race
+
+package compile
+
+// Race says whether the running program was built with -race.
+const Race = true
