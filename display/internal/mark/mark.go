@@ -1,0 +1,289 @@
+// Package mark is the small notation that quantities and units are written in
+// everywhere in display: "C_{p,m}", "\theta_D", "J/(mol K)", "cm-1". It parses
+// them into runs of text, and writes runs as plain text, HTML and LaTeX.
+package mark
+
+import (
+	"strings"
+	"unicode"
+	"unicode/utf8"
+)
+
+// A Run is a piece of text of one kind.
+type Run struct {
+	Text   string
+	Italic bool
+	Shift  int // -1 subscript, 0 on the line, +1 superscript
+}
+
+// Symbol parses the name of a quantity. A letter that stands alone is a
+// quantity's symbol and italic; words and digits are upright. In a subscript
+// only the letters that name quantities or running numbers (p, V, T, x, n, i,
+// j) are italic, so that C_p and C_{p,m} come out as the Green Book has them.
+// Greek letters may be written \theta or θ.
+func Symbol(s string) []Run { return parse(s, true) }
+
+// Label parses running text with _{}, ^{} and Greek names; it stays upright.
+func Label(s string) []Run { return parse(s, false) }
+
+func parse(s string, symbol bool) []Run {
+	var out []Run
+	add := func(text string, shift int) {
+		if text == "" {
+			return
+		}
+		if !symbol {
+			out = append(out, Run{Text: text, Shift: shift})
+			return
+		}
+		for _, r := range italics(text, shift) {
+			out = append(out, r)
+		}
+	}
+	var plain strings.Builder
+	for s != "" {
+		switch c := s[0]; {
+		case (c == '_' || c == '^') && len(s) > 1 && s[1] != ' ':
+			shift := -1
+			if c == '^' {
+				shift = 1
+			}
+			body, rest := argument(s[1:])
+			if c == '_' && symbol && plain.Len() == 0 && len(out) == 0 {
+				plain.WriteByte(c) // nothing to hang a subscript on
+				s = s[1:]
+				continue
+			}
+			add(plain.String(), 0)
+			plain.Reset()
+			add(greek(body), shift)
+			s = rest
+		case c == '\\':
+			name := letters(s[1:])
+			if g, ok := greekLetters[name]; ok {
+				plain.WriteString(g)
+				s = s[1+len(name):]
+				continue
+			}
+			plain.WriteByte(c)
+			s = s[1:]
+		default:
+			_, n := utf8.DecodeRuneInString(s)
+			plain.WriteString(s[:n])
+			s = s[n:]
+		}
+	}
+	add(plain.String(), 0)
+	return out
+}
+
+// argument takes the argument of _ or ^ from the front of s: a braced group, a
+// Greek name, a signed number or one rune.
+func argument(s string) (arg, rest string) {
+	switch {
+	case s[0] == '{':
+		if i := strings.IndexByte(s, '}'); i > 0 {
+			return s[1:i], s[i+1:]
+		}
+		return s[1:], ""
+	case s[0] == '\\':
+		n := 1 + len(letters(s[1:]))
+		return s[:n], s[n:]
+	}
+	n := 0
+	if s[0] == '-' || s[0] == '+' {
+		n = 1
+	}
+	for n < len(s) && s[n] >= '0' && s[n] <= '9' {
+		n++
+	}
+	if n > 1 || n == 1 && s[0] >= '0' && s[0] <= '9' {
+		return s[:n], s[n:]
+	}
+	_, n = utf8.DecodeRuneInString(s)
+	return s[:n], s[n:]
+}
+
+func letters(s string) string {
+	n := 0
+	for n < len(s) && (s[n] >= 'a' && s[n] <= 'z' || s[n] >= 'A' && s[n] <= 'Z') {
+		n++
+	}
+	return s[:n]
+}
+
+func greek(s string) string {
+	var b strings.Builder
+	for i := 0; i < len(s); {
+		if s[i] == '\\' {
+			name := letters(s[i+1:])
+			if g, ok := greekLetters[name]; ok {
+				b.WriteString(g)
+				i += 1 + len(name)
+				continue
+			}
+		}
+		b.WriteByte(s[i])
+		i++
+	}
+	return b.String()
+}
+
+// italics splits text into words and sets single letters italic.
+func italics(text string, shift int) []Run {
+	var out []Run
+	push := func(s string, it bool) {
+		if n := len(out); n > 0 && out[n-1].Italic == it {
+			out[n-1].Text += s
+			return
+		}
+		out = append(out, Run{Text: s, Italic: it, Shift: shift})
+	}
+	rs := []rune(text)
+	for i := 0; i < len(rs); {
+		j := i
+		for j < len(rs) && unicode.IsLetter(rs[j]) {
+			j++
+		}
+		if j == i {
+			push(string(rs[i]), false)
+			i++
+			continue
+		}
+		word := rs[i:j]
+		it := len(word) == 1 && !(unicode.Is(unicode.Greek, word[0]) && unicode.IsUpper(word[0]))
+		if it && shift < 0 {
+			it = strings.ContainsRune("pVTxnij", word[0])
+		}
+		push(string(word), it)
+		i = j
+	}
+	return out
+}
+
+var greekLetters = map[string]string{
+	"alpha": "α", "beta": "β", "gamma": "γ", "delta": "δ", "epsilon": "ε",
+	"varepsilon": "ε", "zeta": "ζ", "eta": "η", "theta": "θ", "iota": "ι",
+	"kappa": "κ", "lambda": "λ", "mu": "μ", "nu": "ν", "xi": "ξ", "pi": "π",
+	"rho": "ρ", "sigma": "σ", "tau": "τ", "upsilon": "υ", "phi": "φ",
+	"varphi": "φ", "chi": "χ", "psi": "ψ", "omega": "ω", "Gamma": "Γ",
+	"Delta": "Δ", "Theta": "Θ", "Lambda": "Λ", "Xi": "Ξ", "Pi": "Π",
+	"Sigma": "Σ", "Phi": "Φ", "Psi": "Ψ", "Omega": "Ω", "hbar": "ħ",
+	"degree": "°", "cdot": "·", "times": "×", "pm": "±", "infty": "∞",
+}
+
+var superscripts = map[rune]rune{
+	'0': '⁰', '1': '¹', '2': '²', '3': '³', '4': '⁴', '5': '⁵', '6': '⁶',
+	'7': '⁷', '8': '⁸', '9': '⁹', '-': '⁻', '−': '⁻', '+': '⁺',
+}
+
+// Plain writes runs as text. Superscript numbers become Unicode superscripts,
+// subscripts follow an underscore unless they are short (Cp, θD stay apart as
+// C_p, θ_D, so that the text can be read back).
+func Plain(rs []Run) string {
+	var b strings.Builder
+	for _, g := range groups(rs) {
+		text := g.text()
+		switch g.shift {
+		case 0:
+			b.WriteString(text)
+		case 1:
+			if s, ok := Superscript(text); ok {
+				b.WriteString(s)
+				continue
+			}
+			fallthrough
+		default:
+			sign := "_"
+			if g.shift > 0 {
+				sign = "^"
+			}
+			b.WriteString(sign)
+			if utf8.RuneCountInString(text) > 1 {
+				text = "{" + text + "}"
+			}
+			b.WriteString(text)
+		}
+	}
+	return strings.ReplaceAll(b.String(), "\u00a0", " ")
+}
+
+// Superscript writes s in Unicode superscripts, if there are such.
+func Superscript(s string) (string, bool) {
+	var b strings.Builder
+	for _, r := range s {
+		u, ok := superscripts[r]
+		if !ok {
+			return s, false
+		}
+		b.WriteRune(u)
+	}
+	return b.String(), true
+}
+
+type group struct {
+	shift int
+	runs  []Run
+}
+
+func (g group) text() string {
+	var b strings.Builder
+	for _, r := range g.runs {
+		b.WriteString(r.Text)
+	}
+	return b.String()
+}
+
+// groups joins neighbouring runs of the same shift.
+func groups(rs []Run) []group {
+	var out []group
+	for _, r := range rs {
+		if n := len(out); n > 0 && out[n-1].shift == r.Shift {
+			out[n-1].runs = append(out[n-1].runs, r)
+			continue
+		}
+		out = append(out, group{shift: r.Shift, runs: []Run{r}})
+	}
+	return out
+}
+
+// HTML writes runs as HTML, everything in them escaped.
+func HTML(rs []Run) string {
+	var b strings.Builder
+	for _, g := range groups(rs) {
+		tag := [...]string{"sub", "", "sup"}[g.shift+1]
+		if tag != "" {
+			b.WriteString("<" + tag + ">")
+		}
+		for _, r := range g.runs {
+			if r.Italic {
+				b.WriteString("<i>" + Escape(r.Text) + "</i>")
+			} else {
+				b.WriteString(Escape(r.Text))
+			}
+		}
+		if tag != "" {
+			b.WriteString("</" + tag + ">")
+		}
+	}
+	return b.String()
+}
+
+var escaper = strings.NewReplacer("&", "&amp;", "<", "&lt;", ">", "&gt;", `"`, "&#34;", "'", "&#39;")
+
+// Escape makes s safe in HTML and XML, text and attributes. Characters that
+// XML cannot hold become U+FFFD.
+func Escape(s string) string {
+	return escaper.Replace(Clean(s))
+}
+
+// Clean replaces what XML cannot hold (most control characters, broken UTF-8)
+// by U+FFFD.
+func Clean(s string) string {
+	return strings.Map(func(r rune) rune {
+		if r < 0x20 && r != '\t' && r != '\n' && r != '\r' || r == 0xFFFE || r == 0xFFFF {
+			return 0xFFFD
+		}
+		return r
+	}, s)
+}

@@ -1,0 +1,287 @@
+package display
+
+import (
+	"encoding/csv"
+	"fmt"
+	"strconv"
+	"strings"
+	"unicode/utf8"
+
+	"levelsum/display/internal/mark"
+)
+
+// parts splits a cell at the decimal point: what stands before it, and the
+// point with all that follows.
+func (r rounded) parts(minusSign string) (head, tail string) {
+	if r.word != "" {
+		return r.word, ""
+	}
+	s := r.digits
+	head, tail = s, ""
+	if i := strings.IndexByte(s, '.'); i >= 0 {
+		head, tail = s[:i], s[i:]
+	}
+	if r.unc != "" {
+		tail += "(" + r.unc + ")"
+	}
+	return strings.Replace(head, "-", minusSign, 1), tail
+}
+
+// text writes the table in columns aligned on the decimal point, two spaces
+// apart, so that a change of one number changes one line.
+func (s *sheet) text() string {
+	rows := s.shown()
+	lines := make([]strings.Builder, len(rows)+2)
+	for ci := range s.cols {
+		c := &s.cols[ci]
+		title := mark.Plain(mark.Over(oneLineText(c.quantity), oneLineText(c.unit)))
+		left, right := 0, 0
+		cells := make([][2]string, len(rows))
+		for k := range rows {
+			h, t := c.cells[k].parts("-")
+			if c.cells[k].exp != 0 {
+				p, _ := mark.Superscript(strconv.Itoa(c.cells[k].exp))
+				t += "×10" + p
+			}
+			h = oneLineText(h)
+			cells[k] = [2]string{h, t}
+			left, right = max(left, utf8.RuneCountInString(h)), max(right, utf8.RuneCountInString(t))
+		}
+		width := max(left+right, utf8.RuneCountInString(title), 1)
+		isText := c.text != nil
+		last := ci == len(s.cols)-1
+		put := func(line int, text string) {
+			if ci > 0 {
+				lines[line].WriteString("  ")
+			}
+			lines[line].WriteString(text)
+			if n := width - utf8.RuneCountInString(text); n > 0 && !last {
+				lines[line].WriteString(strings.Repeat(" ", n))
+			}
+		}
+		if isText {
+			put(0, title)
+		} else {
+			put(0, strings.Repeat(" ", max(0, width-utf8.RuneCountInString(title)))+title)
+		}
+		put(1, strings.Repeat("-", width))
+		for k := range rows {
+			h, t := cells[k][0], cells[k][1]
+			switch {
+			case rows[k] < 0:
+				put(k+2, "...")
+			case isText:
+				put(k+2, h)
+			default:
+				pad := width - left - right + left - utf8.RuneCountInString(h)
+				put(k+2, strings.Repeat(" ", pad)+h+t)
+			}
+		}
+	}
+	var b strings.Builder
+	if s.caption != "" {
+		b.WriteString(oneLineText(s.caption) + "\n")
+	}
+	for i := range lines {
+		b.WriteString(strings.TrimRight(lines[i].String(), " ") + "\n")
+		if i >= 2 && rows[i-2] < 0 {
+			fmt.Fprintf(&b, "(%d rows more)\n", s.rows-len(rows)+1)
+		}
+	}
+	for _, n := range s.notes {
+		b.WriteString(oneLineText(n) + "\n")
+	}
+	return strings.TrimSuffix(b.String(), "\n")
+}
+
+// html writes the table with rules above, below the head and at the end, in
+// the colours of the page. Numbers are set in figures of one width and filled
+// with spaces of a digit's width, so that they align on the point.
+func (s *sheet) html() string {
+	const (
+		rule  = "1px solid currentColor"
+		th    = `style="text-align:%s;border:0;border-bottom:` + rule + `;padding:0.25em 0.8em;font-weight:normal;white-space:nowrap"`
+		td    = `style="text-align:%s;padding:0.12em 0.8em;white-space:nowrap"`
+		frame = `style="border-collapse:collapse;border:0;border-top:1.5px solid currentColor;border-bottom:1.5px solid currentColor;color:inherit;background:transparent;font-variant-numeric:tabular-nums lining-nums;margin:0.4em 0"`
+	)
+	rows := s.shown()
+	var b strings.Builder
+	b.WriteString("<table " + frame + ">\n")
+	if s.caption != "" {
+		b.WriteString(`<caption style="caption-side:top;text-align:left;color:inherit;padding:0.2em 0">` + mark.HTML(mark.Label(s.caption)) + "</caption>\n")
+	}
+	b.WriteString("<thead><tr>")
+	aligns := make([]string, len(s.cols))
+	tails := make([]int, len(s.cols))
+	for i := range s.cols {
+		c := &s.cols[i]
+		aligns[i] = "right"
+		if c.text != nil {
+			aligns[i] = "left"
+		}
+		for k := range rows {
+			_, t := c.cells[k].parts(minus)
+			tails[i] = max(tails[i], utf8.RuneCountInString(t))
+		}
+		fmt.Fprintf(&b, "<th scope=\"col\" "+th+">%s</th>", aligns[i], mark.HTML(mark.Over(c.quantity, c.unit)))
+	}
+	b.WriteString("</tr></thead>\n<tbody>\n")
+	cell := make([]string, len(s.cols))
+	for i := range s.cols {
+		cell[i] = fmt.Sprintf("<td "+td+">", aligns[i])
+	}
+	for k, row := range rows {
+		if row < 0 {
+			fmt.Fprintf(&b, "<tr><td colspan=\"%d\" "+td+">… %d rows more …</td></tr>\n", len(s.cols), "center", s.rows-len(rows)+1)
+			continue
+		}
+		b.WriteString("<tr>")
+		for i := range s.cols {
+			c := &s.cols[i]
+			b.WriteString(cell[i])
+			b.WriteString(c.cells[k].html())
+			if c.text == nil && c.cells[k].exp == 0 {
+				_, t := c.cells[k].parts(minus)
+				b.WriteString(filler(t, tails[i]))
+			}
+			b.WriteString("</td>")
+		}
+		b.WriteString("</tr>\n")
+	}
+	b.WriteString("</tbody>\n</table>\n")
+	for _, n := range s.notes {
+		b.WriteString(`<p style="margin:0.2em 0;font-size:0.9em;color:inherit">` + mark.HTML(mark.Label(n)) + "</p>\n")
+	}
+	return b.String()
+}
+
+// filler returns spaces as wide as the characters that a tail lacks: a figure
+// space for a digit, a punctuation space for the point.
+func filler(tail string, want int) string {
+	n := want - utf8.RuneCountInString(tail)
+	if n <= 0 {
+		return ""
+	}
+	s := strings.Repeat("\u2007", n)
+	if !strings.Contains(tail, ".") {
+		s = "\u2008" + strings.Repeat("\u2007", n-1)
+	}
+	return s
+}
+
+// csv writes all rows at full precision; a column with uncertainties is
+// followed by one for them.
+func (s *sheet) csv() string {
+	var b strings.Builder
+	w := csv.NewWriter(&b)
+	rec := make([]string, 0, 2*len(s.cols))
+	for _, c := range s.cols {
+		rec = append(rec, csvHead(c.quantity, c.unit))
+		if c.u != nil {
+			rec = append(rec, csvHead("u("+c.quantity+")", c.unit))
+		}
+	}
+	write := func() {
+		if err := w.Write(rec); err != nil {
+			panic(err) // a strings.Builder takes all
+		}
+		rec = rec[:0]
+	}
+	write()
+	for i := range s.rows {
+		for _, c := range s.cols {
+			if c.text != nil {
+				rec = append(rec, c.text[i])
+			} else {
+				rec = append(rec, full(c.v[i]))
+			}
+			if c.u != nil {
+				rec = append(rec, full(c.u[i]))
+			}
+		}
+		write()
+	}
+	w.Flush()
+	return b.String()
+}
+
+// csvHead writes a head as data files have it: "Cp/(J/(mol K))".
+func csvHead(quantity, unit string) string {
+	q := strings.NewReplacer("{", "", "}", "", "\\", "").Replace(quantity)
+	if mark.Dimensionless(unit) {
+		return q
+	}
+	if strings.ContainsAny(unit, " /*·") {
+		unit = "(" + unit + ")"
+	}
+	return q + "/" + unit
+}
+
+// latex writes the table for the package booktabs. Numbers take two columns
+// that meet at the decimal point.
+func (s *sheet) latex() string {
+	rows := s.shown()
+	var b strings.Builder
+	spec := ""
+	for _, c := range s.cols {
+		if c.text != nil {
+			spec += "l"
+		} else {
+			spec += "r@{}l"
+		}
+	}
+	if s.caption != "" {
+		b.WriteString("\\begin{table}\n\\caption{" + mark.LaTeX(mark.Label(s.caption)) + "}\n")
+	}
+	b.WriteString("\\begin{tabular}{" + spec + "}\n\\toprule\n")
+	span := 0
+	for i, c := range s.cols {
+		if i > 0 {
+			b.WriteString(" & ")
+		}
+		head := mark.LaTeX(mark.Over(c.quantity, c.unit))
+		if c.text != nil {
+			b.WriteString(head)
+			span++
+		} else {
+			b.WriteString("\\multicolumn{2}{c}{" + head + "}")
+			span += 2
+		}
+	}
+	b.WriteString(" \\\\\n\\midrule\n")
+	for k, row := range rows {
+		if row < 0 {
+			fmt.Fprintf(&b, "\\multicolumn{%d}{c}{(%d rows more)} \\\\\n", span, s.rows-len(rows)+1)
+			continue
+		}
+		for i, c := range s.cols {
+			if i > 0 {
+				b.WriteString(" & ")
+			}
+			r := c.cells[k]
+			if c.text != nil {
+				b.WriteString(mark.EscapeLaTeX(r.word))
+				continue
+			}
+			if r.word != "" {
+				b.WriteString("$" + r.math() + "$ & ")
+				continue
+			}
+			h, t := r.parts("-")
+			b.WriteString("$" + h + "$ & ")
+			if r.exp != 0 {
+				t += "$\\times 10^{" + strconv.Itoa(r.exp) + "}$"
+			}
+			b.WriteString(t)
+		}
+		b.WriteString(" \\\\\n")
+	}
+	b.WriteString("\\bottomrule\n\\end{tabular}\n")
+	for _, n := range s.notes {
+		b.WriteString("\n\\noindent{\\footnotesize " + mark.LaTeX(mark.Label(n)) + "}\n")
+	}
+	if s.caption != "" {
+		b.WriteString("\\end{table}\n")
+	}
+	return b.String()
+}
