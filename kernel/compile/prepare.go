@@ -210,6 +210,7 @@ func (t *toolchain) importable(ctx context.Context, source string) ([]string, er
 			paths = append(paths, p.ImportPath)
 		}
 	}
+	slices.Sort(paths)
 	return paths, nil
 }
 
