@@ -1,0 +1,101 @@
+package uncertain
+
+import (
+	"fmt"
+	"html"
+	"math"
+	"strconv"
+	"strings"
+
+	"levelsum/display"
+)
+
+func itoa(i int) string { return strconv.Itoa(i) }
+
+// View shows the value with its standard uncertainty and unit.
+func (q Quantity) View() display.View { return display.Text(q.String()) }
+
+// View shows the budget as a table.
+func (b Budget) View() display.View {
+	rows := [][]string{{"input", "value", "u", "unit", "distribution", "kind", "ν", "c = ∂f/∂x", "|c| u", "share of u² / %"}}
+	for _, c := range b.Inputs {
+		kind := "random"
+		if c.Common {
+			kind = "common"
+		}
+		rows = append(rows, []string{c.Name, valueAt(c.Value, c.U), two(c.U), c.Unit, c.Shape.String(), kind,
+			freedom(c.Freedom), strconv.FormatFloat(c.Sensitivity, 'g', 4, 64), two(c.Part),
+			strconv.FormatFloat(100*c.Share, 'f', 1, 64)})
+	}
+	foot := "result " + b.Result.String()
+	if b.Result.Withheld() == "" {
+		foot += fmt.Sprintf("; u = %s (k = 1), random part %s, common part %s", two(b.U), two(b.Result.RandomPart()), two(b.Result.CommonPart()))
+	}
+	if !math.IsInf(b.Freedom, 1) {
+		foot += "; effective degrees of freedom " + freedom(b.Freedom)
+	}
+	if b.Correlation != 0 {
+		foot += fmt.Sprintf("; correlation terms %+.2g of u² = %.2g", b.Correlation, b.U*b.U)
+	}
+	return table(rows, foot)
+}
+
+func freedom(nu float64) string {
+	if math.IsInf(nu, 1) {
+		return "∞"
+	}
+	return strconv.FormatFloat(math.Floor(nu+1e-9), 'f', 0, 64)
+}
+
+// two writes a number with two significant digits.
+func two(x float64) string {
+	if x == 0 {
+		return "0"
+	}
+	if a := math.Abs(x); a >= 1e-4 && a < 1e6 {
+		_, w := TwoDigits.Round(x, a)
+		return w
+	}
+	return strconv.FormatFloat(x, 'e', 1, 64)
+}
+
+func valueAt(v, u float64) string {
+	if a := math.Abs(v); u == 0 || a != 0 && (a < 1e-4 || a >= 1e7) {
+		return strconv.FormatFloat(v, 'g', 6, 64)
+	}
+	s, _ := TwoDigits.Round(v, u)
+	return s
+}
+
+// table writes rows, the first being the head, as plain text and HTML.
+func table(rows [][]string, foot string) display.View {
+	width := make([]int, len(rows[0]))
+	for _, r := range rows {
+		for i, c := range r {
+			width[i] = max(width[i], len([]rune(c)))
+		}
+	}
+	var text, page strings.Builder
+	page.WriteString("<table>\n")
+	for k, r := range rows {
+		cell := "td"
+		if k == 0 {
+			cell = "th"
+		}
+		page.WriteString("<tr>")
+		for i, c := range r {
+			pad := strings.Repeat(" ", width[i]-len([]rune(c)))
+			if i == 0 {
+				text.WriteString(c + pad)
+			} else {
+				text.WriteString("  " + pad + c)
+			}
+			fmt.Fprintf(&page, "<%s>%s</%s>", cell, html.EscapeString(c), cell)
+		}
+		text.WriteString("\n")
+		page.WriteString("</tr>\n")
+	}
+	page.WriteString("</table>\n<p>" + html.EscapeString(foot) + "</p>\n")
+	text.WriteString(foot)
+	return display.View{Data: map[string]any{"text/plain": text.String(), "text/html": page.String()}}
+}
