@@ -174,11 +174,9 @@ func Vary(ptrs ...any) Option {
 
 // unitOf returns the unit in which the quantity behind ptr is stored.
 func unitOf(ptr any) string {
-	switch ptr.(type) {
-	case *unit.Temperature:
-		return "K"
-	case *unit.MolarEntropy:
-		return "J/(mol K)"
+	v := reflect.ValueOf(ptr).Elem()
+	if q, ok := v.Interface().(interface{ Unit() unit.Unit }); ok {
+		return q.Unit().Symbol
 	}
 	return ""
 }
