@@ -146,3 +146,16 @@ func (v *value) integer() (int, bool) {
 	}
 	return int(x), true
 }
+
+// RemoveMetadata takes the document's metadata under the path of keys away,
+// and what becomes empty by that.
+func (d *Document) RemoveMetadata(path ...string) {
+	for n := len(path); n > 0; n-- {
+		parent := descend(d.root.get("metadata"), path[:n-1])
+		v := parent.get(path[n-1])
+		if v == nil || n < len(path) && len(v.members) > 0 {
+			return
+		}
+		parent.remove(path[n-1])
+	}
+}

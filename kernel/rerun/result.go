@@ -20,6 +20,8 @@ type Result struct {
 	Value, U float64
 	HasU     bool
 	Unit     string
+	// Withheld says why no uncertainty is given.
+	Withheld string
 	// Shown is the rounded form for the reader.
 	Shown string
 }
@@ -55,6 +57,7 @@ func parseResult(x any) (Result, error) {
 		return Result{}, fmt.Errorf("no name")
 	}
 	r.Unit, _ = m["unit"].(string)
+	r.Withheld, _ = m["withheld"].(string)
 	if r.Value, ok = storedFloat(m["value"]); !ok {
 		return Result{}, fmt.Errorf("%s: no value", r.Name)
 	}

@@ -25,6 +25,8 @@ type Session interface {
 type Options struct {
 	// Start begins the session in which the cells run.
 	Start func(ctx context.Context) (Session, error)
+	// Dir is the notebook's folder, which relative file names in cells mean.
+	Dir string
 	// KeepGoing goes on with the next cell after one that failed.
 	KeepGoing bool
 	// Limit ends the run when it has taken longer; 0 means no limit.
@@ -140,6 +142,13 @@ func Run(ctx context.Context, d *notebook.Document, o Options) (*Report, error) 
 		if err := c.SetOutputs(outputs[c.N]); err != nil {
 			return nil, fmt.Errorf("cell %d: %w", c.N, err)
 		}
+	}
+	files, err := findData(d, o.Dir)
+	if err == nil {
+		err = storeData(d, files)
+	}
+	if err != nil {
+		return nil, err
 	}
 	if r.Results, err = Results(d); err != nil {
 		return nil, err

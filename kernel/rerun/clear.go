@@ -1,0 +1,19 @@
+package rerun
+
+import "levelsum/kernel/notebook"
+
+// Clear takes out of a document what running it has put there: outputs,
+// numbers of runs and the list of data files.
+func Clear(d *notebook.Document) error {
+	for _, c := range d.Cells() {
+		if c.Kind() != notebook.Code {
+			continue
+		}
+		c.SetExecutionCount(0)
+		if err := c.SetOutputs(nil); err != nil {
+			return err
+		}
+	}
+	d.RemoveMetadata(dataKey...)
+	return nil
+}
