@@ -1,0 +1,240 @@
+package solid
+
+import (
+	"levelsum/statmech"
+	"levelsum/statmech/unit"
+)
+
+// This file holds the molar functions that every model with a partition
+// function has. They are per mole of formula units; energies are counted from
+// the ground level.
+
+// Reduced returns ln q, U/kT and C/k of one formula unit; see [statmech.Mode].
+func (e Einstein) Reduced(T unit.Temperature) statmech.Reduced {
+	return reduced(e, "solid.Einstein.Reduced", T)
+}
+
+// HeatCapacity returns C_V at T.
+func (e Einstein) HeatCapacity(T unit.Temperature) unit.MolarEntropy {
+	return heatCapacity(e, "solid.Einstein.HeatCapacity", T)
+}
+
+// HeatCapacities returns C_V at every temperature.
+func (e Einstein) HeatCapacities(ts []unit.Temperature) []unit.MolarEntropy {
+	return heatCapacities(e, "solid.Einstein.HeatCapacities", ts)
+}
+
+// Entropy returns S(T).
+func (e Einstein) Entropy(T unit.Temperature) unit.MolarEntropy {
+	return entropy(e, "solid.Einstein.Entropy", T)
+}
+
+// Entropies returns S at every temperature.
+func (e Einstein) Entropies(ts []unit.Temperature) []unit.MolarEntropy {
+	return entropies(e, "solid.Einstein.Entropies", ts)
+}
+
+// EntropyIncrement returns S(to) - S(from).
+func (e Einstein) EntropyIncrement(from, to unit.Temperature) unit.MolarEntropy {
+	return entropyIncrement(e, "solid.Einstein.EntropyIncrement", from, to)
+}
+
+// ThermalEnergy returns U(T) - U(0).
+func (e Einstein) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
+	return energy(e, "solid.Einstein.ThermalEnergy", T)
+}
+
+// EnthalpyIncrement returns U(to) - U(from), which is H(to) - H(from) at
+// constant volume and negligible pressure.
+func (e Einstein) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
+	return enthalpyIncrement(e, "solid.Einstein.EnthalpyIncrement", from, to)
+}
+
+// EnthalpyIncrements returns U(ts[i]) - U(from) for every temperature.
+func (e Einstein) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
+	return enthalpyIncrements(e, "solid.Einstein.EnthalpyIncrements", from, ts)
+}
+
+// Reduced returns ln q, U/kT and C/k of one formula unit; see [statmech.Mode].
+func (d Debye) Reduced(T unit.Temperature) statmech.Reduced {
+	return reduced(d, "solid.Debye.Reduced", T)
+}
+
+// HeatCapacity returns C_V at T.
+func (d Debye) HeatCapacity(T unit.Temperature) unit.MolarEntropy {
+	return heatCapacity(d, "solid.Debye.HeatCapacity", T)
+}
+
+// HeatCapacities returns C_V at every temperature.
+func (d Debye) HeatCapacities(ts []unit.Temperature) []unit.MolarEntropy {
+	return heatCapacities(d, "solid.Debye.HeatCapacities", ts)
+}
+
+// Entropy returns S(T).
+func (d Debye) Entropy(T unit.Temperature) unit.MolarEntropy {
+	return entropy(d, "solid.Debye.Entropy", T)
+}
+
+// Entropies returns S at every temperature.
+func (d Debye) Entropies(ts []unit.Temperature) []unit.MolarEntropy {
+	return entropies(d, "solid.Debye.Entropies", ts)
+}
+
+// EntropyIncrement returns S(to) - S(from).
+func (d Debye) EntropyIncrement(from, to unit.Temperature) unit.MolarEntropy {
+	return entropyIncrement(d, "solid.Debye.EntropyIncrement", from, to)
+}
+
+// ThermalEnergy returns U(T) - U(0).
+func (d Debye) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
+	return energy(d, "solid.Debye.ThermalEnergy", T)
+}
+
+// EnthalpyIncrement returns U(to) - U(from), which is H(to) - H(from) at
+// constant volume and negligible pressure.
+func (d Debye) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
+	return enthalpyIncrement(d, "solid.Debye.EnthalpyIncrement", from, to)
+}
+
+// EnthalpyIncrements returns U(ts[i]) - U(from) for every temperature.
+func (d Debye) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
+	return enthalpyIncrements(d, "solid.Debye.EnthalpyIncrements", from, ts)
+}
+
+// Reduced returns ln q, U/kT and C/k of one formula unit; see [statmech.Mode].
+func (d Debye2D) Reduced(T unit.Temperature) statmech.Reduced {
+	return reduced(d, "solid.Debye2D.Reduced", T)
+}
+
+// HeatCapacity returns C_V at T.
+func (d Debye2D) HeatCapacity(T unit.Temperature) unit.MolarEntropy {
+	return heatCapacity(d, "solid.Debye2D.HeatCapacity", T)
+}
+
+// HeatCapacities returns C_V at every temperature.
+func (d Debye2D) HeatCapacities(ts []unit.Temperature) []unit.MolarEntropy {
+	return heatCapacities(d, "solid.Debye2D.HeatCapacities", ts)
+}
+
+// Entropy returns S(T).
+func (d Debye2D) Entropy(T unit.Temperature) unit.MolarEntropy {
+	return entropy(d, "solid.Debye2D.Entropy", T)
+}
+
+// Entropies returns S at every temperature.
+func (d Debye2D) Entropies(ts []unit.Temperature) []unit.MolarEntropy {
+	return entropies(d, "solid.Debye2D.Entropies", ts)
+}
+
+// EntropyIncrement returns S(to) - S(from).
+func (d Debye2D) EntropyIncrement(from, to unit.Temperature) unit.MolarEntropy {
+	return entropyIncrement(d, "solid.Debye2D.EntropyIncrement", from, to)
+}
+
+// ThermalEnergy returns U(T) - U(0).
+func (d Debye2D) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
+	return energy(d, "solid.Debye2D.ThermalEnergy", T)
+}
+
+// EnthalpyIncrement returns U(to) - U(from), which is H(to) - H(from) at
+// constant volume and negligible pressure.
+func (d Debye2D) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
+	return enthalpyIncrement(d, "solid.Debye2D.EnthalpyIncrement", from, to)
+}
+
+// EnthalpyIncrements returns U(ts[i]) - U(from) for every temperature.
+func (d Debye2D) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
+	return enthalpyIncrements(d, "solid.Debye2D.EnthalpyIncrements", from, ts)
+}
+
+// Reduced returns ln q, U/kT and C/k of one formula unit; see [statmech.Mode].
+func (d Debye1D) Reduced(T unit.Temperature) statmech.Reduced {
+	return reduced(d, "solid.Debye1D.Reduced", T)
+}
+
+// HeatCapacity returns C_V at T.
+func (d Debye1D) HeatCapacity(T unit.Temperature) unit.MolarEntropy {
+	return heatCapacity(d, "solid.Debye1D.HeatCapacity", T)
+}
+
+// HeatCapacities returns C_V at every temperature.
+func (d Debye1D) HeatCapacities(ts []unit.Temperature) []unit.MolarEntropy {
+	return heatCapacities(d, "solid.Debye1D.HeatCapacities", ts)
+}
+
+// Entropy returns S(T).
+func (d Debye1D) Entropy(T unit.Temperature) unit.MolarEntropy {
+	return entropy(d, "solid.Debye1D.Entropy", T)
+}
+
+// Entropies returns S at every temperature.
+func (d Debye1D) Entropies(ts []unit.Temperature) []unit.MolarEntropy {
+	return entropies(d, "solid.Debye1D.Entropies", ts)
+}
+
+// EntropyIncrement returns S(to) - S(from).
+func (d Debye1D) EntropyIncrement(from, to unit.Temperature) unit.MolarEntropy {
+	return entropyIncrement(d, "solid.Debye1D.EntropyIncrement", from, to)
+}
+
+// ThermalEnergy returns U(T) - U(0).
+func (d Debye1D) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
+	return energy(d, "solid.Debye1D.ThermalEnergy", T)
+}
+
+// EnthalpyIncrement returns U(to) - U(from), which is H(to) - H(from) at
+// constant volume and negligible pressure.
+func (d Debye1D) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
+	return enthalpyIncrement(d, "solid.Debye1D.EnthalpyIncrement", from, to)
+}
+
+// EnthalpyIncrements returns U(ts[i]) - U(from) for every temperature.
+func (d Debye1D) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
+	return enthalpyIncrements(d, "solid.Debye1D.EnthalpyIncrements", from, ts)
+}
+
+// Reduced returns ln q, U/kT and C/k of one formula unit; see [statmech.Mode].
+func (e Electronic) Reduced(T unit.Temperature) statmech.Reduced {
+	return reduced(e, "solid.Electronic.Reduced", T)
+}
+
+// HeatCapacity returns C_V at T.
+func (e Electronic) HeatCapacity(T unit.Temperature) unit.MolarEntropy {
+	return heatCapacity(e, "solid.Electronic.HeatCapacity", T)
+}
+
+// HeatCapacities returns C_V at every temperature.
+func (e Electronic) HeatCapacities(ts []unit.Temperature) []unit.MolarEntropy {
+	return heatCapacities(e, "solid.Electronic.HeatCapacities", ts)
+}
+
+// Entropy returns S(T).
+func (e Electronic) Entropy(T unit.Temperature) unit.MolarEntropy {
+	return entropy(e, "solid.Electronic.Entropy", T)
+}
+
+// Entropies returns S at every temperature.
+func (e Electronic) Entropies(ts []unit.Temperature) []unit.MolarEntropy {
+	return entropies(e, "solid.Electronic.Entropies", ts)
+}
+
+// EntropyIncrement returns S(to) - S(from).
+func (e Electronic) EntropyIncrement(from, to unit.Temperature) unit.MolarEntropy {
+	return entropyIncrement(e, "solid.Electronic.EntropyIncrement", from, to)
+}
+
+// ThermalEnergy returns U(T) - U(0).
+func (e Electronic) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
+	return energy(e, "solid.Electronic.ThermalEnergy", T)
+}
+
+// EnthalpyIncrement returns U(to) - U(from), which is H(to) - H(from) at
+// constant volume and negligible pressure.
+func (e Electronic) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
+	return enthalpyIncrement(e, "solid.Electronic.EnthalpyIncrement", from, to)
+}
+
+// EnthalpyIncrements returns U(ts[i]) - U(from) for every temperature.
+func (e Electronic) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
+	return enthalpyIncrements(e, "solid.Electronic.EnthalpyIncrements", from, ts)
+}

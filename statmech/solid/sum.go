@@ -1,0 +1,300 @@
+package solid
+
+import (
+	"fmt"
+	"math"
+	"reflect"
+
+	"levelsum/statmech"
+	"levelsum/statmech/unit"
+)
+
+// Sum is a crystal composed of independent terms, all per mole of the same
+// formula unit: Sum{&debye, &einstein, &electronic}. A fit that varies the
+// fields of its terms needs the terms by pointer.
+//
+// Entropy, ThermalEnergy and Reduced need terms that have them from T = 0; the
+// increments are there for every term, by quadrature where a term has no
+// closed form (to 1e-10 of the increment). Errors: a panic with a
+// [*statmech.DomainError].
+type Sum []Term
+
+// HeatCapacity returns the heat capacity of all terms at T.
+func (s Sum) HeatCapacity(T unit.Temperature) unit.MolarEntropy {
+	var c unit.MolarEntropy
+	for _, term := range s {
+		c += term.HeatCapacity(T)
+	}
+	return c
+}
+
+// HeatCapacities returns the heat capacity of all terms at every temperature.
+func (s Sum) HeatCapacities(ts []unit.Temperature) []unit.MolarEntropy {
+	c := make([]unit.MolarEntropy, len(ts))
+	for _, term := range s {
+		for i, v := range HeatCapacities(term, ts) {
+			c[i] += v
+		}
+	}
+	return c
+}
+
+// HeatCapacities returns the heat capacity of a term at every temperature, by
+// the term's own slice method where it has one.
+func HeatCapacities(term Term, ts []unit.Temperature) []unit.MolarEntropy {
+	if many, ok := term.(interface {
+		HeatCapacities([]unit.Temperature) []unit.MolarEntropy
+	}); ok {
+		return many.HeatCapacities(ts)
+	}
+	c := make([]unit.MolarEntropy, len(ts))
+	for i, T := range ts {
+		c[i] = term.HeatCapacity(T)
+	}
+	return c
+}
+
+// EntropyIncrement returns S(to) - S(from), the integral of C/T.
+func (s Sum) EntropyIncrement(from, to unit.Temperature) unit.MolarEntropy {
+	const fn = "solid.Sum.EntropyIncrement"
+	checkRange(fn, from, to)
+	var sum unit.MolarEntropy
+	for _, term := range s {
+		if closed, ok := term.(interface {
+			EntropyIncrement(from, to unit.Temperature) unit.MolarEntropy
+		}); ok {
+			sum += closed.EntropyIncrement(from, to)
+			continue
+		}
+		sum += unit.MolarEntropy(integrateLog(func(t float64) float64 {
+			return float64(term.HeatCapacity(unit.Temperature(t)))
+		}, float64(from), float64(to)))
+	}
+	return sum
+}
+
+// EnthalpyIncrement returns H(to) - H(from), the integral of C; see
+// [Debye.EnthalpyIncrement] for what that is at constant volume.
+func (s Sum) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
+	const fn = "solid.Sum.EnthalpyIncrement"
+	checkRange(fn, from, to)
+	var sum unit.MolarEnergy
+	for _, term := range s {
+		if closed, ok := term.(interface {
+			EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy
+		}); ok {
+			sum += closed.EnthalpyIncrement(from, to)
+			continue
+		}
+		sum += unit.MolarEnergy(integrateLog(func(t float64) float64 {
+			return t * float64(term.HeatCapacity(unit.Temperature(t)))
+		}, float64(from), float64(to)))
+	}
+	return sum
+}
+
+func checkRange(fn string, from, to unit.Temperature) {
+	if _, err := temperature(fn, "from", from); err != nil {
+		panic(err)
+	}
+	if _, err := temperature(fn, "to", to); err != nil {
+		panic(err)
+	}
+}
+
+// Entropy returns S(T) of all terms, counted from T = 0.
+func (s Sum) Entropy(T unit.Temperature) unit.MolarEntropy {
+	var sum unit.MolarEntropy
+	for i, term := range s {
+		absolute, ok := term.(interface {
+			Entropy(unit.Temperature) unit.MolarEntropy
+		})
+		if !ok {
+			panic(s.lacks("solid.Sum.Entropy", i, "a term with an entropy from T = 0; EntropyIncrement needs none"))
+		}
+		sum += absolute.Entropy(T)
+	}
+	return sum
+}
+
+// Entropies returns S of all terms at every temperature.
+func (s Sum) Entropies(ts []unit.Temperature) []unit.MolarEntropy {
+	sum := make([]unit.MolarEntropy, len(ts))
+	for i, T := range ts {
+		sum[i] = s.Entropy(T)
+	}
+	return sum
+}
+
+// ThermalEnergy returns U(T) - U(0) of all terms.
+func (s Sum) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
+	var sum unit.MolarEnergy
+	for i, term := range s {
+		absolute, ok := term.(interface {
+			ThermalEnergy(unit.Temperature) unit.MolarEnergy
+		})
+		if !ok {
+			panic(s.lacks("solid.Sum.ThermalEnergy", i, "a term with an energy from T = 0; EnthalpyIncrement needs none"))
+		}
+		sum += absolute.ThermalEnergy(T)
+	}
+	return sum
+}
+
+// Reduced returns ln q, U/kT and C/k of one formula unit; see [statmech.Mode].
+func (s Sum) Reduced(T unit.Temperature) statmech.Reduced {
+	var r statmech.Reduced
+	for i, term := range s {
+		m, ok := term.(statmech.Mode)
+		if !ok {
+			panic(s.lacks("solid.Sum.Reduced", i, "a statmech.Mode"))
+		}
+		r = r.Add(m.Reduced(T))
+	}
+	return r
+}
+
+// ZeroPointEnergy returns the zero-point energy of the terms that have one,
+// per formula unit.
+func (s Sum) ZeroPointEnergy() unit.Energy {
+	var e unit.Energy
+	for _, term := range s {
+		if z, ok := term.(statmech.ZeroPointer); ok {
+			e += z.ZeroPointEnergy()
+		}
+	}
+	return e
+}
+
+func (s Sum) lacks(fn string, i int, want string) *statmech.DomainError {
+	return &statmech.DomainError{Func: fn, Arg: fmt.Sprintf("term %d", i+1), Value: typeName(s[i]), Want: want}
+}
+
+func typeName(term Term) string {
+	t := reflect.TypeOf(term)
+	if t == nil {
+		return "nil"
+	}
+	if t.Kind() == reflect.Pointer {
+		t = t.Elem()
+	}
+	return t.Name()
+}
+
+// ModeCount returns the number of vibrations of all terms that count them.
+func (s Sum) ModeCount() float64 {
+	n := 0.0
+	for _, term := range s {
+		if m, ok := term.(interface{ ModeCount() float64 }); ok {
+			n += m.ModeCount()
+		}
+	}
+	return n
+}
+
+// CheckModes returns an error that says what is there and what is missing if
+// the vibrations of all terms are not 3 for each of the given number of atoms
+// in the formula unit, to 1e-9 of them. Free weights of a fit that do not add
+// to 3n describe another amount of substance.
+func (s Sum) CheckModes(atoms int) error {
+	if n, want := s.ModeCount(), 3*float64(atoms); !(math.Abs(n-want) <= 1e-9*want) {
+		return &statmech.DomainError{Func: "solid.Sum.CheckModes", Arg: "modes of all terms", Value: fmt.Sprintf("%g", n),
+			Want: fmt.Sprintf("%g, three for each of %d atoms in the formula unit", want, atoms)}
+	}
+	return nil
+}
+
+// Accumulate implements [Differentiable] if every term that owns one of the
+// addresses does, and every other term knows its heat capacity. A term that is
+// not Differentiable must not depend on the numbers at those addresses, or
+// their derivatives miss its part.
+func (s Sum) Accumulate(ts []unit.Temperature, at []*float64, c []float64, partials [][]float64) error {
+	for _, term := range s {
+		if d, ok := term.(Differentiable); ok {
+			if err := d.Accumulate(ts, at, c, partials); err != nil {
+				return err
+			}
+			continue
+		}
+		if c == nil {
+			continue
+		}
+		for i, v := range HeatCapacities(term, ts) {
+			c[i] += float64(v)
+		}
+	}
+	return nil
+}
+
+// Owns implements [Differentiable]. The name is that of the term's type and of
+// the field, "Debye.Theta"; terms of one type are numbered, "Einstein2.Theta".
+func (s Sum) Owns(p *float64) (string, bool) {
+	for i, term := range s {
+		d, ok := term.(Differentiable)
+		if !ok {
+			continue
+		}
+		name, ok := d.Owns(p)
+		if !ok {
+			continue
+		}
+		kind, same, before := typeName(term), 0, 0
+		for j, other := range s {
+			if typeName(other) == kind {
+				same++
+				if j < i {
+					before++
+				}
+			}
+		}
+		if same > 1 {
+			kind = fmt.Sprintf("%s%d", kind, before+1)
+		}
+		return kind + "." + name, true
+	}
+	return "", false
+}
+
+// OfMode makes a Term of any [statmech.Mode], such as a type declared in a
+// notebook cell, with Count independent copies in the formula unit.
+type OfMode struct {
+	Mode  statmech.Mode
+	Count float64 // copies in the formula unit; 0 stands for 1
+}
+
+func (o OfMode) count() float64 {
+	if o.Count == 0 {
+		return 1
+	}
+	return o.Count
+}
+
+// Reduced returns ln q, U/kT and C/k of one formula unit.
+func (o OfMode) Reduced(T unit.Temperature) statmech.Reduced {
+	return o.Mode.Reduced(T).Scale(o.count())
+}
+
+// HeatCapacity returns the molar heat capacity at T.
+func (o OfMode) HeatCapacity(T unit.Temperature) unit.MolarEntropy {
+	return unit.MolarEntropy(o.Reduced(T).C) * unit.R
+}
+
+// Entropy returns S(T).
+func (o OfMode) Entropy(T unit.Temperature) unit.MolarEntropy {
+	return unit.MolarEntropy(o.Reduced(T).Entropy()) * unit.R
+}
+
+// EntropyIncrement returns S(to) - S(from).
+func (o OfMode) EntropyIncrement(from, to unit.Temperature) unit.MolarEntropy {
+	return o.Entropy(to) - o.Entropy(from)
+}
+
+// ThermalEnergy returns U(T) - U(0).
+func (o OfMode) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
+	return (unit.MolarEntropy(o.Reduced(T).U) * unit.R).Times(T)
+}
+
+// EnthalpyIncrement returns U(to) - U(from).
+func (o OfMode) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
+	return o.ThermalEnergy(to) - o.ThermalEnergy(from)
+}

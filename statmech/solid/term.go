@@ -1,0 +1,229 @@
+package solid
+
+import (
+	"fmt"
+	"math"
+
+	"levelsum/statmech"
+	"levelsum/statmech/unit"
+)
+
+// A Term is a contribution to the molar heat capacity of a solid. A type of
+// the user's own with this one method can stand in a [Sum].
+type Term interface {
+	HeatCapacity(T unit.Temperature) unit.MolarEntropy
+}
+
+// Differentiable is a Term that knows its derivatives with respect to its own
+// fields. All models of this package, by pointer, are.
+type Differentiable interface {
+	Term
+	// Accumulate adds the heat capacity at ts[i], in J/(mol K), to c[i] and,
+	// for every at[j] that is the address of one of the term's fields, the
+	// derivative with respect to it, in J/(mol K) per SI unit of the field, to
+	// partials[j][i]. Other rows are left alone, so that a sum of terms is a
+	// sequence of calls. c may be nil; at may be empty.
+	//
+	// It returns a *statmech.DomainError, and has then written nothing
+	// useful, if a field or a temperature is outside the model's range. A trial
+	// step of a fit that leads there is to be shortened.
+	Accumulate(ts []unit.Temperature, at []*float64, c []float64, partials [][]float64) error
+	// Owns says whether p is the address of one of the term's fields, and
+	// under what name ("Theta").
+	Owns(p *float64) (name string, ok bool)
+}
+
+// model is what the models of this package have in common. Everything is per
+// formula unit, in units of k; T is already known to be good.
+type model interface {
+	// bad returns a field outside its range, or nil.
+	bad() *statmech.DomainError
+	reduced(T float64) statmech.Reduced
+	// heats writes C/k at every temperature.
+	heats(dst, ts []float64)
+}
+
+// field is a DomainError about a field of a model; checked fills in Func.
+func field(name string, value fmt.Stringer, want string) *statmech.DomainError {
+	return &statmech.DomainError{Arg: name, Value: value.String(), Want: want}
+}
+
+type plainNumber float64
+
+func (n plainNumber) String() string { return fmt.Sprintf("%g", float64(n)) }
+
+func positive(x float64) bool    { return x > 0 && !math.IsInf(x, 1) }
+func notNegative(x float64) bool { return x >= 0 && !math.IsInf(x, 1) }
+
+const (
+	wantPositive    = "positive and finite"
+	wantNotNegative = "not negative, and finite"
+)
+
+// temperature returns T in K, or the error that says which T is wrong.
+func temperature(fn, arg string, T unit.Temperature) (float64, *statmech.DomainError) {
+	if positive(float64(T)) {
+		return float64(T), nil
+	}
+	return 0, &statmech.DomainError{Func: fn, Arg: arg, Value: T.String(), Want: wantPositive}
+}
+
+// checked panics if the model or T is bad and returns T in K.
+func checked(m model, fn string, T unit.Temperature) float64 {
+	if err := m.bad(); err != nil {
+		err.Func = fn
+		panic(err)
+	}
+	x, err := temperature(fn, "T", T)
+	if err != nil {
+		panic(err)
+	}
+	return x
+}
+
+func reduced(m model, fn string, T unit.Temperature) statmech.Reduced {
+	return m.reduced(checked(m, fn, T))
+}
+
+func heatCapacity(m model, fn string, T unit.Temperature) unit.MolarEntropy {
+	t := [1]float64{checked(m, fn, T)}
+	m.heats(t[:], t[:])
+	return unit.MolarEntropy(t[0]) * unit.R
+}
+
+func heatCapacities(m model, fn string, ts []unit.Temperature) []unit.MolarEntropy {
+	x := kelvins(m, fn, ts)
+	m.heats(x, x)
+	c := make([]unit.MolarEntropy, len(ts))
+	for i, v := range x {
+		c[i] = unit.MolarEntropy(v) * unit.R
+	}
+	return c
+}
+
+// kelvins checks every temperature and names the one that is wrong.
+func kelvins(m model, fn string, ts []unit.Temperature) []float64 {
+	if err := m.bad(); err != nil {
+		err.Func = fn
+		panic(err)
+	}
+	x := make([]float64, len(ts))
+	for i, T := range ts {
+		t, err := temperature(fn, fmt.Sprintf("ts[%d]", i), T)
+		if err != nil {
+			panic(err)
+		}
+		x[i] = t
+	}
+	return x
+}
+
+func entropy(m model, fn string, T unit.Temperature) unit.MolarEntropy {
+	return unit.MolarEntropy(reduced(m, fn, T).Entropy()) * unit.R
+}
+
+func entropies(m model, fn string, ts []unit.Temperature) []unit.MolarEntropy {
+	s := make([]unit.MolarEntropy, len(ts))
+	for i, t := range kelvins(m, fn, ts) {
+		s[i] = unit.MolarEntropy(m.reduced(t).Entropy()) * unit.R
+	}
+	return s
+}
+
+func entropyIncrement(m model, fn string, from, to unit.Temperature) unit.MolarEntropy {
+	return entropy(m, fn, to) - entropy(m, fn, from)
+}
+
+// energy returns U(T) - U(0) of one mole.
+func energy(m model, fn string, T unit.Temperature) unit.MolarEnergy {
+	t := checked(m, fn, T)
+	return unit.MolarEnergy(m.reduced(t).U*t) * unit.MolarEnergy(unit.GasConstant)
+}
+
+func enthalpyIncrement(m model, fn string, from, to unit.Temperature) unit.MolarEnergy {
+	return energy(m, fn, to) - energy(m, fn, from)
+}
+
+func enthalpyIncrements(m model, fn string, from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
+	base := energy(m, fn, from)
+	h := make([]unit.MolarEnergy, len(ts))
+	for i, t := range kelvins(m, fn, ts) {
+		h[i] = unit.MolarEnergy(m.reduced(t).U*t)*unit.MolarEnergy(unit.GasConstant) - base
+	}
+	return h
+}
+
+// A parameter is a field of a model that a fit may vary.
+type parameter struct {
+	name string
+	at   *float64
+}
+
+func owns(fields []parameter, p *float64) (string, bool) {
+	for _, f := range fields {
+		if f.at == p {
+			return f.name, true
+		}
+	}
+	return "", false
+}
+
+// chunk is how many temperatures Accumulate treats at a time, so that its
+// scratch space is on the stack.
+const chunk = 128
+
+// accumulate is Accumulate for a model whose values and derivatives block
+// writes for at most chunk good temperatures: C/k into c and ∂(C/k)/∂fieldⱼ
+// into slopes[j] for each field j.
+func accumulate(m model, name string, fields []parameter, ts []unit.Temperature, at []*float64, c []float64, partials [][]float64,
+	block func(t, c []float64, slopes *[4][chunk]float64)) error {
+	if err := m.bad(); err != nil {
+		err.Func = name
+		return err
+	}
+	for _, f := range fields {
+		for _, p := range at {
+			if p == f.at && f.name == "Modes" && *p == 0 {
+				return &statmech.DomainError{Func: name, Arg: f.name, Value: "0", Want: "a value other than the default, since it is free"}
+			}
+		}
+	}
+	var t, values [chunk]float64
+	var slopes [4][chunk]float64
+	for from := 0; from < len(ts); from += chunk {
+		n := min(chunk, len(ts)-from)
+		for i := range n {
+			x, err := temperature(name, "T", ts[from+i])
+			if err != nil {
+				return err
+			}
+			t[i] = x
+		}
+		block(t[:n], values[:n], &slopes)
+		if c != nil {
+			for i, v := range values[:n] {
+				c[from+i] += unit.GasConstant * v
+			}
+		}
+		for j, f := range fields {
+			for row, p := range at {
+				if p != f.at {
+					continue
+				}
+				out := partials[row][from : from+n]
+				for i, v := range slopes[j][:n] {
+					out[i] += unit.GasConstant * v
+				}
+			}
+		}
+	}
+	return nil
+}
+
+// modes returns the count of modes that a field Modes stands for.
+func modes(n float64) float64 {
+	if n == 0 {
+		return 3
+	}
+	return n
+}
