@@ -1,0 +1,109 @@
+package session
+
+import (
+	"bytes"
+	"fmt"
+	"unicode/utf8"
+)
+
+// What a cell may print. Up to head it is shown as it comes; of the rest the
+// last part is kept and shown when the cell ends, or before it shows something
+// else: the first time tail bytes, then laterTail.
+const (
+	headBytes = 512 << 10
+	tailBytes = 64 << 10
+	laterTail = 4 << 10
+)
+
+// A limit cuts the middle out of long output. It is deterministic: the same
+// text in the same order is cut in the same place.
+type limit struct {
+	head, tail int // bytes left for the head, bytes kept of the rest
+	told       bool
+	last       []piece // the end of what is held back
+	held       int     // bytes in last
+	lines      int     // left out so far
+	dropped    int     // bytes left out so far
+}
+
+// A piece is text on one stream.
+type piece struct {
+	name string
+	text []byte
+}
+
+func newLimit() limit { return limit{head: headBytes, tail: tailBytes} }
+
+// add takes text and returns what of it is shown now, and a notice to follow it.
+func (l *limit) add(name, text string) (now, notice string) {
+	if n := len(text); n <= l.head {
+		l.head -= n
+		return text, ""
+	}
+	cut := l.head
+	for cut > 0 && !utf8.RuneStart(text[cut]) {
+		cut--
+	}
+	now = text[:cut]
+	l.head = 0
+	l.hold(name, text[cut:])
+	if !l.told {
+		l.told = true
+		notice = "\nlevelsum: this cell prints much; what follows is held back, and its last part is shown when the cell ends\n"
+	}
+	return now, notice
+}
+
+// hold keeps text, and lets go of what is too old now and then.
+func (l *limit) hold(name, text string) {
+	if n := len(l.last); n > 0 && l.last[n-1].name == name {
+		l.last[n-1].text = append(l.last[n-1].text, text...)
+	} else {
+		l.last = append(l.last, piece{name, []byte(text)})
+	}
+	l.held += len(text)
+	if l.held > 2*l.tail+64<<10 {
+		l.trim()
+	}
+}
+
+// trim lets go of all but the last tail bytes.
+func (l *limit) trim() {
+	for l.held > l.tail {
+		p := &l.last[0]
+		n := min(l.held-l.tail, len(p.text))
+		l.lines += bytes.Count(p.text[:n], []byte("\n"))
+		l.dropped += n
+		l.held -= n
+		p.text = p.text[n:]
+		if len(p.text) == 0 {
+			l.last = l.last[1:]
+		}
+	}
+}
+
+// rest returns what is held back, with a notice before it if something before
+// it is left out. It starts with a whole line if there is one.
+func (l *limit) rest() (notice string, last []piece) {
+	l.trim()
+	if l.dropped > 0 && len(l.last) > 0 {
+		p := &l.last[0]
+		n := bytes.IndexByte(p.text, '\n') + 1
+		if n > 0 {
+			l.lines++
+		} else {
+			for n < len(p.text) && !utf8.RuneStart(p.text[n]) {
+				n++
+			}
+		}
+		l.dropped += n
+		p.text = p.text[n:]
+	}
+	if l.dropped > 0 {
+		notice = fmt.Sprintf("\nlevelsum: %d lines (%d bytes) are left out here; write them to a file to keep them all\n", l.lines, l.dropped)
+	}
+	last = l.last
+	l.last, l.held, l.lines, l.dropped = nil, 0, 0, 0
+	l.tail = laterTail
+	return notice, last
+}
