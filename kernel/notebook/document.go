@@ -18,6 +18,9 @@ type Document struct {
 	minor int
 }
 
+// ErrSyntax is matched by the error of a file that is not JSON.
+var ErrSyntax = errors.New("not a notebook")
+
 // A FormatError says where a document breaks the rules of its format.
 type FormatError struct {
 	File   string // as given to Read or Parse
@@ -58,9 +61,9 @@ func Parse(file string, data []byte) (*Document, error) {
 	if err != nil {
 		var s *syntaxError
 		if errors.As(err, &s) {
-			return nil, fmt.Errorf("%s:%d:%d: not a notebook: %s", file, s.line, s.column, s.reason)
+			return nil, fmt.Errorf("%s:%d:%d: %w: %s", file, s.line, s.column, ErrSyntax, s.reason)
 		}
-		return nil, fmt.Errorf("%s: not a notebook: %w", file, err)
+		return nil, err
 	}
 	d := &Document{root: root}
 	if err := d.check(file); err != nil {

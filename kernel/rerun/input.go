@@ -1,6 +1,7 @@
 package rerun
 
 import (
+	"errors"
 	"fmt"
 	"go/ast"
 	"go/parser"
@@ -18,6 +19,9 @@ import (
 //	//levelsum:input
 //	theta := 343 * unit.K // any variable with a value, one a line
 const directive = "//levelsum:input"
+
+// ErrInput is matched by the error of a setting that cannot be applied.
+var ErrInput = errors.New("cannot set the input")
 
 // A Setting gives an input a value for one run: a Go expression, or plain text
 // for an input whose own value is a string literal.
@@ -131,21 +135,21 @@ func applySettings(d *notebook.Document, set []Setting) ([]Input, error) {
 		if len(set) == 0 {
 			return nil, nil // the cell will say itself what is wrong with it
 		}
-		return nil, err
+		return nil, fmt.Errorf("%w: %w", ErrInput, err)
 	}
 	for i, s := range set {
 		if slices.ContainsFunc(set[:i], func(t Setting) bool { return t.Name == s.Name }) {
-			return nil, fmt.Errorf("input %s is set twice", s.Name)
+			return nil, fmt.Errorf("%w %s: it is set twice", ErrInput, s.Name)
 		}
 		at := slices.IndexFunc(inputs, func(x Input) bool { return x.Name == s.Name })
 		if at < 0 {
-			return nil, fmt.Errorf("no input %s: %s", s.Name, known(inputs))
+			return nil, fmt.Errorf("%w %s: there is none of this name; %s", ErrInput, s.Name, known(inputs))
 		}
 		val := s.Value
 		if _, err := parser.ParseExpr(val); inputs[at].string && !strings.HasPrefix(val, `"`) && !strings.HasPrefix(val, "`") {
 			val = strconv.Quote(val)
 		} else if err != nil {
-			return nil, fmt.Errorf("input %s: %q is not one Go expression", s.Name, val)
+			return nil, fmt.Errorf("%w %s: %q is not one Go expression", ErrInput, s.Name, val)
 		}
 		inputs[at].Set = val
 	}

@@ -305,12 +305,12 @@ func TestSettings(t *testing.T) {
 		set   []string
 		want  string
 	}{
-		{[]string{"theta := 1"}, []string{"theta=2"}, "no input theta: no cell is marked with //levelsum:input"},
-		{[]string{in}, []string{"gamma=2"}, "no input gamma: the inputs are theta, n, file"},
-		{[]string{in}, []string{"n=2", "n=3"}, "input n is set twice"},
-		{[]string{in}, []string{"n=2; os.Exit(1)"}, `input n: "2; os.Exit(1)" is not one Go expression`},
-		{[]string{in, in}, []string{"n=2"}, "cell 2: input theta is declared in cell 1 already"},
-		{[]string{directive + "\nfunc f() {}"}, []string{"n=2"}, "cell 1: an input cell holds variables with values and nothing else"},
+		{[]string{"theta := 1"}, []string{"theta=2"}, "cannot set the input theta: there is none of this name; no cell is marked with //levelsum:input"},
+		{[]string{in}, []string{"gamma=2"}, "cannot set the input gamma: there is none of this name; the inputs are theta, n, file"},
+		{[]string{in}, []string{"n=2", "n=3"}, "cannot set the input n: it is set twice"},
+		{[]string{in}, []string{"n=2; os.Exit(1)"}, `cannot set the input n: "2; os.Exit(1)" is not one Go expression`},
+		{[]string{in, in}, []string{"n=2"}, "cannot set the input: cell 2: input theta is declared in cell 1 already"},
+		{[]string{directive + "\nfunc f() {}"}, []string{"n=2"}, "cannot set the input: cell 1: an input cell holds variables with values and nothing else"},
 	} {
 		o := set(test.set...)
 		o.Start = func(context.Context) (Session, error) { t.Error("started"); return newFake(), nil }

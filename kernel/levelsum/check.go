@@ -1,0 +1,268 @@
+package main
+
+import (
+	"context"
+	"encoding/json"
+	"encoding/xml"
+	"flag"
+	"fmt"
+	"io"
+	"os"
+	"os/signal"
+	"strings"
+	"syscall"
+	"text/tabwriter"
+
+	"levelsum/kernel/notebook"
+	"levelsum/kernel/rerun"
+)
+
+const checkUsage = `usage: levelsum check [flags] NOTEBOOK...
+
+Runs each notebook in a fresh engine and compares what it gives with what is
+stored in it: named results by value and uncertainty, tables cell by cell,
+figures and texts by their numbers, data files by their content. Nothing is
+written to the notebook.
+
+  -json
+        Print the comparison as JSON.
+  -junit
+        Print the comparison as JUnit XML.
+  -keep-going, -limit DURATION, -memory SIZE
+        As for levelsum run.
+
+  identical       the same
+  rounding-level  relative 1e-9, or absolute below 1e-12 of the scale
+  inside u        within one standard uncertainty of the stored result
+  moved, new, missing
+
+The exit status is 0 if everything is identical, rounding-level or inside u,
+1 if not or if a cell failed, 2 on misuse.
+`
+
+// A checked notebook.
+type checked struct {
+	File     string          `json:"file"`
+	OK       bool            `json:"ok"`
+	Cells    int             `json:"cells"`
+	Failures []string        `json:"failures,omitempty"`
+	NotRun   int             `json:"not_run,omitempty"`
+	Findings []rerun.Finding `json:"findings"`
+}
+
+// check is "levelsum check".
+func check(args []string, _ io.Reader, stdout, stderr io.Writer) int {
+	return checkWith(args, stdout, stderr, startRunner)
+}
+
+func checkWith(args []string, stdout, stderr io.Writer, start runner) int {
+	fs := flag.NewFlagSet("check", flag.ContinueOnError)
+	fs.SetOutput(stderr)
+	fs.Usage = func() { fmt.Fprint(stderr, checkUsage) }
+	var f runFlags
+	f.define(fs)
+	asJSON := fs.Bool("json", false, "")
+	asJUnit := fs.Bool("junit", false, "")
+	if status, ok := parseFlags(fs, args, stdout, checkUsage); !ok {
+		return status
+	}
+	if *asJSON && *asJUnit {
+		fmt.Fprintln(stderr, "levelsum: check: -json or -junit, not both")
+		return 2
+	}
+	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
+	defer stop()
+	status := 0
+	var all []checked
+	for _, file := range fs.Args() {
+		c, err := checkOne(ctx, file, f, start, stderr)
+		if err != nil {
+			fmt.Fprintf(stderr, "levelsum: check: %v\n", err)
+			status = max(status, statusOf(err))
+			c = checked{File: file, Failures: []string{err.Error()}}
+		}
+		if !c.OK {
+			status = max(status, 1)
+		}
+		all = append(all, c)
+		if ctx.Err() != nil {
+			break
+		}
+	}
+	var err error
+	switch {
+	case *asJSON:
+		e := json.NewEncoder(stdout)
+		e.SetEscapeHTML(false)
+		e.SetIndent("", " ")
+		err = e.Encode(map[string]any{"notebooks": all})
+	case *asJUnit:
+		err = writeJUnit(stdout, all)
+	default:
+		for _, c := range all {
+			c.print(stdout)
+		}
+	}
+	if err != nil {
+		fmt.Fprintf(stderr, "levelsum: check: %v\n", err)
+		return 1
+	}
+	return status
+}
+
+func checkOne(ctx context.Context, file string, f runFlags, start runner, stderr io.Writer) (checked, error) {
+	stored, err := notebook.Read(file)
+	if err != nil {
+		return checked{}, err
+	}
+	now, r, err := execute(ctx, file, f, start, stderr)
+	if err != nil {
+		return checked{}, err
+	}
+	findings, err := rerun.Compare(stored, now)
+	if err != nil {
+		return checked{}, fmt.Errorf("%s: %w", file, err)
+	}
+	c := checked{File: file, OK: r.OK(), Cells: len(r.Steps), NotRun: r.NotRun, Findings: findings}
+	for _, s := range r.Steps {
+		if s.Fault != nil && !s.Allowed {
+			c.Failures = append(c.Failures, fmt.Sprintf("cell %d: %s: %s", s.Cell, s.Fault.Name, s.Fault.Message))
+		}
+	}
+	for _, x := range findings {
+		c.OK = c.OK && !x.Verdict.Differs()
+	}
+	return c, nil
+}
+
+// print writes the short table: every named result, and of the rest what is
+// not identical.
+func (c checked) print(w io.Writer) {
+	count := map[rerun.Verdict]int{}
+	for _, f := range c.Findings {
+		count[f.Verdict]++
+	}
+	var sum []string
+	for v := rerun.Identical; v <= rerun.Missing; v++ {
+		if count[v] > 0 {
+			sum = append(sum, fmt.Sprintf("%d %v", count[v], v))
+		}
+	}
+	if len(c.Failures) > 0 {
+		sum = append(sum, fmt.Sprintf("%d failed", len(c.Failures)))
+	}
+	if c.NotRun > 0 {
+		sum = append(sum, fmt.Sprintf("%d cells not run", c.NotRun))
+	}
+	if len(sum) == 0 {
+		sum = []string{"nothing to compare"}
+	}
+	fmt.Fprintf(w, "%s: %s\n", c.File, strings.Join(sum, ", "))
+	for _, s := range c.Failures {
+		fmt.Fprintf(w, "  failed: %s\n", s)
+	}
+	t := tabwriter.NewWriter(w, 0, 8, 2, ' ', 0)
+	for _, f := range c.Findings {
+		if f.Kind != "result" && f.Verdict == rerun.Identical {
+			continue
+		}
+		fmt.Fprintf(t, "  %v\t%s\t%s\n", f.Verdict, where(f), change(f))
+	}
+	t.Flush()
+}
+
+// where names what a finding is about.
+func where(f rerun.Finding) string {
+	switch {
+	case f.Kind == "result":
+		return f.Name
+	case f.Kind == "data":
+		return "data " + f.Name
+	}
+	return fmt.Sprintf("%s, cell %d, %s", f.Kind, f.Cell, f.Name)
+}
+
+// change says how the new value differs from the stored one.
+func change(f rerun.Finding) string {
+	var s []string
+	switch {
+	case f.Verdict == rerun.Identical:
+		s = append(s, f.Now)
+	case f.Old != "" && f.Now != "":
+		s = append(s, f.Old+" -> "+f.Now)
+	case f.Old != "":
+		s = append(s, "was "+f.Old)
+	case f.Now != "":
+		s = append(s, f.Now)
+	}
+	if f.Verdict != rerun.Identical && f.Delta != 0 {
+		d := fmt.Sprintf("Δ = %.3g", f.Delta)
+		if f.DeltaU != 0 {
+			d += fmt.Sprintf(" = %.2g u", f.DeltaU)
+		}
+		s = append(s, d)
+	}
+	if f.Note != "" {
+		s = append(s, f.Note)
+	}
+	return strings.Join(s, "; ")
+}
+
+type junitCase struct {
+	Class   string     `xml:"classname,attr"`
+	Name    string     `xml:"name,attr"`
+	Failure *junitText `xml:"failure,omitempty"`
+	Error   *junitText `xml:"error,omitempty"`
+}
+
+type junitText struct {
+	Message string `xml:"message,attr"`
+}
+
+type junitSuite struct {
+	Name     string      `xml:"name,attr"`
+	Tests    int         `xml:"tests,attr"`
+	Failures int         `xml:"failures,attr"`
+	Errors   int         `xml:"errors,attr"`
+	Cases    []junitCase `xml:"testcase"`
+}
+
+func writeJUnit(w io.Writer, all []checked) error {
+	root := struct {
+		XMLName xml.Name     `xml:"testsuites"`
+		Suites  []junitSuite `xml:"testsuite"`
+	}{}
+	for _, c := range all {
+		s := junitSuite{Name: c.File}
+		cells := junitCase{Class: c.File, Name: "cells run"}
+		if len(c.Failures) > 0 || c.NotRun > 0 {
+			text := strings.Join(c.Failures, "; ")
+			if c.NotRun > 0 {
+				text += fmt.Sprintf("; %d cells not run", c.NotRun)
+			}
+			cells.Error = &junitText{strings.TrimPrefix(text, "; ")}
+			s.Errors++
+		}
+		s.Cases = append(s.Cases, cells)
+		for _, f := range c.Findings {
+			x := junitCase{Class: c.File, Name: where(f)}
+			if f.Verdict.Differs() {
+				x.Failure = &junitText{f.Verdict.String() + ": " + change(f)}
+				s.Failures++
+			}
+			s.Cases = append(s.Cases, x)
+		}
+		s.Tests = len(s.Cases)
+		root.Suites = append(root.Suites, s)
+	}
+	if _, err := io.WriteString(w, xml.Header); err != nil {
+		return err
+	}
+	e := xml.NewEncoder(w)
+	e.Indent("", " ")
+	if err := e.Encode(root); err != nil {
+		return err
+	}
+	_, err := io.WriteString(w, "\n")
+	return err
+}

@@ -1,0 +1,43 @@
+package main
+
+import (
+	"flag"
+	"fmt"
+	"io"
+
+	"levelsum/kernel/notebook"
+	"levelsum/kernel/rerun"
+)
+
+const clearUsage = `usage: levelsum clear NOTEBOOK...
+
+Takes out of each notebook what running it has put there: outputs, numbers of
+runs, the list of data files. Everything else stays.
+
+The exit status is 0 on success, 2 if a file cannot be read as a notebook, 1 if
+it cannot be written.
+`
+
+// clearNotebooks is "levelsum clear".
+func clearNotebooks(args []string, _ io.Reader, stdout, stderr io.Writer) int {
+	fs := flag.NewFlagSet("clear", flag.ContinueOnError)
+	fs.SetOutput(stderr)
+	fs.Usage = func() { fmt.Fprint(stderr, clearUsage) }
+	if status, ok := parseFlags(fs, args, stdout, clearUsage); !ok {
+		return status
+	}
+	status := 0
+	for _, file := range fs.Args() {
+		d, err := notebook.Read(file)
+		if err == nil {
+			if err = rerun.Clear(d); err == nil {
+				err = d.Write(file)
+			}
+		}
+		if err != nil {
+			fmt.Fprintf(stderr, "levelsum: clear: %v\n", err)
+			status = max(status, statusOf(err))
+		}
+	}
+	return status
+}

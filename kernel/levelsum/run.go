@@ -1,0 +1,255 @@
+package main
+
+import (
+	"context"
+	"errors"
+	"flag"
+	"fmt"
+	"io"
+	"math"
+	"os"
+	"os/signal"
+	"path/filepath"
+	"strconv"
+	"strings"
+	"syscall"
+	"time"
+
+	"levelsum/kernel/engine"
+	"levelsum/kernel/notebook"
+	"levelsum/kernel/rerun"
+)
+
+const runUsage = `usage: levelsum run [flags] NOTEBOOK...
+
+Runs the code cells of each notebook in order in a fresh engine, stores what
+they show in the notebook, and prints the named results. Relative paths in
+cells mean the notebook's folder.
+
+  -o OUT
+        Write to the file OUT, or into the folder OUT, instead of in place.
+  -set NAME=VALUE
+        Give an input another value, a Go expression; may be repeated, needs
+        -o. Inputs are the variables of cells with the line //levelsum:input.
+  -keep-going
+        Go on after a cell that failed.
+  -limit DURATION
+        End the run of a notebook that takes longer (90s, 10m, 2h).
+  -memory SIZE
+        End a cell whose engine takes more (512MB, 4GB).
+
+The exit status is 0 on success, 1 if a cell failed, 2 on misuse.
+`
+
+// runner starts the session in which the cells of a notebook run.
+type runner func(ctx context.Context, o engine.Options) (rerun.Session, error)
+
+func startRunner(ctx context.Context, o engine.Options) (rerun.Session, error) {
+	return engine.Start(ctx, o)
+}
+
+// runFlags are the flags that run and check share.
+type runFlags struct {
+	set       []rerun.Setting
+	keepGoing bool
+	limit     time.Duration
+	memory    int64
+}
+
+func (f *runFlags) define(fs *flag.FlagSet) {
+	fs.BoolVar(&f.keepGoing, "keep-going", false, "")
+	fs.DurationVar(&f.limit, "limit", 0, "")
+	fs.Func("memory", "", func(s string) (err error) { f.memory, err = parseSize(s); return err })
+}
+
+// parseSize reads a number of bytes with a unit: 512MB, 4GB, 1.5GiB.
+func parseSize(s string) (int64, error) {
+	for _, u := range []struct {
+		name  string
+		bytes float64
+	}{{"GiB", 1 << 30}, {"MiB", 1 << 20}, {"GB", 1e9}, {"MB", 1e6}} {
+		if n, ok := strings.CutSuffix(s, u.name); ok {
+			x, err := strconv.ParseFloat(strings.TrimSpace(n), 64)
+			if err != nil || !(x > 0) || x*u.bytes > math.MaxInt64/2 {
+				break
+			}
+			return int64(x * u.bytes), nil
+		}
+	}
+	return 0, errors.New("want a size with its unit: 512MB, 4GB")
+}
+
+// run is "levelsum run".
+func run(args []string, _ io.Reader, stdout, stderr io.Writer) int {
+	return runWith(args, stdout, stderr, startRunner)
+}
+
+func runWith(args []string, stdout, stderr io.Writer, start runner) int {
+	fs := flag.NewFlagSet("run", flag.ContinueOnError)
+	fs.SetOutput(stderr)
+	fs.Usage = func() { fmt.Fprint(stderr, runUsage) }
+	var f runFlags
+	f.define(fs)
+	out := fs.String("o", "", "")
+	fs.Func("set", "", func(s string) error {
+		p, err := rerun.ParseSetting(s)
+		f.set = append(f.set, p)
+		return err
+	})
+	if status, ok := parseFlags(fs, args, stdout, runUsage); !ok {
+		return status
+	}
+	misuse := func(format string, a ...any) int {
+		fmt.Fprintf(stderr, "levelsum: run: "+format+"\n", a...)
+		return 2
+	}
+	files := fs.Args()
+	intoFolder := false
+	if info, err := os.Stat(*out); *out != "" && err == nil && info.IsDir() {
+		intoFolder = true
+	}
+	switch {
+	case len(files) > 1 && *out != "" && !intoFolder:
+		return misuse("several notebooks need a folder after -o; %s is none", *out)
+	case len(f.set) > 0 && *out == "":
+		return misuse("-set changes the notebook's inputs, so it needs -o OUT; nothing was run")
+	}
+	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
+	defer stop()
+	status := 0
+	for _, file := range files {
+		target := file
+		switch {
+		case intoFolder:
+			target = filepath.Join(*out, filepath.Base(file))
+		case *out != "":
+			target = *out
+		}
+		status = max(status, runOne(ctx, file, target, f, start, stdout, stderr))
+		if ctx.Err() != nil {
+			break
+		}
+	}
+	return status
+}
+
+// parseFlags parses args; ok is false if the command is over with the status.
+func parseFlags(fs *flag.FlagSet, args []string, stdout io.Writer, usage string) (status int, ok bool) {
+	if len(args) == 1 && (args[0] == "-h" || args[0] == "-help" || args[0] == "--help") {
+		fmt.Fprint(stdout, usage)
+		return 0, false
+	}
+	// Flags may stand after the notebooks too: levelsum run x.ipynb -o y.ipynb.
+	var files []string
+	for {
+		if err := fs.Parse(args); err != nil {
+			return 2, false
+		}
+		args = fs.Args()
+		if len(args) == 0 {
+			break
+		}
+		files, args = append(files, args[0]), args[1:]
+	}
+	if len(files) == 0 {
+		fs.Usage()
+		return 2, false
+	}
+	if err := fs.Parse(append([]string{"--"}, files...)); err != nil {
+		return 2, false
+	}
+	return 0, true
+}
+
+// execute reads a notebook and runs it, telling stderr how each cell went.
+func execute(ctx context.Context, file string, f runFlags, start runner, stderr io.Writer) (*notebook.Document, *rerun.Report, error) {
+	d, err := notebook.Read(file)
+	if err != nil {
+		return nil, nil, err
+	}
+	dir := filepath.Dir(file)
+	fmt.Fprintln(stderr, file)
+	for _, m := range d.Mended {
+		fmt.Fprintf(stderr, "  %s\n", m)
+	}
+	r, err := rerun.Run(ctx, d, rerun.Options{
+		Start: func(ctx context.Context) (rerun.Session, error) {
+			return start(ctx, engine.Options{Dir: dir, MemoryLimit: f.memory})
+		},
+		Dir:       dir,
+		KeepGoing: f.keepGoing,
+		Limit:     f.limit,
+		Set:       f.set,
+		Step:      func(s rerun.Step) { printStep(stderr, s) },
+	})
+	if err != nil {
+		return nil, nil, fmt.Errorf("%s: %w", file, err)
+	}
+	if r.Stopped != "" {
+		fmt.Fprintf(stderr, "  stopped: %s\n", r.Stopped)
+	}
+	if r.NotRun > 0 {
+		fmt.Fprintf(stderr, "  %d not run\n", r.NotRun)
+	}
+	return d, r, nil
+}
+
+func printStep(w io.Writer, s rerun.Step) {
+	word := "ok"
+	switch {
+	case s.Fault != nil && s.Allowed:
+		word = "ok (its fault is wanted)"
+	case s.Fault != nil:
+		word = "failed"
+	}
+	fmt.Fprintf(w, "  [%d] %-6s %6.2f s  %s\n", s.Count, word, s.Took.Seconds(), s.First)
+	if s.Fault == nil || s.Allowed {
+		return
+	}
+	fmt.Fprintf(w, "      %s: %s\n", s.Fault.Name, s.Fault.Message)
+	for _, l := range s.Fault.Trace {
+		if l != s.Fault.Message {
+			fmt.Fprintf(w, "      %s\n", l)
+		}
+	}
+}
+
+func runOne(ctx context.Context, file, target string, f runFlags, start runner, stdout, stderr io.Writer) int {
+	d, r, err := execute(ctx, file, f, start, stderr)
+	if err != nil {
+		fmt.Fprintf(stderr, "levelsum: run: %v\n", err)
+		return statusOf(err)
+	}
+	if ctx.Err() != nil {
+		fmt.Fprintf(stderr, "levelsum: run: %s: interrupted, nothing was written\n", file)
+		return 1
+	}
+	if err := d.Write(target); err != nil {
+		fmt.Fprintf(stderr, "levelsum: run: %v\n", err)
+		return 1
+	}
+	for _, x := range r.Inputs {
+		if x.Set != "" {
+			fmt.Fprintf(stdout, "%s = %s (set; the notebook has %s)\n", x.Name, x.Set, x.Own)
+		} else {
+			fmt.Fprintf(stdout, "%s = %s (the notebook's own value)\n", x.Name, x.Own)
+		}
+	}
+	for _, x := range r.Results {
+		fmt.Fprintln(stdout, x.Shown)
+	}
+	if !r.OK() {
+		return 1
+	}
+	return 0
+}
+
+// statusOf returns 2 for what the user can put right in the call or the
+// notebook file, 1 for everything else.
+func statusOf(err error) int {
+	var format *notebook.FormatError
+	if errors.As(err, &format) || errors.Is(err, notebook.ErrSyntax) || errors.Is(err, os.ErrNotExist) || errors.Is(err, rerun.ErrInput) {
+		return 2
+	}
+	return 1
+}
