@@ -19,6 +19,9 @@ type command func(args []string, stdin io.Reader, stdout, stderr io.Writer) int
 
 // commands has one entry for each file of this package that has a command.
 var commands = map[string]command{
+	"check": check,
+	"clear": clearNotebooks,
+	"run":   run,
 	"serve": serve,
 }
 
