@@ -129,6 +129,8 @@ func TestUserExpressions(t *testing.T) {
 	object(got["bad"].(map[string]any)).want(t, "evalue", "undefined: y")
 	object(got["bad"].(map[string]any)).want(t, "traceback", []string{"compile error: undefined: y"})
 	object(got["none"].(map[string]any)).want(t, "status", "error")
+	f.mu.Lock()
+	defer f.mu.Unlock()
 	if len(f.ran) != 1 || len(f.ran[0].Asks) != 3 || f.ran[0].Asks["good"] != "2+3" {
 		t.Errorf("the engine ran %+v", f.ran)
 	}

@@ -53,7 +53,7 @@ func OpenJournal(path string) (*Journal, error) {
 		return nil, err
 	}
 	j := &Journal{path: path, file: f}
-	if err := errors.Join(f.Chmod(0o600), j.read(f)); err != nil {
+	if err := errors.Join(f.Chmod(0o600), j.read()); err != nil {
 		f.Close()
 		return nil, fmt.Errorf("%s: %w", path, err)
 	}
@@ -63,20 +63,24 @@ func OpenJournal(path string) (*Journal, error) {
 	return j, nil
 }
 
-// read takes what the lines of r say. A last line that was cut by the end of a
-// process is passed over.
-func (j *Journal) read(r io.Reader) error {
-	in := bufio.NewReader(r)
+// read takes what the lines of the file say. A last line that was cut by the
+// end of a process is passed over, and ended.
+func (j *Journal) read() error {
+	in := bufio.NewReader(j.file)
 	for {
 		b, err := in.ReadBytes('\n')
 		if err == io.EOF {
+			if len(b) > 0 {
+				_, err = j.file.WriteString("\n")
+				return err
+			}
 			return nil
 		}
 		if err != nil {
 			return err
 		}
 		var l line
-		if json.Unmarshal(b, &l) == nil {
+		if json.Unmarshal(b, &l) == nil && (l.Lost || l.Source != "") {
 			j.take(l)
 		}
 	}
