@@ -207,7 +207,7 @@ func runCell(ctx context.Context, s Session, rec *recorder, n int, c *notebook.C
 	close(done)
 	wait.Wait()
 	step.Fault, step.restarted = o.Fault, o.Restarted
-	if how, ok := o.How["how"].(string); ok {
+	if how, ok := o.How["tier"].(string); ok {
 		step.How = how
 	}
 	if o.Value != nil {

@@ -44,7 +44,7 @@ func (f *fake) Announce(c engine.Cell) { f.announced = append(f.announced, c.N) 
 
 func (f *fake) Run(ctx context.Context, c engine.Cell, out engine.Output) (o engine.Outcome) {
 	f.ran = append(f.ran, c.Source)
-	o.How = map[string]any{"how": "interpreted"}
+	o.How = map[string]any{"tier": "interpreted"}
 	for l := range strings.Lines(c.Source) {
 		cmd, arg, _ := strings.Cut(strings.TrimSuffix(l, "\n"), " ")
 		cmd, id, _ := strings.Cut(cmd, "@")

@@ -1,0 +1,101 @@
+#!/usr/bin/env bash
+# Installs Levelsum for the user who runs it; no root is needed, and running it
+# again changes nothing.
+#
+#   ./install.sh        build, install, register the kernel, run a notebook
+#   ./install.sh --lab  the same, and JupyterLab in an environment of its own
+#
+# What it writes: the program in $GOBIN or ~/.local/bin, and what
+# "levelsum install" says. "levelsum remove" takes the latter away again.
+set -euo pipefail
+
+lab=no
+case "${1-}" in
+"") ;;
+--lab) lab=yes ;;
+*)
+	echo "usage: ./install.sh [--lab]" >&2
+	exit 2
+	;;
+esac
+
+# The versions that --lab installs.
+lab_packages="jupyterlab==4.6.6 nbclient==0.11.0"
+notebook=notebooks/copper-heat-capacity.ipynb
+
+here=$(cd "$(dirname "$0")" && pwd)
+cd "$here"
+
+say() { printf '%s\n' "$*"; }
+stop() {
+	printf 'install.sh: %s\n' "$1" >&2
+	shift
+	for line in "$@"; do printf '  %s\n' "$line" >&2; done
+	exit 1
+}
+
+# Go. With 1.21 or newer "go" fetches the version that go.mod asks for.
+command -v go >/dev/null || stop "Go 1.26 or newer is needed and not found." \
+	"Get it from https://go.dev/dl/ (unpack it, put its bin folder into PATH)," \
+	"or from your system: dnf install golang, pacman -S go, brew install go."
+if ! have=$(go env GOVERSION 2>&1); then
+	stop "Go 1.26 or newer is needed; this one cannot build Levelsum:" "$have" \
+		"Get a newer one from https://go.dev/dl/ or allow GOTOOLCHAIN=auto."
+fi
+minor=$(printf '%s' "$have" | sed -n 's/^go1\.\([0-9]*\).*/\1/p')
+if [ -n "$minor" ] && [ "$minor" -lt 26 ]; then
+	stop "Go 1.26 or newer is needed; this is $have." "Get it from https://go.dev/dl/."
+fi
+
+# A C compiler: cells are compiled as plugins, which Go links with it.
+cc=$(go env CC)
+if ! command -v "${cc%% *}" >/dev/null; then
+	stop "a C compiler is needed (Go's plugins are linked with it); '$cc' is not found." \
+		"Debian, Ubuntu:  sudo apt-get install gcc libc6-dev" \
+		"Fedora:          sudo dnf install gcc" \
+		"Arch:            sudo pacman -S gcc" \
+		"macOS:           xcode-select --install"
+fi
+
+bin=$(go env GOBIN)
+[ -n "$bin" ] || bin=${HOME:?HOME is not set}/.local/bin
+mkdir -p "$bin"
+
+say "building levelsum ($have)"
+work=$(mktemp -d)
+trap 'rm -rf "$work"' EXIT
+CGO_ENABLED=1 go build -trimpath -buildvcs=false -o "$work/levelsum" ./kernel/levelsum
+if cmp -s "$work/levelsum" "$bin/levelsum"; then
+	say "$bin/levelsum is up to date"
+else
+	cp "$work/levelsum" "$bin/.levelsum.new"
+	mv "$bin/.levelsum.new" "$bin/levelsum"
+	say "$bin/levelsum installed"
+fi
+
+"$bin/levelsum" install --source "$here"
+
+say "running $notebook"
+"$bin/levelsum" run -o "$work/out.ipynb" "$notebook"
+say
+say "Installed. Open $notebook"
+say "in JupyterLab or another Jupyter front end and choose the kernel Levelsum."
+case ":$PATH:" in
+*":$bin:"*) ;;
+*) say "$bin is not in your PATH: add it to type levelsum without the folder." ;;
+esac
+
+[ "$lab" = yes ] || exit 0
+
+command -v python3 >/dev/null || stop "--lab needs Python 3.10 or newer, which is not found."
+env=${XDG_DATA_HOME:-$HOME/.local/share}/levelsum/lab
+if [ "$(cat "$env/levelsum-packages" 2>/dev/null)" != "$lab_packages" ]; then
+	say "making an environment with JupyterLab in $env"
+	python3 -m venv "$env" || stop "python3 cannot make a virtual environment." \
+		"Debian, Ubuntu:  sudo apt-get install python3-venv"
+	# shellcheck disable=SC2086  # a list of packages
+	"$env/bin/pip" install --quiet --disable-pip-version-check $lab_packages
+	printf '%s\n' "$lab_packages" >"$env/levelsum-packages"
+fi
+rm -rf "$work" # exec leaves no trap
+exec "$env/bin/jupyter-lab" "$notebook"
