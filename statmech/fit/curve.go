@@ -20,7 +20,7 @@ func Curve(f func(x float64) float64, x, y, u []float64, opts ...Option) (*Resul
 	if f == nil {
 		return nil, fmt.Errorf("fit: Curve: no function")
 	}
-	return run(scalarModel(f), x, y, u, opts)
+	return fitModel(scalarModel(f), x, y, u, opts)
 }
 
 // Curves is [Curve] for a function that takes all x at once and returns as
@@ -30,7 +30,7 @@ func Curves(f func(x []float64) []float64, x, y, u []float64, opts ...Option) (*
 	if f == nil {
 		return nil, fmt.Errorf("fit: Curves: no function")
 	}
-	return run(sliceModel(f), x, y, u, opts)
+	return fitModel(sliceModel(f), x, y, u, opts)
 }
 
 // CurveWith is [Curve] with the derivatives of the model: partials returns
@@ -39,7 +39,7 @@ func CurveWith(f func(x float64) float64, partials func(x float64) []float64, x,
 	if f == nil || partials == nil {
 		return nil, fmt.Errorf("fit: CurveWith: no function")
 	}
-	return run(derivedModel{f, partials}, x, y, u, opts)
+	return fitModel(derivedModel{f, partials}, x, y, u, opts)
 }
 
 type scalarModel func(float64) float64
@@ -86,8 +86,8 @@ func (m derivedModel) partials(x []float64, at []*float64, jac []float64) bool {
 	return true
 }
 
-// run fits and judges.
-func run(m model, x, y, u []float64, opts []Option) (*Result, error) {
+// fitModel fits and judges.
+func fitModel(m model, x, y, u []float64, opts []Option) (*Result, error) {
 	set, err := newSettings(opts)
 	if err != nil {
 		return nil, err

@@ -52,20 +52,20 @@ func (s Sigma) apply(set *settings) error {
 }
 
 type settings struct {
-	free    []*parameter
-	bounds  map[*float64][2]float64
-	names   map[*float64]string
-	ties    []tie
-	sigma   Sigma
-	from    float64
-	to      float64
-	ux      []float64
-	common  [][]float64
-	starts  int
-	seed    uint64
-	loss    loss
-	stop    func() bool
-	private []any // what Vary was given, for names
+	free   []*parameter
+	bounds map[*float64][2]float64
+	names  map[*float64]string
+	ties   []tie
+	sigma  Sigma
+	from   float64
+	to     float64
+	ux     []float64
+	common [][]float64
+	starts int
+	seed   uint64
+	loss   loss
+	stop   func() bool
+	nameOf func(*float64) string // the model's name of a parameter, may be nil
 }
 
 type parameter struct {
@@ -100,6 +100,9 @@ func newSettings(opts []Option) (*settings, error) {
 	for i, p := range s.free {
 		if name, ok := s.names[p.at]; ok {
 			p.name = name
+		}
+		if p.name == "" && s.nameOf != nil {
+			p.name = s.nameOf(p.at)
 		}
 		if p.name == "" {
 			p.name = fmt.Sprintf("p%d", i+1)

@@ -25,6 +25,7 @@ const (
 
 // A Result is what a fit found and how far it can be trusted.
 type Result struct {
+	Name        string // of the data
 	Sigma       Sigma
 	ChiSquared  float64 // Σ ((y-f)/u)², with the uncertainties as given
 	Freedom     int     // points less free parameters
@@ -41,6 +42,8 @@ type Result struct {
 	Residual []float64 // (y-f)/u
 	Leverage []float64 // diagonal of the projection matrix, sums to the number of parameters
 	Minima   []float64 // χ² reached from each start
+
+	xUnit, yUnit string
 
 	reg      *regression
 	p        []float64
@@ -318,59 +321,4 @@ func (r *Result) Parameter(ptr any) uncertain.Quantity {
 		}
 	}
 	panic(&statmech.DomainError{Func: "fit.Result.Parameter", Arg: "ptr", Value: fmt.Sprintf("%T", ptr), Want: "the address of a number that was free in this fit"})
-}
-
-// Function returns f(), a number computed from the model's present fields, as
-// a quantity that carries the covariance of the fit:
-//
-//	s := res.Function(func() float64 { return float64(deb.Entropy(298.15 * unit.K)) })
-//
-// f is evaluated with the free parameters at other values; they are put back.
-func (r *Result) Function(f func() float64) uncertain.Quantity {
-	q := uncertain.Function(func(p []float64) float64 {
-		r.mu.Lock()
-		defer r.mu.Unlock()
-		defer r.reg.set(r.p)
-		r.reg.set(p)
-		return f()
-	}, r.quantity...)
-	return q
-}
-
-// At returns the fitted curve at x with the standard uncertainty that follows
-// from the covariance of the parameters. It does not contain the error of the
-// model, and grows outside the range of the data.
-func (r *Result) At(x float64) uncertain.Quantity {
-	return r.Function(func() float64 {
-		out := []float64{0}
-		if !r.reg.model.values([]float64{x}, out) {
-			return math.NaN()
-		}
-		return out[0]
-	})
-}
-
-// Curve returns the fitted function with the parameters as they are found.
-func (r *Result) Curve() func(x float64) float64 {
-	return func(x float64) float64 {
-		r.mu.Lock()
-		defer r.mu.Unlock()
-		defer r.reg.set(r.current())
-		r.reg.set(r.p)
-		out := []float64{0}
-		if !r.reg.model.values([]float64{x}, out) {
-			return math.NaN()
-		}
-		return out[0]
-	}
-}
-
-// current returns the values that the free parameters hold now: the user may
-// have changed them after the fit.
-func (r *Result) current() []float64 {
-	p := make([]float64, len(r.reg.free))
-	for j, f := range r.reg.free {
-		p[j] = *f.at
-	}
-	return p
 }

@@ -1,0 +1,105 @@
+package fit
+
+import (
+	"math"
+	"strings"
+	"testing"
+
+	"levelsum/statmech/data"
+	"levelsum/statmech/solid"
+	"levelsum/statmech/unit"
+)
+
+func copper(t testing.TB) *data.Table {
+	t.Helper()
+	run, err := data.Read("../../testdata/white-collocott-1984/copper.csv")
+	if err != nil {
+		t.Fatal(err)
+	}
+	return run
+}
+
+// TestCopperLow: γT + Debye in the window 1-10 K of White & Collocott 1984,
+// 1 % standard uncertainties. An independent refit of the same table found
+// θ = 343.2 ± 0.7 K, γ = 0.692(5) mJ/(mol K²).
+func TestCopperLow(t *testing.T) {
+	run := copper(t)
+	for _, start := range []unit.Temperature{150, 343, 900} {
+		deb, el := solid.Debye{Theta: start}, solid.Electronic{Gamma: 1e-4}
+		res, err := HeatCapacity(solid.Sum{&el, &deb}, run, Vary(&deb.Theta, &el.Gamma), Window(1, 10), AbsoluteSigma)
+		if err != nil {
+			t.Fatal(err)
+		}
+		theta, gamma := res.Parameter(&deb.Theta), res.Parameter(&el.Gamma)
+		t.Logf("%v, %v, χ²/ν %.3f, r %.3f, %d evaluations, %v", theta, gamma, res.Ratio(), res.Correlation()[0][1], res.Evaluations, res.Warnings)
+		if theta.Name() != "Debye.Theta" || theta.Unit() != "K" || gamma.Name() != "Electronic.Gamma" {
+			t.Errorf("names %q in %q, %q", theta.Name(), theta.Unit(), gamma.Name())
+		}
+		within(t, "θ/K", theta.Value(), 343.2, 0.05)
+		within(t, "u(θ)/K", theta.StandardUncertainty(), 0.7, 0.05)
+		within(t, "γ/(mJ mol-1 K-2)", gamma.Value()*1e3, 0.692, 0.0005)
+		within(t, "u(γ)", gamma.StandardUncertainty()*1e3, 0.005, 0.0005)
+	}
+}
+
+// TestCopperCommon: the 1 % are the accuracy bound of a smoothed table, common
+// to all points. C ∝ θ⁻³ at these temperatures, so 1 % in C is 1/3 % in θ and
+// 1 % in γ whatever the weights.
+func TestCopperCommon(t *testing.T) {
+	run := copper(t)
+	deb, el := solid.Debye{Theta: 300}, solid.Electronic{Gamma: 1e-4}
+	res, err := HeatCapacity(solid.Sum{&el, &deb}, run, Vary(&deb.Theta, &el.Gamma), Window(1, 10), CommonSigma)
+	if err != nil {
+		t.Fatal(err)
+	}
+	theta, gamma := res.Parameter(&deb.Theta), res.Parameter(&el.Gamma)
+	within(t, "common part of u(θ)/θ", theta.CommonPart()/theta.Value(), 0.01/3, 1e-5)
+	within(t, "common part of u(γ)/γ", gamma.CommonPart()/gamma.Value(), 0.01, 1e-6)
+	if r := theta.RandomPart(); r > 0.4 || r <= 0 {
+		t.Errorf("random part %g K, want that of the small scatter of a smoothed table", r)
+	}
+	t.Logf("%v, random %.3f common %.3f; %v", theta, theta.RandomPart(), theta.CommonPart(), gamma)
+}
+
+// TestCopperWholeRange: one Debye temperature cannot serve 1-300 K, Cp is not
+// C_V: the fit must come out bad, with χ² of hundreds per degree of freedom
+// without the electrons and still far too much with them, and give no standard
+// uncertainty.
+func TestCopperWholeRange(t *testing.T) {
+	run := copper(t)
+	deb, el := solid.Debye{Theta: 343}, solid.Electronic{Gamma: 7e-4}
+	for _, test := range []struct {
+		model solid.Sum
+		vary  Option
+		ratio float64
+	}{
+		{solid.Sum{&deb}, Vary(&deb.Theta), 100},
+		{solid.Sum{&el, &deb}, Vary(&deb.Theta, &el.Gamma), 50},
+	} {
+		res, err := HeatCapacity(test.model, run, test.vary, AbsoluteSigma)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if res.Ratio() < test.ratio {
+			t.Errorf("χ² per degree of freedom %g, want above %g", res.Ratio(), test.ratio)
+		}
+		theta := res.Parameter(&deb.Theta)
+		if theta.Withheld() == "" || !strings.Contains(res.Withheld, "does not describe the data") {
+			t.Errorf("uncertainty given: %v", theta)
+		}
+		if s := theta.String(); !strings.Contains(s, "no standard uncertainty") {
+			t.Errorf("printed %q", s)
+		}
+		if all := strings.Join(res.Warnings, "\n"); !strings.Contains(all, "C_V") {
+			t.Errorf("no warning that Cp is not C_V in\n%s", all)
+		}
+		t.Logf("χ²/ν %.1f, %v\n%s", res.Ratio(), theta, strings.Join(res.Warnings, "\n"))
+	}
+}
+
+func within(t testing.TB, what string, got, want, tol float64) {
+	t.Helper()
+	if !(math.Abs(got-want) <= tol) {
+		t.Errorf("%s = %.6g, want %g ± %g", what, got, want, tol)
+	}
+}
