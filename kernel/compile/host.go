@@ -90,6 +90,15 @@ func (k *Kit) Fits() error {
 	if m.Race != Race {
 		return &Unavailable{Reason: "this levelsum and its compiled packages differ in the flag -race", Do: "run levelsum install"}
 	}
+	return CanOpen()
+}
+
+// CanOpen says whether the running program was built so that it could open
+// plugins of any kit. The error is an [*Unavailable].
+func CanOpen() error {
+	if err := Supported(); err != nil {
+		return err
+	}
 	info, ok := debug.ReadBuildInfo()
 	if !ok {
 		return nil

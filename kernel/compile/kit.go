@@ -35,9 +35,11 @@ type Manifest struct {
 	Lang   string `json:"lang"` // language of cells, "go1.26"
 	Module string `json:"module"`
 	// Source is where the module's source stood when the kit was made.
-	Source   string     `json:"source"`
-	CC       string     `json:"cc"`
-	Archives []*Archive `json:"archives"`
+	Source string `json:"source"`
+	// Executable is the program that the kit was made for.
+	Executable string     `json:"executable,omitempty"`
+	CC         string     `json:"cc"`
+	Archives   []*Archive `json:"archives"`
 }
 
 // An Archive is one compiled package of a kit.

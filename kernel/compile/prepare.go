@@ -23,6 +23,9 @@ import (
 type Options struct {
 	// Race makes the kit of a host that was built with -race.
 	Race bool
+	// Executable is the program that the kit is made for, if it is one that
+	// Retire should look after.
+	Executable string
 	// Cache is the folder for built code; empty means the default.
 	Cache string
 	// Log is told, a line at a time, what takes long. Nil means nobody.
@@ -91,7 +94,7 @@ func Prepare(ctx context.Context, dir, source string, opt Options) (*Kit, error)
 	}
 	m := Manifest{
 		Format: format, Go: t.version, GOROOT: t.goroot, Tools: t.tools, GOOS: runtime.GOOS, GOARCH: runtime.GOARCH,
-		Race: opt.Race, Source: source, CC: t.cc,
+		Race: opt.Race, Source: source, Executable: opt.Executable, CC: t.cc,
 	}
 	for _, p := range pkgs {
 		if p.Module != nil && p.Module.Main {
@@ -162,11 +165,14 @@ func replace(new, old string) error {
 	if err != nil && !errors.Is(err, os.ErrNotExist) {
 		return err
 	}
+	defer os.RemoveAll(aside)
 	if err := os.Rename(new, old); err != nil {
-		os.Rename(aside, old)
-		return err
+		if exists(filepath.Join(old, manifestName)) {
+			return nil // another process was faster with the same kit
+		}
+		return errors.Join(err, os.Rename(aside, old))
 	}
-	return os.RemoveAll(aside)
+	return nil
 }
 
 // language turns go.mod's version into the -lang flag: "1.26.0" into "go1.26".

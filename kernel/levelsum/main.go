@@ -19,10 +19,13 @@ type command func(args []string, stdin io.Reader, stdout, stderr io.Writer) int
 
 // commands has one entry for each file of this package that has a command.
 var commands = map[string]command{
-	"check": check,
-	"clear": clearNotebooks,
-	"run":   run,
-	"serve": serve,
+	"check":   check,
+	"clear":   clearNotebooks,
+	"install": install,
+	"remove":  remove,
+	"run":     run,
+	"serve":   serve,
+	"version": showVersion,
 }
 
 func main() {

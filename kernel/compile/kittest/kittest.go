@@ -25,26 +25,41 @@ type Host struct {
 // to the module) in the folder dir, and prepares its kit there. With the build
 // cache warm it takes about a second, more if the program has to be linked.
 func Make(ctx context.Context, dir, pkg string, race bool) (*Host, error) {
+	exe, err := Build(ctx, dir, pkg, race)
+	if err != nil {
+		return nil, err
+	}
 	root, err := Root(ctx)
 	if err != nil {
 		return nil, err
 	}
-	h := &Host{Exe: filepath.Join(dir, filepath.Base(pkg)), Cache: filepath.Join(dir, "cache")}
-	args := []string{"build", "-trimpath", "-o", h.Exe}
+	id, err := compile.BuildID(exe)
+	if err != nil {
+		return nil, err
+	}
+	h := &Host{Exe: exe, Cache: filepath.Join(dir, "cache")}
+	h.Kit, err = compile.Prepare(ctx, filepath.Join(h.Cache, "kit", compile.KitName(id)), root, compile.Options{Race: race, Cache: filepath.Join(h.Cache, "built")})
+	return h, err
+}
+
+// Build builds a program of this module in the folder dir, as Make does, and
+// returns its path.
+func Build(ctx context.Context, dir, pkg string, race bool) (exe string, err error) {
+	root, err := Root(ctx)
+	if err != nil {
+		return "", err
+	}
+	exe = filepath.Join(dir, filepath.Base(pkg))
+	args := []string{"build", "-trimpath", "-o", exe}
 	if race {
 		args = append(args, "-race")
 	}
 	cmd := exec.CommandContext(ctx, "go", append(args, pkg)...)
 	cmd.Dir = root
 	if out, err := cmd.CombinedOutput(); err != nil {
-		return nil, fmt.Errorf("go build %s: %v\n%s", pkg, err, out)
+		return "", fmt.Errorf("go build %s: %v\n%s", pkg, err, out)
 	}
-	id, err := compile.BuildID(h.Exe)
-	if err != nil {
-		return nil, err
-	}
-	h.Kit, err = compile.Prepare(ctx, filepath.Join(h.Cache, "kit", compile.KitName(id)), root, compile.Options{Race: race, Cache: filepath.Join(h.Cache, "built")})
-	return h, err
+	return exe, nil
 }
 
 // Env is the environment in which to run the program.
