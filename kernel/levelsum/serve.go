@@ -3,7 +3,6 @@ package main
 import (
 	"context"
 	"errors"
-	"fmt"
 	"io"
 	"log"
 	"os"
@@ -66,26 +65,24 @@ func serveConnection(file string, connection socket.Connection, say *log.Logger,
 	}
 	defer func() { err = errors.Join(err, journal.Close()) }()
 
-	e, err := start(ctx, engine.Options{Dir: notebookFolder()})
-	if err != nil {
-		return fmt.Errorf("the engine does not start: %w", err)
-	}
 	s, err := session.Open(session.Options{
 		Connection: connection,
-		Engine:     e,
-		Version:    version,
-		Journal:    journal,
-		Log:        say,
+		Start: func(ctx context.Context) (session.Engine, error) {
+			return start(ctx, engine.Options{Dir: notebookFolder()})
+		},
+		Version: version,
+		Journal: journal,
+		Log:     say,
 	})
 	if err != nil {
-		return errors.Join(err, e.Close())
+		return err
 	}
 	defer onSignals(s)()
 	if parent := parentPID(); parent > 0 {
 		go watchParent(ctx, parent, s.Stop)
 	}
-	s.Serve(ctx)
-	return nil
+	_, err = s.Serve(ctx)
+	return err
 }
 
 // onSignals lets the signals that front ends and terminals send do what they

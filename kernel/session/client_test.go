@@ -31,6 +31,7 @@ type served struct {
 	log     *strings.Builder // read after the end only
 	done    chan struct{}
 	restart bool // after done
+	err     error
 }
 
 // serveFake serves a session with a fake engine until the test ends.
@@ -39,7 +40,7 @@ func serveFake(t *testing.T, e *fake, more ...func(*Options)) *served {
 	k := &served{t: t, engine: e, log: &strings.Builder{}, done: make(chan struct{})}
 	o := Options{
 		Connection: socket.Connection{Transport: "tcp", IP: "127.0.0.1", Key: testKey},
-		Engine:     e,
+		Start:      e.start,
 		Version:    "1.2.3",
 		Log:        log.New(k.log, "", 0),
 	}
@@ -53,7 +54,7 @@ func serveFake(t *testing.T, e *fake, more ...func(*Options)) *served {
 	k.session = s
 	go func() {
 		defer close(k.done)
-		k.restart = s.Serve(context.Background())
+		k.restart, k.err = s.Serve(context.Background())
 	}()
 	t.Cleanup(k.end)
 	return k

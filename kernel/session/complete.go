@@ -13,7 +13,10 @@ func (s *Session) complete(r *request) {
 		return
 	}
 	at := byteOffset(q.Code, q.CursorPos)
-	c, err := s.engine.Complete(s.ctx, q.Code, at)
+	c, err := engine.Completion{}, errLeaving
+	if e := s.awaitEngine(); e != nil {
+		c, err = e.Complete(s.ctx, q.Code, at)
+	}
 	if err != nil {
 		// The user is typing: nothing to offer is all there is to say.
 		s.log.Printf("complete: %v", err)

@@ -10,6 +10,7 @@
 //	control reader  answers interrupt, shutdown and kernel_info at once
 //	stdin reader    hands what the reader typed to the cell that asked
 //	heartbeat       echoes
+//	boot            starts the engine; what needs none is answered meanwhile
 //
 // Each request type is answered in a file of its own; dispatch.go lists them.
 // Around every request the status busy and idle is published, with the

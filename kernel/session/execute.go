@@ -62,6 +62,10 @@ func (s *Session) run(r *request, out *output) engine.Outcome {
 	if blank(r.execute.Code) {
 		return engine.Outcome{}
 	}
+	e := s.awaitEngine()
+	if e == nil {
+		return engine.Outcome{Fault: faultOf("engine ended", errLeaving)}
+	}
 	if s.stopped() {
 		return engine.Outcome{Fault: faultOf("interrupted", errInterrupted)}
 	}
@@ -69,7 +73,7 @@ func (s *Session) run(r *request, out *output) engine.Outcome {
 		return own(s, out)
 	}
 	c := s.cell(r, r.number)
-	result := s.engine.Run(s.ctx, c, out)
+	result := e.Run(s.ctx, c, out)
 	s.record(c, result, out)
 	return result
 }

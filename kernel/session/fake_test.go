@@ -47,6 +47,8 @@ func value(text string) engine.Outcome {
 	return engine.Outcome{Value: &v}
 }
 
+func (f *fake) start(context.Context) (Engine, error) { return f, nil }
+
 func (f *fake) Run(_ context.Context, c engine.Cell, out engine.Output) engine.Outcome {
 	r := &running{Output: out, cell: c, interrupted: make(chan struct{})}
 	f.mu.Lock()
@@ -138,5 +140,7 @@ func (f *fake) interruptsNow() int {
 	defer f.mu.Unlock()
 	return f.interrupts
 }
+
+type outcome = engine.Outcome
 
 type cellMap = map[string]func(*running) engine.Outcome

@@ -45,8 +45,8 @@ func (h *hints) takeAll() []hint {
 func (s *Session) announce() {
 	for {
 		for _, h := range s.hints.takeAll() {
-			if !h.r.started.Load() && s.ctx.Err() == nil {
-				s.engine.Announce(s.cell(h.r, h.number))
+			if e := s.awaitEngine(); e != nil && !h.r.started.Load() && s.ctx.Err() == nil {
+				e.Announce(s.cell(h.r, h.number))
 			}
 		}
 		select {

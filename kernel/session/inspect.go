@@ -9,7 +9,14 @@ func (s *Session) inspect(r *request) {
 		r.fail("inspect_reply", err)
 		return
 	}
-	data, found, err := s.engine.Inspect(s.ctx, q.Code, byteOffset(q.Code, q.CursorPos), q.DetailLevel)
+	var (
+		data  map[string]any
+		found bool
+		err   = errLeaving
+	)
+	if e := s.awaitEngine(); e != nil {
+		data, found, err = e.Inspect(s.ctx, q.Code, byteOffset(q.Code, q.CursorPos), q.DetailLevel)
+	}
 	if err != nil {
 		s.log.Printf("inspect: %v", err)
 		found = false

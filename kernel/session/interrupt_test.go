@@ -149,7 +149,7 @@ func TestShutdownOfACellThatHangs(t *testing.T) {
 func TestServeEndsWithItsContext(t *testing.T) {
 	ctx, cancel := context.WithCancel(context.Background())
 	f := &fake{}
-	s, err := Open(Options{Connection: connectionForTests(), Engine: f})
+	s, err := Open(Options{Connection: connectionForTests(), Start: f.start})
 	if err != nil {
 		t.Fatal(err)
 	}

@@ -102,8 +102,10 @@ func (l *limit) rest() (notice string, last []piece) {
 	if l.dropped > 0 {
 		notice = fmt.Sprintf("\nlevelsum: %d lines (%d bytes) are left out here; write them to a file to keep them all\n", l.lines, l.dropped)
 	}
+	if len(l.last) > 0 || l.dropped > 0 {
+		l.tail = laterTail
+	}
 	last = l.last
 	l.last, l.held, l.lines, l.dropped = nil, 0, 0, 0
-	l.tail = laterTail
 	return notice, last
 }

@@ -32,7 +32,6 @@ type output struct {
 	timer   *time.Timer
 	limit   limit
 	broken  map[string]string // by stream: the start of a rune
-	over    bool              // the cell has ended
 	stopped bool              // nothing is published any more
 }
 
@@ -58,11 +57,11 @@ const (
 // newOutput returns the output of the cell of r. The output of the cell before
 // publishes what it still has.
 func (s *Session) newOutput(r *request) *output {
-	if s.lastOutput != nil {
-		s.lastOutput.flushNow()
+	if last := s.lastOutput.Load(); last != nil {
+		last.flushNow()
 	}
 	o := &output{s: s, r: r, silent: r.execute.Silent, limit: newLimit(), broken: map[string]string{}}
-	s.lastOutput = o
+	s.lastOutput.Store(o)
 	return o
 }
 
@@ -259,7 +258,6 @@ func (o *output) finish() {
 	}
 	o.release()
 	o.flush()
-	o.over = true
 	o.limit.head = max(o.limit.head, tailBytes)
 }
 

@@ -52,7 +52,7 @@ func TestKernelInfo(t *testing.T) {
 // The first thing that the kernel publishes is starting, once and without a
 // parent; the welcome to a subscriber has no parent either.
 func TestStartingOnceAndWelcome(t *testing.T) {
-	s, err := Open(Options{Connection: connectionForTests(), Engine: &fake{}})
+	s, err := Open(Options{Connection: connectionForTests(), Start: (&fake{}).start})
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -244,7 +244,7 @@ func TestPortTaken(t *testing.T) {
 	}
 	c := connectionForTests()
 	c.IOPub = port
-	if _, err := Open(Options{Connection: c, Engine: &fake{}}); err == nil || !strings.Contains(err.Error(), "in use") {
+	if _, err := Open(Options{Connection: c, Start: (&fake{}).start}); err == nil || !strings.Contains(err.Error(), "in use") {
 		t.Errorf("Open on a taken port: %v, want an error", err)
 	}
 }

@@ -59,7 +59,7 @@ func (s *Session) replay(out *output) engine.Outcome {
 		if s.stopped() {
 			return engine.Outcome{Fault: faultOf("interrupted", errInterrupted)}
 		}
-		result := s.engine.Run(s.ctx, engine.Cell{N: r.N, ID: r.ID, Source: r.Source}, unseen{})
+		result := s.awaitEngine().Run(s.ctx, engine.Cell{N: r.N, ID: r.ID, Source: r.Source}, unseen{})
 		if result.Restarted {
 			s.journal.Lose()
 		}

@@ -8,6 +8,7 @@ import (
 	"log"
 	"net"
 	"sync"
+	"sync/atomic"
 	"time"
 	"unicode/utf8"
 
@@ -19,7 +20,9 @@ import (
 // Options say what a session serves.
 type Options struct {
 	Connection socket.Connection
-	Engine     Engine
+	// Start starts the engine. Serve calls it; what needs no engine is
+	// answered meanwhile.
+	Start func(context.Context) (Engine, error)
 	// Version is the version of this program.
 	Version string
 	// Journal remembers the cells; nil keeps it in memory only.
@@ -38,7 +41,7 @@ const (
 
 // A Session is one served kernel.
 type Session struct {
-	engine  Engine
+	start   func(context.Context) (Engine, error)
 	version string
 	journal *Journal
 	log     *log.Logger
@@ -55,20 +58,25 @@ type Session struct {
 	flow    *flow
 	history history
 
+	up        chan struct{} // closed when the engine has started or cannot
+	engine    Engine        // after up; nil if it cannot
+	engineErr error         // after up
+
 	mu        sync.Mutex // guards the fields below
 	executing bool       // an execute request is being answered
 	stopCell  bool       // it is to end
 	question  *question  // the reader is being asked
 	restart   bool       // the shutdown request wanted another kernel
 
-	slow       sync.Once // the log has been told of a slow front end
-	lastOutput *output   // of the cell run last; worker only
+	slow       sync.Once              // the log has been told of a slow front end
+	lastOutput atomic.Pointer[output] // of the cell run last
 }
 
 // Open binds the sockets of a session. The caller calls [Session.Serve] next.
 func Open(o Options) (*Session, error) {
 	s := &Session{
-		engine:  o.Engine,
+		start:   o.Start,
+		up:      make(chan struct{}),
 		version: o.Version,
 		journal: o.Journal,
 		log:     o.Log,
@@ -118,10 +126,11 @@ func (s *Session) Addrs() Addrs {
 	return Addrs{s.shell.Addr(), s.control.Addr(), s.stdin.Addr(), s.iopub.Addr(), s.heartbeat.Addr()}
 }
 
-// Serve answers requests until the session is stopped, asked to shut down or
-// ctx ends, and closes the engine and the sockets. It reports whether the
-// request to shut down said that another kernel follows. It is called once.
-func (s *Session) Serve(ctx context.Context) (restart bool) {
+// Serve starts the engine, answers requests until the session is stopped,
+// asked to shut down or ctx ends, and closes the engine and the sockets. It
+// reports whether the request to shut down said that another kernel follows.
+// The error is the engine's, if it does not start. It is called once.
+func (s *Session) Serve(ctx context.Context) (restart bool, err error) {
 	defer context.AfterFunc(ctx, s.Stop)()
 	s.publish(nil, "status", wire.ExecutionState{State: "starting"})
 
@@ -130,6 +139,7 @@ func (s *Session) Serve(ctx context.Context) (restart bool) {
 	readers.Go(s.readControl)
 	readers.Go(s.readStdin)
 	readers.Go(s.beat)
+	workers.Go(s.boot)
 	workers.Go(s.work)
 	workers.Go(s.announce)
 
@@ -138,8 +148,10 @@ func (s *Session) Serve(ctx context.Context) (restart bool) {
 	closed := make(chan struct{})
 	go func() {
 		defer close(closed)
-		if err := s.engine.Close(); err != nil {
-			s.log.Printf("engine: %v", err)
+		if <-s.up; s.engine != nil {
+			if err := s.engine.Close(); err != nil {
+				s.log.Printf("engine: %v", err)
+			}
 		}
 		workers.Wait()
 	}()
@@ -152,11 +164,12 @@ func (s *Session) Serve(ctx context.Context) (restart bool) {
 	readers.Wait()
 	select {
 	case <-closed:
+		err = s.engineErr
 	case <-time.After(patience / 4):
 		// Nothing more can be done here; the process ends soon.
 	}
-	if s.lastOutput != nil {
-		s.lastOutput.stop()
+	if o := s.lastOutput.Load(); o != nil {
+		o.stop()
 	}
 	if text := s.codec.DroppedText(); text != "" {
 		s.log.Print(text)
@@ -166,7 +179,26 @@ func (s *Session) Serve(ctx context.Context) (restart bool) {
 	}
 	s.mu.Lock()
 	defer s.mu.Unlock()
-	return s.restart
+	return s.restart, err
+}
+
+// boot starts the engine.
+func (s *Session) boot() {
+	defer close(s.up)
+	e, err := s.start(s.ctx)
+	switch {
+	case err == nil:
+		s.engine = e
+	case s.ctx.Err() == nil:
+		s.engineErr = fmt.Errorf("the engine does not start: %w", err)
+		s.Stop()
+	}
+}
+
+// awaitEngine returns the engine when it has started; nil if it cannot.
+func (s *Session) awaitEngine() Engine {
+	<-s.up
+	return s.engine
 }
 
 // Stop ends the session. It returns at once.
@@ -198,8 +230,15 @@ func (s *Session) Interrupt() {
 		s.question.answer(reply{err: errInterrupted})
 	}
 	s.mu.Unlock()
-	if executing {
-		s.engine.Interrupt()
+	if !executing {
+		return
+	}
+	select {
+	case <-s.up:
+		if s.engine != nil {
+			s.engine.Interrupt()
+		}
+	default: // the cell waits for the engine, and will see stopCell
 	}
 }
 
