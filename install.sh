@@ -73,13 +73,13 @@ else
 	say "$bin/levelsum installed"
 fi
 
-"$bin/levelsum" install --source "$here"
+"$bin/levelsum" install -source "$here"
 
 say "running $notebook"
 "$bin/levelsum" run -o "$work/out.ipynb" "$notebook"
 say
 say "Installed. Open $notebook"
-say "in JupyterLab or another Jupyter front end and choose the kernel Levelsum."
+say "in JupyterLab or another Jupyter front end and choose the kernel Levelsum (Go)."
 case ":$PATH:" in
 *":$bin:"*) ;;
 *) say "$bin is not in your PATH: add it to type levelsum without the folder." ;;
@@ -97,5 +97,6 @@ if [ "$(cat "$env/levelsum-packages" 2>/dev/null)" != "$lab_packages" ]; then
 	"$env/bin/pip" install --quiet --disable-pip-version-check $lab_packages
 	printf '%s\n' "$lab_packages" >"$env/levelsum-packages"
 fi
+"$bin/levelsum" install -prefix "$env" -source "$here" # an active environment may hold the kernel
 rm -rf "$work" # exec leaves no trap
 exec "$env/bin/jupyter-lab" "$notebook"
