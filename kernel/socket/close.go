@@ -72,6 +72,9 @@ func (s *Socket) drain(linger time.Duration) int {
 			waiting = append(waiting, p)
 		}
 	}
+	if linger <= 0 {
+		return left
+	}
 	fin := time.After(s.l.lim.fin)
 	for _, p := range waiting {
 		select {

@@ -109,6 +109,11 @@ func Listen(kind Kind, endpoint string, o Options) (*Socket, error) {
 	if err != nil {
 		return nil, err
 	}
+	return listenOn(kind, raw, o)
+}
+
+// listenOn is Listen on a listener of any origin, which it closes if it fails.
+func listenOn(kind Kind, raw net.Listener, o Options) (*Socket, error) {
 	lim := usual
 	if o.limits != nil {
 		lim = *o.limits
