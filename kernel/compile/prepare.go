@@ -28,6 +28,9 @@ type Options struct {
 	Executable string
 	// Cache is the folder for built code; empty means the default.
 	Cache string
+	// Offer are import paths of further packages that cells may import; tests
+	// have some.
+	Offer []string
 	// Log is told, a line at a time, what takes long. Nil means nobody.
 	Log io.Writer
 }
@@ -85,6 +88,7 @@ func Prepare(ctx context.Context, dir, source string, opt Options) (*Kit, error)
 	if err != nil {
 		return nil, err
 	}
+	paths = append(paths, opt.Offer...)
 	if opt.Log != nil {
 		fmt.Fprintf(opt.Log, "compiling %d packages for cells; the first time this takes some minutes\n", len(paths))
 	}

@@ -21,6 +21,7 @@ type command func(args []string, stdin io.Reader, stdout, stderr io.Writer) int
 var commands = map[string]command{
 	"check":   check,
 	"clear":   clearNotebooks,
+	"engine":  runEngine,
 	"install": install,
 	"remove":  remove,
 	"run":     run,

@@ -24,7 +24,7 @@ type Host struct {
 // Make builds the program whose package is pkg ("./kernel/levelsum", relative
 // to the module) in the folder dir, and prepares its kit there. With the build
 // cache warm it takes about a second, more if the program has to be linked.
-func Make(ctx context.Context, dir, pkg string, race bool) (*Host, error) {
+func Make(ctx context.Context, dir, pkg string, race bool, offer ...string) (*Host, error) {
 	exe, err := Build(ctx, dir, pkg, race)
 	if err != nil {
 		return nil, err
@@ -38,7 +38,7 @@ func Make(ctx context.Context, dir, pkg string, race bool) (*Host, error) {
 		return nil, err
 	}
 	h := &Host{Exe: exe, Cache: filepath.Join(dir, "cache")}
-	h.Kit, err = compile.Prepare(ctx, filepath.Join(h.Cache, "kit", compile.KitName(id)), root, compile.Options{Race: race, Cache: filepath.Join(h.Cache, "built")})
+	h.Kit, err = compile.Prepare(ctx, filepath.Join(h.Cache, "kit", compile.KitName(id)), root, compile.Options{Race: race, Cache: filepath.Join(h.Cache, "built"), Offer: offer})
 	return h, err
 }
 

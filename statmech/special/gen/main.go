@@ -8,7 +8,4 @@ package main
 
 func main() {
 	debyeTables()
-	fermiTables()
-	inverseTables()
-	boseTables()
 }

@@ -1,0 +1,188 @@
+package cell
+
+import (
+	"fmt"
+	"go/ast"
+	"go/constant"
+	"go/token"
+	"go/types"
+	"regexp"
+	"strings"
+)
+
+// unitPath is the package whose types are quantities.
+const unitPath = "levelsum/statmech/unit"
+
+// quantity returns the name of a quantity type, "" for other types.
+func quantity(t types.Type) string {
+	n, ok := types.Unalias(t).(*types.Named)
+	if !ok || n.Obj().Pkg() == nil || n.Obj().Pkg().Path() != unitPath {
+		return ""
+	}
+	if b, ok := n.Underlying().(*types.Basic); !ok || b.Kind() != types.Float64 {
+		return ""
+	}
+	return n.Obj().Name()
+}
+
+// quantities refuses what compiles and is wrong in physics: a bare number used
+// as a quantity, and a product of two quantities of one kind.
+func (c *checking) quantities(plan *Plan) Diagnostics {
+	var out Diagnostics
+	check := func(n ast.Node, info *types.Info) {
+		say := func(pos token.Pos, msg, hint string) {
+			line, col := c.p.src.place(c.s.fset, pos)
+			out = append(out, Diagnostic{Source: c.p.src, Line: line, Column: col, Msg: msg, Hint: hint})
+		}
+		var stack []ast.Node
+		ast.Inspect(n, func(n ast.Node) bool {
+			if n == nil {
+				stack = stack[:len(stack)-1]
+				return true
+			}
+			stack = append(stack, n)
+			e, ok := n.(ast.Expr)
+			if !ok {
+				return true
+			}
+			tv, ok := info.Types[e]
+			if !ok || tv.Type == nil {
+				return true
+			}
+			q := quantity(tv.Type)
+			if q == "" {
+				return true
+			}
+			if b, ok := e.(*ast.BinaryExpr); ok && b.Op == token.MUL && !untyped(b.X, info) && !untyped(b.Y, info) && !(scaled(b.X, info) || scaled(b.Y, info)) {
+				say(b.OpPos, fmt.Sprintf("product of two quantities of the kind unit.%s", q),
+					fmt.Sprintf("the product is not a unit.%s: write float64(x) * y to scale y by a plain number, or use a named method for a product of physics", q))
+			}
+			if tv.Value == nil || !untyped(e, info) || zero(tv.Value) {
+				return true
+			}
+			parent := enclosing(stack)
+			switch p := parent.(type) {
+			case *ast.BinaryExpr:
+				if p.Op == token.MUL || p.Op == token.QUO && ast.Unparen(p.Y) == ast.Unparen(e) || untyped(p, info) {
+					return true
+				}
+			case *ast.CallExpr:
+				if info.Types[p.Fun].IsType() { // unit.Temperature(300) says it
+					return true
+				}
+			case *ast.UnaryExpr, *ast.ParenExpr:
+				return true // looked at as a whole
+			}
+			say(e.Pos(), fmt.Sprintf("bare constant %s used as a quantity (unit.%s)", tv.Value, q),
+				fmt.Sprintf("give it a unit: %s * unit.%s", tv.Value, exampleUnit(q)))
+			return true
+		})
+	}
+	for _, d := range c.redo {
+		if d.Source == c.p.src {
+			check(d.node, plan.info)
+		}
+	}
+	for _, d := range c.p.lead {
+		check(d, plan.info)
+	}
+	for _, st := range c.p.stmts {
+		check(st, plan.sinfo)
+	}
+	return out
+}
+
+// enclosing is the node around the last of stack, parentheses left out.
+func enclosing(stack []ast.Node) ast.Node {
+	for i := len(stack) - 2; i >= 0; i-- {
+		if _, ok := stack[i].(*ast.ParenExpr); !ok {
+			return stack[i]
+		}
+	}
+	return nil
+}
+
+// untyped tells whether an expression is made of untyped constants only.
+func untyped(e ast.Expr, info *types.Info) bool {
+	switch e := ast.Unparen(e).(type) {
+	case *ast.BasicLit:
+		return true
+	case *ast.Ident:
+		return untypedConst(info.Uses[e])
+	case *ast.SelectorExpr:
+		return untypedConst(info.Uses[e.Sel])
+	case *ast.UnaryExpr:
+		return untyped(e.X, info)
+	case *ast.BinaryExpr:
+		return untyped(e.X, info) && untyped(e.Y, info)
+	}
+	return false
+}
+
+func untypedConst(o types.Object) bool {
+	k, ok := o.(*types.Const)
+	if !ok {
+		return false
+	}
+	b, ok := k.Type().(*types.Basic)
+	return ok && b.Info()&types.IsUntyped != 0
+}
+
+// scaled tells a conversion of a plain number to a quantity, which is how a
+// float64 is multiplied by a unit: unit.Temperature(x) * unit.K.
+func scaled(e ast.Expr, info *types.Info) bool {
+	call, ok := ast.Unparen(e).(*ast.CallExpr)
+	if !ok || len(call.Args) != 1 || !info.Types[call.Fun].IsType() {
+		return false
+	}
+	return quantity(info.Types[call.Args[0]].Type) == ""
+}
+
+func zero(v constant.Value) bool {
+	switch v.Kind() {
+	case constant.Int, constant.Float:
+		return constant.Sign(v) == 0
+	}
+	return true
+}
+
+// exampleUnit is a unit constant for a kind of quantity.
+func exampleUnit(q string) string {
+	switch q {
+	case "Temperature":
+		return "K"
+	case "Energy":
+		return "PerCm"
+	case "Pressure":
+		return "Bar"
+	case "Mass":
+		return "U"
+	case "Length":
+		return "Angstrom"
+	}
+	return "X (a unit constant of that kind)"
+}
+
+var mismatch = regexp.MustCompile(`^invalid operation: (.+) \* (.+) \(mismatched types (\S+) and (\S+)\)`)
+
+// hint answers an error by the spelling that works.
+func (c *checking) hint(msg string) string {
+	if m := mismatch.FindStringSubmatch(msg); m != nil {
+		x, y, tx, ty := m[1], m[2], m[3], m[4]
+		if tx == "float64" && strings.HasPrefix(ty, "unit.") {
+			return fmt.Sprintf("write %s(%s) * %s", ty, x, y)
+		}
+		if ty == "float64" && strings.HasPrefix(tx, "unit.") {
+			return fmt.Sprintf("write %s * %s(%s)", x, tx, y)
+		}
+	}
+	if name, ok := strings.CutPrefix(msg, "undefined: "); ok {
+		if c.drop[name] {
+			return name + " was dropped, since its type changes in this cell"
+		}
+		if d := c.s.decls[name]; d != nil && d.broken {
+			return fmt.Sprintf("%s from %s no longer compiles: see the warning of the cell that changed what it uses", name, d.Source.Name())
+		}
+	}
+	return ""
+}

@@ -1,0 +1,17 @@
+package main
+
+import (
+	"fmt"
+	"io"
+
+	"levelsum/kernel/runner"
+)
+
+// runEngine is the process that runs cells. Levelsum starts it itself.
+func runEngine(args []string, _ io.Reader, _, stderr io.Writer) int {
+	if len(args) > 0 {
+		fmt.Fprintln(stderr, "levelsum engine: takes no arguments; it is started by levelsum itself")
+		return 2
+	}
+	return runner.Main()
+}

@@ -1,0 +1,158 @@
+package runner
+
+import (
+	"context"
+	"fmt"
+	"plugin"
+	"reflect"
+	"strings"
+	"sync"
+	"time"
+
+	"levelsum/kernel/cell"
+	"levelsum/kernel/compile"
+	"levelsum/kernel/engine"
+)
+
+// prepare makes what runs a checked cell, and says in which way it is run. A
+// cell without anything to run has no job.
+func (r *Runner) prepare(plan *cell.Plan) (job func(), how string, err error) {
+	why := plan.Unproved(r.symbols.has)
+	if why == "" && !plan.Force {
+		job, err := r.interpreted(plan)
+		return job, "interpreted", err
+	}
+	if r.kit == nil {
+		if why == "" {
+			job, err := r.interpreted(plan)
+			return job, "interpreted", err
+		}
+		return nil, "refused", fmt.Errorf("%s needs the compiled tier, which is not there: %v", why, r.noKit)
+	}
+	unit, err := plan.Compile(true)
+	if err != nil {
+		return nil, "refused", err
+	}
+	if unit == nil {
+		return nil, "declared", nil
+	}
+	offers, err := r.load(unit)
+	if err != nil {
+		return nil, "refused", err
+	}
+	if err := r.bind(unit, offers); err != nil {
+		return nil, "refused", err
+	}
+	r.scope.Adopt(plan, unit)
+	r.symbols.add(unit, offers)
+	run, _ := offers["run"].(func())
+	return run, "compiled", nil
+}
+
+// load builds and opens the plugin of a unit, once in a session.
+func (r *Runner) load(u *cell.Unit) (map[string]any, error) {
+	if o, ok := r.plugins[u.Path]; ok {
+		return o, nil
+	}
+	built, err := r.built.get(u)
+	if err != nil {
+		return nil, err
+	}
+	p, err := plugin.Open(built.File)
+	if err != nil {
+		return nil, compile.Explain(err)
+	}
+	sym, err := p.Lookup("Offers")
+	if err != nil {
+		return nil, err
+	}
+	offers := *sym.(*map[string]any)
+	r.plugins[u.Path] = offers
+	return offers, nil
+}
+
+// pluginMain is the main package of a unit's plugin: what it offers.
+func pluginMain(u *cell.Unit) compile.Package {
+	var b strings.Builder
+	fmt.Fprintf(&b, "package main\n\nimport Ɒu %q\n\nvar Offers = map[string]any{\n", u.Path)
+	if u.Run {
+		b.WriteString("\t\"run\": Ɒu.Ɒrun,\n")
+	}
+	for _, l := range u.Slots {
+		fmt.Fprintf(&b, "\t\"slot %s\": &Ɒu.%s,\n", l.ID, l.Var())
+	}
+	for _, s := range u.Symbols() {
+		kind := "func"
+		if s.Type {
+			kind = "type"
+		}
+		fmt.Fprintf(&b, "\t\"%s %s\": %s,\n", kind, s.Name, s.Expr)
+	}
+	b.WriteString("}\n\nfunc main() {}\n")
+	return compile.Package{Files: map[string][]byte{"main.go": []byte(b.String())}}
+}
+
+// builds keeps the builds that were started ahead.
+type builds struct {
+	r  *Runner
+	mu sync.Mutex // guards m
+	m  map[string]*build
+}
+
+type build struct {
+	done   chan struct{}
+	plugin *compile.Plugin
+	err    error
+}
+
+func (b *builds) init(r *Runner) { b.r, b.m = r, map[string]*build{} }
+
+// get builds a unit, or waits for the build that is under way.
+func (b *builds) get(u *cell.Unit) (*compile.Plugin, error) {
+	t := time.AfterFunc(2*time.Second, func() {
+		_ = b.r.w.Send(engine.Event{Op: "warn", Text: "the cell is being compiled ...\n"})
+	})
+	defer t.Stop()
+	bu := b.start(u)
+	<-bu.done
+	return bu.plugin, bu.err
+}
+
+func (b *builds) start(u *cell.Unit) *build {
+	b.mu.Lock()
+	defer b.mu.Unlock()
+	if bu, ok := b.m[u.Path]; ok {
+		return bu
+	}
+	bu := &build{done: make(chan struct{})}
+	b.m[u.Path] = bu
+	pkg := compile.Package{Path: u.Path, Files: map[string][]byte{"cell.go": []byte(u.Text)}}
+	main := pluginMain(u)
+	go func() {
+		defer close(bu.done)
+		bu.plugin, bu.err = b.r.kit.Build(context.Background(), []compile.Package{pkg}, main)
+		if bu.err != nil {
+			b.mu.Lock()
+			delete(b.m, u.Path) // a full disk may have room later
+			b.mu.Unlock()
+		}
+	}()
+	return bu
+}
+
+// announce is told of a cell that will be run soon.
+func (b *builds) announce(engine.Cell) {}
+
+// bind gives a unit the places of the session variables that it reaches.
+func (r *Runner) bind(u *cell.Unit, offers map[string]any) error {
+	for _, l := range u.Slots {
+		p := reflect.ValueOf(offers["slot "+l.ID]) // **T
+		if !p.IsValid() {
+			return fmt.Errorf("the plugin lacks the variable %s", l.Name)
+		}
+		if err := r.slots.bind(l.ID, p); err != nil {
+			return fmt.Errorf("%s: %w", l.Name, err)
+		}
+	}
+	return nil
+}

@@ -1,0 +1,221 @@
+package runner
+
+import (
+	"errors"
+	"fmt"
+	"io"
+	"os"
+	"runtime/debug"
+	"sync"
+	"time"
+
+	"levelsum/display"
+	"levelsum/kernel/cell"
+	"levelsum/kernel/compile"
+	"levelsum/kernel/engine"
+	"levelsum/kernel/runner/guard"
+	"levelsum/kernel/symbols/export"
+)
+
+// A Runner is one session.
+type Runner struct {
+	w     *engine.Writer
+	scope *cell.Scope
+	kit   *compile.Kit // nil without the compiled tier
+	noKit error        // why
+
+	acks    chan struct{}
+	answers chan engine.Request
+	asking  sync.Mutex // one question at a time
+
+	slots   slots
+	symbols cellSymbols
+	built   builds
+	plugins map[string]map[string]any // by unit path: what the plugin offers
+	told    bool                      // the reader has been told that there is no compiled tier
+
+	mu       sync.Mutex // guards what follows
+	running  bool
+	async    []string // panics in goroutines of the running cell
+	syncDone sync.Mutex
+}
+
+// Main runs the child until the parent closes its end. It returns the exit
+// status.
+func Main() int {
+	debug.SetMaxStack(256 << 20) // endless recursion ends in seconds, not in swap
+	requests := os.NewFile(engine.FdRequests, "requests")
+	events := os.NewFile(engine.FdEvents, "events")
+	if requests == nil || events == nil {
+		fmt.Fprintln(os.Stderr, "levelsum engine: is started by levelsum itself, not by hand")
+		return 2
+	}
+	if f := os.NewFile(engine.FdStdout, "stdout"); f != nil {
+		os.Stdout = f
+	}
+	if f := os.NewFile(engine.FdStderr, "stderr"); f != nil {
+		os.Stderr = f
+	}
+	r, err := New(engine.NewWriter(events))
+	if err != nil {
+		fmt.Fprintln(os.NewFile(2, "crash"), "fatal error:", err)
+		return 1
+	}
+	return r.serve(requests)
+}
+
+// New returns a fresh session that sends its events to w.
+func New(w *engine.Writer) (*Runner, error) {
+	r := &Runner{
+		w:       w,
+		acks:    make(chan struct{}, 1),
+		answers: make(chan engine.Request, 1),
+		plugins: map[string]map[string]any{},
+	}
+	var source export.Source
+	r.kit, r.noKit = compile.Here()
+	if r.noKit == nil {
+		source = r.kit
+	} else {
+		source = compile.List("")
+	}
+	r.scope = cell.NewScope(export.New(source), usual)
+	r.slots.init()
+	r.symbols.init()
+	r.built.init(r)
+	guard.Hooks.Panic = r.goroutinePanic
+	display.SetSink(sink{r})
+	return r, nil
+}
+
+// serve reads requests and runs cells until the pipe is closed.
+func (r *Runner) serve(requests io.Reader) int {
+	queue := make(chan engine.Request, 1024)
+	go func() {
+		defer close(queue)
+		err := engine.ReadRequests(requests, func(q engine.Request) {
+			switch q.Op {
+			case "ack":
+				select {
+				case r.acks <- struct{}{}:
+				default:
+				}
+			case "answer":
+				select {
+				case r.answers <- q:
+				default:
+				}
+			case "stop":
+				guard.Interrupt()
+				r.watchStop()
+			case "announce":
+				r.built.announce(*q.Cell)
+			default:
+				queue <- q
+			}
+		})
+		if err != nil {
+			fmt.Fprintln(os.NewFile(2, "crash"), "fatal error:", err)
+		}
+		os.Exit(0) // the parent is gone or has closed us: whatever still runs ends
+	}()
+	if err := r.w.Send(engine.Event{Op: "ready", Text: cell.Marker + cell.Inner}); err != nil {
+		return 1
+	}
+	for q := range queue {
+		r.answer(q)
+	}
+	return 0
+}
+
+// answer handles one request that may take long.
+func (r *Runner) answer(q engine.Request) {
+	ev := engine.Event{Op: "reply", ID: q.ID}
+	switch q.Op {
+	case "run":
+		out := r.run(*q.Cell)
+		ev = engine.Event{Op: "done", ID: q.ID, Sync: true, Outcome: &out}
+	case "state":
+		ev.Facts = r.state()
+	}
+	r.send(ev)
+}
+
+// send sends an event; with Sync it returns when the parent has handled it.
+func (r *Runner) send(ev engine.Event) {
+	if !ev.Sync {
+		if err := r.w.Send(ev); err != nil {
+			os.Exit(1)
+		}
+		return
+	}
+	r.syncDone.Lock()
+	defer r.syncDone.Unlock()
+	if err := r.w.Send(ev); err != nil {
+		var bad interface{ Unwrap() error }
+		if ev.Outcome != nil && errors.As(err, &bad) { // a view that JSON does not take
+			ev.Outcome.Value = nil
+			ev.Outcome.Fault = &engine.Fault{Name: "panic", Message: err.Error(), Trace: []string{err.Error()}}
+			err = r.w.Send(ev)
+		}
+		if err != nil {
+			os.Exit(1)
+		}
+	}
+	<-r.acks
+}
+
+// state lists facts about the session for the parent.
+func (r *Runner) state() map[string]any {
+	var gs []string
+	for _, g := range guard.Goroutines() {
+		gs = append(gs, fmt.Sprintf("of In[%d], for %s", g.Cell, time.Since(g.Since).Round(time.Second)))
+	}
+	facts := map[string]any{"names": r.scope.Names(), "goroutines": gs}
+	if r.noKit != nil {
+		facts["compiled"] = r.noKit.Error()
+	}
+	return facts
+}
+
+// watchStop says after a second what keeps a stopped cell from ending.
+func (r *Runner) watchStop() {
+	r.mu.Lock()
+	running := r.running
+	r.mu.Unlock()
+	if !running {
+		time.AfterFunc(100*time.Millisecond, func() { // goroutines that poll have had their chance
+			r.mu.Lock()
+			defer r.mu.Unlock()
+			if !r.running {
+				guard.Reset()
+			}
+		})
+		return
+	}
+	time.AfterFunc(time.Second, func() {
+		r.mu.Lock()
+		running := r.running
+		r.mu.Unlock()
+		if running {
+			_ = r.w.Send(engine.Event{Op: "warn", Text: "still running: " + runningCall() + "; interrupt once more to end the engine, which loses all values\n"})
+		}
+	})
+}
+
+// goroutinePanic notes a panic in a goroutine that the cell started and stops
+// the cell, which in Go would have ended with it.
+func (r *Runner) goroutinePanic(v any) {
+	f := faultOf(v, userFrames(0), nil)
+	r.mu.Lock()
+	running := r.running
+	if running {
+		r.async = append(r.async, f.Message)
+	}
+	r.mu.Unlock()
+	if running {
+		guard.Interrupt()
+		return
+	}
+	_ = r.w.Send(engine.Event{Op: "warn", Text: "a goroutine that a cell left behind has panicked: " + f.Message + "\n"})
+}

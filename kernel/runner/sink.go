@@ -1,0 +1,65 @@
+package runner
+
+import (
+	"encoding/base64"
+	"encoding/json"
+	"errors"
+	"fmt"
+
+	"levelsum/display"
+	"levelsum/kernel/engine"
+	"levelsum/kernel/runner/guard"
+)
+
+// sink sends what cells show through the pipe.
+type sink struct{ r *Runner }
+
+func (s sink) Show(v display.View, id string, replace bool) {
+	w := wireView(v)
+	s.r.send(engine.Event{Op: "show", Sync: true, View: &w, Name: id, Replace: replace})
+}
+
+func (s sink) Clear(wait bool) { s.r.send(engine.Event{Op: "clear", Sync: true, Wait: wait}) }
+
+func (s sink) Ask(prompt string, secret bool) (string, error) {
+	s.r.asking.Lock()
+	defer s.r.asking.Unlock()
+	select {
+	case <-s.r.answers: // one that nobody waits for any more
+	default:
+	}
+	s.r.send(engine.Event{Op: "ask", Sync: true, Text: prompt, Secret: secret})
+	select {
+	case a := <-s.r.answers:
+		if a.Err != "" {
+			return "", errors.New(a.Err)
+		}
+		return a.Text, nil
+	case <-guard.Done():
+		panic(guard.Halted)
+	}
+}
+
+// wireView makes a View that JSON takes: binary data in base64, and data that
+// JSON refuses left out with a word about it.
+func wireView(v display.View) display.View {
+	out := display.View{Data: map[string]any{}, Metadata: v.Metadata}
+	for k, x := range v.Data {
+		switch x := x.(type) {
+		case []byte:
+			out.Data[k] = base64.StdEncoding.EncodeToString(x)
+		case string:
+			out.Data[k] = cellText(x)
+		default:
+			if _, err := json.Marshal(x); err != nil {
+				out.Data["text/plain"] = fmt.Sprintf("%v\n(%s left out: %v)", v.Data["text/plain"], k, err)
+				continue
+			}
+			out.Data[k] = x
+		}
+	}
+	if _, err := json.Marshal(out.Metadata); err != nil {
+		out.Metadata = nil
+	}
+	return out
+}
