@@ -4,7 +4,7 @@ import (
 	"fmt"
 	"io"
 
-	"levelsum/kernel/runner"
+	child "levelsum/kernel/runner"
 )
 
 // runEngine is the process that runs cells. Levelsum starts it itself.
@@ -13,5 +13,5 @@ func runEngine(args []string, _ io.Reader, _, stderr io.Writer) int {
 		fmt.Fprintln(stderr, "levelsum engine: takes no arguments; it is started by levelsum itself")
 		return 2
 	}
-	return runner.Main()
+	return child.Main()
 }
