@@ -25,7 +25,7 @@ const giveUp = 20 * time.Second
 
 // A served session, and the means to end it.
 type served struct {
-	t       *testing.T
+	t       testing.TB
 	session *Session
 	engine  *fake
 	log     *strings.Builder // read after the end only
@@ -35,7 +35,7 @@ type served struct {
 }
 
 // serveFake serves a session with a fake engine until the test ends.
-func serveFake(t *testing.T, e *fake, more ...func(*Options)) *served {
+func serveFake(t testing.TB, e *fake, more ...func(*Options)) *served {
 	t.Helper()
 	k := &served{t: t, engine: e, log: &strings.Builder{}, done: make(chan struct{})}
 	o := Options{
@@ -72,7 +72,7 @@ func (k *served) end() {
 
 // A client speaks the protocol from the other end.
 type client struct {
-	t                     *testing.T
+	t                     testing.TB
 	codec                 *wire.Codec
 	sender                *wire.Sender
 	identity              string
@@ -82,7 +82,12 @@ type client struct {
 	onStdin, onIOPub      <-chan *wire.Message
 }
 
-func endpoint(a net.Addr) string { return "tcp://" + a.String() }
+func endpoint(a net.Addr) string {
+	if a.Network() == "unix" {
+		return "ipc://" + a.String()
+	}
+	return "tcp://" + a.String()
+}
 
 // connect returns a client whose subscription counts already.
 func connect(k *served, channels ...string) *client {
@@ -277,7 +282,7 @@ func contentOf(m *wire.Message) object {
 }
 
 // want checks a field of o; want is compared as JSON.
-func (o object) want(t *testing.T, field string, want any) {
+func (o object) want(t testing.TB, field string, want any) {
 	t.Helper()
 	got, _ := json.Marshal(o[field])
 	w, _ := json.Marshal(want)

@@ -36,7 +36,7 @@ type Options struct {
 // session ends, and patience how long the last request may take to end.
 const (
 	linger   = 300 * time.Millisecond
-	patience = 250 * time.Millisecond
+	patience = 450 * time.Millisecond
 )
 
 // A Session is one served kernel.
@@ -165,7 +165,7 @@ func (s *Session) Serve(ctx context.Context) (restart bool, err error) {
 	select {
 	case <-closed:
 		err = s.engineErr
-	case <-time.After(patience / 4):
+	case <-time.After(patience / 8):
 		// Nothing more can be done here; the process ends soon.
 	}
 	if o := s.lastOutput.Load(); o != nil {
