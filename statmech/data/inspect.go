@@ -14,6 +14,9 @@ import (
 // assign fills the typed columns.
 func (t *Table) assign() {
 	t.T, t.UT, t.Cp, t.U, t.URandom, t.UCommon = nil, nil, nil, nil, nil, nil
+	if t.shared == nil {
+		t.shared = &shared{}
+	}
 	for k := range t.Columns {
 		c := &t.Columns[k]
 		if c.Values == nil {

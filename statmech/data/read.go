@@ -20,6 +20,10 @@ import (
 // that a small compressed file cannot fill the memory.
 const largest = 512 << 20
 
+// mostColumns is the number of columns above which a header is taken for
+// something else.
+const mostColumns = 4096
+
 // Read reads the table in a file. A name that ends in .gz, or contents that
 // begin like gzip, are decompressed. The error of a file that is not
 // understood is an [*Error], or several joined; the table is then nil, never
@@ -192,6 +196,10 @@ func (t *Table) parse(lines []line, p *problems) {
 	units, isUnits := t.unitsRow(cells, rest, sep)
 	if isUnits {
 		rest = rest[1:]
+	}
+	if len(cells) > mostColumns {
+		p.add(head.number, 0, "", "%d columns, more than %d", len(cells), mostColumns)
+		return
 	}
 	for i, cell := range cells {
 		t.header(cell, i, units, head.number, p)

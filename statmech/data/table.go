@@ -5,7 +5,9 @@ import (
 	"math"
 	"strconv"
 	"strings"
+	"sync"
 
+	"levelsum/statmech/uncertain"
 	"levelsum/statmech/unit"
 )
 
@@ -28,6 +30,42 @@ type Table struct {
 	U       []unit.MolarEntropy
 	URandom []unit.MolarEntropy
 	UCommon []unit.MolarEntropy
+
+	shared *shared
+}
+
+// shared is what tables made from one file have in common.
+type shared struct {
+	once sync.Once
+	e    uncertain.Quantity
+}
+
+// CommonError returns the error that all rows share, in units of its standard
+// uncertainty: 0 ± 1. Whatever is computed from the table, or from a part of
+// it, uses this one input, so that a calibration error counts once in a fit
+// and an integral together.
+func (t *Table) CommonError() uncertain.Quantity {
+	t.shared.once.Do(func() { t.shared.e = uncertain.Common("common error of "+t.Name, 1) })
+	return t.shared.e
+}
+
+// AsCommon returns the table with the uncertainties of Cp read as one error
+// common to all rows, as the accuracy bound of a smoothed table is.
+func (t *Table) AsCommon() (*Table, error) {
+	if t.U == nil || t.URandom != nil || t.UCommon != nil {
+		return nil, fmt.Errorf("data: %s: AsCommon needs a column u(Cp) and no u_r(Cp) or u_c(Cp)", t.Name)
+	}
+	c := *t
+	c.Columns = append([]Column(nil), t.Columns...)
+	for k := range c.Columns {
+		if heatCapacity[c.Columns[k].of] {
+			c.Columns[k].part = 'c'
+			c.Columns[k].Symbol = "u_c(" + c.Columns[k].of + ")"
+		}
+	}
+	c.Readings = append(append([]string(nil), t.Readings...), "u(Cp) was declared common to all rows")
+	c.assign()
+	return &c, nil
 }
 
 // A Note is one "# key: value" line.

@@ -26,6 +26,14 @@ type (
 	}
 )
 
+// Model returns the model that was fitted by [HeatCapacity], or nil.
+func (r *Result) Model() any {
+	if m, ok := r.reg.model.(*thermal); ok {
+		return m.source
+	}
+	return nil
+}
+
 // HeatCapacity fits a model to the heat capacities of a table. The model is
 // anything with a method HeatCapacity (a solid, a term, a type of a notebook
 // cell) or a [statmech.Mode], whose C_V of one mole is taken; give pointers
@@ -45,16 +53,23 @@ func HeatCapacity(model any, run *data.Table, opts ...Option) (*Result, error) {
 	if err != nil {
 		return nil, err
 	}
+	all := append([]Option{optionFunc(m.describe)}, opts...)
+	all = append(all, optionFunc(func(s *settings) error {
+		s.shared = run.CommonError()
+		if run.UCommon != nil && s.sigma != CommonSigma {
+			s.common = append(s.common, commonError{plain(run.UCommon), s.shared})
+		}
+		if run.UCommon != nil && run.URandom == nil && s.sigma == AbsoluteSigma {
+			return fmt.Errorf("fit: HeatCapacity: %s has only common uncertainties of Cp; they say nothing of the scatter, so ask for fit.ScaledSigma", run.Name)
+		}
+		return nil
+	}))
 	var u []float64
 	switch {
 	case run.URandom != nil:
 		u = plain(run.URandom)
-	case run.U != nil && run.UCommon == nil:
-		u = plain(run.U)
-	}
-	all := append([]Option{optionFunc(m.describe)}, opts...)
-	if run.UCommon != nil {
-		all = append(all, CommonUncertainty(plain(run.UCommon)))
+	case run.U != nil:
+		u = plain(run.U) // of common ones the ratios, as the best guess of the weights
 	}
 	if run.UT != nil {
 		all = append(all, XUncertainty(plain(run.UT)))

@@ -5,6 +5,7 @@ import (
 	"math"
 	"reflect"
 
+	"levelsum/statmech/uncertain"
 	"levelsum/statmech/unit"
 )
 
@@ -60,12 +61,19 @@ type settings struct {
 	from   float64
 	to     float64
 	ux     []float64
-	common [][]float64
+	common []commonError
+	shared uncertain.Quantity // the common error that CommonSigma speaks of
 	starts int
 	seed   uint64
 	loss   loss
 	stop   func() bool
 	nameOf func(*float64) string // the model's name of a parameter, may be nil
+}
+
+// commonError moves all points together by u times a shared error of 0 ± 1.
+type commonError struct {
+	u []float64
+	e uncertain.Quantity
 }
 
 type parameter struct {
@@ -263,7 +271,11 @@ func XUncertainty(ux []float64) Option {
 // points together, one for each point. It may be repeated for several
 // independent common errors.
 func CommonUncertainty(u []float64) Option {
-	return optionFunc(func(s *settings) error { s.common = append(s.common, u); return nil })
+	return optionFunc(func(s *settings) error {
+		e := uncertain.Common(fmt.Sprintf("common error %d of the data", len(s.common)+1), 1)
+		s.common = append(s.common, commonError{u, e})
+		return nil
+	})
 }
 
 // Starts tries n starting points in all, the given one and random ones between

@@ -6,6 +6,7 @@ import (
 	"sort"
 
 	"levelsum/statmech"
+	"levelsum/statmech/uncertain"
 )
 
 // regression is one fit: data, model and settings, in plain numbers.
@@ -15,7 +16,7 @@ type regression struct {
 	x, y, u []float64
 	ux      []float64 // nil without uncertainties of x
 	given   bool      // u was given by the caller
-	common  [][]float64
+	common  []commonError
 	weight  []float64 // robust weights, all 1 without a loss
 	scale   []float64 // 1/u of each point in force, robust weight included
 	data    uint64    // fingerprint of x, y, u
@@ -47,10 +48,10 @@ func newRegression(m model, x, y, u []float64, set *settings) (*regression, erro
 	}
 	r := &regression{settings: set, model: m, given: u != nil}
 	for _, c := range set.common {
-		if len(c) != n {
-			return nil, fmt.Errorf("fit: %d points and %d common uncertainties", n, len(c))
+		if len(c.u) != n {
+			return nil, fmt.Errorf("fit: %d points and %d common uncertainties", n, len(c.u))
 		}
-		r.common = append(r.common, nil)
+		r.common = append(r.common, commonError{e: c.e})
 	}
 	for i := range n {
 		if math.IsNaN(x[i]) || math.IsInf(x[i], 0) || math.IsNaN(y[i]) || math.IsInf(y[i], 0) {
@@ -76,10 +77,10 @@ func newRegression(m model, x, y, u []float64, set *settings) (*regression, erro
 			r.ux = append(r.ux, set.ux[i])
 		}
 		for k, c := range set.common {
-			if !(c[i] >= 0) || math.IsInf(c[i], 0) {
-				return nil, fmt.Errorf("fit: point %d at x = %g: common uncertainty %g, want not negative and finite", i+1, x[i], c[i])
+			if !(c.u[i] >= 0) || math.IsInf(c.u[i], 0) {
+				return nil, fmt.Errorf("fit: point %d at x = %g: common uncertainty %g, want not negative and finite", i+1, x[i], c.u[i])
 			}
-			r.common[k] = append(r.common[k], c[i])
+			r.common[k].u = append(r.common[k].u, c.u[i])
 		}
 	}
 	switch got, want := len(r.x), len(set.free); {
@@ -91,7 +92,11 @@ func newRegression(m model, x, y, u []float64, set *settings) (*regression, erro
 		return nil, fmt.Errorf("fit: %d points for %d free parameters leave no scatter to scale by; use fit.AbsoluteSigma or fewer parameters", got, want)
 	}
 	if set.sigma == CommonSigma {
-		r.common = append(r.common, clone(r.u))
+		e := set.shared
+		if len(e.Name()) == 0 {
+			e = uncertain.Common("common error of the data", 1)
+		}
+		r.common = append(r.common, commonError{clone(r.u), e})
 	}
 	r.data = fingerprint(r.x, r.y, r.u, r.ux)
 	r.weight = make([]float64, len(r.x))

@@ -144,8 +144,8 @@ func (r *Result) covariances(best *minimum) {
 	}
 	for c, shift := range r.reg.common {
 		rhs[c] = make([]float64, m)
-		for i := range shift {
-			rhs[c][i] = shift[i] * r.reg.scale[i]
+		for i, u := range shift.u {
+			rhs[c][i] = u * r.reg.scale[i]
 		}
 		ab := clone(a)
 		householder(ab, m, k, rhs[c])
@@ -283,11 +283,7 @@ func (r *Result) makeQuantities() {
 		parts[j] = []uncertain.Quantity{random[j].Named(p.name).WithUnit(p.unit)}
 	}
 	for k := range r.common {
-		name := "common error of the data"
-		if len(r.common) > 1 {
-			name = fmt.Sprintf("%s, %d", name, k+1)
-		}
-		e := uncertain.Common(name, 1)
+		e := r.reg.common[k].e
 		for j := range parts {
 			parts[j] = append(parts[j], e.Scale(r.common[k][j]))
 		}
