@@ -37,15 +37,7 @@ func TestTableText(t *testing.T) {
 		{Quantity: "C_p", Unit: "J/(mol K)", Values: []float64{0.000743, 0.00143, 24.4423}, U: []float64{7e-6, 1.4e-5, 0.0733}},
 		{Quantity: "phase", Values: []string{"cr", "<img onerror=x>", "l & g"}},
 	}}.View().Data["text/plain"].(string)
-	want := strings.TrimPrefix(`
- T / K  C_p / (J mol⁻¹ K⁻¹)  phase
-------  -------------------  ---------------
-  1.00         0.0007430(70) cr
-`, "\n")
-	if !strings.HasPrefix(text, want[:len(want)-40]) {
-		t.Errorf("got\n%s", text)
-	}
-	for _, line := range []string{"0.0007430(70)  cr", "0.001430(14)   <img onerror=x>", "24.442(73)     l & g"} {
+	for _, line := range []string{" T / K  C_p / (J mol⁻¹ K⁻¹)  phase\n", "  1.00        0.0007430(70)  cr", "0.001430(14)   <img onerror=x>", "24.442(73)      l & g"} {
 		if !strings.Contains(text, line) {
 			t.Errorf("no line with %q in\n%s", line, text)
 		}

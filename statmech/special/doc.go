@@ -1,7 +1,8 @@
 // Package special evaluates the functions that statistical thermodynamics
 // needs and that math does not have: Debye's functions and the thermal
 // functions made of them, the harmonic (Einstein) mode, Fermi-Dirac and
-// Bose-Einstein integrals, the complete elliptic integrals, log-sum-exp.
+// Bose-Einstein integrals, the complete elliptic integrals, the exponential
+// integral, log-sum-exp.
 //
 // # How the pieces fit
 //

@@ -68,7 +68,18 @@ func parse(s string, symbol bool) []Run {
 			plain.WriteByte(c)
 			s = s[1:]
 		default:
-			_, n := utf8.DecodeRuneInString(s)
+			c, n := utf8.DecodeRuneInString(s)
+			if base, shift := unshifted(c); shift != 0 {
+				add(plain.String(), 0)
+				plain.Reset()
+				if k := len(out) - 1; k >= 0 && out[k].Shift == shift {
+					out[k].Text += string(base)
+				} else {
+					out = append(out, Run{Text: string(base), Shift: shift})
+				}
+				s = s[n:]
+				continue
+			}
 			plain.WriteString(s[:n])
 			s = s[n:]
 		}
@@ -142,7 +153,7 @@ func italics(text string, shift int) []Run {
 	rs := []rune(text)
 	for i := 0; i < len(rs); {
 		j := i
-		for j < len(rs) && unicode.IsLetter(rs[j]) {
+		for j < len(rs) && unicode.IsLetter(rs[j]) && rs[j] != 'Δ' { // Δ goes with any symbol
 			j++
 		}
 		if j == i {
@@ -175,6 +186,25 @@ var greekLetters = map[string]string{
 var superscripts = map[rune]rune{
 	'0': '⁰', '1': '¹', '2': '²', '3': '³', '4': '⁴', '5': '⁵', '6': '⁶',
 	'7': '⁷', '8': '⁸', '9': '⁹', '-': '⁻', '−': '⁻', '+': '⁺',
+}
+
+// unshifted returns what a Unicode super- or subscript stands for.
+func unshifted(r rune) (base rune, shift int) {
+	switch {
+	case r == '⁻':
+		return '−', 1
+	case r == '⁺':
+		return '+', 1
+	case r == '¹':
+		return '1', 1
+	case r == '²' || r == '³':
+		return '2' + r - '²', 1
+	case r == '⁰' || r >= '⁴' && r <= '⁹':
+		return '0' + r - '⁰', 1
+	case r >= '₀' && r <= '₉':
+		return '0' + r - '₀', -1
+	}
+	return r, 0
 }
 
 // Plain writes runs as text. Superscript numbers become Unicode superscripts,

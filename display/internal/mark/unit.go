@@ -195,3 +195,25 @@ func AsWritten(unit string) []Run {
 	}
 	return merge(rs)
 }
+
+// OverPower is [Over] for values that have been divided by 10^power; text
+// takes the place of the quantity if it is not empty.
+func OverPower(quantity, unit, text string, power int) []Run {
+	if text != "" {
+		return Label(text)
+	}
+	if power == 0 {
+		return Over(quantity, unit)
+	}
+	rs := Symbol(quantity)
+	if len(rs) > 0 {
+		rs = append(rs, Run{Text: " / "})
+	}
+	p := Run{Text: strings.ReplaceAll(strconv.Itoa(power), "-", "−"), Shift: 1}
+	if Dimensionless(unit) {
+		return merge(append(rs, Run{Text: "10"}, p))
+	}
+	u, _ := Unit(unit)
+	rs = append(rs, Run{Text: "(10"}, p, Run{Text: "\u00a0"})
+	return merge(append(append(rs, u...), Run{Text: ")"}))
+}

@@ -21,7 +21,7 @@ func nodes(n int) []*big.Float {
 // monomials returns the coefficients, lowest first, of the polynomial of the
 // given degree in t, x = mid + half·t, that interpolates f at degree+1+extra
 // Chebyshev nodes and is then truncated as a Chebyshev series.
-func monomials(f func(x *big.Float) *big.Float, mid, half *big.Float, degree int) []float64 {
+func monomials(f func(x *big.Float) *big.Float, mid, half *big.Float, degree int) []*big.Float {
 	n := degree + 1 + extraNodes
 	ts := nodes(n)
 	cheb := make([]*big.Float, degree+1)
@@ -67,9 +67,35 @@ func monomials(f func(x *big.Float) *big.Float, mid, half *big.Float, degree int
 		}
 		t0, t1 = t1, t2
 	}
-	r := make([]float64, degree+1)
+	return sum
+}
+
+// onInterval returns the coefficients in x itself of such a polynomial on
+// [0, end], so that the first is f(0).
+func onInterval(f func(x *big.Float) *big.Float, end *big.Float, degree int) []float64 {
+	half := quo(end, integer(2))
+	c := monomials(f, half, half, degree)
+	// p(t), t = x/half - 1: Horner's scheme on coefficient lists.
+	r := make([]*big.Float, degree+1)
 	for i := range r {
-		r[i], _ = sum[i].Float64()
+		r[i] = zero()
+	}
+	for k := degree; k >= 0; k-- {
+		for i := degree; i >= 0; i-- {
+			r[i] = neg(r[i])
+			if i > 0 {
+				r[i] = add(r[i], quo(r[i-1], half))
+			}
+		}
+		r[0] = add(r[0], c[k])
+	}
+	return rounded(r)
+}
+
+func rounded(c []*big.Float) []float64 {
+	r := make([]float64, len(c))
+	for i := range r {
+		r[i], _ = c[i].Float64()
 	}
 	return r
 }
@@ -81,7 +107,7 @@ func segments(f func(x *big.Float) *big.Float, from, width float64, n, degree in
 	half := num(width / 2)
 	for i := range r {
 		mid := num(from + width*(float64(i)+0.5))
-		r[i] = monomials(f, mid, half, degree)
+		r[i] = rounded(monomials(f, mid, half, degree))
 		for k := range r[i] {
 			r[i][k] = math.Ldexp(r[i][k], k)
 		}

@@ -8,4 +8,7 @@ package main
 
 func main() {
 	debyeTables()
+	fermiTables()
+	inverseTables()
+	boseTables()
 }
