@@ -13,6 +13,7 @@ import (
 	"os"
 	"os/exec"
 	"path/filepath"
+	"runtime"
 	"slices"
 	"strconv"
 	"strings"
@@ -78,14 +79,8 @@ func (k *Kit) Build(ctx context.Context, pkgs []Package, main Package) (*Plugin,
 	}
 	defer os.RemoveAll(dir)
 	// Everything that the link needs, and everything that was asked for.
-	for _, c := range deps(m, order) {
-		if _, ok := k.Cache.get(c.key, ".a"); ok {
-			continue
-		}
-		if err := k.archive(ctx, dir, c); err != nil {
-			return nil, err
-		}
-		p.Compiled++
+	if p.Compiled, err = k.fill(ctx, dir, deps(m, order)); err != nil {
+		return nil, err
 	}
 	if p.File, err = k.plugin(ctx, dir, m); err != nil {
 		return nil, err
@@ -107,15 +102,8 @@ func (k *Kit) Compile(ctx context.Context, pkgs []Package) error {
 		return err
 	}
 	defer os.RemoveAll(dir)
-	for _, c := range deps(nil, order) {
-		if _, ok := k.Cache.get(c.key, ".a"); ok {
-			continue
-		}
-		if err := k.archive(ctx, dir, c); err != nil {
-			return err
-		}
-	}
-	return nil
+	_, err = k.fill(ctx, dir, deps(nil, order))
+	return err
 }
 
 // admit makes packages known and returns them, imports before importers.
@@ -250,14 +238,60 @@ func deps(main *compiled, others []*compiled) []*compiled {
 	return out
 }
 
-// archive compiles one package, whose imports are in the cache, into the cache.
-func (k *Kit) archive(ctx context.Context, dir string, c *compiled) error {
-	tmp, err := k.compileIn(ctx, dir, c)
-	if err != nil {
-		return err
+// fill compiles into the cache those packages that it lacks, as many at once as
+// there are processors, each after its imports, and returns their number. If
+// several are refused, the error is that of the first in the list.
+func (k *Kit) fill(ctx context.Context, dir string, cs []*compiled) (n int, err error) {
+	type result struct {
+		done chan struct{} // closed when err is set
+		err  error
 	}
-	_, err = k.Cache.put(tmp, c.key, ".a")
-	return err
+	ctx, cancel := context.WithCancel(ctx)
+	defer cancel()
+	results := map[*compiled]*result{}
+	turn := make(chan struct{}, runtime.GOMAXPROCS(0))
+	for _, c := range cs {
+		if _, ok := k.Cache.get(c.key, ".a"); ok {
+			continue
+		}
+		n++
+		r := &result{done: make(chan struct{})}
+		results[c] = r
+		var after []*result
+		for _, i := range c.imports {
+			if results[i] != nil {
+				after = append(after, results[i])
+			}
+		}
+		go func() {
+			defer close(r.done)
+			for _, a := range after {
+				<-a.done
+				if a.err != nil {
+					r.err = a.err
+					return
+				}
+			}
+			turn <- struct{}{}
+			defer func() { <-turn }()
+			var tmp string
+			if tmp, r.err = k.compileIn(ctx, dir, c); r.err == nil {
+				_, r.err = k.Cache.put(tmp, c.key, ".a")
+			}
+		}()
+	}
+	for _, c := range cs {
+		r := results[c]
+		if r == nil {
+			continue
+		}
+		<-r.done
+		if r.err != nil && err == nil {
+			err = r.err
+			cancel()
+		}
+	}
+	return n, err
 }
 
 // compileIn compiles one package in a folder of its own below dir and returns
@@ -313,6 +347,11 @@ func (k *Kit) plugin(ctx context.Context, dir string, m *compiled) (string, erro
 	}
 	args := []string{
 		"-o", out, "-importcfg", config, "-pluginpath", m.Path, "-buildmode=plugin", "-buildid", m.key[:20], "-s", "-w", "-extld=" + k.Manifest.CC,
+	}
+	if k.Manifest.GOOS == "linux" {
+		// Without these the linker runs the C compiler twice more, to see what
+		// it can do.
+		args = append(args, "-B", "none", "-compressdwarf=false")
 	}
 	if k.Manifest.Race {
 		args = append(args, "-race")

@@ -1,6 +1,7 @@
 package compile_test
 
 import (
+	"bytes"
 	"context"
 	"errors"
 	"fmt"
@@ -196,6 +197,58 @@ func G() { undefinedName() }
 	}
 	if !reflect.DeepEqual(se.Lines, want) {
 		t.Errorf("got %+v, want %+v", se.Lines, want)
+	}
+}
+
+// Independent packages are compiled at once; of several that are refused the
+// first is told, and what was compiled before stays.
+func TestManyPackages(t *testing.T) {
+	h, k := open(t)
+	var pkgs []compile.Package
+	body := "package cell\nimport (\n"
+	sum := "0"
+	for i := range 12 {
+		path := fmt.Sprintf("cell/n%d", i)
+		pkgs = append(pkgs, pack(path, fmt.Sprintf("package cell\nfunc F() int { return %d }\n", i)))
+		body += fmt.Sprintf("n%d %q\n", i, path)
+		sum += fmt.Sprintf("+n%d.F()", i)
+	}
+	// Given before what it imports.
+	all := append([]compile.Package{pack("cell/sum", body+")\nfunc Run(any) any { return "+sum+" }\n")}, pkgs...)
+	p := build(t, k, "cell/sum", "c.Run", all...)
+	if p.Compiled != 14 {
+		t.Errorf("compiled %d packages, want 14", p.Compiled)
+	}
+	if got := run(t, h, p); got != "int: 66\n" {
+		t.Errorf("got %q", got)
+	}
+	err := k.Compile(t.Context(), []compile.Package{
+		pack("cell/o1", "package cell\n"), pack("cell/o2", "package cell\nvar X = a\n"), pack("cell/o3", "package cell\nvar X = b\n"),
+		pack("cell/o4", "package cell\nimport _ \"cell/o2\"\n"),
+	})
+	var se *compile.SourceError
+	if !errors.As(err, &se) || se.Package != "cell/o2" {
+		t.Errorf("got %v, want the error of cell/o2", err)
+	}
+}
+
+// The same source gives the same bytes, so that it does not matter which of two
+// processes puts its file into the cache last.
+func TestBuildIsReproducible(t *testing.T) {
+	_, k := open(t)
+	_, l := open(t)
+	a := pack("cell/r1", "package cell\nimport \"fmt\"\nfunc Run(any) any { return fmt.Sprint(func() {}, map[string]int{\"a\": 1}) }\n")
+	one, two := build(t, k, "cell/r1", "c.Run", a), build(t, l, "cell/r1", "c.Run", a)
+	x, err := os.ReadFile(one.File)
+	if err != nil {
+		t.Fatal(err)
+	}
+	y, err := os.ReadFile(two.File)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if one.File == two.File || !bytes.Equal(x, y) {
+		t.Errorf("%s and %s differ", one.File, two.File)
 	}
 }
 

@@ -8,6 +8,7 @@ import (
 	"os/exec"
 	"path/filepath"
 	"runtime"
+	"slices"
 	"strings"
 )
 
@@ -21,7 +22,7 @@ var kept = []string{
 
 // A toolchain is the installed Go, as it says itself.
 type toolchain struct {
-	goCmd   string            // the go command
+	goCmd   string            // its own go command
 	version string            // "go1.26.8"
 	goroot  string            // where it is installed
 	tools   string            // folder of compile and link
@@ -29,14 +30,10 @@ type toolchain struct {
 	env     map[string]string // the settings in kept
 }
 
-// find asks the go command on the path, or in the given root if that is not
-// empty, what it is.
-func find(ctx context.Context, goroot string) (*toolchain, error) {
-	name := "go"
-	if goroot != "" {
-		name = filepath.Join(goroot, "bin", "go")
-	}
-	path, err := exec.LookPath(name)
+// find asks the go command on the path what it is. In the folder of a module it
+// may be another than elsewhere: the one that the module wants.
+func find(ctx context.Context, dir string) (*toolchain, error) {
+	path, err := exec.LookPath("go")
 	if err != nil {
 		return nil, &Unavailable{
 			Reason: "there is no Go toolchain on the path",
@@ -45,8 +42,9 @@ func find(ctx context.Context, goroot string) (*toolchain, error) {
 	}
 	args := append([]string{"env", "-json", "GOVERSION", "GOROOT", "GOTOOLDIR"}, kept...)
 	cmd := exec.CommandContext(ctx, path, args...)
-	cmd.Env = append(withoutGo(os.Environ()), "GOTOOLCHAIN=local", "GOWORK=off")
-	for _, k := range kept {
+	cmd.Dir = dir
+	cmd.Env = append(withoutGo(os.Environ()), "GOWORK=off")
+	for _, k := range append(slices.Clone(kept), "GOTOOLCHAIN") {
 		if v, ok := os.LookupEnv(k); ok {
 			cmd.Env = append(cmd.Env, k+"="+v)
 		}
@@ -59,7 +57,7 @@ func find(ctx context.Context, goroot string) (*toolchain, error) {
 	if err := json.Unmarshal(out, &env); err != nil {
 		return nil, &Unavailable{Reason: "the command " + path + " does not answer as Go does", Err: err}
 	}
-	t := &toolchain{goCmd: path, version: env["GOVERSION"], goroot: env["GOROOT"], tools: env["GOTOOLDIR"], cc: env["CC"], env: map[string]string{}}
+	t := &toolchain{goCmd: filepath.Join(env["GOROOT"], "bin", "go"), version: env["GOVERSION"], goroot: env["GOROOT"], tools: env["GOTOOLDIR"], cc: env["CC"], env: map[string]string{}}
 	for _, k := range kept {
 		if env[k] != "" {
 			t.env[k] = env[k]

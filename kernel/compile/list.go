@@ -24,7 +24,7 @@ type Listing struct {
 // List makes a listing of the module whose source is in a folder.
 func List(source string) *Listing {
 	l := &Listing{source: source, files: map[string]string{}}
-	l.tools = sync.OnceValues(func() (*toolchain, error) { return find(context.Background(), "") })
+	l.tools = sync.OnceValues(func() (*toolchain, error) { return find(context.Background(), source) })
 	l.paths = sync.OnceValues(func() ([]string, error) {
 		t, err := l.tools()
 		if err != nil {

@@ -68,21 +68,25 @@ func Prepare(ctx context.Context, dir, source string, opt Options) (*Kit, error)
 	if err := Supported(); err != nil {
 		return nil, err
 	}
-	t, err := find(ctx, "")
-	if err != nil {
-		return nil, err
-	}
-	if _, err := exec.LookPath(t.cc); err != nil {
-		return nil, &Unavailable{Reason: fmt.Sprintf("the C compiler %s, with which Go links compiled cells, is not found", t.cc), Do: installCC()}
-	}
 	if !exists(filepath.Join(source, "go.mod")) {
 		return nil, &Unavailable{Reason: "there is no Go module in " + source, Do: "name the folder of levelsum's source with -source"}
 	}
-	if source, err = filepath.Abs(source); err != nil {
+	source, err := filepath.Abs(source)
+	if err != nil {
 		return nil, err
 	}
 	if dir, err = filepath.Abs(dir); err != nil {
 		return nil, err
+	}
+	t, err := find(ctx, source)
+	if err != nil {
+		return nil, err
+	}
+	if t.version != runtime.Version() {
+		return nil, otherGo(runtime.Version(), t.version)
+	}
+	if _, err := exec.LookPath(t.cc); err != nil {
+		return nil, &Unavailable{Reason: fmt.Sprintf("the C compiler %s, with which Go links compiled cells, is not found", t.cc), Do: installCC()}
 	}
 	paths, err := t.importable(ctx, source)
 	if err != nil {
