@@ -1,6 +1,8 @@
 package session
 
 import (
+	"time"
+
 	"levelsum/kernel/socket"
 	"levelsum/kernel/wire"
 )
@@ -86,6 +88,7 @@ func (s *Session) readShell() {
 		switch m.Header.Type {
 		case "shutdown_request":
 			// Older clients ask here, and do not want to wait for a cell.
+			s.atOnce(r)
 			s.handle(r, (*Session).shutdown)
 			continue
 		case "execute_request":
@@ -99,6 +102,20 @@ func (s *Session) readShell() {
 	}
 }
 
+// atOnce does what must not wait until the front ends have taken the busy of r:
+// one that reads slowly can hold it up for long.
+func (s *Session) atOnce(r *request) {
+	switch r.msg.Header.Type {
+	case "interrupt_request":
+		s.Interrupt()
+	case "shutdown_request":
+		var q wire.ShutdownRequest
+		if r.msg.Decode(&q) == nil {
+			time.AfterFunc(patience, s.Stop)
+		}
+	}
+}
+
 // readControl answers what comes over control.
 func (s *Session) readControl() {
 	for {
@@ -106,7 +123,9 @@ func (s *Session) readControl() {
 		if m == nil {
 			return
 		}
-		s.handle(&request{session: s, msg: m, from: s.control}, onControl(m.Header.Type))
+		r := &request{session: s, msg: m, from: s.control}
+		s.atOnce(r)
+		s.handle(r, onControl(m.Header.Type))
 	}
 }
 

@@ -2,8 +2,7 @@ package session
 
 import "levelsum/kernel/wire"
 
-// interrupt ends the cell that runs.
+// interrupt answers a request to end the cell that runs; atOnce has done it.
 func (s *Session) interrupt(r *request) {
-	s.Interrupt()
 	r.reply("interrupt_reply", wire.Status{Status: wire.StatusOK})
 }
