@@ -172,3 +172,19 @@ func TestLookupServesTypes(t *testing.T) {
 		t.Error("Lookup of a package that is not there succeeds")
 	}
 }
+
+func TestListingServesTypes(t *testing.T) {
+	_, k := open(t)
+	l := compile.List(filepath.Join("..", ".."))
+	if got, want := l.Paths(), k.Paths(); !slices.Equal(got, want) {
+		t.Errorf("the listing offers %d packages, the kit %d others", len(got), len(want))
+	}
+	imp := importer.ForCompiler(token.NewFileSet(), "gc", l.Lookup)
+	p, err := imp.Import("levelsum/display")
+	if err != nil || p.Scope().Lookup("Viewer") == nil {
+		t.Errorf("levelsum/display: %v, %v", p, err)
+	}
+	if _, err := l.Lookup("no/such"); err == nil {
+		t.Error("Lookup of a package that is not there succeeds")
+	}
+}

@@ -96,7 +96,13 @@ func Prepare(ctx context.Context, dir, source string, opt Options) (*Kit, error)
 	if opt.Log != nil {
 		fmt.Fprintf(opt.Log, "compiling %d packages for cells; the first time this takes some minutes\n", len(paths))
 	}
-	pkgs, err := t.export(ctx, source, opt.Race, paths)
+	roots := slices.Clone(paths)
+	for _, p := range needed {
+		if exists(filepath.Join(source, filepath.FromSlash(p))) {
+			roots = append(roots, p)
+		}
+	}
+	pkgs, err := t.export(ctx, source, opt.Race, roots)
 	if err != nil {
 		return nil, err
 	}
@@ -119,7 +125,7 @@ func Prepare(ctx context.Context, dir, source string, opt Options) (*Kit, error)
 	defer os.RemoveAll(tmp)
 	for _, p := range pkgs {
 		if p.Export == "" {
-			continue // unsafe
+			continue // unsafe, which others import
 		}
 		file := filepath.Join(tmp, "pkg", filepath.FromSlash(p.ImportPath)+".a")
 		if err := keep(p.Export, file); err != nil {
@@ -130,7 +136,7 @@ func Prepare(ctx context.Context, dir, source string, opt Options) (*Kit, error)
 			return nil, err
 		}
 		m.Archives = append(m.Archives, &Archive{
-			Path: p.ImportPath, Hash: hash, Standard: p.Standard, Import: slices.Contains(paths, p.ImportPath) && !slices.Contains(needed, relative(p.ImportPath, m.Module)), Name: p.Name,
+			Path: p.ImportPath, Hash: hash, Standard: p.Standard, Import: slices.Contains(paths, p.ImportPath), Name: p.Name,
 		})
 	}
 	slices.SortFunc(m.Archives, func(a, b *Archive) int { return strings.Compare(a.Path, b.Path) })
@@ -155,15 +161,6 @@ func Prepare(ctx context.Context, dir, source string, opt Options) (*Kit, error)
 		}
 	}
 	return Open(dir, cache)
-}
-
-// relative turns the path of one of the module's packages into a pattern.
-func relative(path, module string) string {
-	rest, ok := strings.CutPrefix(path, module+"/")
-	if !ok {
-		return path
-	}
-	return "./" + rest
 }
 
 // replace moves the folder new to old's place.
@@ -205,11 +202,6 @@ func (m *Manifest) identity() string {
 // importable lists the packages that cells may import.
 func (t *toolchain) importable(ctx context.Context, source string) ([]string, error) {
 	patterns := append([]string{"std"}, offered...)
-	for _, p := range needed {
-		if exists(filepath.Join(source, filepath.FromSlash(p))) {
-			patterns = append(patterns, p)
-		}
-	}
 	pkgs, err := t.list(ctx, source, "-e", "-json=ImportPath,Name,Standard,Imports,Error,DepOnly", patterns)
 	if err != nil {
 		return nil, err
@@ -217,7 +209,7 @@ func (t *toolchain) importable(ctx context.Context, source string) ([]string, er
 	var paths []string
 	for _, p := range pkgs {
 		switch {
-		case p.Error != nil, p.Name == "main":
+		case p.Error != nil, p.Name == "main", p.ImportPath == "unsafe": // unsafe has no archive
 		case slices.Contains(strings.Split(p.ImportPath, "/"), "internal"), strings.HasPrefix(p.ImportPath, "vendor/"):
 		case !p.Standard && slices.Contains(p.Imports, "testing"): // helpers of a library's own tests
 		default:

@@ -19,6 +19,7 @@ func init() {
 		"Curve":             reflect.ValueOf(fit.Curve),
 		"CurveWith":         reflect.ValueOf(fit.CurveWith),
 		"Curves":            reflect.ValueOf(fit.Curves),
+		"HeatCapacity":      reflect.ValueOf(fit.HeatCapacity),
 		"Huber":             reflect.ValueOf(fit.Huber),
 		"Interrupted":       reflect.ValueOf(fit.Interrupted),
 		"Name":              reflect.ValueOf(fit.Name),
@@ -36,6 +37,7 @@ func init() {
 
 		// type definitions
 		"Diagnostics": reflect.ValueOf((*fit.Diagnostics)(nil)),
+		"FittedCurve": reflect.ValueOf((*fit.FittedCurve)(nil)),
 		"Option":      reflect.ValueOf((*fit.Option)(nil)),
 		"Result":      reflect.ValueOf((*fit.Result)(nil)),
 		"Sigma":       reflect.ValueOf((*fit.Sigma)(nil)),

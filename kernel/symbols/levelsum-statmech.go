@@ -11,18 +11,79 @@ import (
 func init() {
 	Symbols["levelsum/statmech/statmech"] = map[string]reflect.Value{
 		// function, constant and variable definitions
-		"ErrDomain": reflect.ValueOf(&statmech.ErrDomain).Elem(),
+		"Audit":                      reflect.ValueOf(statmech.Audit),
+		"CheckPositive":              reflect.ValueOf(statmech.CheckPositive),
+		"CheckRatio":                 reflect.ValueOf(statmech.CheckRatio),
+		"CheckTemperature":           reflect.ValueOf(statmech.CheckTemperature),
+		"ErrDomain":                  reflect.ValueOf(&statmech.ErrDomain).Elem(),
+		"ErrRedundant":               reflect.ValueOf(&statmech.ErrRedundant).Elem(),
+		"ErrUnbounded":               reflect.ValueOf(&statmech.ErrUnbounded).Elem(),
+		"ErrUnderdetermined":         reflect.ValueOf(&statmech.ErrUnderdetermined).Elem(),
+		"ErrUnreachable":             reflect.ValueOf(&statmech.ErrUnreachable).Elem(),
+		"FreeEnergyExcess":           reflect.ValueOf(statmech.FreeEnergyExcess),
+		"GibbsEntropy":               reflect.ValueOf(statmech.GibbsEntropy),
+		"GibbsEntropyOfLevels":       reflect.ValueOf(statmech.GibbsEntropyOfLevels),
+		"MaximumEntropy":             reflect.ValueOf(statmech.MaximumEntropy),
+		"NewLevels":                  reflect.ValueOf(statmech.NewLevels),
+		"Normalise":                  reflect.ValueOf(statmech.Normalise),
+		"PhotonRate":                 reflect.ValueOf(statmech.PhotonRate),
+		"RadiantPower":               reflect.ValueOf(statmech.RadiantPower),
+		"ReducedAt":                  reflect.ValueOf(statmech.ReducedAt),
+		"RelativeEntropy":            reflect.ValueOf(statmech.RelativeEntropy),
+		"TemperatureFromLines":       reflect.ValueOf(statmech.TemperatureFromLines),
+		"TemperatureFromPopulations": reflect.ValueOf(statmech.TemperatureFromPopulations),
 
 		// type definitions
-		"DomainError": reflect.ValueOf((*statmech.DomainError)(nil)),
-		"Mode":        reflect.ValueOf((*statmech.Mode)(nil)),
-		"Reduced":     reflect.ValueOf((*statmech.Reduced)(nil)),
-		"ZeroPointer": reflect.ValueOf((*statmech.ZeroPointer)(nil)),
+		"AuditCheck":             reflect.ValueOf((*statmech.AuditCheck)(nil)),
+		"AuditOptions":           reflect.ValueOf((*statmech.AuditOptions)(nil)),
+		"AuditReport":            reflect.ValueOf((*statmech.AuditReport)(nil)),
+		"BetaState":              reflect.ValueOf((*statmech.BetaState)(nil)),
+		"DomainError":            reflect.ValueOf((*statmech.DomainError)(nil)),
+		"EntropyOverK":           reflect.ValueOf((*statmech.EntropyOverK)(nil)),
+		"GroundDegenerate":       reflect.ValueOf((*statmech.GroundDegenerate)(nil)),
+		"HighTemperatureLimited": reflect.ValueOf((*statmech.HighTemperatureLimited)(nil)),
+		"Levels":                 reflect.ValueOf((*statmech.Levels)(nil)),
+		"Line":                   reflect.ValueOf((*statmech.Line)(nil)),
+		"LineSignal":             reflect.ValueOf((*statmech.LineSignal)(nil)),
+		"MaximumEntropyResult":   reflect.ValueOf((*statmech.MaximumEntropyResult)(nil)),
+		"MeanConstraint":         reflect.ValueOf((*statmech.MeanConstraint)(nil)),
+		"Mode":                   reflect.ValueOf((*statmech.Mode)(nil)),
+		"Molar":                  reflect.ValueOf((*statmech.Molar)(nil)),
+		"Reduced":                reflect.ValueOf((*statmech.Reduced)(nil)),
+		"Schottky":               reflect.ValueOf((*statmech.Schottky)(nil)),
+		"SliceMode":              reflect.ValueOf((*statmech.SliceMode)(nil)),
+		"Sum":                    reflect.ValueOf((*statmech.Sum)(nil)),
+		"TemperatureFit":         reflect.ValueOf((*statmech.TemperatureFit)(nil)),
+		"Times":                  reflect.ValueOf((*statmech.Times)(nil)),
+		"ZeroPointer":            reflect.ValueOf((*statmech.ZeroPointer)(nil)),
 
 		// interface wrapper definitions
-		"_Mode":        reflect.ValueOf((*_levelsum_statmech_Mode)(nil)),
-		"_ZeroPointer": reflect.ValueOf((*_levelsum_statmech_ZeroPointer)(nil)),
+		"_GroundDegenerate":       reflect.ValueOf((*_levelsum_statmech_GroundDegenerate)(nil)),
+		"_HighTemperatureLimited": reflect.ValueOf((*_levelsum_statmech_HighTemperatureLimited)(nil)),
+		"_Mode":                   reflect.ValueOf((*_levelsum_statmech_Mode)(nil)),
+		"_SliceMode":              reflect.ValueOf((*_levelsum_statmech_SliceMode)(nil)),
+		"_ZeroPointer":            reflect.ValueOf((*_levelsum_statmech_ZeroPointer)(nil)),
 	}
+}
+
+// _levelsum_statmech_GroundDegenerate is an interface wrapper for GroundDegenerate type
+type _levelsum_statmech_GroundDegenerate struct {
+	IValue            interface{}
+	WGroundDegeneracy func() float64
+}
+
+func (W _levelsum_statmech_GroundDegenerate) GroundDegeneracy() float64 {
+	return W.WGroundDegeneracy()
+}
+
+// _levelsum_statmech_HighTemperatureLimited is an interface wrapper for HighTemperatureLimited type
+type _levelsum_statmech_HighTemperatureLimited struct {
+	IValue                       interface{}
+	WHighTemperatureHeatCapacity func() float64
+}
+
+func (W _levelsum_statmech_HighTemperatureLimited) HighTemperatureHeatCapacity() float64 {
+	return W.WHighTemperatureHeatCapacity()
 }
 
 // _levelsum_statmech_Mode is an interface wrapper for Mode type
@@ -33,6 +94,20 @@ type _levelsum_statmech_Mode struct {
 
 func (W _levelsum_statmech_Mode) Reduced(T unit.Temperature) statmech.Reduced {
 	return W.WReduced(T)
+}
+
+// _levelsum_statmech_SliceMode is an interface wrapper for SliceMode type
+type _levelsum_statmech_SliceMode struct {
+	IValue     interface{}
+	WReduced   func(T unit.Temperature) statmech.Reduced
+	WReducedAt func(ts []unit.Temperature) []statmech.Reduced
+}
+
+func (W _levelsum_statmech_SliceMode) Reduced(T unit.Temperature) statmech.Reduced {
+	return W.WReduced(T)
+}
+func (W _levelsum_statmech_SliceMode) ReducedAt(ts []unit.Temperature) []statmech.Reduced {
+	return W.WReducedAt(ts)
 }
 
 // _levelsum_statmech_ZeroPointer is an interface wrapper for ZeroPointer type
