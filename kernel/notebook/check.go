@@ -39,10 +39,12 @@ func (d *Document) check(file string) error {
 	}
 	major, minor, ok := version(root)
 	switch {
+	case major > 0 && major < 4:
+		return fail(0, "", wrong("nbformat", "version %d; versions from 4.0 are read: open it in a current Jupyter front end and save it", major))
 	case !ok:
 		return fail(0, "", wrong("nbformat, nbformat_minor", "want two whole numbers, the version of the format"))
 	case major < 4:
-		return fail(0, "", wrong("nbformat", "version %d.%d; versions from 4.0 are read: open it in a current Jupyter front end and save it", major, minor))
+		return fail(0, "", wrong("nbformat", "%d, want 4", major))
 	case major > 4:
 		return fail(0, "", wrong("nbformat", "version %d.%d is newer than this program, which reads 4", major, minor))
 	case minor < 0:
