@@ -202,7 +202,7 @@ func TestDataFiles(t *testing.T) {
 	a := doc(t, source...)
 	run(t, a, Options{Dir: dir})
 	// sha256sum of the file.
-	want := []DataFile{{File: "run.csv", Rows: 3, SHA256: "72ae35ffe63aee5b116646419be0bba6a137717e2d7d39c213aaec6c2b1d760c"}}
+	want := []DataFile{{File: "run.csv", Rows: 2, SHA256: "72ae35ffe63aee5b116646419be0bba6a137717e2d7d39c213aaec6c2b1d760c"}}
 	got, err := storedData(a)
 	if err != nil || len(got) != 1 || got[0] != want[0] {
 		t.Errorf("stored %+v, %v", got, err)

@@ -20,7 +20,7 @@ import (
 
 // A DataFile is a file that a notebook names: the name as the cell spells it,
 // what it holds and how much of it. Rows counts the lines that are neither
-// empty nor comments.
+// empty nor comments, in a .csv or .tsv file without the header.
 type DataFile struct {
 	File   string `json:"file"`
 	SHA256 string `json:"sha256"`
@@ -105,6 +105,9 @@ func describe(dir, name string) (f DataFile, ok bool, err error) {
 		if start = !more; start && !blank && !comment {
 			f.Rows++
 		}
+	}
+	if ext := filepath.Ext(name); f.Rows > 0 && (ext == ".csv" || ext == ".tsv") {
+		f.Rows--
 	}
 	f.SHA256 = hex.EncodeToString(h.Sum(nil))
 	return f, true, nil

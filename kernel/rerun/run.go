@@ -216,10 +216,10 @@ func runCell(ctx context.Context, s Session, rec *recorder, n int, c *notebook.C
 	return step
 }
 
-// firstLine returns the first line of a cell that says something.
+// firstLine returns the first line of a cell that is no comment.
 func firstLine(s string) string {
 	for l := range strings.Lines(s) {
-		if l = strings.TrimSpace(l); l != "" && !strings.HasPrefix(l, directive) {
+		if l = strings.TrimSpace(l); l != "" && !strings.HasPrefix(l, "//") {
 			return l
 		}
 	}

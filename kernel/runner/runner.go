@@ -10,6 +10,7 @@ import (
 	"time"
 
 	"levelsum/display"
+	"levelsum/display/draw"
 	"levelsum/kernel/cell"
 	"levelsum/kernel/compile"
 	"levelsum/kernel/engine"
@@ -85,6 +86,7 @@ func New(w *engine.Writer) (*Runner, error) {
 	r.built.init(r)
 	guard.Hooks.Panic = r.goroutinePanic
 	display.SetSink(sink{r})
+	draw.Register()
 	return r, nil
 }
 
