@@ -322,7 +322,7 @@ func (k *Kit) compileIn(ctx context.Context, dir string, c *compiled) (string, e
 	}
 	output, err := k.run(ctx, work, k.compile, args)
 	var exit *exec.ExitError
-	if errors.As(err, &exit) && exit.ExitCode() > 0 && !noSpace.MatchString(output) {
+	if errors.As(err, &exit) && !k.gone() && exit.ExitCode() > 0 && !noSpace.MatchString(output) {
 		if ds := diagnostics(strings.ReplaceAll(output, work+string(filepath.Separator), "")); len(ds) > 0 && ds[0].Line > 0 {
 			return "", &SourceError{Package: c.Path, Lines: ds}
 		}
@@ -396,6 +396,9 @@ func (k *Kit) run(ctx context.Context, dir, tool string, args []string) (string,
 	return output.String(), err
 }
 
+// gone says whether the kit was removed since it was opened.
+func (k *Kit) gone() bool { return !exists(filepath.Join(k.Dir, manifestName)) }
+
 // toolError says why a tool did not do its work.
 func (k *Kit) toolError(tool string, err error, output string) error {
 	if errors.Is(err, context.Canceled) || errors.Is(err, context.DeadlineExceeded) {
@@ -403,6 +406,9 @@ func (k *Kit) toolError(tool string, err error, output string) error {
 	}
 	if noSpace.MatchString(output) {
 		return &CacheError{k.Cache.Dir, syscall.ENOSPC}
+	}
+	if k.gone() {
+		return &Unavailable{Reason: "the packages compiled for cells were removed while this kernel ran, as levelsum install does after a new build", Do: "restart the kernel"}
 	}
 	return &ToolError{tool, err, output}
 }

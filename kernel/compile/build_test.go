@@ -252,6 +252,24 @@ func TestBuildIsReproducible(t *testing.T) {
 	}
 }
 
+// After Prepare neither Go's caches nor the go command are used.
+func TestBuildNeedsNoCachesOfGo(t *testing.T) {
+	h, k := open(t)
+	for _, name := range []string{"HOME", "GOCACHE", "GOMODCACHE", "GOPATH", "GOROOT", "XDG_CACHE_HOME"} {
+		t.Setenv(name, "/nowhere")
+	}
+	t.Setenv("GOFLAGS", "-mod=nonsense")
+	t.Setenv("GOARCH", "wasm")
+	again, err := compile.Open(k.Dir, k.Cache.Dir)
+	if err != nil {
+		t.Fatal(err)
+	}
+	p := build(t, again, "cell/off1", "c.Run", pack("cell/off1", "package cell\nimport \"gonum.org/v1/gonum/floats\"\nfunc Run(any) any { return floats.Sum([]float64{1, 2}) }\n"))
+	if got := run(t, h, p); got != "float64: 3\n" {
+		t.Errorf("got %q", got)
+	}
+}
+
 func TestRefusedImports(t *testing.T) {
 	_, k := open(t)
 	for _, imp := range []string{"example.com/none", "cell/none"} {

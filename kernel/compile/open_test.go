@@ -136,6 +136,22 @@ func TestBrokenTools(t *testing.T) {
 	}
 }
 
+func TestKitRemovedWhileOpen(t *testing.T) {
+	dir := altered(t, func(string, *compile.Manifest) {})
+	k, err := compile.Open(dir, t.TempDir())
+	if err != nil {
+		t.Fatal(err)
+	}
+	if err := os.RemoveAll(dir); err != nil {
+		t.Fatal(err)
+	}
+	_, err = k.Build(t.Context(), nil, pack("", "package main\nimport _ \"fmt\"\n"))
+	var u *compile.Unavailable
+	if !errors.As(err, &u) || u.Do != "restart the kernel" {
+		t.Errorf("got %v", err)
+	}
+}
+
 func TestKitOffersWhatCellsUse(t *testing.T) {
 	_, k := open(t)
 	paths := k.Paths()

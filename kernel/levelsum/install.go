@@ -50,6 +50,10 @@ func install(args []string, _ io.Reader, stdout, stderr io.Writer) int {
 		say.Printf("install: %v", err)
 		return 1
 	}
+	if strings.Contains(filepath.ToSlash(exe), "/go-build") {
+		say.Print("install: this levelsum was started by go run and is gone when it ends; build it first: go build -trimpath ./kernel/levelsum")
+		return 2
+	}
 	dir, err := specFolder(*prefix)
 	if err != nil {
 		say.Printf("install: %v", err)

@@ -1,7 +1,9 @@
 package symbols_test
 
 import (
+	"go/constant"
 	"go/types"
+	"path"
 	"path/filepath"
 	"reflect"
 	"slices"
@@ -15,11 +17,13 @@ import (
 	"levelsum/kernel/symbols/export"
 )
 
+var source = compile.List(filepath.Join("..", ".."))
+
 // Every exported name of gonum, gonum/plot and levelsum is in its table, if a
 // table can hold it, and the tables hold no others. It fails when a package has
 // changed: go generate ./kernel/symbols.
 func TestTablesMatchPackages(t *testing.T) {
-	imp := export.New(compile.List(filepath.Join("..", "..")))
+	imp := export.New(source)
 	var own []string
 	for _, path := range imp.Paths() {
 		first, _, _ := strings.Cut(path, "/")
@@ -53,6 +57,41 @@ func TestTablesMatchPackages(t *testing.T) {
 		if !slices.Contains(own, key) {
 			t.Errorf("there is a table %s for no package", key)
 		}
+	}
+}
+
+// Every constant in a table is, as a float64, the one that the compiler makes of
+// the package's source.
+func TestTablesHoldTheCompilersConstants(t *testing.T) {
+	imp := export.New(source)
+	n := 0
+	for key, table := range symbols.Symbols {
+		p, err := imp.Import(path.Dir(key))
+		if err != nil {
+			t.Errorf("%s: %v", key, err)
+			continue
+		}
+		for name, v := range table {
+			c, ok := p.Scope().Lookup(name).(*types.Const)
+			if !ok || c.Val().Kind() != constant.Int && c.Val().Kind() != constant.Float {
+				continue
+			}
+			n++
+			want, _ := constant.Float64Val(c.Val())
+			var got float64
+			switch x := v.Interface().(type) {
+			case constant.Value:
+				got, _ = constant.Float64Val(x)
+			default:
+				got = v.Convert(reflect.TypeFor[float64]()).Float()
+			}
+			if got != want {
+				t.Errorf("%s.%s is %v in the table, %v in the package", key, name, got, want)
+			}
+		}
+	}
+	if n < 200 {
+		t.Errorf("only %d constants were compared", n)
 	}
 }
 
