@@ -1,8 +1,13 @@
 package uncertain
 
 import (
+	"fmt"
 	"math"
 	"sort"
+
+	"gonum.org/v1/gonum/stat/distuv"
+
+	"levelsum/statmech"
 )
 
 // A Contribution is one line of an uncertainty budget.
@@ -89,4 +94,21 @@ func (q Quantity) EffectiveFreedom() float64 {
 		return math.Inf(1)
 	}
 	return total * total / sum
+}
+
+// CoverageFactor returns the k for which value ± k·u covers with probability p
+// if the estimate is normally distributed: the quantile of the t-distribution
+// for the effective degrees of freedom, rounded down (JCGM 100:2008, G.4.1).
+func (q Quantity) CoverageFactor(p float64) float64 {
+	if !(p > 0) || !(p < 1) {
+		panic(&statmech.DomainError{Func: "uncertain.Quantity.CoverageFactor", Arg: "p", Value: fmt.Sprint(p), Want: "between 0 and 1"})
+	}
+	nu := q.EffectiveFreedom()
+	if math.IsInf(nu, 1) {
+		return distuv.UnitNormal.Quantile((1 + p) / 2)
+	}
+	if nu = math.Floor(nu + 1e-9); nu < 1 {
+		panic(&statmech.DomainError{Func: "uncertain.Quantity.CoverageFactor", Arg: "effective degrees of freedom", Value: fmt.Sprint(q.EffectiveFreedom()), Want: "at least 1"})
+	}
+	return distuv.StudentsT{Mu: 0, Sigma: 1, Nu: nu}.Quantile((1 + p) / 2)
 }

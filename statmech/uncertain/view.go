@@ -37,6 +37,33 @@ func (b Budget) View() display.View {
 	if b.Correlation != 0 {
 		foot += fmt.Sprintf("; correlation terms %+.2g of u² = %.2g", b.Correlation, b.U*b.U)
 	}
+	if l := b.Result.Linearity(); l.Reason != "" && b.Result.Withheld() == "" {
+		foot += "; warning: the first order is not enough: " + l.Reason
+	}
+	return table(rows, foot)
+}
+
+// View shows the simulation as a table.
+func (s *Simulation) View() display.View {
+	lo, hi := s.Interval(s.Coverage)
+	sLo, sHi := s.Shortest(s.Coverage)
+	percent := strconv.FormatFloat(100*s.Coverage, 'g', 4, 64) + " %"
+	name := s.Quantity.Name()
+	if name == "" {
+		name = "result"
+	}
+	if unit := s.Quantity.Unit(); unit != "" {
+		name += " / (" + unit + ")"
+	}
+	rows := [][]string{
+		{name, "estimate", "u", percent + " symmetric", percent + " shortest"},
+		{"Monte Carlo", valueAt(s.Mean, s.U), two(s.U), "[" + valueAt(lo, s.U) + ", " + valueAt(hi, s.U) + "]", "[" + valueAt(sLo, s.U) + ", " + valueAt(sHi, s.U) + "]"},
+		{"first order", valueAt(s.Quantity.Value(), s.U), two(s.Quantity.StandardUncertainty()), "", ""},
+	}
+	foot := fmt.Sprintf("%d draws, seed %d", s.Draws, s.Seed)
+	for _, w := range s.Warnings {
+		foot += "; warning: " + w
+	}
 	return table(rows, foot)
 }
 
