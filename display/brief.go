@@ -188,6 +188,9 @@ func methodText(v reflect.Value) (s string, ok bool) {
 }
 
 func callText(v reflect.Value, name string, f func() string) (s string) {
+	for v.Kind() == reflect.Interface {
+		v = v.Elem()
+	}
 	if v.Kind() == reflect.Pointer && v.IsNil() {
 		return "nil " + v.Type().String()
 	}

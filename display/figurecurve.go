@@ -68,7 +68,7 @@ func (r *figureReader) curves(s Series, d *seriesData) (below, above []scene.Lay
 			return nil, nil, 0, err
 		}
 		if r.wantRes && i == 0 && d.y != nil {
-			if w, ok := x.(fittedCurve); ok && !w.FittedTo(d.x, d.y) {
+			if w, ok := x.(fittedCurve); ok && !w.FittedTo(d.rawX, d.rawY) {
 				return nil, nil, 0, fmt.Errorf("the residuals would be of another data set: the curve was not fitted to these points")
 			}
 		}

@@ -325,6 +325,7 @@ func (a *axisState) checkLog(what string, v []float64) error {
 
 type seriesData struct {
 	x, y, yerr, xerr []float64
+	rawX, rawY       []float64 // in the units of their types, as a fit sees them
 	style            scene.Style
 	axis             *axisState
 }
@@ -349,6 +350,7 @@ func (r *figureReader) points(i int, s Series) (*seriesData, error) {
 	if err != nil {
 		return nil, err
 	}
+	d.rawX = slices.Clone(cx.v)
 	if err := r.x.take("X of "+what, cx); err != nil {
 		return nil, err
 	}
@@ -378,6 +380,7 @@ func (r *figureReader) points(i int, s Series) (*seriesData, error) {
 	if len(cy.v) != len(d.x) && cy.text == nil {
 		return nil, fmt.Errorf("%s: X has %d values, Y has %d", what, len(d.x), len(cy.v))
 	}
+	d.rawY = slices.Clone(cy.v)
 	if err := d.axis.take("Y of "+what, cy); err != nil {
 		return nil, err
 	}

@@ -1,7 +1,9 @@
 package display
 
 import (
-	"strings"
+	"math"
+	"math/rand/v2"
+	"strconv"
 	"testing"
 )
 
@@ -31,15 +33,19 @@ func TestRound(t *testing.T) {
 	}
 }
 
-func TestTableText(t *testing.T) {
-	text := Table{Columns: []Column{
-		{Quantity: "T", Unit: "K", Values: []float64{1, 1.5, 298.15}},
-		{Quantity: "C_p", Unit: "J/(mol K)", Values: []float64{0.000743, 0.00143, 24.4423}, U: []float64{7e-6, 1.4e-5, 0.0733}},
-		{Quantity: "phase", Values: []string{"cr", "<img onerror=x>", "l & g"}},
-	}}.View().Data["text/plain"].(string)
-	for _, line := range []string{" T / K  C_p / (J mol⁻¹ K⁻¹)  phase\n", "  1.00        0.0007430(70)  cr", "0.001430(14)   <img onerror=x>", "24.442(73)      l & g"} {
-		if !strings.Contains(text, line) {
-			t.Errorf("no line with %q in\n%s", line, text)
+// Rounding moves a value by at most half a unit of the last digit shown.
+func TestRoundError(t *testing.T) {
+	r := rand.New(rand.NewPCG(1, 1))
+	for range 20000 {
+		v := (r.Float64() - 0.5) * math.Pow(10, 40*r.Float64()-20)
+		u := math.Abs(v) * math.Pow(10, 8*r.Float64()-6)
+		s := round(v, u)
+		got, err := strconv.ParseFloat(s.digits+"e"+strconv.Itoa(s.exp), 64)
+		if err != nil {
+			t.Fatalf("round(%v, %v) = %s: %v", v, u, s.text(), err)
+		}
+		if d := math.Abs(got - v); d > 0.0501*u+1e-15*math.Abs(v) {
+			t.Fatalf("round(%v, %v) = %s, off by %.3g u", v, u, s.text(), d/u)
 		}
 	}
 }

@@ -46,8 +46,17 @@ func Current() Sink {
 // terminal is the sink of a program without a front end.
 type terminal struct{}
 
+// Show prints the plain text. A progress line is written over the one before,
+// and only where somebody watches.
 func (terminal) Show(v View, _ string, _ bool) {
-	if s, ok := v.Data["text/plain"].(string); ok {
+	s, ok := v.Data["text/plain"].(string)
+	switch {
+	case !ok:
+	case Transient(v):
+		if f, err := os.Stdout.Stat(); err == nil && f.Mode()&os.ModeCharDevice != 0 {
+			fmt.Print("\r\x1b[K" + s)
+		}
+	default:
 		fmt.Println(s)
 	}
 }

@@ -5,6 +5,7 @@ import (
 	"math"
 	"os"
 	"path/filepath"
+	"strconv"
 	"strings"
 
 	"levelsum/display/internal/mark"
@@ -241,7 +242,8 @@ func commonDecimals(vs []float64, n int) (d int, ok bool) {
 	if exponent(small)+d < 2 {
 		exact := true
 		for _, v := range vs {
-			exact = exact && (math.IsNaN(v) || math.IsInf(v, 0) || math.Abs(scale10(v, -d)-math.Round(scale10(v, -d))) < 1e-6)
+			shown, _ := strconv.ParseFloat(fixed(v, d), 64)
+			exact = exact && (math.IsNaN(v) || math.IsInf(v, 0) || math.Abs(shown-v) <= 1e-9*math.Abs(v))
 		}
 		if !exact {
 			return 0, false

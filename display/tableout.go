@@ -80,7 +80,7 @@ func (s *sheet) text() string {
 	}
 	var b strings.Builder
 	if s.caption != "" {
-		b.WriteString(oneLineText(s.caption) + "\n")
+		b.WriteString(mark.Plain(mark.Label(oneLineText(s.caption))) + "\n")
 	}
 	for i := range lines {
 		b.WriteString(strings.TrimRight(lines[i].String(), " ") + "\n")
@@ -89,7 +89,7 @@ func (s *sheet) text() string {
 		}
 	}
 	for _, n := range s.notes {
-		b.WriteString(oneLineText(n) + "\n")
+		b.WriteString(mark.Plain(mark.Label(oneLineText(n))) + "\n")
 	}
 	return strings.TrimSuffix(b.String(), "\n")
 }

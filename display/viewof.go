@@ -137,8 +137,8 @@ func viewOfSlice(v reflect.Value) View {
 		if i > 0 {
 			b.WriteString(", ")
 		}
-		if unit != "" {
-			b.WriteString(plainNumber(v.Index(i).Float(), 10).text())
+		if et.Kind() == reflect.Float64 && (unit != "" || !isQuantity(et)) {
+			b.WriteString(plainNumber(v.Index(i).Float(), 7).text())
 			continue
 		}
 		w := &brief{left: 200}

@@ -18,7 +18,14 @@ func LaTeX(rs []Run) string {
 			}
 		}
 	}
-	return strings.ReplaceAll(b.String(), "$$", "")
+	// Join what stands side by side; a command must not run into a letter.
+	parts := strings.Split(b.String(), "$$")
+	for i := range parts[1:] {
+		if c := parts[i+1]; c != "" && letters(c[:1]) != "" {
+			parts[i+1] = " " + c
+		}
+	}
+	return strings.Join(parts, "")
 }
 
 // Math writes runs for LaTeX's math mode.

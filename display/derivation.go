@@ -1,0 +1,307 @@
+package display
+
+import (
+	"fmt"
+	"strings"
+
+	"levelsum/display/internal/mark"
+)
+
+// A Derivation shows how a number comes about: formulas with their symbols,
+// the numbers put in, and the results, all from live values.
+//
+//	display.Derivation{
+//		Title: "Entropy of equally probable states",
+//		Steps: []display.Step{{
+//			Formula: `[[S]] = [[k]] \ln [[W]]`,
+//			Symbols: []display.Symbol{
+//				{Name: "S", Meaning: "entropy", Value: s},
+//				{Name: "k", Meaning: "Boltzmann constant", Value: k, Unit: "J/K"},
+//				{Name: "W", Meaning: "number of states", Value: 16},
+//			},
+//			Result: "S",
+//			Source: "...",
+//		}},
+//	}
+type Derivation struct {
+	Title string
+	Steps []Step
+	Notes []string
+}
+
+// A Step is one formula of a [Derivation]. The formula is LaTeX with a slot
+// for each symbol: it is written once with the symbols and once with their
+// numbers, so that the two cannot differ. Result names the symbol that stands
+// on the left: it keeps its symbol where the numbers are put in, and its value
+// ends the step.
+type Step struct {
+	Text    string // a sentence before the formula
+	Formula string
+	Symbols []Symbol
+	Result  string // the name of one of Symbols
+	Source  string // where the formula is from
+}
+
+// A Symbol of a formula.
+type Symbol struct {
+	Name    string // in the slots: "R", "θ_D", "C_{p,m}"
+	LaTeX   string // how it is written, made from Name if empty
+	Meaning string
+	Value   any    // a number, typed quantity, value with uncertainty; nil for a symbol without a number
+	Unit    string // for plain numbers; "1" for none
+}
+
+type stepRead struct {
+	Step
+	pieces []piece
+	vals   map[string]slotValue
+	latex  map[string]string
+}
+
+// Check says why the derivation cannot be shown.
+func (d Derivation) Check() error {
+	_, err := d.read()
+	return err
+}
+
+func (d Derivation) read() ([]stepRead, error) {
+	if len(d.Steps) == 0 {
+		return nil, &Refusal{"Derivation", "there are no steps"}
+	}
+	var out []stepRead
+	for i, s := range d.Steps {
+		r, err := s.read()
+		if err != nil {
+			return nil, &Refusal{"Derivation", fmt.Sprintf("step %d: %v", i+1, err)}
+		}
+		out = append(out, r)
+	}
+	return out, nil
+}
+
+func (s Step) read() (stepRead, error) {
+	r := stepRead{Step: s, vals: map[string]slotValue{}, latex: map[string]string{}}
+	var err error
+	if r.pieces, err = splitSlots(s.Formula); err != nil {
+		return r, err
+	}
+	for _, word := range []string{`\href`, `\url`, `\require`, `\class`, `\cssId`, `\style`, `\unicode`, `\data`} {
+		if strings.Contains(s.Formula, word) {
+			return r, fmt.Errorf("the formula holds %s, which is no mathematics", word)
+		}
+	}
+	used := map[string]bool{}
+	for _, p := range r.pieces {
+		used[p.slot] = true
+	}
+	for _, y := range s.Symbols {
+		if r.latex[y.Name] != "" {
+			return r, fmt.Errorf("the symbol %s is declared twice", y.Name)
+		}
+		if y.Meaning == "" {
+			return r, fmt.Errorf("the symbol %s has no meaning", y.Name)
+		}
+		if !used[y.Name] {
+			return r, fmt.Errorf("the symbol %s has no slot [[%s]] in the formula", y.Name, y.Name)
+		}
+		r.latex[y.Name] = y.LaTeX
+		if y.LaTeX == "" {
+			r.latex[y.Name] = mark.Math(mark.Symbol(y.Name))
+		}
+		if y.Value == nil {
+			continue
+		}
+		v, err := readSlot(y.Name, y.Value)
+		if err != nil {
+			return r, err
+		}
+		if v.number {
+			switch {
+			case y.Unit != "" && v.m.unit != "" && !sameUnit(y.Unit, v.m.unit):
+				return r, fmt.Errorf("the symbol %s is said to be in %q, but its value is in %q", y.Name, y.Unit, v.m.unit)
+			case v.m.unit == "" && y.Unit == "" && !v.m.integer:
+				return r, fmt.Errorf("the symbol %s has a plain number for a value: give its Unit (\"1\" for none)", y.Name)
+			case y.Unit != "":
+				v.m.unit = y.Unit
+			}
+		}
+		r.vals[y.Name] = v
+	}
+	for _, p := range r.pieces {
+		if p.slot != "" && r.latex[p.slot] == "" {
+			return r, fmt.Errorf("the slot [[%s]] names no symbol", p.slot)
+		}
+	}
+	if s.Result != "" {
+		if v, ok := r.vals[s.Result]; !ok || !v.number {
+			return r, fmt.Errorf("the result %s is no symbol with a number", s.Result)
+		}
+	}
+	return r, nil
+}
+
+// symbols is the formula with its symbols, numbers the one with numbers.
+func (r *stepRead) symbols() string {
+	var b strings.Builder
+	for _, p := range r.pieces {
+		if p.slot == "" {
+			b.WriteString(p.text)
+		} else {
+			b.WriteString("{" + r.latex[p.slot] + "}")
+		}
+	}
+	return b.String()
+}
+
+func (r *stepRead) numbers() string {
+	var b strings.Builder
+	for _, p := range r.pieces {
+		v, ok := r.vals[p.slot]
+		switch {
+		case p.slot == "":
+			b.WriteString(p.text)
+		case !ok || p.slot == r.Result:
+			b.WriteString("{" + r.latex[p.slot] + "}")
+		default:
+			s := v.math("")
+			if strings.ContainsAny(s, `-\(`) {
+				s = `\left(` + s + `\right)`
+			}
+			b.WriteString("{" + s + "}")
+		}
+	}
+	return b.String()
+}
+
+func (r *stepRead) hasNumbers() bool {
+	for name := range r.vals {
+		if name != r.Result {
+			return true
+		}
+	}
+	return false
+}
+
+// result is "S = 154.8 J/(mol K)" in LaTeX.
+func (r *stepRead) result() string {
+	return r.latex[r.Result] + " = " + r.vals[r.Result].math("")
+}
+
+// View shows the derivation as Markdown, LaTeX and text.
+func (d Derivation) View() View {
+	steps, err := d.read()
+	if err != nil {
+		return refused(err)
+	}
+	var md, tex, text strings.Builder
+	if d.Title != "" {
+		md.WriteString("**" + escapeMarkdown(d.Title) + "**\n\n")
+		tex.WriteString("\\paragraph{" + mark.EscapeLaTeX(d.Title) + "}\n")
+		text.WriteString(oneLineText(d.Title) + "\n")
+	}
+	var names []string
+	all := map[string]slotValue{}
+	for i := range steps {
+		r := &steps[i]
+		r.markdown(&md)
+		r.tex(&tex)
+		r.text(&text)
+		for _, y := range r.Symbols {
+			if v, ok := r.vals[y.Name]; ok {
+				names = append(names, y.Name)
+				all[y.Name] = v
+			}
+		}
+	}
+	for _, n := range Notes(d.Notes...) {
+		md.WriteString(escapeMarkdown(n) + "\n\n")
+		tex.WriteString(mark.EscapeLaTeX(n) + "\n\n")
+		text.WriteString(oneLineText(n) + "\n")
+	}
+	return View{Data: map[string]any{
+		"text/plain":     strings.TrimSuffix(text.String(), "\n"),
+		"text/markdown":  strings.TrimSuffix(md.String(), "\n"),
+		"text/latex":     tex.String(),
+		NumbersMediaType: stored(names, all),
+	}}
+}
+
+// display math must be one paragraph and must not hold what begins HTML.
+func mathBlock(s string) string {
+	return strings.NewReplacer("\n", " ", "<", `\lt `, ">", `\gt `).Replace(mark.Clean(s))
+}
+
+func (r *stepRead) markdown(b *strings.Builder) {
+	if r.Text != "" {
+		in := false
+		b.WriteString(safeMarkdown(r.Text, &in) + "\n\n")
+	}
+	b.WriteString("$$" + mathBlock(r.symbols()) + "$$\n\n")
+	if len(r.Symbols) > 0 {
+		b.WriteString("| symbol | meaning | value |\n|:--|:--|:--|\n")
+		for _, y := range r.Symbols {
+			val := ""
+			if v, ok := r.vals[y.Name]; ok {
+				val = v.markdown("")
+			}
+			b.WriteString("| $" + strings.ReplaceAll(mathBlock(r.latex[y.Name]), "|", `\vert `) + "$ | " + escapeMarkdown(y.Meaning) + " | " + val + " |\n")
+		}
+		b.WriteString("\n")
+	}
+	if r.hasNumbers() {
+		b.WriteString("$$" + mathBlock(r.numbers()) + "$$\n\n")
+	}
+	if r.Result != "" {
+		b.WriteString("$$" + mathBlock(r.result()) + "$$\n\n")
+	}
+	if r.Source != "" {
+		b.WriteString("Source: " + escapeMarkdown(r.Source) + "\n\n")
+	}
+}
+
+func (r *stepRead) tex(b *strings.Builder) {
+	if r.Text != "" {
+		b.WriteString(r.Text + "\n")
+	}
+	b.WriteString("\\[" + r.symbols() + "\\]\n")
+	if len(r.Symbols) > 0 {
+		b.WriteString("\\begin{tabular}{lll}\n")
+		for _, y := range r.Symbols {
+			val := ""
+			if v, ok := r.vals[y.Name]; ok {
+				val = "$" + v.math("") + "$"
+			}
+			b.WriteString("$" + r.latex[y.Name] + "$ & " + mark.EscapeLaTeX(y.Meaning) + " & " + val + " \\\\\n")
+		}
+		b.WriteString("\\end{tabular}\n")
+	}
+	if r.hasNumbers() {
+		b.WriteString("\\[" + r.numbers() + "\\]\n")
+	}
+	if r.Result != "" {
+		b.WriteString("\\[" + r.result() + "\\]\n")
+	}
+	if r.Source != "" {
+		b.WriteString("Source: " + mark.EscapeLaTeX(r.Source) + "\n\n")
+	}
+}
+
+func (r *stepRead) text(b *strings.Builder) {
+	if r.Text != "" {
+		b.WriteString(oneLineText(r.Text) + "\n")
+	}
+	b.WriteString("  " + oneLineText(r.symbols()) + "\n")
+	for _, y := range r.Symbols {
+		b.WriteString("    " + mark.Plain(mark.Symbol(oneLineText(y.Name))) + ": " + oneLineText(y.Meaning))
+		if v, ok := r.vals[y.Name]; ok && y.Name != r.Result {
+			b.WriteString(" = " + v.plain(""))
+		}
+		b.WriteString("\n")
+	}
+	if r.Result != "" {
+		b.WriteString("  " + mark.Plain(mark.Symbol(oneLineText(r.Result))) + " = " + r.vals[r.Result].plain("") + "\n")
+	}
+	if r.Source != "" {
+		b.WriteString("  Source: " + oneLineText(r.Source) + "\n")
+	}
+}

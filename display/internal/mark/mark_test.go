@@ -1,0 +1,75 @@
+package mark
+
+import "testing"
+
+func TestOver(t *testing.T) {
+	for _, test := range []struct{ quantity, unit, plain, html, latex string }{
+		{"T", "K", "T / K", "<i>T</i> / K", "$T$ / K"},
+		{"C_{p,m}", "J/(mol K)", "C_{p,m} / (J mol⁻¹ K⁻¹)",
+			"<i>C</i><sub><i>p</i>,m</sub> / (J\u00a0mol<sup>−1</sup>\u00a0K<sup>−1</sup>)",
+			`$C_{p\mathrm{,m}}$ / (J~mol$^{-1}$~K$^{-1}$)`},
+		{`\theta_D`, "K", "θ_D / K", "<i>θ</i><sub>D</sub> / K", `$\theta_{\mathrm{D}}$ / K`},
+		{"E", "cm-1", "E / cm⁻¹", "<i>E</i> / cm<sup>−1</sup>", "$E$ / cm$^{-1}$"},
+		{"signal", "1", "signal", "signal", "signal"},
+		{"ΔS", "J mol^-1 K^-1", "ΔS / (J mol⁻¹ K⁻¹)", "Δ<i>S</i> / (J\u00a0mol<sup>−1</sup>\u00a0K<sup>−1</sup>)", `$\Delta S$ / (J~mol$^{-1}$~K$^{-1}$)`},
+		{"T^2", "K2", "T² / K²", "<i>T</i><sup>2</sup> / K<sup>2</sup>", "$T^{2}$ / K$^{2}$"},
+		{"x_1^2", "", "x_1²", "<i>x</i><sub>1</sub><sup>2</sup>", "$x_{1}^{2}$"},
+		{"<img onerror=x>", "<b>", "<img onerror=x> / <b>", "&lt;img onerror=<i>x</i>&gt; / &lt;b&gt;", `\textless{}img onerror=$x$\textgreater{} / \textless{}b\textgreater{}`},
+		{"_x", "", "_x", "_<i>x</i>", `\_$x$`},
+		{"p", "", "p", "<i>p</i>", "$p$"},
+	} {
+		rs := Over(test.quantity, test.unit)
+		if got := Plain(rs); got != test.plain {
+			t.Errorf("%s, %s: text %q, want %q", test.quantity, test.unit, got, test.plain)
+		}
+		if got := HTML(rs); got != test.html {
+			t.Errorf("%s, %s: HTML %q, want %q", test.quantity, test.unit, got, test.html)
+		}
+		if got := LaTeX(rs); got != test.latex {
+			t.Errorf("%s, %s: LaTeX %q, want %q", test.quantity, test.unit, got, test.latex)
+		}
+	}
+}
+
+func TestSameUnit(t *testing.T) {
+	for _, test := range []struct {
+		a, b string
+		want bool
+	}{
+		{"J/(mol K)", "J K-1 mol-1", true},
+		{"J/(mol K)", "J·mol⁻¹·K⁻¹", true},
+		{"J/mol/K", "J/(mol K)", true},
+		{"1/K", "K-1", true},
+		{"", "1", true},
+		{"m2", "m²", true},
+		{"kJ/mol", "J/mol", false},
+		{"cm-1", "1/m", false},
+		{"K", "°C", false},
+		{"J/mol K", "J/(mol K)", false}, // ambiguous, so nothing is known of it
+		{"mJ/(mol K2)", "mJ mol-1 K-2", true},
+	} {
+		if got := SameUnit(test.a, test.b); got != test.want {
+			t.Errorf("SameUnit(%q, %q) = %v", test.a, test.b, got)
+		}
+	}
+}
+
+func FuzzMarkup(f *testing.F) {
+	for _, s := range []string{"C_{p,m}", `\theta_D^2`, "_", "^", "a_{", "x_\\", "J/(mol K)", "((", "1/", "m⁻¹", "\x00<", "é_é"} {
+		f.Add(s)
+	}
+	f.Fuzz(func(t *testing.T, s string) {
+		for _, rs := range [][]Run{Symbol(s), Label(s), Over(s, s), AsWritten(s)} {
+			Plain(rs)
+			LaTeX(rs)
+			for _, r := range HTML(rs) {
+				if r < 0x20 && r != '\t' && r != '\n' && r != '\r' {
+					t.Fatalf("control character in the HTML of %q", s)
+				}
+			}
+		}
+		if !SameUnit(s, s) {
+			t.Fatalf("%q is not the same unit as itself", s)
+		}
+	})
+}
