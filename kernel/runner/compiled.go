@@ -12,6 +12,7 @@ import (
 	"levelsum/kernel/cell"
 	"levelsum/kernel/compile"
 	"levelsum/kernel/engine"
+	"levelsum/kernel/runner/guard"
 )
 
 // prepare makes what runs a checked cell, and says in which way it is run. A
@@ -114,8 +115,12 @@ func (b *builds) get(u *cell.Unit) (*compile.Plugin, error) {
 	})
 	defer t.Stop()
 	bu := b.start(u)
-	<-bu.done
-	return bu.plugin, bu.err
+	select {
+	case <-bu.done:
+		return bu.plugin, bu.err
+	case <-b.r.stops():
+		return nil, guard.Halted // the build goes on, for the next try
+	}
 }
 
 func (b *builds) start(u *cell.Unit) *build {

@@ -90,6 +90,10 @@ func trailingError(plan *cell.Plan, values []any) error {
 // goroutine runs a job to its end on a goroutine of its own.
 func (r *Runner) goroutine(job func(), src *cell.Source) (reached int, fault *engine.Fault) {
 	r.mu.Lock()
+	if r.isStopped() {
+		r.mu.Unlock()
+		return -1, faultOf(guard.Halted, nil, src)
+	}
 	r.running, r.async = true, nil
 	r.mu.Unlock()
 	stop := r.watchWait()
@@ -139,6 +143,9 @@ func compileFault(err error) *engine.Fault {
 
 // prepareFault says why a checked cell cannot be run.
 func prepareFault(err error) *engine.Fault {
+	if errors.Is(err, guard.Halted) {
+		return faultOf(guard.Halted, nil, nil)
+	}
 	var ds cell.Diagnostics
 	if errors.As(err, &ds) {
 		f := compileFault(err)

@@ -37,7 +37,8 @@ type Runner struct {
 
 	mu       sync.Mutex // guards what follows
 	running  bool
-	async    []string // panics in goroutines of the running cell
+	stopped  chan struct{} // closed by an interrupt of the request to run; nil if there is none
+	async    []string      // panics in goroutines of the running cell
 	syncDone sync.Mutex
 }
 
@@ -108,11 +109,13 @@ func (r *Runner) serve(requests io.Reader) int {
 				default:
 				}
 			case "stop":
-				guard.Interrupt()
-				r.watchStop()
+				r.stop()
 			case "announce":
 				r.built.announce(*q.Cell)
 			default:
+				if q.Op == "run" {
+					r.accept()
+				}
 				queue <- q
 			}
 		})
@@ -136,6 +139,7 @@ func (r *Runner) answer(q engine.Request) {
 	switch q.Op {
 	case "run":
 		out := r.run(*q.Cell)
+		r.over()
 		ev = engine.Event{Op: "done", ID: q.ID, Sync: true, Outcome: &out}
 	case "state":
 		ev.Facts = r.state()
@@ -178,31 +182,6 @@ func (r *Runner) state() map[string]any {
 		facts["compiled"] = r.noKit.Error()
 	}
 	return facts
-}
-
-// watchStop says after a second what keeps a stopped cell from ending.
-func (r *Runner) watchStop() {
-	r.mu.Lock()
-	running := r.running
-	r.mu.Unlock()
-	if !running {
-		time.AfterFunc(100*time.Millisecond, func() { // goroutines that poll have had their chance
-			r.mu.Lock()
-			defer r.mu.Unlock()
-			if !r.running {
-				guard.Reset()
-			}
-		})
-		return
-	}
-	time.AfterFunc(time.Second, func() {
-		r.mu.Lock()
-		running := r.running
-		r.mu.Unlock()
-		if running {
-			_ = r.w.Send(engine.Event{Op: "warn", Text: "still running: " + runningCall() + "; interrupt once more to end the engine, which loses all values\n"})
-		}
-	})
 }
 
 // goroutinePanic notes a panic in a goroutine that the cell started and stops
