@@ -12,21 +12,19 @@ class LevelsumKernelTests(jupyter_kernel_test.KernelTests):
 
     code_hello_world = 'import "fmt"\nfmt.Println("hello, world")'
     code_stderr = 'import ("fmt"; "os")\nfmt.Fprintln(os.Stderr, "test")'
-    completion_samples = [{"text": "ma", "matches": {"make", "map"}}]
     complete_code_samples = ["x := 1", "1 + 1", "func f() int {\n\treturn 1\n}"]
     incomplete_code_samples = ["func f() int {", "x := []int{1,", "s := `raw"]
     invalid_code_samples = ["x := )", "func 1() {}"]
     code_generate_error = 'panic("as wanted")'
     code_execute_result = [
         {"code": "6 * 7", "result": "42"},
-        {"code": 'x := "level"\nx + "sum"', "result": '"levelsum"'},
+        {"code": 'x := "level"\nx + "sum"', "result": "levelsum"},
     ]
     code_display_data = [
         {"code": 'import "levelsum/display"\ndisplay.Show(display.Number{Name: "x", Value: 1.5})', "mime": "text/plain"},
         {"code": 'import "levelsum/display"\ndisplay.Show(display.Number{Name: "x", Value: 1.5})', "mime": "text/html"},
     ]
-    code_inspect_sample = "len"
-    code_clear_output = ""
+    code_clear_output = 'import "levelsum/display"\ndisplay.Current().Clear(true)'
     supported_history_operations = ("tail", "range", "search")
     code_history_pattern = "6 *"
 
