@@ -87,6 +87,9 @@ func (s *Scope) Adopt(p *Plan, u *Unit) {
 	s.units[p.pkg] = u
 }
 
+// UnitOf is the unit in which a type that a cell declares is compiled, or nil.
+func (s *Scope) UnitOf(o *types.TypeName) *Unit { return s.units[o.Pkg()] }
+
 // Symbol is a name that the plugin offers to interpreted code.
 type Symbol struct {
 	Name string // the user's name

@@ -18,16 +18,15 @@ import (
 // prepare makes what runs a checked cell, and says in which way it is run. A
 // cell without anything to run has no job.
 func (r *Runner) prepare(plan *cell.Plan) (job func(), how string, err error) {
-	why := plan.Unproved(r.symbols.has)
-	if why == "" && !plan.Force {
-		job, err := r.interpreted(plan)
-		return job, "interpreted", err
-	}
-	if r.kit == nil {
-		if why == "" {
-			job, err := r.interpreted(plan)
+	why := "a directive"
+	if !plan.Force {
+		var script *cell.Script
+		if script, why = plan.Interpret(&r.interp); script != nil {
+			job, err := r.interp.prepare(plan.Source, script)
 			return job, "interpreted", err
 		}
+	}
+	if r.kit == nil {
 		return nil, "refused", fmt.Errorf("%s needs the compiled tier, which is not there: %v", why, r.noKit)
 	}
 	unit, err := plan.Compile(true)
@@ -45,7 +44,7 @@ func (r *Runner) prepare(plan *cell.Plan) (job func(), how string, err error) {
 		return nil, "refused", err
 	}
 	r.scope.Adopt(plan, unit)
-	r.symbols.add(unit, offers)
+	r.interp.add(unit, offers)
 	run, _ := offers["run"].(func())
 	return run, "compiled", nil
 }

@@ -26,7 +26,11 @@ type frame struct {
 func userFrames(skip int) []frame {
 	pcs := make([]uintptr, 4096)
 	n := runtime.Callers(skip+1, pcs)
-	fs := runtime.CallersFrames(pcs[:n])
+	return framesOf(runtime.CallersFrames(pcs[:n]))
+}
+
+// framesOf picks the frames of cells.
+func framesOf(fs *runtime.Frames) []frame {
 	var out []frame
 	for {
 		f, more := fs.Next()

@@ -2,16 +2,205 @@ package runner
 
 import (
 	"errors"
+	"fmt"
+	"go/types"
+	"io"
+	"os"
+	"reflect"
+	"runtime"
+	"strings"
+
+	"github.com/traefik/yaegi/interp"
 
 	"levelsum/kernel/cell"
+	"levelsum/kernel/runner/guard"
+	"levelsum/kernel/symbols"
 )
 
-type cellSymbols struct{}
+// An interpreter runs scripts. All state of the session is outside of it, so a
+// fresh one can take over at any time; that keeps it from growing.
+type interpreter struct {
+	r       *Runner
+	in      *interp.Interpreter
+	known   typeTable
+	ready   bool
+	used    int // scripts that this interpreter has seen
+	next    int // for names of functions
+	imports map[string]bool
+	offered map[string]bool
+	decls   map[string]reflect.Value // what cells declare, by cell.CellSymbol
+	types   map[string]reflect.Type  // pointers to types, likewise
+}
 
-func (c *cellSymbols) init()                          {}
-func (c *cellSymbols) has(path, name string) bool     { return false }
-func (c *cellSymbols) add(*cell.Unit, map[string]any) {}
+// scriptsPerInterpreter bounds what one interpreter keeps of old scripts.
+const scriptsPerInterpreter = 100
 
-func (r *Runner) interpreted(plan *cell.Plan) (func(), error) {
-	return nil, errors.New("not interpreted")
+func (i *interpreter) init(r *Runner) {
+	i.r = r
+	i.decls, i.types = map[string]reflect.Value{}, map[string]reflect.Type{}
+}
+
+// Has tells whether interpreted code can reach a name of a package.
+func (i *interpreter) Has(path, name string) bool { return symbols.Has(path, name) }
+
+// Known tells whether a type's values are the same in all code.
+func (i *interpreter) Known(t types.Type) bool {
+	if !i.ready {
+		i.ready = true
+		i.known.init(func(o *types.TypeName) reflect.Type {
+			u := i.r.scope.UnitOf(o)
+			if u == nil {
+				return nil
+			}
+			return i.types[cell.CellSymbol(u, o.Name())]
+		})
+	}
+	return i.known.of(t) != nil
+}
+
+// add takes what a unit declares.
+func (i *interpreter) add(u *cell.Unit, offers map[string]any) {
+	for key, v := range offers {
+		kind, name, _ := strings.Cut(key, " ")
+		switch kind {
+		case "func":
+			i.decls[cell.CellSymbol(u, name)] = reflect.ValueOf(v)
+		case "type":
+			i.decls[cell.CellSymbol(u, name)] = reflect.ValueOf(v)
+			i.types[cell.CellSymbol(u, name)] = reflect.TypeOf(v)
+		}
+	}
+}
+
+// fresh makes a new interpreter if the present one has seen enough.
+func (i *interpreter) fresh() error {
+	if i.in != nil && i.used < scriptsPerInterpreter {
+		i.used++
+		return nil
+	}
+	i.in = interp.New(interp.Options{Stdin: strings.NewReader(""), Stdout: os.Stdout, Stderr: io.Discard})
+	i.used, i.imports, i.offered = 1, map[string]bool{}, map[string]bool{}
+	if err := i.in.Use(symbols.Table()); err != nil {
+		return err
+	}
+	if err := i.offer(map[string]reflect.Value{
+		cell.Inner + "Show": reflect.ValueOf(func(v any) { guard.Show(v) }),
+		cell.Inner + "Zero": reflect.ValueOf(i.r.slots.zero),
+	}); err != nil {
+		return err
+	}
+	return i.importPackage(cell.Inner+"s", cell.Session)
+}
+
+func (i *interpreter) offer(m map[string]reflect.Value) error {
+	return i.in.Use(interp.Exports{cell.Session + "/session": m})
+}
+
+func (i *interpreter) importPackage(alias, path string) error {
+	if i.imports[alias] {
+		return nil
+	}
+	i.imports[alias] = true
+	_, err := i.in.Eval(fmt.Sprintf("import %s %q", alias, path))
+	return err
+}
+
+// prepare compiles a script for the interpreter and returns what runs it.
+func (i *interpreter) prepare(src *cell.Source, s *cell.Script) (func(), error) {
+	if err := i.fresh(); err != nil {
+		return nil, err
+	}
+	for alias, path := range s.Imports {
+		if err := i.importPackage(alias, path); err != nil {
+			return nil, err
+		}
+	}
+	offer := map[string]reflect.Value{}
+	for _, l := range s.Slots {
+		if name := l.Var(); !i.offered[name] {
+			typ := i.known.of(l.Type)
+			if typ == nil {
+				return nil, fmt.Errorf("the type of %s is not known", l.Name)
+			}
+			p, err := i.r.slots.pointer(l.ID, typ)
+			if err != nil {
+				return nil, err
+			}
+			i.offered[name] = true
+			offer[name] = p
+		}
+	}
+	for name, v := range i.decls { // few, and only those that are not there yet
+		if !i.offered[name] {
+			i.offered[name] = true
+			offer[name] = v
+		}
+	}
+	if len(offer) > 0 {
+		if err := i.offer(offer); err != nil {
+			return nil, err
+		}
+	}
+	progs := make([]*interp.Program, len(s.Steps))
+	for k, st := range s.Steps {
+		if st.Text == "" {
+			continue
+		}
+		i.next++
+		name := fmt.Sprintf("%sf%d", cell.Inner, i.next)
+		if _, err := i.in.Eval("func " + name + "() { " + st.Text + " }"); err != nil {
+			return nil, err
+		}
+		p, err := i.in.Compile(name + "()")
+		if err != nil {
+			return nil, err
+		}
+		progs[k] = p
+	}
+	in := i.in
+	return func() {
+		for k, st := range s.Steps {
+			if guard.Stop != 0 {
+				guard.Halt()
+			}
+			guard.At = st.Stmt
+			if progs[k] != nil {
+				i.step(in, progs[k], st, src)
+			}
+			for _, l := range st.Check {
+				i.look(l)
+			}
+		}
+		for _, l := range s.End {
+			i.look(l)
+		}
+	}, nil
+}
+
+// A stepPanic carries a panic out of the interpreter with the user's frames.
+type stepPanic struct {
+	value  any
+	frames []frame
+}
+
+func (i *interpreter) step(in *interp.Interpreter, p *interp.Program, st cell.Step, src *cell.Source) {
+	_, err := in.Execute(p)
+	if err == nil {
+		return
+	}
+	frames := []frame{}
+	var ip interp.Panic
+	if !errors.As(err, &ip) {
+		panic(fmt.Errorf("the interpreter: %w", err))
+	}
+	frames = append(frames, framesOf(runtime.CallersFrames(ip.Callers))...)
+	frames = append(frames, frame{file: src.Name(), line: st.Line})
+	panic(stepPanic{ip.Value, frames})
+}
+
+// look fails the cell if an error variable holds an error.
+func (i *interpreter) look(l *cell.Slot) {
+	if err, ok := i.r.slots.value(l.ID).(error); ok && err != nil {
+		guard.Unread(l.Name, err)
+	}
 }

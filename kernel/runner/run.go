@@ -105,7 +105,11 @@ func (r *Runner) goroutine(job func(), src *cell.Source) (reached int, fault *en
 			v := recover()
 			switch {
 			case v != nil:
-				done <- faultOf(v, userFrames(1), src)
+				frames := userFrames(1)
+				if sp, ok := v.(stepPanic); ok {
+					v, frames = sp.value, sp.frames
+				}
+				done <- faultOf(v, frames, src)
 			case !returned:
 				done <- faultOf("the cell called runtime.Goexit", nil, src)
 			default:

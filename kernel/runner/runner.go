@@ -30,7 +30,7 @@ type Runner struct {
 	asking  sync.Mutex // one question at a time
 
 	slots   slots
-	symbols cellSymbols
+	interp  interpreter
 	built   builds
 	plugins map[string]map[string]any // by unit path: what the plugin offers
 	told    bool                      // the reader has been told that there is no compiled tier
@@ -83,9 +83,10 @@ func New(w *engine.Writer) (*Runner, error) {
 	}
 	r.scope = cell.NewScope(export.New(source), usual)
 	r.slots.init()
-	r.symbols.init()
+	r.interp.init(r)
 	r.built.init(r)
 	guard.Hooks.Panic = r.goroutinePanic
+	draw.Register()
 	display.SetSink(sink{r})
 	draw.Register()
 	return r, nil
