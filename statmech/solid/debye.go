@@ -141,14 +141,14 @@ func (d *Debye1D) Accumulate(ts []unit.Temperature, at []*float64, c []float64, 
 	return accumulate(d, "solid.Debye1D.Accumulate", d.fields(), ts, at, c, partials, debyeBlock(1, d.Theta, d.Modes))
 }
 
-func debyeBlock(dim int, theta unit.Temperature, n float64) func(t, c []float64, slopes *[4][chunk]float64) {
+func debyeBlock(dim int, theta unit.Temperature, n float64) func(t, c []float64, slopes [][]float64) {
 	n = modes(n)
-	return func(t, c []float64, slopes *[4][chunk]float64) {
+	return func(t, c []float64, slopes [][]float64) {
 		var x [chunk]float64
 		for i, v := range t {
 			x[i] = float64(theta) / v
 		}
-		perMode, slope := slopes[1][:len(t)], slopes[0][:len(t)]
+		perMode, slope := slopes[1], slopes[0]
 		special.DebyeCSlopes(perMode, slope, dim, x[:len(t)])
 		for i, v := range t {
 			c[i] = n * perMode[i]

@@ -80,12 +80,12 @@ func (e *Einstein) Owns(p *float64) (string, bool) { return owns(e.fields(), p) 
 func (e *Einstein) Accumulate(ts []unit.Temperature, at []*float64, c []float64, partials [][]float64) error {
 	n := modes(e.Modes)
 	return accumulate(e, "solid.Einstein.Accumulate", e.fields(), ts, at, c, partials,
-		func(t, c []float64, slopes *[4][chunk]float64) {
+		func(t, c []float64, slopes [][]float64) {
 			var x [chunk]float64
 			for i, v := range t {
 				x[i] = float64(e.Theta) / v
 			}
-			perMode, slope := slopes[1][:len(t)], slopes[0][:len(t)]
+			perMode, slope := slopes[1], slopes[0]
 			special.EinsteinCSlopes(perMode, slope, x[:len(t)])
 			for i, v := range t {
 				c[i] = n * perMode[i]

@@ -48,7 +48,7 @@ func (e *Electronic) Owns(p *float64) (string, bool) { return owns(e.fields(), p
 // Accumulate implements [Differentiable] for Gamma.
 func (e *Electronic) Accumulate(ts []unit.Temperature, at []*float64, c []float64, partials [][]float64) error {
 	return accumulate(e, "solid.Electronic.Accumulate", e.fields(), ts, at, c, partials,
-		func(t, c []float64, slopes *[4][chunk]float64) {
+		func(t, c []float64, slopes [][]float64) {
 			for i, v := range t {
 				slopes[0][i] = v / unit.GasConstant
 				c[i] = float64(e.Gamma) * slopes[0][i]

@@ -176,44 +176,50 @@ const chunk = 128
 // writes for at most chunk good temperatures: C/k into c and ∂(C/k)/∂fieldⱼ
 // into slopes[j] for each field j.
 func accumulate(m model, name string, fields []parameter, ts []unit.Temperature, at []*float64, c []float64, partials [][]float64,
-	block func(t, c []float64, slopes *[4][chunk]float64)) error {
+	block func(t, c []float64, slopes [][]float64)) error {
 	if err := m.bad(); err != nil {
 		err.Func = name
 		return err
 	}
-	for _, f := range fields {
-		for _, p := range at {
-			if p == f.at && f.name == "Modes" && *p == 0 {
+	// rows of partials that each field goes to
+	var wanted [][2]int
+	for row, p := range at {
+		for j, f := range fields {
+			if p != f.at {
+				continue
+			}
+			if f.name == "Modes" && *p == 0 {
 				return &statmech.DomainError{Func: name, Arg: f.name, Value: "0", Want: "a value other than the default, since it is free"}
 			}
+			wanted = append(wanted, [2]int{j, row})
 		}
 	}
-	var t, values [chunk]float64
-	var slopes [4][chunk]float64
+	scratch := make([]float64, (2+len(fields))*chunk)
+	t, values := scratch[:chunk], scratch[chunk:2*chunk]
+	slopes := make([][]float64, len(fields))
 	for from := 0; from < len(ts); from += chunk {
 		n := min(chunk, len(ts)-from)
-		for i := range n {
-			x, err := temperature(name, "T", ts[from+i])
-			if err != nil {
+		for i, T := range ts[from : from+n] {
+			if !positive(float64(T)) {
+				_, err := temperature(name, "T", T)
 				return err
 			}
-			t[i] = x
+			t[i] = float64(T)
 		}
-		block(t[:n], values[:n], &slopes)
+		for j := range slopes {
+			slopes[j] = scratch[(2+j)*chunk:][:n]
+		}
+		block(t[:n], values[:n], slopes)
 		if c != nil {
+			out := c[from : from+n]
 			for i, v := range values[:n] {
-				c[from+i] += unit.GasConstant * v
+				out[i] += float64(unit.GasConstant * v)
 			}
 		}
-		for j, f := range fields {
-			for row, p := range at {
-				if p != f.at {
-					continue
-				}
-				out := partials[row][from : from+n]
-				for i, v := range slopes[j][:n] {
-					out[i] += unit.GasConstant * v
-				}
+		for _, w := range wanted {
+			out := partials[w[1]][from : from+n]
+			for i, v := range slopes[w[0]] {
+				out[i] += float64(unit.GasConstant * v)
 			}
 		}
 	}

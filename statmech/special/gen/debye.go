@@ -60,6 +60,20 @@ func debyeHeatCapacity(d int, x *big.Float) *big.Float {
 	return sub(mul(integer(d+1), debye(d, x)), mul(integer(d), bose1(x)))
 }
 
+// einsteinHeatCapacity returns x² eˣ/(eˣ-1)².
+func einsteinHeatCapacity(x *big.Float) *big.Float {
+	b := bose1(x)
+	return mul(mul(b, b), exp(x))
+}
+
+func einsteinTable() {
+	write("table_einstein.go", table{
+		name: "einsteinTable",
+		doc:  "holds x^2 exp(x)/(exp(x)-1)^2 on segments of width 1/4 from 0, in t = 4x-(i+1/2)",
+		rows: segments(einsteinHeatCapacity, 0, 0.25, 180, 8),
+	})
+}
+
 func debyeTables() {
 	const degree = 8
 	for n := 1; n <= 6; n++ {

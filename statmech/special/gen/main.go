@@ -8,6 +8,7 @@ package main
 
 func main() {
 	debyeTables()
+	einsteinTable()
 	fermiTables()
 	inverseTables()
 	boseTables()
