@@ -5,9 +5,8 @@ import (
 	"levelsum/statmech/unit"
 )
 
-// This file holds the molar functions that every model with a partition
-// function has. They are per mole of formula units; energies are counted from
-// the ground level.
+// This file holds the molar functions that the lattice models have. They are
+// per mole of formula units; energies are counted from the ground level.
 
 // Reduced returns ln q, U/kT and C/k of one formula unit; see [statmech.Mode].
 func (e Einstein) Reduced(T unit.Temperature) statmech.Reduced {
@@ -55,6 +54,12 @@ func (e Einstein) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperatur
 	return enthalpyIncrements(e, "solid.Einstein.EnthalpyIncrements", from, ts)
 }
 
+// GroundDegeneracy returns 1.
+func (e Einstein) GroundDegeneracy() float64 { return 1 }
+
+// HighTemperatureHeatCapacity returns the limit of C/k.
+func (e Einstein) HighTemperatureHeatCapacity() float64 { return modes(e.Modes) }
+
 // Reduced returns ln q, U/kT and C/k of one formula unit; see [statmech.Mode].
 func (d Debye) Reduced(T unit.Temperature) statmech.Reduced {
 	return reduced(d, "solid.Debye.Reduced", T)
@@ -100,6 +105,12 @@ func (d Debye) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
 func (d Debye) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
 	return enthalpyIncrements(d, "solid.Debye.EnthalpyIncrements", from, ts)
 }
+
+// GroundDegeneracy returns 1.
+func (d Debye) GroundDegeneracy() float64 { return 1 }
+
+// HighTemperatureHeatCapacity returns the limit of C/k.
+func (d Debye) HighTemperatureHeatCapacity() float64 { return modes(d.Modes) }
 
 // Reduced returns ln q, U/kT and C/k of one formula unit; see [statmech.Mode].
 func (d Debye2D) Reduced(T unit.Temperature) statmech.Reduced {
@@ -147,6 +158,12 @@ func (d Debye2D) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature
 	return enthalpyIncrements(d, "solid.Debye2D.EnthalpyIncrements", from, ts)
 }
 
+// GroundDegeneracy returns 1.
+func (d Debye2D) GroundDegeneracy() float64 { return 1 }
+
+// HighTemperatureHeatCapacity returns the limit of C/k.
+func (d Debye2D) HighTemperatureHeatCapacity() float64 { return modes(d.Modes) }
+
 // Reduced returns ln q, U/kT and C/k of one formula unit; see [statmech.Mode].
 func (d Debye1D) Reduced(T unit.Temperature) statmech.Reduced {
 	return reduced(d, "solid.Debye1D.Reduced", T)
@@ -193,48 +210,54 @@ func (d Debye1D) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature
 	return enthalpyIncrements(d, "solid.Debye1D.EnthalpyIncrements", from, ts)
 }
 
+// GroundDegeneracy returns 1.
+func (d Debye1D) GroundDegeneracy() float64 { return 1 }
+
+// HighTemperatureHeatCapacity returns the limit of C/k.
+func (d Debye1D) HighTemperatureHeatCapacity() float64 { return modes(d.Modes) }
+
 // Reduced returns ln q, U/kT and C/k of one formula unit; see [statmech.Mode].
-func (e Electronic) Reduced(T unit.Temperature) statmech.Reduced {
-	return reduced(e, "solid.Electronic.Reduced", T)
+func (t Tarasov) Reduced(T unit.Temperature) statmech.Reduced {
+	return reduced(t, "solid.Tarasov.Reduced", T)
 }
 
 // HeatCapacity returns C_V at T.
-func (e Electronic) HeatCapacity(T unit.Temperature) unit.MolarEntropy {
-	return heatCapacity(e, "solid.Electronic.HeatCapacity", T)
+func (t Tarasov) HeatCapacity(T unit.Temperature) unit.MolarEntropy {
+	return heatCapacity(t, "solid.Tarasov.HeatCapacity", T)
 }
 
 // HeatCapacities returns C_V at every temperature.
-func (e Electronic) HeatCapacities(ts []unit.Temperature) []unit.MolarEntropy {
-	return heatCapacities(e, "solid.Electronic.HeatCapacities", ts)
+func (t Tarasov) HeatCapacities(ts []unit.Temperature) []unit.MolarEntropy {
+	return heatCapacities(t, "solid.Tarasov.HeatCapacities", ts)
 }
 
 // Entropy returns S(T).
-func (e Electronic) Entropy(T unit.Temperature) unit.MolarEntropy {
-	return entropy(e, "solid.Electronic.Entropy", T)
+func (t Tarasov) Entropy(T unit.Temperature) unit.MolarEntropy {
+	return entropy(t, "solid.Tarasov.Entropy", T)
 }
 
 // Entropies returns S at every temperature.
-func (e Electronic) Entropies(ts []unit.Temperature) []unit.MolarEntropy {
-	return entropies(e, "solid.Electronic.Entropies", ts)
+func (t Tarasov) Entropies(ts []unit.Temperature) []unit.MolarEntropy {
+	return entropies(t, "solid.Tarasov.Entropies", ts)
 }
 
 // EntropyIncrement returns S(to) - S(from).
-func (e Electronic) EntropyIncrement(from, to unit.Temperature) unit.MolarEntropy {
-	return entropyIncrement(e, "solid.Electronic.EntropyIncrement", from, to)
+func (t Tarasov) EntropyIncrement(from, to unit.Temperature) unit.MolarEntropy {
+	return entropyIncrement(t, "solid.Tarasov.EntropyIncrement", from, to)
 }
 
 // ThermalEnergy returns U(T) - U(0).
-func (e Electronic) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
-	return energy(e, "solid.Electronic.ThermalEnergy", T)
+func (t Tarasov) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
+	return energy(t, "solid.Tarasov.ThermalEnergy", T)
 }
 
 // EnthalpyIncrement returns U(to) - U(from), which is H(to) - H(from) at
 // constant volume and negligible pressure.
-func (e Electronic) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
-	return enthalpyIncrement(e, "solid.Electronic.EnthalpyIncrement", from, to)
+func (t Tarasov) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
+	return enthalpyIncrement(t, "solid.Tarasov.EnthalpyIncrement", from, to)
 }
 
 // EnthalpyIncrements returns U(ts[i]) - U(from) for every temperature.
-func (e Electronic) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
-	return enthalpyIncrements(e, "solid.Electronic.EnthalpyIncrements", from, ts)
+func (t Tarasov) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
+	return enthalpyIncrements(t, "solid.Tarasov.EnthalpyIncrements", from, ts)
 }
