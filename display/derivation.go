@@ -290,7 +290,15 @@ func (r *stepRead) text(b *strings.Builder) {
 	if r.Text != "" {
 		b.WriteString(oneLineText(r.Text) + "\n")
 	}
-	b.WriteString("  " + oneLineText(r.symbols()) + "\n")
+	b.WriteString("  ")
+	for _, p := range r.pieces {
+		if p.slot == "" {
+			b.WriteString(oneLineText(p.text))
+		} else {
+			b.WriteString(mark.Plain(mark.Symbol(oneLineText(p.slot))))
+		}
+	}
+	b.WriteString("\n")
 	for _, y := range r.Symbols {
 		b.WriteString("    " + mark.Plain(mark.Symbol(oneLineText(y.Name))) + ": " + oneLineText(y.Meaning))
 		if v, ok := r.vals[y.Name]; ok && y.Name != r.Result {

@@ -98,8 +98,8 @@ func (m measured) rounded() rounded {
 	if m.hasU && m.withheld == "" {
 		return round(m.v, m.u)
 	}
-	if m.integer {
-		return plainNumber(m.v, 17)
+	if m.integer || math.Abs(m.v) < 1e9 && m.v == math.Trunc(m.v) {
+		return plainNumber(m.v, 17) // a count has no digits to spare
 	}
 	return plainNumber(m.v, 7)
 }

@@ -48,6 +48,9 @@ func ViewOf(v any) (view View) {
 			}
 		}
 	}
+	if rv.Kind() == reflect.Pointer {
+		return Text("nil " + rv.Type().String())
+	}
 	if m, ok := v.(matrix); ok {
 		return viewOfMatrix(m)
 	}

@@ -1,0 +1,207 @@
+package display
+
+import (
+	"encoding/csv"
+	"errors"
+	"math"
+	"path/filepath"
+	"strconv"
+	"strings"
+	"testing"
+)
+
+func line(T kelvin) molar { return molar(2 * float64(T)) }
+
+// elsewhere is a curve that was fitted to other data.
+type elsewhere struct{ seen []float64 }
+
+func (elsewhere) Curve() func(kelvin) molar    { return line }
+func (elsewhere) FittedTo(x, y []float64) bool { return false }
+
+type here struct{}
+
+func (here) Curve() func([]kelvin) []molar {
+	return func(ts []kelvin) []molar {
+		out := make([]molar, len(ts))
+		for i := range ts {
+			out[i] = line(ts[i])
+		}
+		return out
+	}
+}
+func (here) FittedTo(x, y []float64) bool { return len(x) == 3 && x[2] == 3 && y[2] == 6.5 }
+
+var (
+	someT = []kelvin{1, 2, 3}
+	someC = []molar{2, 4, 6.5}
+	someU = []molar{0.1, 0.1, 0.2}
+	tAxis = Axis{Quantity: "T"}
+	cAxis = Axis{Quantity: "C_p"}
+)
+
+func TestFigureRefused(t *testing.T) {
+	ok := Figure{X: someT, Y: someC, XAxis: tAxis, YAxis: cAxis}
+	with := func(change func(*Figure)) Figure {
+		f := ok
+		change(&f)
+		return f
+	}
+	for _, test := range []struct {
+		name string
+		f    Figure
+		want string
+	}{
+		{"nothing", Figure{}, "nothing to plot"},
+		{"no label", Figure{X: []float64{1}, Y: []float64{1}}, "the x axis has neither quantity nor unit"},
+		{"a type without unit", Figure{X: []naked{1}, Y: []naked{1}}, "whose unit is not known"},
+		{"lengths", with(func(f *Figure) { f.Y = someC[:2] }), "X has 3 values, Y has 2"},
+		{"bars", with(func(f *Figure) { f.Err = someU[:2] }), "3 values and 2 uncertainties"},
+		{"negative bars", with(func(f *Figure) { f.Err = []molar{1, -1, 1} }), "the uncertainty at index 1 is -1"},
+		{"bars of another type", with(func(f *Figure) { f.Err = someT }), "uncertainties of type display.kelvin"},
+		{"log", with(func(f *Figure) { f.YAxis.Log = true; f.Y = []molar{0, -1, 6} }),
+			"the y axis is logarithmic, but 2 of 3 values of Y of series 1 are not positive (the first is 0, at index 0)"},
+		{"log of the curve", with(func(f *Figure) { f.YAxis.Log = true; f.Curve = func(T kelvin) molar { return molar(T) - 2 } }),
+			"values of the curve are not positive"},
+		{"infinity", with(func(f *Figure) { f.Y = []molar{1, molar(math.Inf(1)), 2} }), "1 of 3 values of Y of series 1 are not finite"},
+		{"x not a number", with(func(f *Figure) { f.X = []kelvin{1, kelvin(math.NaN()), 2} }), "values of X of series 1 are not finite"},
+		{"another unit on the axis", with(func(f *Figure) { f.Series = []Series{{X: []joule{1}, Y: someC[:1]}} }), "in J, other data on the x axis are in K"},
+		{"no unit beside units", with(func(f *Figure) { f.Series = []Series{{X: []float64{1}, Y: someC[:1]}} }), "has no unit, other data on the x axis have K"},
+		{"curve of another argument", with(func(f *Figure) { f.Curve = func(E joule) molar { return 1 } }), "but the x axis shows display.kelvin"},
+		{"curve of another result", with(func(f *Figure) { f.Curve = func(T kelvin) joule { return 1 } }), "but the y axis shows display.molar"},
+		{"curve with NaN", with(func(f *Figure) { f.Curve = func(T kelvin) molar { return molar(math.NaN()) } }), "the curve gives NaN at x = 1"},
+		{"curve that panics", with(func(f *Figure) { f.Curve = func(T kelvin) molar { panic("no value here") } }), "panicked at x = 1: no value here"},
+		{"curve of two arguments", with(func(f *Figure) { f.Curve = func(a, b float64) float64 { return 1 } }), "want a function of one number"},
+		{"residuals of other data", with(func(f *Figure) { f.Curve = elsewhere{}; f.Residuals = true }), "the residuals would be of another data set"},
+		{"residuals without a curve", with(func(f *Figure) { f.Residuals = true }), "residuals need points and a curve"},
+		{"residuals beyond a curve", with(func(f *Figure) {
+			f.Curve = Curve{X: []kelvin{1, 2}, Y: []molar{2, 4}}
+			f.Residuals = true
+		}), "the curve goes from x = 1 to 2, but there are data at 3"},
+		{"right axis without unit", with(func(f *Figure) { f.RightAxis = Axis{Factor: 2} }), "the right axis has no unit"},
+		{"range", with(func(f *Figure) { f.XAxis.Min = 5; f.XAxis.Max = 1 }), "want Min < Max"},
+		{"half a band", with(func(f *Figure) { f.Series = []Series{{X: someT, Lower: someC}} }), "a band needs Lower and Upper"},
+		{"matrix", Figure{Map: &Map{X: []float64{1, 2}, Y: []float64{1, 2}, Z: [][]float64{{1, 2}}, Unit: "1"}, XAxis: tAxis, YAxis: tAxis}, "want one row for each of 2 Y"},
+		{"log colours", Figure{Map: &Map{X: []float64{1, 2}, Y: []float64{1, 2}, Z: [][]float64{{1, 2}, {0, 3}}, Unit: "1", Log: true}, XAxis: tAxis, YAxis: tAxis},
+			"1 of 4 values of Z of the map are not positive"},
+		{"population", Figure{Ladders: []Ladder{{Energies: []joule{1}, Populations: []float64{2}}}}, "want 0 to 1"},
+		{"width", with(func(f *Figure) { f.Width = -3 }), "Width is -3 mm"},
+	} {
+		err := test.f.Check()
+		var r *Refusal
+		if !errors.As(err, &r) || !strings.Contains(err.Error(), test.want) {
+			t.Errorf("%s: error %v, want %q", test.name, err, test.want)
+		}
+		if _, err := Render(test.f); err == nil {
+			t.Errorf("%s: Render takes it", test.name)
+		}
+	}
+	if err := ok.Check(); err != nil {
+		t.Errorf("the sound figure is refused: %v", err)
+	}
+}
+
+// rows reads the plotted numbers of a figure.
+func rows(t *testing.T, f Figure) (head []string, out [][]string) {
+	t.Helper()
+	c, err := f.CSV()
+	if err != nil {
+		t.Fatal(err)
+	}
+	all, err := csv.NewReader(strings.NewReader(c)).ReadAll()
+	if err != nil {
+		t.Fatal(err)
+	}
+	return all[0], all[1:]
+}
+
+func of(rows [][]string, what string) [][]string {
+	var out [][]string
+	for _, r := range rows {
+		if r[0] == what {
+			out = append(out, r)
+		}
+	}
+	return out
+}
+
+func TestFigureResiduals(t *testing.T) {
+	head, all := rows(t, Figure{X: someT, Y: someC, Err: someU, Curve: here{}, Residuals: true, XAxis: tAxis, YAxis: cAxis})
+	if got := strings.Join(head, ";"); got != "data;name;T/K;C_p/(J/(mol K));u(C_p)/(J/(mol K))" {
+		t.Errorf("head %q", got)
+	}
+	res := of(all, "residuals")
+	if len(res) != 3 || res[2][3] != "0.5" || res[2][4] != "0.2" || res[0][3] != "0" {
+		t.Errorf("residuals %v, want 0, 0, 0.5 with u = 0.2", res)
+	}
+	_, all = rows(t, Figure{X: someT, Y: someC, Curve: line, RelativeResiduals: true, XAxis: tAxis, YAxis: cAxis})
+	if got, _ := strconv.ParseFloat(of(all, "residuals")[2][3], 64); math.Abs(got-100*0.5/6) > 1e-12 {
+		t.Errorf("relative residual %v %%, want 0.5/6", got)
+	}
+}
+
+// In another unit all that belongs to an axis is converted, and functions
+// still get what their type says.
+func TestFigureConverts(t *testing.T) {
+	e := []joule{1000, 2000, 3000}
+	_, all := rows(t, Figure{X: e, Y: []kelvin{2, 4, 6}, XErr: []joule{100, 100, 100},
+		Curve: Curve{F: func(E joule) kelvin { return kelvin(E) / 500 }, U: func(E joule) kelvin { return 1 }, K: 2},
+		Marks: []Mark{{X: joule(1500), Label: "here"}},
+		XAxis: Axis{Quantity: "E", Unit: "kJ", In: joule(1000)}, YAxis: Axis{Quantity: "T"}, Residuals: true})
+	p := of(all, "points")
+	if p[1][2] != "2" || p[1][3] != "0.1" {
+		t.Errorf("x and its bar are %v, want 2 kJ and 0.1 kJ", p[1][2:4])
+	}
+	for _, r := range of(all, "residuals") {
+		if r[4] != "0" {
+			t.Errorf("residual %v, want 0", r)
+		}
+	}
+	c := of(all, "curve")
+	last := c[len(c)-1]
+	if last[2] != "3" || last[4] != "6" || last[5] != "4" || last[6] != "8" {
+		t.Errorf("the curve ends with %v, want x = 3 kJ, y = 6 K, band 4 to 8", last)
+	}
+}
+
+func TestFigureText(t *testing.T) {
+	f := Figure{X: someT, Y: someC, Err: someU, Name: "run 7", XAxis: tAxis, YAxis: cAxis, Caption: "Invented data."}
+	golden(t, "figure.txt", text(f)+"\n")
+	if err := f.Save(filepath.Join(t.TempDir(), "f.png")); err == nil || !strings.Contains(err.Error(), "draw.Register") {
+		t.Errorf("without a renderer Save says %v", err)
+	}
+	f.Alt = "told"
+	if got := text(f); !strings.Contains(got, "told") {
+		t.Errorf("Alt is not in %q", got)
+	}
+}
+
+// The kind that a typed quantity measures names an axis that has no name.
+func TestFigureAxisFromType(t *testing.T) {
+	got := text(Figure{X: someT, Y: someC})
+	if !strings.Contains(got, "molar entropy or heat capacity / (J mol⁻¹ K⁻¹)") {
+		t.Errorf("got %q", got)
+	}
+}
+
+// Counts by hand: 0.5, 1.5, 1.6, 3.9 in four bins from 0 to 4.
+func TestHistogram(t *testing.T) {
+	_, all := rows(t, Figure{Histogram: &Histogram{Values: []float64{0, 0.5, 1.5, 1.6, 3.9, 4}, Bins: 4}, XAxis: Axis{Quantity: "x", Unit: "1"}})
+	var counts []string
+	for _, r := range of(all, "histogram") {
+		counts = append(counts, r[3])
+	}
+	if got := strings.Join(counts, " "); got != "2 2 0 2" {
+		t.Errorf("counts %s, want 2 2 0 2", got)
+	}
+	_, all = rows(t, Figure{Histogram: &Histogram{Values: []kelvin{1, 2, 3, 7}, Density: true}, XAxis: tAxis})
+	area := 0.0
+	for _, r := range of(all, "histogram") {
+		h, _ := strconv.ParseFloat(r[3], 64)
+		lo, _ := strconv.ParseFloat(r[4], 64)
+		hi, _ := strconv.ParseFloat(r[5], 64)
+		area += h * (hi - lo)
+	}
+	if math.Abs(area-1) > 1e-12 {
+		t.Errorf("the area of a density is %v", area)
+	}
+}
