@@ -1,0 +1,507 @@
+package fit
+
+import (
+	"math"
+	"math/rand/v2"
+	"strings"
+	"testing"
+
+	"levelsum/statmech/data"
+	"levelsum/statmech/solid"
+	"levelsum/statmech/unit"
+)
+
+// syntheticSolid is 3R × (Debye(250 K) + Einstein(550 K)) at T = 5 × 1.05^k,
+// k = 0..83, with standard uncertainties of 0.5 %.
+func syntheticSolid() (ts, cs, us []float64) {
+	m := solid.Sum{&solid.Debye{Theta: 250, Modes: 3}, &solid.Einstein{Theta: 550, Modes: 3}}
+	for k := range 84 {
+		T := 5 * math.Pow(1.05, float64(k))
+		c := float64(m.HeatCapacity(unit.Temperature(T)))
+		ts, cs, us = append(ts, T), append(cs, c), append(us, 0.005*c)
+	}
+	return ts, cs, us
+}
+
+func newTable(t testing.TB, ts, cs, us []float64) *data.Table {
+	t.Helper()
+	var columns []data.Column
+	for _, c := range []struct {
+		symbol, unit string
+		values       []float64
+	}{{"T", "K", ts}, {"Cp", "J K-1 mol-1", cs}, {"u(Cp)", "J K-1 mol-1", us}} {
+		if c.values == nil {
+			continue
+		}
+		col, err := data.NewColumn(c.symbol, c.unit, c.values)
+		if err != nil {
+			t.Fatal(err)
+		}
+		columns = append(columns, col)
+	}
+	run, err := data.New("synthetic", nil, columns...)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return run
+}
+
+type debyeEinstein struct {
+	deb solid.Debye
+	ein solid.Einstein
+}
+
+func (m *debyeEinstein) fit(t testing.TB, run *data.Table, opts ...Option) *Result {
+	t.Helper()
+	m.deb, m.ein = solid.Debye{Theta: 230, Modes: 2.7}, solid.Einstein{Theta: 500, Modes: 3.2}
+	all := append([]Option{Vary(&m.deb.Modes, &m.deb.Theta, &m.ein.Modes, &m.ein.Theta)}, opts...)
+	res, err := HeatCapacity(solid.Sum{&m.deb, &m.ein}, run, all...)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return res
+}
+
+// TestCoverage: 1000 noise sets; the 95 per cent interval of each parameter
+// covers the truth in 930 to 970 of them. An independent program found
+// u(θ_D) = 0.32 K, u(θ_E) = 3.5 K, r(n_D, θ_D) = 0.98, and coverages 950, 943,
+// 957, 950.
+func TestCoverage(t *testing.T) {
+	ts, truth, us := syntheticSolid()
+	want := []float64{3, 250, 3, 550}
+	var m debyeEinstein
+	res := m.fit(t, newTable(t, ts, truth, us), AbsoluteSigma)
+	for j, q := range res.Parameters() {
+		within(t, q.Name(), q.Value(), want[j], 1e-9*want[j])
+	}
+	within(t, "u(θ_D)", res.Parameter(&m.deb.Theta).StandardUncertainty(), 0.32, 0.005)
+	within(t, "u(θ_E)", res.Parameter(&m.ein.Theta).StandardUncertainty(), 3.5, 0.05)
+	within(t, "r(n_D,θ_D)", res.Correlation()[0][1], 0.98, 0.005)
+	if all := strings.Join(res.Warnings, "\n"); !strings.Contains(all, "correlated by 0.98") {
+		t.Errorf("no warning of the correlation in\n%s", all)
+	}
+	for _, sigma := range []Sigma{AbsoluteSigma, ScaledSigma} {
+		covered := make([]int, 4)
+		random := rand.New(rand.NewPCG(20, 6))
+		cs := make([]float64, len(truth))
+		k := 1.959964
+		if sigma == ScaledSigma {
+			k = 1.990 // t-distribution with 80 degrees of freedom
+		}
+		for range 1000 {
+			for i := range cs {
+				cs[i] = truth[i] + us[i]*random.NormFloat64()
+			}
+			res := m.fit(t, newTable(t, ts, cs, us), sigma)
+			for j, q := range res.Parameters() {
+				if math.Abs(q.Value()-want[j]) <= k*q.StandardUncertainty() {
+					covered[j]++
+				}
+			}
+		}
+		t.Logf("%v: %v of 1000", sigma, covered)
+		for j, n := range covered {
+			if n < 930 || n > 970 {
+				t.Errorf("%v: parameter %d covered in %d of 1000, want 930 to 970", sigma, j+1, n)
+			}
+		}
+	}
+}
+
+// TestStraightLine compares with the closed form of the weighted straight line
+// (both standard uncertainties and the covariance), absolute and scaled.
+func TestStraightLine(t *testing.T) {
+	x := []float64{0, 1, 2.5, 4, 7}
+	y := []float64{1.1, 2.9, 6.2, 8.7, 15.3}
+	u := []float64{0.1, 0.2, 0.1, 0.3, 0.2}
+	var s, sx, sy, sxx, sxy float64
+	for i := range x {
+		w := 1 / (u[i] * u[i])
+		s, sx, sy, sxx, sxy = s+w, sx+w*x[i], sy+w*y[i], sxx+w*x[i]*x[i], sxy+w*x[i]*y[i]
+	}
+	d := s*sxx - sx*sx
+	wantA, wantB := (sxx*sy-sx*sxy)/d, (s*sxy-sx*sy)/d
+	var chi2 float64
+	for i := range x {
+		z := (y[i] - wantA - wantB*x[i]) / u[i]
+		chi2 += z * z
+	}
+	for _, sigma := range []Sigma{AbsoluteSigma, ScaledSigma} {
+		a, b := 0.3, 5.0
+		res, err := Curve(func(x float64) float64 { return a + b*x }, x, y, u, Vary(&a, &b), Name(&a, "a"), sigma)
+		if err != nil {
+			t.Fatal(err)
+		}
+		f := 1.0
+		if sigma == ScaledSigma {
+			f = chi2 / 3
+		}
+		c := res.Covariance()
+		within(t, "a", a, wantA, 1e-10*wantA)
+		within(t, "b", b, wantB, 1e-10*wantB)
+		within(t, "χ²", res.ChiSquared, chi2, 1e-10*chi2)
+		within(t, "var a", c[0][0], f*sxx/d, 1e-10*f*sxx/d)
+		within(t, "var b", c[1][1], f*s/d, 1e-10*f*s/d)
+		within(t, "cov", c[0][1], -f*sx/d, 1e-10*f*sx/d)
+		// The fitted line at 3 with the covariance, in closed form.
+		want := math.Sqrt(f * (sxx - 2*3*sx + 9*s) / d)
+		within(t, "u of the line at 3", res.At(3).StandardUncertainty(), want, 1e-8*want)
+		within(t, "u of the line at 3, slice", res.StandardUncertainties([]float64{3})[0], want, 1e-8*want)
+		var sum float64
+		for _, h := range res.Leverage {
+			sum += h
+		}
+		within(t, "sum of leverages", sum, 2, 1e-12)
+		// The profile of a linear model is the parabola of the covariance (which
+		// for the scaled case holds by the same factor).
+		p, err := res.Profile(&b, 1)
+		if err != nil {
+			t.Fatal(err)
+		}
+		within(t, "profile, low", p.Lo, wantB-math.Sqrt(f*s/d), 1e-6)
+		within(t, "profile, high", p.Hi, wantB+math.Sqrt(f*s/d), 1e-6)
+		if !p.Symmetric() || a != wantA && math.Abs(a-wantA) > 1e-9 {
+			t.Errorf("profile %v leaves a = %g", p, a)
+		}
+	}
+}
+
+// TestUncertainX: with the same relative errors everywhere, weights from
+// uncertainties of x alone equal those of y = slope × u(x).
+func TestUncertainX(t *testing.T) {
+	x := []float64{1, 2, 3, 4, 5, 6}
+	y := []float64{2.1, 3.9, 6.2, 7.8, 10.1, 11.9}
+	ux := []float64{0.1, 0.2, 0.1, 0.2, 0.1, 0.2}
+	a, b := 0.1, 1.0
+	res, err := Curve(func(x float64) float64 { return a + b*x }, x, y, make([]float64, 6), Vary(&a, &b), XUncertainty(ux), AbsoluteSigma)
+	if err != nil {
+		t.Fatal(err)
+	}
+	uy := make([]float64, 6)
+	for i := range uy {
+		uy[i] = b * ux[i]
+	}
+	c, d := 0.1, 1.0
+	ref, err := Curve(func(x float64) float64 { return c + d*x }, x, y, uy, Vary(&c, &d), AbsoluteSigma)
+	if err != nil {
+		t.Fatal(err)
+	}
+	within(t, "a", a, c, 1e-8)
+	within(t, "b", b, d, 1e-8)
+	within(t, "u(b)", res.Parameter(&b).StandardUncertainty(), ref.Parameter(&d).StandardUncertainty(), 1e-8)
+}
+
+func TestBoundsTiesStarts(t *testing.T) {
+	ts, cs, us := syntheticSolid()
+	run := newTable(t, ts, cs, us)
+	// A bound that the minimum violates holds, is reported, and gives no
+	// symmetric uncertainty.
+	deb, ein := solid.Debye{Theta: 230, Modes: 3}, solid.Einstein{Theta: 500, Modes: 3}
+	res, err := HeatCapacity(solid.Sum{&deb, &ein}, run, Vary(&deb.Theta, &ein.Theta), Between(&deb.Theta, 200*unit.K, 240*unit.K), ScaledSigma)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if deb.Theta != 240 || res.Parameter(&deb.Theta).Withheld() == "" || !strings.Contains(strings.Join(res.Warnings, "\n"), "Debye.Theta ends at its bound 240") {
+		t.Errorf("θ = %v, %v, %q", deb.Theta, res.Parameter(&deb.Theta), res.Warnings)
+	}
+	if res.Parameter(&ein.Theta).Withheld() != "" {
+		t.Errorf("%v: the other parameter has an uncertainty", res.Parameter(&ein.Theta))
+	}
+	// A tied count of modes.
+	deb, ein = solid.Debye{Theta: 230, Modes: 2}, solid.Einstein{Theta: 500, Modes: 1}
+	res, err = HeatCapacity(solid.Sum{&deb, &ein}, run, Vary(&deb.Theta, &ein.Theta, &deb.Modes), Tie(&ein.Modes, func() float64 { return 6 - deb.Modes }), AbsoluteSigma)
+	if err != nil {
+		t.Fatal(err)
+	}
+	within(t, "n_D", deb.Modes, 3, 1e-7)
+	within(t, "n_E", ein.Modes, 3, 1e-7)
+	within(t, "θ_E", float64(ein.Theta), 550, 1e-5)
+	var free debyeEinstein
+	if u, all := res.Parameter(&deb.Theta).StandardUncertainty(), free.fit(t, run, AbsoluteSigma).Parameter(&free.deb.Theta).StandardUncertainty(); u >= all {
+		t.Errorf("u(θ_D) = %g with a tied count, %g with a free one", u, all)
+	}
+	// sin(b x) has many minima in b; several starts find the lowest.
+	var x, y []float64
+	for i := range 60 {
+		x = append(x, float64(i)*0.1)
+		y = append(y, math.Sin(3.7*x[i])+0.01*math.Cos(float64(17*i)))
+	}
+	b := 0.4
+	sine := func(x float64) float64 { return math.Sin(b * x) }
+	one, err := Curve(sine, x, y, nil, Vary(&b), Between(&b, 0.1, 12.0), ScaledSigma)
+	if err != nil {
+		t.Fatal(err)
+	}
+	b = 0.4
+	many, err := Curve(sine, x, y, nil, Vary(&b), Between(&b, 0.1, 12.0), ScaledSigma, Starts(30, 3))
+	if err != nil {
+		t.Fatal(err)
+	}
+	if math.Abs(b-3.7) > 0.01 || many.ChiSquared > one.ChiSquared/10 || len(many.Minima) != 30 {
+		t.Errorf("b = %g, χ² %g from 30 starts, %g from one", b, many.ChiSquared, one.ChiSquared)
+	}
+}
+
+// TestRobust: one gross outlier moves the plain fit by many u, the robust ones
+// hardly.
+func TestRobust(t *testing.T) {
+	random := rand.New(rand.NewPCG(3, 4))
+	var x, y, u []float64
+	for i := range 40 {
+		x = append(x, float64(i))
+		y = append(y, 2+0.5*x[i]+0.1*random.NormFloat64())
+		u = append(u, 0.1)
+	}
+	y[30] += 20
+	fitWith := func(o ...Option) (float64, *Result) {
+		a, b := 1.0, 1.0
+		res, err := Curve(func(x float64) float64 { return a + b*x }, x, y, u, append(o, Vary(&a, &b))...)
+		if err != nil {
+			t.Fatal(err)
+		}
+		return b, res
+	}
+	plainB, res := fitWith(AbsoluteSigma)
+	if res.Withheld == "" || math.Abs(plainB-0.5) < 0.02 {
+		t.Errorf("plain fit b = %g, withheld %q", plainB, res.Withheld)
+	}
+	if d := res.Diagnostics; d.LargestAt != 30 || d.NormalityP > 1e-3 {
+		t.Errorf("diagnostics %+v do not point at the outlier", d)
+	}
+	for name, o := range map[string]Option{"Huber": Huber(1.345), "Bisquare": Bisquare(4.685)} {
+		b, res := fitWith(o, ScaledSigma)
+		within(t, name+" slope", b, 0.5, 0.005)
+		if !strings.Contains(res.String(), "robust loss: ") {
+			t.Errorf("%s is not shown in\n%v", name, res)
+		}
+	}
+}
+
+// TestBootstrap: refits agree with the covariance of the fit, in parallel on
+// copies of the model, and the same seed gives the same refits.
+func TestBootstrap(t *testing.T) {
+	ts, cs, us := syntheticSolid()
+	var m debyeEinstein
+	res := m.fit(t, newTable(t, ts, cs, us), AbsoluteSigma)
+	b, err := res.Bootstrap(600, 11)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if b.Serial || b.Failed != 0 || len(b.Values) != 600 {
+		t.Errorf("serial %v, %d failed, %d refits", b.Serial, b.Failed, len(b.Values))
+	}
+	for j, q := range res.Parameters() {
+		u := q.StandardUncertainty()
+		within(t, q.Name()+": standard deviation of refits", b.StandardDeviation(j), u, 4*u/math.Sqrt(2*600))
+		lo, hi := b.Interval(j, 0.95)
+		within(t, q.Name()+": width of the interval", hi-lo, 2*1.96*u, 0.15*2*1.96*u)
+	}
+	if m.deb.Theta != unit.Temperature(res.Parameter(&m.deb.Theta).Value()) {
+		t.Errorf("the model was left at θ = %v", m.deb.Theta)
+	}
+	again, err := res.Bootstrap(600, 11)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for k := range b.Values {
+		for j := range b.Values[k] {
+			if b.Values[k][j] != again.Values[k][j] {
+				t.Fatal("the same seed gives other refits")
+			}
+		}
+	}
+	// A closure cannot be copied: the refits run one after the other.
+	a := 1.0
+	line, err := Curve(func(x float64) float64 { return a * x }, []float64{1, 2, 3}, []float64{1.1, 1.9, 3.1}, nil, Vary(&a), ScaledSigma)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if bs, err := line.Bootstrap(50, 1); err != nil || !bs.Serial {
+		t.Errorf("%+v, %v", bs, err)
+	}
+}
+
+// TestModelOrder: AICc picks the order of a polynomial among 1 to 5 in at least
+// 90 of 100 data sets of 20 points at a signal-to-noise ratio of 50. (For many
+// points AICc takes a superfluous term with probability 0.16, whatever the
+// noise; its correction for few points makes that rarer.)
+func TestModelOrder(t *testing.T) {
+	right := 0
+	var kept [][]*Result
+	for seed := range 100 {
+		random := rand.New(rand.NewPCG(uint64(seed), 5))
+		var x, y []float64
+		for i := range 20 {
+			v := float64(i)/9.5 - 1
+			x = append(x, v)
+			y = append(y, 1+0.8*v-1.1*v*v+0.9*v*v*v+random.NormFloat64()/50)
+		}
+		var fits []*Result
+		for order := 1; order <= 5; order++ {
+			c := make([]float64, order+1)
+			ptrs := make([]any, len(c))
+			for i := range c {
+				ptrs[i] = &c[i]
+			}
+			res, err := Curve(func(x float64) (s float64) {
+				for i := len(c) - 1; i >= 0; i-- {
+					s = s*x + c[i]
+				}
+				return s
+			}, x, y, nil, Vary(ptrs...), ScaledSigma)
+			if err != nil {
+				t.Fatal(err)
+			}
+			fits = append(fits, res)
+		}
+		cmp, err := Compare(fits...)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if b := cmp.Best(); b < 2 {
+			t.Errorf("seed %d: order %d", seed, b+1)
+		} else if b == 2 {
+			right++
+		}
+		kept = append(kept, fits)
+	}
+	t.Logf("order 3 in %d of 100", right)
+	if right < 90 {
+		t.Errorf("the true order in %d of 100", right)
+	}
+	if _, err := Compare(kept[0][0], kept[1][0]); err == nil || !strings.Contains(err.Error(), "different data") {
+		t.Errorf("comparing different data: %v", err)
+	}
+	f, p, err := FTest(kept[0][1], kept[0][2])
+	if err != nil || p > 1e-10 || f < 100 {
+		t.Errorf("F = %g, p = %g, %v for a needed term", f, p, err)
+	}
+	if _, p, err := FTest(kept[0][2], kept[0][3]); err != nil || p < 1e-3 {
+		t.Errorf("p = %g, %v for a term that is not needed", p, err)
+	}
+	if _, _, err := FTest(kept[0][2], kept[0][1]); err == nil {
+		t.Error("a larger model before the smaller one is accepted")
+	}
+}
+
+func TestRefusals(t *testing.T) {
+	run := copper(t)
+	deb := solid.Debye{Theta: 343}
+	var none *float64
+	x, y := []float64{1, 2, 3}, []float64{1, 2, 3}
+	a, b, c := 1.0, 1.0, 1.0
+	line := func(x float64) float64 { return a + b*x + c*x*x }
+	for _, test := range []struct {
+		name, want string
+		f          func() error
+	}{
+		{"no sigma", "fit.AbsoluteSigma, fit.ScaledSigma or fit.CommonSigma", func() error { _, err := HeatCapacity(&deb, run, Vary(&deb.Theta)); return err }},
+		{"nothing free", "name the free parameters", func() error { _, err := HeatCapacity(&deb, run, AbsoluteSigma); return err }},
+		{"no address", "unit.Temperature, want the address", func() error { _, err := HeatCapacity(&deb, run, Vary(deb.Theta), AbsoluteSigma); return err }},
+		{"nil", "a nil pointer", func() error { _, err := HeatCapacity(&deb, run, Vary(none), AbsoluteSigma); return err }},
+		{"twice", "at the same address twice", func() error {
+			_, err := HeatCapacity(&deb, run, Vary(&deb.Theta, &deb.Theta), AbsoluteSigma)
+			return err
+		}},
+		{"both sigmas", "want one of them", func() error {
+			_, err := HeatCapacity(&deb, run, Vary(&deb.Theta), AbsoluteSigma, ScaledSigma)
+			return err
+		}},
+		{"no model", "has no method HeatCapacity", func() error { _, err := HeatCapacity(3, run, Vary(&deb.Theta), AbsoluteSigma); return err }},
+		{"empty window", "none of the 35 points lies in the window", func() error {
+			_, err := HeatCapacity(&deb, run, Vary(&deb.Theta), AbsoluteSigma, Window(400, 500))
+			return err
+		}},
+		{"window backwards", "want the lower end first", func() error {
+			_, err := HeatCapacity(&deb, run, Vary(&deb.Theta), AbsoluteSigma, Window(10, 1))
+			return err
+		}},
+		{"outside bounds", "outside its bounds", func() error {
+			_, err := HeatCapacity(&deb, run, Vary(&deb.Theta), AbsoluteSigma, Between(&deb.Theta, 400*unit.K, 500*unit.K))
+			return err
+		}},
+		{"absolute without u", "but the data have none", func() error { _, err := Curve(line, x, y, nil, Vary(&a), AbsoluteSigma); return err }},
+		{"more parameters than points", "2 points cannot determine 3 free parameters", func() error { _, err := Curve(line, x[:2], y[:2], nil, Vary(&a, &b, &c), ScaledSigma); return err }},
+		{"no scatter left", "leave no scatter to scale by", func() error { _, err := Curve(line, x, y, nil, Vary(&a, &b, &c), ScaledSigma); return err }},
+		{"zero u", "which would give it all the weight", func() error { _, err := Curve(line, x, y, []float64{1, 0, 1}, Vary(&a), AbsoluteSigma); return err }},
+		{"negative u", "standard uncertainty -1", func() error { _, err := Curve(line, x, y, []float64{1, -1, 1}, Vary(&a), AbsoluteSigma); return err }},
+		{"NaN", "point 2: x = 2, y = NaN", func() error {
+			_, err := Curve(line, x, []float64{1, math.NaN(), 1}, nil, Vary(&a), ScaledSigma)
+			return err
+		}},
+		{"model not finite", "no finite value at the starting parameters", func() error {
+			_, err := Curve(func(x float64) float64 { return math.Log(-a * x) }, x, y, nil, Vary(&a), ScaledSigma)
+			return err
+		}},
+		{"model refuses its start", "no finite value at the starting parameters: Theta = -5 K", func() error {
+			bad := solid.Debye{Theta: -5}
+			_, err := HeatCapacity(&bad, run, Vary(&bad.Theta), AbsoluteSigma)
+			return err
+		}},
+	} {
+		t.Run(test.name, func(t *testing.T) {
+			if err := test.f(); err == nil || !strings.Contains(err.Error(), test.want) {
+				t.Errorf("error %v\nwant … %s", err, test.want)
+			}
+		})
+	}
+}
+
+// TestUndetermined: two parameters of which only the product matters.
+func TestUndetermined(t *testing.T) {
+	a, b := 1.0, 2.0
+	res, err := Curve(func(x float64) float64 { return a * b * x }, []float64{1, 2, 3, 4}, []float64{2.1, 3.9, 6.1, 8}, nil, Vary(&a, &b), ScaledSigma)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if !strings.Contains(res.Withheld, "do not determine all parameters") {
+		t.Errorf("withheld %q, condition %g", res.Withheld, res.Condition)
+	}
+}
+
+// TestSmoothed: far too small a χ² is pointed at.
+func TestSmoothed(t *testing.T) {
+	ts, cs, us := syntheticSolid()
+	var m debyeEinstein
+	res := m.fit(t, newTable(t, ts, cs, us), AbsoluteSigma)
+	if all := strings.Join(res.Warnings, "\n"); !strings.Contains(all, "far below 1") {
+		t.Errorf("warnings\n%s", all)
+	}
+}
+
+func BenchmarkFit(b *testing.B) {
+	m := solid.Sum{&solid.Electronic{Gamma: 7e-4}, &solid.Debye{Theta: 250, Modes: 3}, &solid.Einstein{Theta: 550, Modes: 3}}
+	random := rand.New(rand.NewPCG(1, 1))
+	var ts, cs, us []float64
+	for i := range 500 {
+		T := 2 + 0.6*float64(i)
+		c := float64(m.HeatCapacity(unit.Temperature(T)))
+		ts, us = append(ts, T), append(us, 0.005*c)
+		cs = append(cs, c*(1+0.005*random.NormFloat64()))
+	}
+	run := newTable(b, ts, cs, us)
+	fitted := func() *Result {
+		el, deb, ein := solid.Electronic{Gamma: 5e-4}, solid.Debye{Theta: 230, Modes: 2.7}, solid.Einstein{Theta: 500, Modes: 3.2}
+		res, err := HeatCapacity(solid.Sum{&el, &deb, &ein}, run, Vary(&el.Gamma, &deb.Theta, &deb.Modes, &ein.Theta, &ein.Modes), AbsoluteSigma)
+		if err != nil {
+			b.Fatal(err)
+		}
+		return res
+	}
+	b.Run("one", func(b *testing.B) {
+		for b.Loop() {
+			sink = fitted()
+		}
+		b.ReportMetric(float64(sink.Evaluations), "evaluations")
+	})
+	b.Run("bootstrap of 1000", func(b *testing.B) {
+		res := fitted()
+		for b.Loop() {
+			if _, err := res.Bootstrap(1000, 1); err != nil {
+				b.Fatal(err)
+			}
+		}
+	})
+}
+
+var sink *Result
