@@ -27,7 +27,7 @@ var nistModels = map[string]func(b []float64, x float64) float64{
 		s, t := (x-b[3])/b[4], (x-b[6])/b[7]
 		return b[0]*math.Exp(-b[1]*x) + b[2]*math.Exp(-s*s) + b[5]*math.Exp(-t*t)
 	},
-	// Sets kept in memory.csv.
+	// From memory, in nist-strd-memory.
 	"BoxBOD": func(b []float64, x float64) float64 { return b[0] * (1 - math.Exp(-b[1]*x)) },
 	"MGH10":  func(b []float64, x float64) float64 { return b[0] * math.Exp(b[1]/(x+b[2])) },
 	"MGH17": func(b []float64, x float64) float64 {
@@ -109,6 +109,12 @@ func digits(got, want float64) float64 {
 // (NIST/ITL Statistical Reference Datasets, nonlinear regression).
 func TestNIST(t *testing.T) {
 	checkNIST(t, readNIST(t, "testdata/nist-strd/data.csv", "testdata/nist-strd/parameters.csv"))
+}
+
+// TestNISTFromMemory: further sets of the family, data and certified values
+// from memory.
+func TestNISTFromMemory(t *testing.T) {
+	checkNIST(t, readNIST(t, "testdata/nist-strd-memory/data.csv", "testdata/nist-strd-memory/parameters.csv"))
 }
 
 func checkNIST(t *testing.T, sets map[string]*nistSet) {
