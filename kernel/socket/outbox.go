@@ -1,7 +1,6 @@
 package socket
 
 import (
-	"bytes"
 	"errors"
 	"net"
 	"os"
@@ -9,8 +8,21 @@ import (
 	"time"
 )
 
-// writeStep is how many bytes the writer takes on at a time.
-const writeStep = 1 << 20
+// A chunk holds bytes on their way out, at most chunkSize of them. Chunks are
+// used again: with fresh memory for each, large messages cost three times as
+// much.
+type chunk []byte
+
+const (
+	chunkSize  = 64 << 10
+	stepChunks = 16 // the writer takes on so many at a time
+)
+
+var chunks = sync.Pool{New: func() any { return new([chunkSize]byte) }}
+
+func newChunk() chunk { return chunks.Get().(*[chunkSize]byte)[:0] }
+
+func (c chunk) free() { chunks.Put((*[chunkSize]byte)(c[:chunkSize])) }
 
 // An outbox holds the bytes that wait for one peer. Whole messages go in;
 // neither side waits for the other while it holds the lock.
@@ -19,7 +31,7 @@ type outbox struct {
 	room chan struct{} // tells the one who waits for room or emptiness to look again
 
 	mu     sync.Mutex // guards the fields below
-	chunks [][]byte   // in order; the writer takes all of them
+	chunks []chunk    // in order; the writer takes all of them
 	queued int        // bytes in chunks and in the writer's hands
 	moved  time.Time  // when the network last took some of them
 	slow   bool       // messages are dropped until the queue is below half
@@ -39,10 +51,10 @@ func signal(c chan struct{}) {
 	}
 }
 
-// put queues one message: large parts, which the outbox keeps, and then a
-// small one, which it copies. There is no limit here, since whoever
-// sends has waited for room, and what passes through zmq4 meanwhile is little.
-func (o *outbox) put(parts [][]byte, small []byte) {
+// put queues one message, either in chunks, which the outbox keeps, or in a
+// buffer, which it copies. There is no limit here, since whoever sends has
+// waited for room, and what passes through zmq4 meanwhile is little.
+func (o *outbox) put(parts []chunk, small []byte) {
 	o.mu.Lock()
 	defer o.mu.Unlock()
 	o.append(parts, small)
@@ -59,7 +71,7 @@ func (o *outbox) putIfBelow(limit int, small []byte) {
 
 // append is put with the lock held. Small messages share a chunk, so that a
 // burst of them leaves with few system calls.
-func (o *outbox) append(parts [][]byte, small []byte) {
+func (o *outbox) append(parts []chunk, small []byte) {
 	if o.killed {
 		return
 	}
@@ -71,10 +83,10 @@ func (o *outbox) append(parts [][]byte, small []byte) {
 	last := len(o.chunks) - 1
 	switch {
 	case len(small) == 0:
-	case last >= 0 && len(o.chunks[last])+len(small) <= smallPiece:
+	case last >= 0 && len(o.chunks[last])+len(small) <= chunkSize:
 		o.chunks[last] = append(o.chunks[last], small...)
 	default:
-		o.chunks = append(o.chunks, bytes.Clone(small))
+		o.chunks = append(o.chunks, append(newChunk(), small...))
 	}
 	signal(o.wake)
 }
@@ -109,7 +121,7 @@ func (o *outbox) kill() {
 }
 
 // take returns all chunks, or nothing if there are none.
-func (o *outbox) take() [][]byte {
+func (o *outbox) take() []chunk {
 	o.mu.Lock()
 	defer o.mu.Unlock()
 	chunks := o.chunks
@@ -134,9 +146,10 @@ func (o *outbox) sent(n int) {
 // write is the goroutine that writes to the peer's connection, until it fails
 // or is closed.
 func (p *peer) write() {
+	var buffers [stepChunks][]byte
 	for {
-		chunks := p.outbox.take()
-		if chunks == nil {
+		waiting := p.outbox.take()
+		if waiting == nil {
 			select {
 			case <-p.wake:
 				continue
@@ -144,41 +157,34 @@ func (p *peer) write() {
 				return
 			}
 		}
-		for len(chunks) > 0 {
-			var step net.Buffers
-			step, chunks = cut(chunks, writeStep)
-			for len(step) > 0 {
-				// A deadline shows the bytes that have left in time; the rest of
-				// the step stays in it.
-				p.c.SetWriteDeadline(time.Now().Add(p.l.lim.step))
-				n, err := step.WriteTo(p.c)
-				p.outbox.sent(int(n))
-				if err != nil && !errors.Is(err, os.ErrDeadlineExceeded) {
-					return
-				}
-				if p.dead() {
-					return
-				}
+		for len(waiting) > 0 {
+			k := min(len(waiting), stepChunks)
+			for i, c := range waiting[:k] {
+				buffers[i] = c
 			}
+			if !p.writeAll(buffers[:k]) {
+				return
+			}
+			for _, c := range waiting[:k] {
+				c.free()
+			}
+			waiting = waiting[k:]
 		}
 	}
 }
 
-// cut divides chunks after n bytes.
-func cut(chunks [][]byte, n int) (first net.Buffers, rest [][]byte) {
-	for i, c := range chunks {
-		if len(c) <= n {
-			n -= len(c)
-			continue
+// writeAll writes the buffers, and reports whether the peer is still there.
+func (p *peer) writeAll(b net.Buffers) bool {
+	for len(b) > 0 {
+		// A deadline shows the bytes that have left in time; the others stay.
+		p.c.SetWriteDeadline(time.Now().Add(p.l.lim.step))
+		n, err := b.WriteTo(p.c)
+		p.outbox.sent(int(n))
+		if err != nil && !errors.Is(err, os.ErrDeadlineExceeded) || p.dead() {
+			return false
 		}
-		if n == 0 {
-			return chunks[:i:i], chunks[i:]
-		}
-		first = append(append(first, chunks[:i]...), c[:n:n])
-		chunks[i] = c[n:]
-		return first, chunks[i:]
 	}
-	return chunks, nil
+	return true
 }
 
 // waitRoom waits until n more bytes may be queued, and reports whether they

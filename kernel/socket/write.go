@@ -1,12 +1,8 @@
 package socket
 
 import (
-	"bytes"
 	"encoding/binary"
 )
-
-// smallPiece is the size below which bodies are gathered in one buffer.
-const smallPiece = 32 << 10
 
 // output is the writing side of a peer as zmq4 sees it: a stream, in which it
 // writes header and body of each frame by themselves. It is cut into messages
@@ -20,8 +16,8 @@ type output struct {
 	inside  bool    // at least one frame of the message has begun
 	discard bool    // the message is dropped, or the frame is a command
 	lose    bool    // the message is dropped
-	small   []byte  // small pieces of the message since the last large one
-	parts   [][]byte
+	small   []byte  // the message, up to half a chunk
+	parts   []chunk // the message, once it is larger
 }
 
 // Write takes bytes that zmq4 has for the peer. It returns len(b), nil also
@@ -83,16 +79,27 @@ func (p *peer) beginFrame() {
 
 // add appends a piece to the message. The slice belongs to zmq4, hence a copy.
 func (o *output) add(b []byte) {
-	switch {
-	case o.discard:
-	case len(b) < smallPiece:
-		o.small = append(o.small, b...)
-	default:
-		if len(o.small) > 0 {
-			o.parts = append(o.parts, bytes.Clone(o.small))
-			o.small = o.small[:0]
+	if o.discard {
+		return
+	}
+	if o.parts == nil {
+		if len(o.small)+len(b) <= chunkSize/2 {
+			o.small = append(o.small, b...)
+			return
 		}
-		o.parts = append(o.parts, bytes.Clone(b))
+		o.parts = append(o.parts, append(newChunk(), o.small...))
+		o.small = o.small[:0]
+	}
+	for len(b) > 0 {
+		last := len(o.parts) - 1
+		c := o.parts[last]
+		if len(c) == chunkSize {
+			o.parts = append(o.parts, newChunk())
+			continue
+		}
+		k := min(len(b), chunkSize-len(c))
+		o.parts[last] = append(c, b[:k]...)
+		b = b[k:]
 	}
 }
 
@@ -112,10 +119,6 @@ func (p *peer) endFrame() {
 		p.outbox.put(o.parts, o.small)
 	}
 	o.inside = false
-	clear(o.parts)
-	o.parts = o.parts[:0]
-	if cap(o.small) > 4*smallPiece {
-		o.small = nil
-	}
+	o.parts = nil // they belong to the outbox now
 	o.small = o.small[:0]
 }
