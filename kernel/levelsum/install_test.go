@@ -79,7 +79,7 @@ func TestInstallVersionRemove(t *testing.T) {
 		}
 	}
 	stdout, _, status := u.levelsum(nil, "version")
-	wants("version before", stdout, "levelsum "+version+"\n", "built with "+runtime.Version(), "interpreter: yaegi ",
+	wants("version before", stdout, "levelsum "+version+"\n", "built with "+runtime.Version(), "interpreter: yaegi v0.16.1\n", "physical constants: CODATA 2022\n",
 		"compiled cells: do not work: cells cannot be compiled yet: nothing has been prepared for this levelsum; run levelsum install\n")
 	if status != 0 {
 		t.Errorf("version: status %d", status)

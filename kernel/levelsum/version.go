@@ -10,6 +10,7 @@ import (
 	"runtime/debug"
 
 	"levelsum/kernel/compile"
+	"levelsum/statmech/unit"
 )
 
 const versionUsage = `usage: levelsum version
@@ -32,6 +33,7 @@ func showVersion(args []string, _ io.Reader, stdout, stderr io.Writer) int {
 	fmt.Fprintf(stdout, "levelsum %s\n", version)
 	fmt.Fprintf(stdout, "built with %s for %s/%s\n", runtime.Version(), runtime.GOOS, runtime.GOARCH)
 	fmt.Fprintf(stdout, "interpreter: yaegi %s\n", moduleVersion("github.com/traefik/yaegi"))
+	fmt.Fprintf(stdout, "physical constants: %s\n", unit.ConstantsSource)
 	fmt.Fprintf(stdout, "compiled cells: %s\n", compiledTier(context.Background()))
 	return 0
 }
