@@ -250,7 +250,7 @@ func (p *plan) upLabel(rs []mark.Run, x float64, b box) {
 	size := p.size
 	w := width(rs, size)
 	if w > room {
-		size *= max(0.62, room/w)
+		size *= max(0.5, room/w)
 		w = width(rs, size)
 	}
 	// Keep it on the drawing when it is still too long.

@@ -10,10 +10,11 @@ func hex(v uint32) color.RGBA {
 }
 
 // seriesColours have a contrast of at least 3 to white and to #1e1e1e
-// (TestColours). The first three are from M. Okabe, K. Ito, Color Universal
-// Design (2008); the others were chosen to keep apart from them.
+// (TestColours). The first three follow M. Okabe, K. Ito, Color Universal
+// Design (2008), the blue a little lighter for dark pages; the others were
+// chosen to keep apart from them.
 var seriesColours = []color.RGBA{
-	hex(0x0072B2), // blue
+	hex(0x127DC0), // blue
 	hex(0xD55E00), // vermilion
 	hex(0x009E73), // bluish green
 	hex(0xB8639B), // purple
@@ -34,7 +35,7 @@ const (
 	tickWidth  = 0.6
 	majorTick  = 4.2
 	minorTick  = 2.3
-	barAlpha   = 0.45
+	barAlpha   = 0.55
 	bandAlpha  = 0.2
 )
 

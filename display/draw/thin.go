@@ -2,44 +2,53 @@ package draw
 
 import (
 	"fmt"
+	"math"
 	"strconv"
 
 	"levelsum/display/internal/scene"
 )
 
 // Sets of more points than thinAbove are thinned to one point for each cell of
-// a grid of side cell, in points of 1/72 inch: finer than the marks, so that
-// the drawing keeps its shape.
+// a grid, in points of 1/72 inch: finer than the marks, so that the drawing
+// keeps its shape. Where that still leaves too many the cells grow.
 const (
 	thinAbove = 8000
 	cell      = 0.7
+	mostMarks = 20000
 )
 
 // thinPoints returns the points that are drawn, in their order.
 func thinPoints(l scene.Points, x, y *ruler, b box) []int {
-	out := make([]int, 0, min(len(l.X), thinAbove))
+	out := make([]int, 0, min(len(l.X), mostMarks))
 	if len(l.X) <= thinAbove {
 		for i := range l.X {
-			if l.Y[i] == l.Y[i] {
+			if !math.IsNaN(l.Y[i]) {
 				out = append(out, i)
 			}
 		}
 		return out
 	}
-	nx, ny := int(b.w()/cell)+1, int(b.h()/cell)+1
-	seen := make([]bool, nx*ny)
-	for i := range l.X {
-		c := point{x.place(l.X[i]), y.place(l.Y[i])}
-		if !b.has(c) { // NaN is not in the box either
-			continue
+	for c := cell; ; c *= 1.5 {
+		out = out[:0]
+		nx, ny := int(b.w()/c)+1, int(b.h()/c)+1
+		seen := make([]bool, nx*ny)
+		for i := range l.X {
+			p := point{x.place(l.X[i]), y.place(l.Y[i])}
+			if !b.has(p) { // NaN is not in the box either
+				continue
+			}
+			k := int((p.y-b.y0)/c)*nx + int((p.x-b.x0)/c)
+			if !seen[k] {
+				seen[k] = true
+				if out = append(out, i); len(out) > mostMarks {
+					break
+				}
+			}
 		}
-		k := int((c.y-b.y0)/cell)*nx + int((c.x-b.x0)/cell)
-		if !seen[k] {
-			seen[k] = true
-			out = append(out, i)
+		if len(out) <= mostMarks {
+			return out
 		}
 	}
-	return out
 }
 
 // thinned returns the notes about sets that are too large to be drawn whole.
@@ -52,7 +61,7 @@ func thinned(f *scene.Figure) []string {
 				if s.Name != "" {
 					what += " of " + s.Name
 				}
-				note := fmt.Sprintf("%s %s; where several fall on one place, one is drawn.", grouped(s.Of), what)
+				note := fmt.Sprintf("%s %s: one is drawn for each place.", grouped(s.Of), what)
 				if len(out) == 0 || out[len(out)-1] != note {
 					out = append(out, note)
 				}
