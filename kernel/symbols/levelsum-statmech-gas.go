@@ -9,8 +9,25 @@ import (
 
 func init() {
 	Symbols["levelsum/statmech/gas/gas"] = map[string]reflect.Value{
+		// function, constant and variable definitions
+		"ConsistentInterpolation": reflect.ValueOf(gas.ConsistentInterpolation),
+		"EntropyInterpolation":    reflect.ValueOf(gas.EntropyInterpolation),
+		"Harmonic":                reflect.ValueOf(gas.Harmonic),
+		"NewAsymmetricTop":        reflect.ValueOf(gas.NewAsymmetricTop),
+		"NewSphericalTop":         reflect.ValueOf(gas.NewSphericalTop),
+		"NewSymmetricTop":         reflect.ValueOf(gas.NewSymmetricTop),
+		"NewTop":                  reflect.ValueOf(gas.NewTop),
+		"RaisedCutoff":            reflect.ValueOf(gas.RaisedCutoff),
+
 		// type definitions
-		"Monatomic":   reflect.ValueOf((*gas.Monatomic)(nil)),
-		"Translation": reflect.ValueOf((*gas.Translation)(nil)),
+		"Anharmonic":     reflect.ValueOf((*gas.Anharmonic)(nil)),
+		"LinearRotor":    reflect.ValueOf((*gas.LinearRotor)(nil)),
+		"LowFrequency":   reflect.ValueOf((*gas.LowFrequency)(nil)),
+		"Monatomic":      reflect.ValueOf((*gas.Monatomic)(nil)),
+		"Oscillator":     reflect.ValueOf((*gas.Oscillator)(nil)),
+		"SoftOscillator": reflect.ValueOf((*gas.SoftOscillator)(nil)),
+		"SpinWeights":    reflect.ValueOf((*gas.SpinWeights)(nil)),
+		"Top":            reflect.ValueOf((*gas.Top)(nil)),
+		"Translation":    reflect.ValueOf((*gas.Translation)(nil)),
 	}
 }
