@@ -15,6 +15,7 @@ type problem struct {
 	// means central differences of residuals.
 	jacobian func(p, r, jac []float64) bool
 	stop     func() bool // asked at every step; nil means never
+	size     float64     // norm of the weighted data, which rounding is relative to
 }
 
 // Stop says why a fit ended.
@@ -188,7 +189,7 @@ func marquardt(pr *problem, start []float64, d damping, lambda float64) *minimum
 			}
 			predicted = out.chi2 - sumOfSquares(rTrial)
 			if relative <= stepEnough*1e-4 || relative <= stepEnough && failed > 3 || predicted <= 1e-16*out.chi2 && lambda < 1e-6 {
-				out.stop = endReason(out)
+				out.stop = pr.endReason(out, predicted)
 				return out
 			}
 			out.evaluations++
@@ -212,8 +213,8 @@ func marquardt(pr *problem, start []float64, d damping, lambda float64) *minimum
 			failed++
 			lambda *= nu
 			nu = min(2*nu, 1e6)
-			if lambda > 1e30 || failed > 60 {
-				out.stop = endReason(out)
+			if lambda > 1e30 || failed > 60 || failed > 3 && predicted <= pr.resolution(out.chi2) {
+				out.stop = pr.endReason(out, predicted)
 				return out
 			}
 		}
@@ -225,10 +226,17 @@ func marquardt(pr *problem, start []float64, d damping, lambda float64) *minimum
 	return out
 }
 
+// resolution is how finely χ² can be told apart: every residual is known to
+// about ε of the weighted datum that it is the rest of.
+func (pr *problem) resolution(chi2 float64) float64 {
+	const eps = 0x1p-52
+	return 8 * eps * pr.size * (math.Sqrt(chi2) + eps*pr.size)
+}
+
 // endReason distinguishes a minimum at the resolution of the arithmetic from a
-// run that is stuck.
-func endReason(out *minimum) Stop {
-	if out.cosine < 1e-6 {
+// run that is stuck. predicted is the fall of χ² that the last step promised.
+func (pr *problem) endReason(out *minimum, predicted float64) Stop {
+	if out.cosine < 1e-6 || predicted <= pr.resolution(out.chi2) {
 		return Converged
 	}
 	return NoProgress

@@ -154,6 +154,11 @@ func (r *regression) problem(y []float64) *problem {
 	for _, f := range r.free {
 		pr.lo, pr.hi = append(pr.lo, f.lo), append(pr.hi, f.hi)
 	}
+	var size float64
+	for i, v := range y {
+		size += (v * r.scale[i]) * (v * r.scale[i])
+	}
+	pr.size = math.Sqrt(size)
 	pr.residuals = func(p, out []float64) bool {
 		if !r.values(p, out) {
 			return false
