@@ -264,6 +264,13 @@ func (t *Table) convertUncertainty(c, of *Column, coverage float64, at func(int)
 	}
 }
 
+// coverageFactor is [Table.coverage] of a table that is known to be good.
+func (t *Table) coverageFactor() float64 {
+	c := *t
+	c.Readings = nil
+	return c.coverage(&problems{})
+}
+
 // coverage returns the factor by which the file's uncertainties are larger
 // than standard uncertainties.
 func (t *Table) coverage(p *problems) float64 {
