@@ -3,6 +3,7 @@ package draw
 import (
 	"math"
 	"math/rand/v2"
+	"strings"
 
 	"levelsum/display"
 )
@@ -105,6 +106,32 @@ func gallery() map[string]display.Figure {
 		Series: []display.Series{{Name: "95 % <img onerror=alert(1)>", X: bx, Lower: bl, Upper: bu},
 			{Name: "sin x", X: bx, Y: sines(bx, 1), Line: true}, {Name: "0.8 sin x", X: bx, Y: sines(bx, 0.8), Line: true},
 			{Name: "0.6 sin x", X: bx, Y: sines(bx, 0.6), Line: true}, {Name: "0.4 sin x", X: bx, Y: sines(bx, 0.4), Line: true, Marks: true}}}
+	px, py, pu := make([]float64, 30), make([]float64, 30), make([]float64, 30)
+	for i := range px {
+		px[i] = math.Pow(10, -1+float64(i)*0.12)
+		py[i], pu[i] = 3e-22*px[i]*px[i]*(1+0.05*math.Sin(float64(i))), 4e-23*px[i]*px[i]
+	}
+	figs["logresiduals"] = display.Figure{X: px, Y: py, Err: pu, RelativeResiduals: true,
+		Curve: display.Curve{Name: "3×10^{−22} x^2", F: func(x float64) float64 { return 3e-22 * x * x }},
+		XAxis: display.Axis{Quantity: "p", Unit: "kPa", Log: true}, YAxis: display.Axis{Quantity: "E", Unit: "J", Log: true}}
+	figs["powers"] = display.Figure{X: px, Y: py, Err: pu, XAxis: display.Axis{Quantity: "p", Unit: "kPa"},
+		YAxis: display.Axis{Quantity: "E", Unit: "J"}, RightAxis: display.Axis{Unit: "cm-1", Factor: 5.0341e22}}
+	figs["marks"] = display.Figure{X: []kelvin{100, 200, 300}, Y: []molar{24.4, 24.4, 24.4}, Name: strings.Repeat("a very long name ", 6),
+		XAxis: x, YAxis: q, Marks: []display.Mark{{Y: molar(24.41), Label: "3R"}, {X: kelvin(150), Label: "first"},
+			{X: kelvin(160), Label: "second transition"}, {X: kelvin(295), Label: "third transition"}}}
+	dx, dy, dz := make([]float64, 61), make([]float64, 41), make([][]float64, 41)
+	for i := range dx {
+		dx[i] = -3 + float64(i)*0.1
+	}
+	for j := range dy {
+		dy[j] = -2 + float64(j)*0.1
+		dz[j] = make([]float64, len(dx))
+		for i := range dx {
+			dz[j][i] = dx[i]*dx[i] - 2*dy[j]*dy[j]
+		}
+	}
+	figs["diverging"] = display.Figure{Map: &display.Map{X: dx, Y: dy, Z: dz, Diverging: true, Quantity: "ΔG", Unit: "kJ/mol",
+		Contours: []float64{-4, -1, 0, 1, 4}}, XAxis: display.Axis{Quantity: "x", Unit: "1"}, YAxis: display.Axis{Quantity: "y", Unit: "1"}}
 	return figs
 }
 

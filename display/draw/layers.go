@@ -25,6 +25,10 @@ func (p *plan) layers(q *panelPlan) {
 		z.line(q.box.x1, y)
 		p.s.stroke(&z, pen{paint: paint{ink: true, alpha: 0.6}, width: tickWidth})
 	}
+	if p.legend.placed && q == p.panels[0] {
+		q.taken = append(q.taken, p.legend.box)
+	}
+	p.ruleLines(q)
 	for _, l := range q.Layers {
 		switch l := l.(type) {
 		case scene.Points:
@@ -45,10 +49,13 @@ func (p *plan) layers(q *panelPlan) {
 			p.cells(q, l)
 		case scene.Contours:
 			p.contours(q, l)
-		case scene.Rule:
-			p.rule(q, l)
 		case scene.Ladder:
 			p.ladder(q, l)
+		}
+	}
+	for _, l := range q.Layers {
+		if r, ok := l.(scene.Rule); ok {
+			p.ruleLabel(q, r)
 		}
 	}
 }
@@ -229,8 +236,10 @@ func markSize(n int) float64 {
 		return 2
 	case n <= 400:
 		return 1.7
+	case n <= 5000:
+		return 1.4
 	}
-	return 1.4
+	return 0.9
 }
 
 // marks draws symbols of one kind: filled discs, squares, triangles, diamonds,
@@ -488,55 +497,89 @@ func length(s []point) float64 {
 	return n
 }
 
-func ruleLabelWidth(l scene.Rule, size float64) float64 {
-	if l.Label == "" {
-		return 0
+// ruleLines draws the lines of all rules of a panel, so that labels can keep
+// away from them.
+func (p *plan) ruleLines(q *panelPlan) {
+	var line path
+	for _, l := range q.Layers {
+		r, ok := l.(scene.Rule)
+		if !ok {
+			continue
+		}
+		a, c := point{q.box.x0, q.y.place(r.At)}, point{q.box.x1, q.y.place(r.At)}
+		if r.Vertical {
+			x := p.x.place(r.At)
+			a, c = point{x, q.box.y0}, point{x, q.box.y1}
+		}
+		if a, c, ok := clip(a, c, q.box); ok {
+			line.move(a.x, a.y)
+			line.line(c.x, c.y)
+			q.taken = append(q.taken, box{a.x, a.y, c.x, c.y}.grow(0.5))
+		}
 	}
-	return width(mark.Label(l.Label), 0.9*size) + 0.5*size
+	p.s.stroke(&line, pen{paint: paint{ink: true, alpha: 0.75}, width: tickWidth, dash: dashes[4]})
 }
 
-// rule draws a line across the panel and its label, moved down where another
-// label stands.
-func (p *plan) rule(q *panelPlan, l scene.Rule) {
+// ruleLabel writes the label of a rule beside it, where no other label, no
+// line and if possible no data stand.
+func (p *plan) ruleLabel(q *panelPlan, l scene.Rule) {
 	fs := 0.9 * p.size
-	ink := paint{ink: true, alpha: 0.75}
-	var line path
 	rs := mark.Label(l.Label)
 	w := width(rs, fs)
+	if w == 0 {
+		return
+	}
+	var places []box
+	add := func(x, y float64) {
+		b := box{x, y, x + w, y + 1.15*fs}
+		if b.x0 >= q.box.x0+2 && b.x1 <= q.box.x1-2 && b.y0 >= q.box.y0+2 && b.y1 <= q.box.y1-2 {
+			places = append(places, b)
+		}
+	}
 	if l.Vertical {
 		x := p.x.place(l.At)
 		if x < q.box.x0 || x > q.box.x1 {
 			return
 		}
-		line.move(x, q.box.y0)
-		line.line(x, q.box.y1)
-		p.s.stroke(&line, pen{paint: ink, width: tickWidth, dash: dashes[4]})
-		tx := x + 0.35*fs
-		if tx+w > q.box.x1-2 {
-			tx = x - 0.35*fs - w
+		for y := q.box.y0 + 0.4*fs; y < q.box.y1; y += 1.2 * fs {
+			add(x+0.4*fs, y)
+			add(x-0.4*fs-w, y)
 		}
-		for y := q.box.y0 + 0.4*fs; y < q.box.y1-1.2*fs; y += 1.2 * fs {
-			b := box{tx, y, tx + w, y + 1.2*fs}
-			if !slices.ContainsFunc(q.taken, b.overlaps) {
-				q.taken = append(q.taken, b)
-				p.s.text(rs, tx, y+fs, fs, start, false, paint{ink: true, alpha: 1})
-				return
-			}
+	} else {
+		y := q.y.place(l.At)
+		if y < q.box.y0 || y > q.box.y1 {
+			return
 		}
+		for x := q.box.x1 - 0.6*fs - w; x > q.box.x0; x -= 2 * fs {
+			add(x, y-1.25*fs)
+			add(x, y+0.15*fs)
+		}
+	}
+	if len(places) == 0 {
 		return
 	}
-	y := q.y.place(l.At)
-	if y < q.box.y0 || y > q.box.y1 {
-		return
+	best := places[0]
+	for pass := range 2 {
+		k := slices.IndexFunc(places, func(b box) bool {
+			return !slices.ContainsFunc(q.taken, b.overlaps) && (pass > 0 || p.freeOfMarks(q, b))
+		})
+		if k >= 0 {
+			best = places[k]
+			break
+		}
 	}
-	line.move(q.box.x0, y)
-	line.line(q.box.x1, y)
-	p.s.stroke(&line, pen{paint: ink, width: tickWidth, dash: dashes[4]})
-	ty := y - 0.3*fs
-	if ty-fs < q.box.y0 {
-		ty = y + 1.1*fs
+	q.taken = append(q.taken, best)
+	p.s.text(rs, best.x0, best.y0+0.88*fs, fs, start, false, paint{ink: true, alpha: 1})
+}
+
+// freeOfMarks reports whether no data lie in c, rules left aside.
+func (p *plan) freeOfMarks(q *panelPlan, c box) bool {
+	for _, l := range q.Layers {
+		if _, ok := l.(scene.Rule); !ok && !p.freeOf(q, l, c) {
+			return false
+		}
 	}
-	p.s.text(rs, q.box.x1-0.6*fs, ty, fs, end, false, paint{ink: true, alpha: 1})
+	return true
 }
 
 func decimalText(v float64) []mark.Run {

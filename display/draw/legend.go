@@ -1,6 +1,8 @@
 package draw
 
 import (
+	"slices"
+
 	"levelsum/display/internal/mark"
 	"levelsum/display/internal/scene"
 )
@@ -44,12 +46,34 @@ func newLegend(f *scene.Figure, size float64) legend {
 				name = y.Name
 			}
 			if name != "" {
-				rs := mark.Label(name)
+				rs := shorten(mark.Label(name), size, points(f.Width)-(swatch+3.5)*size)
 				l.entries = append(l.entries, entry{name: rs, layer: y, w: (swatch+0.5)*size + width(rs, size)})
 			}
 		}
 	}
 	return l
+}
+
+// shorten cuts text that is wider than its room; the whole name is in the
+// alternative text.
+func shorten(rs []mark.Run, size, room float64) []mark.Run {
+	if width(rs, size) <= room {
+		return rs
+	}
+	out := slices.Clone(rs)
+	for len(out) > 0 {
+		last := &out[len(out)-1]
+		t := []rune(last.Text)
+		if len(t) <= 1 {
+			out = out[:len(out)-1]
+			continue
+		}
+		last.Text = string(t[:len(t)-1])
+		if width(out, size)+size*faceOf(mark.Run{}).advance('…') <= room {
+			break
+		}
+	}
+	return append(out, mark.Run{Text: "…"})
 }
 
 // wrap arranges the entries in rows above the panels.
@@ -168,10 +192,10 @@ func (p *plan) freeOf(q *panelPlan, l scene.Layer, c box) bool {
 	case scene.Rule:
 		if l.Vertical {
 			x := p.x.place(l.At)
-			return x+ruleLabelWidth(l, p.size) < c.x0 || x > c.x1
+			return x < c.x0 || x > c.x1
 		}
 		y := q.y.place(l.At)
-		return y < c.y0 || y-1.4*p.size > c.y1
+		return y < c.y0 || y > c.y1
 	case scene.Contours:
 		for k := range l.Levels {
 			for _, s := range contour(l.X, l.Y, l.Z, l.Levels[k]) {
