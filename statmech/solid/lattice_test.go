@@ -131,6 +131,7 @@ func models() []Differentiable {
 		&FerroSpinWave{Coefficient: 2e-3, Gap: 0.1 * unit.K}, &AntiferroSpinWave{Coefficient: 3e-5, Gap: 0.3 * unit.K},
 		&Schottky{Energies: []unit.Energy{40 * unit.PerCm, 0, 95 * unit.PerCm}, Degeneracies: []float64{2, 1, 3}, Sites: 2},
 		&ExponentialGap{A: 5 * unit.JPerMolK, Gap: 60 * unit.K}, &PowerLaw{Coefficient: 2e-4, Power: 2.5}, &NuclearTail{A: 3},
+		&Dilated{Lattice: &Debye{Theta: 343 * unit.K, Modes: 3}, A: 3.9e-6},
 		Sum{&Debye{Theta: 343 * unit.K, Modes: 3}, &Electronic{Gamma: 1 * unit.MilliJPerMolK2}},
 	}
 }
@@ -248,6 +249,9 @@ func fieldsOf(m Differentiable) []parameter {
 			all = append(all, fieldsOf(term.(Differentiable))...)
 		}
 		return all
+	}
+	if d, ok := m.(*Dilated); ok {
+		return append(fieldsOf(d.Lattice.(Differentiable)), parameter{"A", &d.A})
 	}
 	return m.(interface{ fields() []parameter }).fields()
 }
