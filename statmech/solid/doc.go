@@ -26,7 +26,7 @@
 // The models here are of constant volume. At the low pressure of the
 // laboratory the enthalpy increment of a solid at constant volume is its
 // energy increment, and that is what EnthalpyIncrement returns; what heating
-// at constant pressure adds XX
+// at constant pressure adds is [Expansion] and [NernstLindemann].
 //
 // # Fits
 //
