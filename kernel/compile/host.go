@@ -87,7 +87,7 @@ func (k *Kit) Fits() error {
 	if m.Go != runtime.Version() {
 		return &Unavailable{Reason: fmt.Sprintf("this levelsum was built with %s, its compiled packages with %s", runtime.Version(), m.Go), Do: "run install.sh again"}
 	}
-	if m.Race != Race {
+	if here := Race; m.Race != here {
 		return &Unavailable{Reason: "this levelsum and its compiled packages differ in the flag -race", Do: "run levelsum install"}
 	}
 	return CanOpen()
