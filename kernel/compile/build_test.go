@@ -270,6 +270,39 @@ func TestBuildNeedsNoCachesOfGo(t *testing.T) {
 	}
 }
 
+func TestFoldersOfAnyName(t *testing.T) {
+	h, k := open(t)
+	dir := filepath.Join(t.TempDir(), "Zwischen speicher=ö %20 'x'")
+	own, err := compile.Open(k.Dir, dir)
+	if err != nil {
+		t.Fatal(err)
+	}
+	p := build(t, own, "cell/odd", "c.Run", pack("cell/odd", "/*line In[1]:1:1*/package cell\nfunc Run(any) any { panic(1) }\n"))
+	if got := run(t, h, p); !strings.Contains(got, "In[1]:2 cell/odd.Run\n") {
+		t.Errorf("got %q", got)
+	}
+}
+
+func TestEmptyFileInCache(t *testing.T) {
+	h, k := open(t)
+	p := build(t, k, "cell/empty", "c.Run", pack("cell/empty", "package cell\nfunc Run(any) any { return 3 }\n"))
+	files, err := filepath.Glob(filepath.Join(k.Cache.Dir, "??", "*"))
+	if err != nil || len(files) != 2 {
+		t.Fatalf("the cache holds %v (%v)", files, err)
+	}
+	for _, f := range files {
+		if err := os.Truncate(f, 0); err != nil {
+			t.Fatal(err)
+		}
+	}
+	if again := build(t, k, "cell/empty", "c.Run"); again.File != p.File || again.Compiled != 2 {
+		t.Errorf("built %+v, want %+v built again", again, p)
+	}
+	if got := run(t, h, p); got != "int: 3\n" {
+		t.Errorf("got %q", got)
+	}
+}
+
 func TestRefusedImports(t *testing.T) {
 	_, k := open(t)
 	for _, imp := range []string{"example.com/none", "cell/none"} {

@@ -39,7 +39,9 @@ func (c *Cache) name(key, ext string) string {
 // get returns the file of a key, and marks it as used.
 func (c *Cache) get(key, ext string) (file string, ok bool) {
 	file = c.name(key, ext)
-	if !exists(file) {
+	// An empty file is what a crash of the machine may leave: files are not
+	// forced to the disk.
+	if info, err := os.Stat(file); err != nil || info.Size() == 0 {
 		return file, false
 	}
 	now := time.Now()
