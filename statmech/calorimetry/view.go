@@ -2,9 +2,7 @@ package calorimetry
 
 import (
 	"fmt"
-	"html"
 	"math"
-	"strings"
 
 	"levelsum/display"
 	"levelsum/statmech/uncertain"
@@ -75,40 +73,15 @@ func share(part, total uncertain.Quantity) string {
 	return fmt.Sprintf("%.1f", s)
 }
 
-// view writes rows, the first being the head, as plain text and HTML.
+// view makes a table of rows, the first being the head, with lines below.
 func view(title string, rows [][]string, lines []string) display.View {
-	width := make([]int, len(rows[0]))
-	for _, r := range rows {
-		for i, c := range r {
-			width[i] = max(width[i], len([]rune(c)))
+	t := display.Table{Caption: title, Notes: lines, Limit: 400}
+	for i, head := range rows[0] {
+		cells := make([]string, 0, len(rows)-1)
+		for _, r := range rows[1:] {
+			cells = append(cells, r[i])
 		}
+		t.Columns = append(t.Columns, display.Column{Quantity: head, Values: cells})
 	}
-	var text, page strings.Builder
-	fmt.Fprintf(&text, "%s\n", title)
-	fmt.Fprintf(&page, "<table>\n<caption>%s</caption>\n", html.EscapeString(title))
-	for k, r := range rows {
-		tag := "td"
-		if k == 0 {
-			tag = "th"
-		}
-		page.WriteString("<tr>")
-		for i, c := range r {
-			pad := strings.Repeat(" ", width[i]-len([]rune(c)))
-			if i == 0 {
-				text.WriteString(c + pad)
-			} else {
-				text.WriteString("  " + pad + c)
-			}
-			fmt.Fprintf(&page, "<%s>%s</%s>", tag, html.EscapeString(c), tag)
-		}
-		text.WriteString("\n")
-		page.WriteString("</tr>\n")
-	}
-	page.WriteString("</table>\n<ul>\n")
-	for _, l := range lines {
-		text.WriteString(l + "\n")
-		page.WriteString("<li>" + html.EscapeString(l) + "</li>\n")
-	}
-	page.WriteString("</ul>\n")
-	return display.View{Data: map[string]any{"text/plain": strings.TrimRight(text.String(), "\n"), "text/html": page.String()}}
+	return t.View()
 }

@@ -2,9 +2,7 @@ package data
 
 import (
 	"fmt"
-	"html"
 	"strconv"
-	"strings"
 
 	"levelsum/display"
 )
@@ -46,44 +44,15 @@ func (t *Table) View() display.View {
 	return view(t.Name, rows, lines)
 }
 
-// view writes rows, the first being the head, as plain text and HTML.
+// view makes a table of rows, the first being the head, with lines below.
 func view(title string, rows [][]string, lines []string) display.View {
-	width := make([]int, len(rows[0]))
-	for _, r := range rows {
-		for i, c := range r {
-			width[i] = max(width[i], len([]rune(c)))
+	t := display.Table{Caption: title, Notes: lines, Limit: 400}
+	for i, head := range rows[0] {
+		cells := make([]string, 0, len(rows)-1)
+		for _, r := range rows[1:] {
+			cells = append(cells, r[i])
 		}
+		t.Columns = append(t.Columns, display.Column{Quantity: head, Values: cells})
 	}
-	var text, page strings.Builder
-	fmt.Fprintf(&text, "%s\n", title)
-	fmt.Fprintf(&page, "<table>\n<caption>%s</caption>\n", html.EscapeString(title))
-	for k, r := range rows {
-		tag := "td"
-		if k == 0 {
-			tag = "th"
-		}
-		page.WriteString("<tr>")
-		var row strings.Builder
-		for i, c := range r {
-			pad := strings.Repeat(" ", width[i]-len([]rune(c)))
-			if i > 0 {
-				row.WriteString("  ")
-			}
-			if i >= 3 && i <= 5 { // numbers to the right
-				row.WriteString(pad + c)
-			} else {
-				row.WriteString(c + pad)
-			}
-			fmt.Fprintf(&page, "<%s>%s</%s>", tag, html.EscapeString(c), tag)
-		}
-		text.WriteString(strings.TrimRight(row.String(), " ") + "\n")
-		page.WriteString("</tr>\n")
-	}
-	page.WriteString("</table>\n<ul>\n")
-	for _, l := range lines {
-		text.WriteString(l + "\n")
-		page.WriteString("<li>" + html.EscapeString(l) + "</li>\n")
-	}
-	page.WriteString("</ul>\n")
-	return display.View{Data: map[string]any{"text/plain": strings.TrimRight(text.String(), "\n"), "text/html": page.String()}}
+	return t.View()
 }

@@ -5,6 +5,7 @@ import (
 	"strings"
 	"testing"
 
+	"levelsum/display"
 	"levelsum/statmech/data"
 	"levelsum/statmech/solid"
 	"levelsum/statmech/unit"
@@ -101,5 +102,26 @@ func within(t testing.TB, what string, got, want, tol float64) {
 	t.Helper()
 	if !(math.Abs(got-want) <= tol) {
 		t.Errorf("%s = %.6g, want %g ± %g", what, got, want, tol)
+	}
+}
+
+// TestFigure: a result can stand in a figure with its band, and residuals from
+// another data set are refused.
+func TestFigure(t *testing.T) {
+	run := copper(t).Within(1, 10)
+	deb, el := solid.Debye{Theta: 300}, solid.Electronic{Gamma: 1e-4}
+	res, err := HeatCapacity(solid.Sum{&el, &deb}, run, Vary(&deb.Theta, &el.Gamma), AbsoluteSigma)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if err := (display.Figure{X: run.T, Y: run.Cp, Err: run.U, Curve: res.Curve(), Residuals: true}).Check(); err != nil {
+		t.Error(err)
+	}
+	other := copper(t).Within(20, 100)
+	if err := (display.Figure{X: other.T, Y: other.Cp, Curve: res.Curve(), Residuals: true}).Check(); err == nil || !strings.Contains(err.Error(), "another data set") {
+		t.Errorf("residuals of other data: %v", err)
+	}
+	if u := res.StandardUncertainties([]float64{5}); math.Abs(u[0]-res.At(5).StandardUncertainty()) > 1e-6*u[0] {
+		t.Errorf("u of the curve %g, %g by At", u[0], res.At(5).StandardUncertainty())
 	}
 }

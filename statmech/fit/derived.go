@@ -3,6 +3,7 @@ package fit
 import (
 	"math"
 
+	"levelsum/display"
 	"levelsum/statmech/uncertain"
 )
 
@@ -114,8 +115,15 @@ type FittedCurve struct{ res *Result }
 // from it belong to the figure's data.
 func (r *Result) Curve() FittedCurve { return FittedCurve{r} }
 
-// Curve returns the function itself.
-func (c FittedCurve) Curve() func(x []float64) []float64 { return c.res.Values }
+// Curve returns the function with its standard uncertainty, which a figure
+// draws as a band; no band if the standard uncertainties were withheld.
+func (c FittedCurve) Curve() display.Curve {
+	curve := display.Curve{Name: "fit", F: c.res.Values}
+	if c.res.Withheld == "" {
+		curve.U = c.res.StandardUncertainties
+	}
+	return curve
+}
 
 // At returns the value at x.
 func (c FittedCurve) At(x float64) float64 { return c.res.Values([]float64{x})[0] }

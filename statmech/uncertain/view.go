@@ -2,7 +2,6 @@ package uncertain
 
 import (
 	"fmt"
-	"html"
 	"math"
 	"strconv"
 	"strings"
@@ -94,35 +93,15 @@ func valueAt(v, u float64) string {
 	return s
 }
 
-// table writes rows, the first being the head, as plain text and HTML.
+// table makes a table of rows, the first being the head, with a line below.
 func table(rows [][]string, foot string) display.View {
-	width := make([]int, len(rows[0]))
-	for _, r := range rows {
-		for i, c := range r {
-			width[i] = max(width[i], len([]rune(c)))
+	t := display.Table{Caption: "", Notes: strings.Split(foot, "; "), Limit: 400}
+	for i, head := range rows[0] {
+		cells := make([]string, 0, len(rows)-1)
+		for _, r := range rows[1:] {
+			cells = append(cells, r[i])
 		}
+		t.Columns = append(t.Columns, display.Column{Quantity: head, Values: cells})
 	}
-	var text, page strings.Builder
-	page.WriteString("<table>\n")
-	for k, r := range rows {
-		cell := "td"
-		if k == 0 {
-			cell = "th"
-		}
-		page.WriteString("<tr>")
-		for i, c := range r {
-			pad := strings.Repeat(" ", width[i]-len([]rune(c)))
-			if i == 0 {
-				text.WriteString(c + pad)
-			} else {
-				text.WriteString("  " + pad + c)
-			}
-			fmt.Fprintf(&page, "<%s>%s</%s>", cell, html.EscapeString(c), cell)
-		}
-		text.WriteString("\n")
-		page.WriteString("</tr>\n")
-	}
-	page.WriteString("</table>\n<p>" + html.EscapeString(foot) + "</p>\n")
-	text.WriteString(foot)
-	return display.View{Data: map[string]any{"text/plain": text.String(), "text/html": page.String()}}
+	return t.View()
 }
