@@ -73,9 +73,12 @@ func badHandshakes() map[string][]byte {
 	}
 }
 
+// noHurry keeps the deadline of the handshake out of a test.
+var noHurry = small(func(l *limits) { l.handshake = time.Hour })
+
 func TestBadHandshakesEndTheirConnectionOnly(t *testing.T) {
 	for _, kind := range []Kind{Router, Rep, XPub} {
-		s := listen(t, kind, Options{})
+		s := listen(t, kind, Options{limits: noHurry})
 		for name, b := range badHandshakes() {
 			if kind == Router && name == "type of our own kind" {
 				b = append(greeting[:greetingSize:greetingSize], appendReady(nil, "SUB", "")...)
@@ -132,7 +135,7 @@ func badTraffic(kind Kind) map[string][]byte {
 
 func TestBadTrafficEndsItsConnectionOnly(t *testing.T) {
 	for _, kind := range []Kind{Router, Rep, XPub} {
-		s := listen(t, kind, Options{})
+		s := listen(t, kind, Options{limits: noHurry})
 		for name, b := range badTraffic(kind) {
 			c := connect(t, s, kind.partners()[0], "")
 			c.Conn.Write(b) // may be closed while it is being written

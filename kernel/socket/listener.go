@@ -228,7 +228,7 @@ func (l *listener) start() {
 func (l *listener) accept() {
 	defer l.wg.Done()
 	var delay time.Duration
-	for {
+	for n := 0; ; n++ {
 		select {
 		case l.slots <- struct{}{}:
 		case <-l.stopping:
@@ -238,7 +238,7 @@ func (l *listener) accept() {
 		if err == nil {
 			delay = 0
 			l.wg.Add(1)
-			go l.serve(c)
+			go l.serve(c, n)
 			continue
 		}
 		<-l.slots
@@ -254,12 +254,12 @@ func (l *listener) accept() {
 	}
 }
 
-// serve is the life of one connection: handshake, registry, hand-over to
-// zmq4, and then writing what zmq4 has for it.
-func (l *listener) serve(c net.Conn) {
+// serve is the life of one connection, the nth: handshake, registry, hand-over
+// to zmq4, and then writing what zmq4 has for it.
+func (l *listener) serve(c net.Conn, n int) {
 	defer l.wg.Done()
 	defer func() { <-l.slots }()
-	p := l.admit(c)
+	p := l.admit(c, n)
 	if p == nil {
 		c.Close()
 		return
@@ -276,8 +276,10 @@ func (l *listener) serve(c net.Conn) {
 }
 
 // admit does the handshake and enters the peer into the registry. It returns
-// nil if there is nothing to be served.
-func (l *listener) admit(c net.Conn) *peer {
+// nil if there is nothing to be served. Of two connections with one identity
+// the newest wins, which is the one that was accepted last: its handshake may
+// have ended first.
+func (l *listener) admit(c net.Conn, n int) *peer {
 	l.mu.Lock()
 	if l.stopped {
 		l.mu.Unlock()
@@ -296,13 +298,17 @@ func (l *listener) admit(c net.Conn) *peer {
 	}
 	var old *peer
 	if l.kind == Router {
-		old = l.byID[p.id]
+		if old = l.byID[p.id]; old != nil && old.n > n {
+			l.mu.Unlock()
+			return nil
+		}
+		p.n = n
 		l.byID[p.id] = p
 	}
 	l.peers = append(l.peers[:len(l.peers):len(l.peers)], p)
 	l.mu.Unlock()
 	if old != nil {
-		old.shut() // the newest connection of an identity wins
+		old.shut()
 	}
 	return p
 }

@@ -4,7 +4,6 @@ import (
 	"bufio"
 	"net"
 	"sync"
-	"sync/atomic"
 	"time"
 )
 
@@ -18,9 +17,10 @@ type peer struct {
 	l    *listener
 	c    net.Conn
 	id   string
+	n    int           // of the listener's connections
 	done chan struct{} // closed by shut
 	once sync.Once
-	up   atomic.Bool // zmq4 knows the peer: what is sent to it arrives
+	up   chan struct{} // closed when zmq4 knows the peer: what is sent to it arrives
 
 	sending sync.Mutex // ROUTER: one Send to this peer at a time
 
@@ -31,7 +31,7 @@ type peer struct {
 
 // newPeer returns the peer of a connection with its handshake behind it.
 func newPeer(l *listener, c net.Conn, r *bufio.Reader, socketType, id string) *peer {
-	p := &peer{l: l, c: c, id: id, done: make(chan struct{})}
+	p := &peer{l: l, c: c, id: id, done: make(chan struct{}), up: make(chan struct{})}
 	p.input.r = r
 	p.input.in = appendReady(greeting[:greetingSize:greetingSize], socketType, id)
 	p.output.skip = greetingSize

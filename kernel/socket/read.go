@@ -20,6 +20,7 @@ type input struct {
 	r      *bufio.Reader
 	in     []byte // what zmq4 reads next: at first a handshake, then one message at a time
 	off    int    // how much of it zmq4 has read
+	known  bool   // up is closed
 	topics map[string]int
 	bytes  int          // of the topics
 	event  *topicChange // handed to zmq4, not yet reported
@@ -53,7 +54,10 @@ func (p *peer) Read(b []byte) (int, error) {
 // before. So after the handshake its tables know the peer, since zmq4 enters a
 // connection there before it starts the reader; and a subscription counts.
 func (p *peer) fill() error {
-	p.up.Store(true)
+	if !p.known {
+		p.known = true
+		close(p.up)
+	}
 	if e := p.event; e != nil {
 		p.event = nil
 		p.report(*e)
@@ -217,13 +221,10 @@ func (p *peer) change(c topicChange) (ok bool, err error) {
 
 // unsubscribed reports the end of a dead peer's subscriptions.
 func (p *peer) unsubscribed() {
-	if p.event != nil && p.event.on { // its beginning was not reported
-		delete(p.topics, string(p.event.topic))
-	}
 	for _, topic := range slices.Sorted(maps.Keys(p.topics)) {
 		p.report(topicChange{[]byte(topic), false})
 	}
-	p.event, p.topics = nil, nil
+	p.topics = nil
 }
 
 // report tells the owner of the socket, unless it is closing.

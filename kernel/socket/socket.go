@@ -217,8 +217,15 @@ func (s *Socket) route(frames [][]byte) error {
 	// zmq4 says nothing about unknown identities, and blocks until the first
 	// peer has come.
 	p := s.l.lookup(frames[0])
-	if p == nil || !p.up.Load() {
+	if p == nil {
 		return ErrNoPeer
+	}
+	select {
+	case <-p.up: // zmq4 is told of the peer without a wait, so this is soon
+	case <-p.done:
+		return ErrNoPeer
+	case <-s.l.stopping:
+		return ErrClosed
 	}
 	p.sending.Lock()
 	defer p.sending.Unlock()

@@ -2,8 +2,10 @@ package socket
 
 import (
 	"errors"
+	"fmt"
 	"io"
 	"net"
+	"runtime"
 	"strings"
 	"testing"
 	"testing/synctest"
@@ -123,6 +125,66 @@ func TestSilenceEndsAfterTenSeconds(t *testing.T) {
 		io.Copy(io.Discard, ours)
 		if d := time.Since(start); d != 10*time.Second {
 			t.Errorf("a silent connection was closed after %v, want 10 s", d)
+		}
+	})
+}
+
+// Of two connections with one identity the one that came last stays, although
+// its handshake ends first.
+func TestNewestIdentityIsTheOneAcceptedLast(t *testing.T) {
+	bubble(t, Router, Options{}, func(t *testing.T, s *Socket, b *switchboard) {
+		old, theirs := net.Pipe()
+		b.conns <- theirs
+		young := b.call(t, "DEALER", "twin")
+		synctest.Wait()
+		go io.Copy(io.Discard, old)
+		old.Write(appendReady(greeting[:greetingSize:greetingSize], "DEALER", "twin"))
+		synctest.Wait()
+		if _, err := old.Write(message("still here?")); err == nil {
+			t.Error("the older connection is open")
+		}
+		if err := s.Send(frames("twin", "hello")); err != nil {
+			t.Fatal(err)
+		}
+		young.want("hello")
+		young.Close()
+	})
+}
+
+// Close does not wait for a handshake.
+func TestCloseEndsHandshakes(t *testing.T) {
+	synctest.Test(t, func(t *testing.T) {
+		b := newSwitchboard()
+		s, err := listenOn(Rep, b, Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		ours, theirs := net.Pipe()
+		b.conns <- theirs
+		start := time.Now()
+		s.Close(time.Minute)
+		if d := time.Since(start); d != 0 {
+			t.Errorf("Close has waited %v for a silent connection", d)
+		}
+		ours.Close()
+	})
+}
+
+// What is sent to an identity between its handshake and the moment at which
+// zmq4 knows it waits for the latter.
+func TestSendAtOnceAfterTheHandshake(t *testing.T) {
+	bubble(t, Router, Options{}, func(t *testing.T, s *Socket, b *switchboard) {
+		for i := range 50 {
+			id := fmt.Sprint(i)
+			c := b.call(t, "DEALER", id)
+			for s.l.lookup([]byte(id)) == nil {
+				runtime.Gosched()
+			}
+			if err := s.Send(frames(id, "hello")); err != nil {
+				t.Fatal(err)
+			}
+			c.want("hello")
+			c.Close()
 		}
 	})
 }
