@@ -124,10 +124,25 @@ func entropy(m model, fn string, T unit.Temperature) unit.MolarEntropy {
 
 func entropies(m model, fn string, ts []unit.Temperature) []unit.MolarEntropy {
 	s := make([]unit.MolarEntropy, len(ts))
-	for i, t := range kelvins(m, fn, ts) {
-		s[i] = unit.MolarEntropy(m.reduced(t).Entropy()) * unit.R
+	for i, r := range reducedAt(m, kelvins(m, fn, ts)) {
+		s[i] = unit.MolarEntropy(r.Entropy()) * unit.R
 	}
 	return s
+}
+
+// reducedAt returns the functions at every temperature, by the model's own
+// slice form where it has one.
+func reducedAt(m model, ts []float64) []statmech.Reduced {
+	if many, ok := m.(interface {
+		reducedAt(ts []float64) []statmech.Reduced
+	}); ok {
+		return many.reducedAt(ts)
+	}
+	out := make([]statmech.Reduced, len(ts))
+	for i, t := range ts {
+		out[i] = m.reduced(t)
+	}
+	return out
 }
 
 func entropyIncrement(m model, fn string, from, to unit.Temperature) unit.MolarEntropy {
@@ -147,8 +162,9 @@ func enthalpyIncrement(m model, fn string, from, to unit.Temperature) unit.Molar
 func enthalpyIncrements(m model, fn string, from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
 	base := energy(m, fn, from)
 	h := make([]unit.MolarEnergy, len(ts))
-	for i, t := range kelvins(m, fn, ts) {
-		h[i] = unit.MolarEnergy(m.reduced(t).U*t)*unit.MolarEnergy(unit.GasConstant) - base
+	x := kelvins(m, fn, ts)
+	for i, r := range reducedAt(m, x) {
+		h[i] = unit.MolarEnergy(r.U*x[i])*unit.MolarEnergy(unit.GasConstant) - base
 	}
 	return h
 }

@@ -97,7 +97,17 @@ func EinsteinS(x float64) float64 {
 // EinsteinThermal returns ln q, U = (⟨E⟩-E₀)/kT and C = C_V/k of one harmonic
 // mode at once; see [EinsteinLogQ], [EinsteinU] and [EinsteinC].
 func EinsteinThermal(x float64) (lnq, u, c float64) {
-	return EinsteinLogQ(x), EinsteinU(x), EinsteinC(x)
+	switch {
+	case x > 0 && x < math.Ln2:
+		d := -math.Expm1(-x)
+		lnq, u = -math.Log(d), x*(1-d)/d
+	case x >= math.Ln2 && x < expm1Above:
+		e := math.Exp(-x)
+		lnq, u = -math.Log1p(-e), x*e/(1-e)
+	default:
+		return EinsteinLogQ(x), EinsteinU(x), EinsteinC(x)
+	}
+	return lnq, u, EinsteinC(x)
 }
 
 // EinsteinCSlope returns dC/dx of [EinsteinC],

@@ -19,6 +19,13 @@ func TestEinsteinAccuracy(t *testing.T) {
 	for i := range names {
 		w[i].log(t, names[i])
 	}
+	var together [3]worst
+	for _, row := range readReference(t, "mpmath", "einstein_full_range.csv") {
+		lnq, u, c := EinsteinThermal(number(t, row[0]))
+		for i, got := range []float64{c, u, lnq} {
+			together[i].see(t, "EinsteinThermal", row[0], got, exactly(t, row[[]int{1, 2, 4}[i]]), 0, 3)
+		}
+	}
 	for _, row := range readReference(t, "mpmath", "einstein_oscillator_reduced.csv") {
 		x := number(t, row[0])
 		for i, got := range []float64{EinsteinC(x), EinsteinU(x), EinsteinS(x), -EinsteinLogQ(x)} {

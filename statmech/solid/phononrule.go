@@ -1,0 +1,156 @@
+package solid
+
+import "math"
+
+// A rule is a quadrature over a density of states: ∫ g f dω ≈ Σ weightᵢ f(wᵢ)
+// for the f of a harmonic mode at every temperature from low on.
+//
+// The frequencies are cut into panels that double in width from ω = 0 up to
+// 4 low, are 4 low wide up to ω = 45 low and grow as ω beyond, where only
+// temperatures above ω/45 still see them. In each, f is replaced by its
+// interpolation at 20 Chebyshev nodes, and the weights of the nodes are the
+// integrals of g times Lagrange's polynomials. Panels with fewer points than
+// that keep their points.
+type rule struct {
+	low       float64 // K
+	first     float64 // K, where the lowest panel begins; Gauss points below
+	w, weight []float64
+}
+
+const (
+	panelNodes = 20
+	// rulesKept is how many rules a Phonons remembers.
+	rulesKept = 4
+)
+
+// rule returns a rule for temperatures from T on.
+func (p *Phonons) rule(T float64) rule {
+	// A lowest temperature of a few fixed ones in a decade, so that single
+	// calls at different temperatures share rules. Nothing is gained above the
+	// highest frequency.
+	top := p.knots[len(p.knots)-1].w
+	low := min(T, top)
+	low = math.Exp2(math.Floor(math.Log2(low)))
+	p.mu.Lock()
+	defer p.mu.Unlock()
+	for _, r := range p.rules {
+		if r.low == low {
+			return r
+		}
+	}
+	r := p.makeRule(low)
+	p.rules = append([]rule{r}, p.rules[:min(len(p.rules), rulesKept-1)]...)
+	return r
+}
+
+func (p *Phonons) makeRule(low float64) rule {
+	r := rule{low: low}
+	top := p.knots[len(p.knots)-1].w
+	// The lowest panel begins where what is below no longer counts: g grows as
+	// ω², so 2^-18 of the first interval holds 2^-54 of its states; a density
+	// that does not vanish at 0 needs more.
+	first := p.knots[0].w
+	if first == 0 {
+		doublings := 18
+		if p.knots[0].g > 0 {
+			doublings = 56
+		}
+		start := min(p.knots[1].w, 4*low)
+		first = start * math.Exp2(-float64(doublings))
+		r.first = first
+		r.add(p.piece(0, 0, first))
+	}
+	cell := 0
+	for a := first; a < top; {
+		width := a
+		if width > 4*low {
+			width = max(4*low, a*4/45)
+		}
+		b := min(a+width, top)
+		if top-b < 1e-9*top {
+			b = top
+		}
+		var points rule
+		for p.knots[cell+1].w <= a {
+			cell++
+		}
+		for i := cell; i < len(p.knots)-1 && p.knots[i].w < b; i++ {
+			points.add(p.piece(i, max(a, p.knots[i].w), min(b, p.knots[i+1].w)))
+		}
+		r.add(points.condensed(a, b))
+		a = b
+	}
+	return r
+}
+
+func (r *rule) add(w, weight []float64) {
+	r.w = append(r.w, w...)
+	r.weight = append(r.weight, weight...)
+}
+
+// piece returns Gauss points for a part of the cubic between knots i and i+1.
+// Six points are exact for the cubic times a polynomial of degree eight, and a
+// part is at most one panel wide; wide parts are cut.
+func (p *Phonons) piece(i int, a, b float64) (w, weight []float64) {
+	parts := 1
+	if b-a > a/8 && a > 0 {
+		parts = min(8, int(math.Ceil(8*(b-a)/a)))
+	}
+	if !(b > a) {
+		return nil, nil
+	}
+	h := (b - a) / float64(parts)
+	for k := range parts {
+		mid := a + h*(float64(k)+0.5)
+		for j, x := range gauss6Nodes {
+			v := mid + h/2*x
+			w = append(w, v)
+			weight = append(weight, h/2*gauss6Weights[j]*p.density(i, v))
+		}
+	}
+	return w, weight
+}
+
+// condensed returns the panel's points, or Chebyshev nodes in their place if
+// those are fewer.
+func (r rule) condensed(a, b float64) (w, weight []float64) {
+	if len(r.w) <= panelNodes {
+		return r.w, r.weight
+	}
+	mid, half := (a+b)/2, (b-a)/2
+	weight = make([]float64, panelNodes)
+	var moment [panelNodes]float64 // ∫ g Tₖ dω
+	for i, v := range r.w {
+		t := (v - mid) / half
+		t0, t1 := 1.0, t
+		for k := range moment {
+			moment[k] += r.weight[i] * t0
+			t0, t1 = t1, 2*t*t1-t0
+		}
+	}
+	// Weight of node j: (1/n) Σ' 2 Tₖ(tⱼ) moment_k.
+	for j := range panelNodes {
+		t := math.Cos(math.Pi * (float64(j) + 0.5) / panelNodes)
+		w = append(w, mid+half*t)
+		sum := moment[0]
+		t0, t1 := 1.0, t
+		for k := 1; k < panelNodes; k++ {
+			t0, t1 = t1, 2*t*t1-t0
+			sum += 2 * t0 * moment[k]
+		}
+		weight[j] = sum / panelNodes
+	}
+	return w, weight
+}
+
+// Gauss-Legendre points on [-1, 1]: Abramowitz and Stegun, table 25.4, n = 6.
+var (
+	gauss6Nodes = [...]float64{
+		-0.932469514203152027812301554494, -0.661209386466264513661399595020, -0.238619186083196908630501721681,
+		0.238619186083196908630501721681, 0.661209386466264513661399595020, 0.932469514203152027812301554494,
+	}
+	gauss6Weights = [...]float64{
+		0.171324492379170345040296142173, 0.360761573048138607569833513838, 0.467913934572691047389870343990,
+		0.467913934572691047389870343990, 0.360761573048138607569833513838, 0.171324492379170345040296142173,
+	}
+)
