@@ -3,6 +3,7 @@ package gas
 import (
 	"fmt"
 	"math"
+	"sync"
 
 	"levelsum/statmech"
 	"levelsum/statmech/unit"
@@ -131,4 +132,69 @@ func (a Anharmonic) Levels(reach unit.Energy) (*statmech.Levels, error) {
 		return nil, err
 	}
 	return statmech.NewLevels(es, gs)
+}
+
+// anharmonicMode is the sum as a Mode: levels are found up to what the highest
+// temperature asked for needs.
+type anharmonicMode struct {
+	a  Anharmonic
+	mu sync.Mutex // guards levels and reach
+
+	levels *statmech.Levels
+	reach  unit.Energy
+}
+
+func newAnharmonicMode(a Anharmonic) (*anharmonicMode, error) {
+	m := &anharmonicMode{a: a}
+	if _, err := m.to(300 * unit.K); err != nil {
+		return nil, err
+	}
+	return m, nil
+}
+
+func (m *anharmonicMode) to(T unit.Temperature) (*statmech.Levels, error) {
+	m.mu.Lock()
+	defer m.mu.Unlock()
+	if need := 40 * T.AsEnergy(); m.levels == nil || need > m.reach {
+		need = max(need, 1.5*m.reach)
+		l, err := m.a.Levels(need)
+		if err != nil {
+			return nil, err
+		}
+		m.levels, m.reach = l, need
+	}
+	return m.levels, nil
+}
+
+// Reduced returns the functions at T. It panics with a [*statmech.DomainError]
+// where the sum has too many levels.
+func (m *anharmonicMode) Reduced(T unit.Temperature) statmech.Reduced {
+	statmech.CheckTemperature("gas.Anharmonic.Reduced", T)
+	l, err := m.to(T)
+	if err != nil {
+		panic(&statmech.DomainError{Func: "gas.Anharmonic.Reduced", Arg: "T", Value: T.String(), Want: "lower: " + err.Error()})
+	}
+	return l.Reduced(T)
+}
+
+// ReducedAt is Reduced at each temperature.
+func (m *anharmonicMode) ReducedAt(ts []unit.Temperature) []statmech.Reduced {
+	if len(ts) == 0 {
+		return nil
+	}
+	hot := ts[0]
+	for _, T := range ts {
+		statmech.CheckTemperature("gas.Anharmonic.ReducedAt", T)
+		hot = max(hot, T)
+	}
+	l, err := m.to(hot)
+	if err != nil {
+		panic(&statmech.DomainError{Func: "gas.Anharmonic.ReducedAt", Arg: "T", Value: hot.String(), Want: "lower: " + err.Error()})
+	}
+	return l.ReducedAt(ts)
+}
+
+// ZeroPointEnergy returns G(0).
+func (m *anharmonicMode) ZeroPointEnergy() unit.Energy {
+	return m.a.energy(make([]int, len(m.a.Omega)))
 }
