@@ -13,13 +13,18 @@ import (
 // terms
 //
 //	G(v)   = ω_e u - ω_e x_e u² + ω_e y_e u³,          u = v + 1/2
-//	F_v(J) = B_v X - D_v X²,  X = J(J+1) - Ω²,
+//	F_v(J) = B_v X - D_v X² + H_e X³,  X = J(J+1) - Ω²,
 //	B_v    = B_e - α_e u + γ_e u²,  D_v = D_e + β_e u,
 //
 // each times 2J+1 and Degeneracy. Omega is 0 for a state whose rotation is
 // that of N or J from 0 (¹Σ; ³Σ with Degeneracy 3), or the Ω of a component
 // of a state in Hund's case (a), whose J begins at Ω: each component of ²Π is a
-// state of its own with Degeneracy 2 for the Λ doublet.
+// state of its own with Degeneracy 2 for the Λ doublet. A ²Π state between
+// cases (a) and (b) is given once, with SpinOrbit = A (negative if inverted) and
+// Degeneracy 2, and has the levels of E. Hill, J. H. Van Vleck, Phys. Rev. 32,
+// 250 (1928):
+//
+//	F(J) = B_v {(J+1/2)² - 1 ∓ ½ √[4(J+1/2)² + Y(Y-4)]},  Y = A/B_v.
 //
 // OmegaE is the harmonic quantum ω_e, not the fundamental ω_e - 2ω_e x_e, and
 // CentrifugalE is the D_e of centrifugal distortion, not a dissociation energy.
@@ -27,9 +32,11 @@ type DiatomicState struct {
 	Origin                                              unit.Energy // of v = 0 above v = 0 of the first state
 	Degeneracy                                          float64
 	Omega                                               float64
+	SpinOrbit                                           unit.Energy // A of a ²Π state between cases (a) and (b)
 	OmegaE, OmegaEXE, OmegaEYE                          unit.Energy
 	BE, AlphaE, GammaE                                  unit.Energy
 	CentrifugalE, BetaE                                 unit.Energy
+	SexticE                                             unit.Energy // H_e
 	Dissociation                                        unit.Energy // D₀ of this state from its v = 0; 0 for that of the first state less Origin
 	UOmegaE, UOmegaEXE, UBE, UAlphaE, UOrigin, UCentrif unit.Energy // standard uncertainties, for the budget
 }
@@ -125,17 +132,24 @@ func (d Diatomic) spectrum() (*spectrum, error) {
 		if s.OmegaE == 0 {
 			o := s
 			s = first
-			s.Origin, s.Degeneracy, s.Omega = o.Origin, o.Degeneracy, o.Omega
+			s.Origin, s.Degeneracy, s.Omega, s.SpinOrbit = o.Origin, o.Degeneracy, o.Omega, o.SpinOrbit
 		}
 		if !(s.OmegaE > 0) || !(s.BE > 0) || s.OmegaE-s.OmegaE != 0 || s.BE-s.BE != 0 {
 			return nil, &statmech.DomainError{Func: fn, Arg: arg, Value: fmt.Sprintf("OmegaE %s, BE %s", s.OmegaE, s.BE), Want: "positive and finite"}
+		}
+		if s.SpinOrbit != 0 && s.Omega != 0 {
+			return nil, fmt.Errorf("%s: %s: Omega and SpinOrbit: %w", fn, arg, ErrDouble)
 		}
 		if !(limit > 0) {
 			return nil, &statmech.DomainError{Func: fn, Arg: arg + ".Dissociation", Value: limit.String(),
 				Want: "a dissociation energy D0 (or an anharmonic constant to estimate it from): the sum over v and J has no end otherwise"}
 		}
 		vTop, jTop, why := -1, 0.0, "dissociation"
-		lowest := s.level(0, s.Omega)
+		lowest := unit.Energy(math.Inf(1))
+		for _, l := range s.ladders(0) {
+			e, _ := l.level(l.first)
+			lowest = min(lowest, s.g(0)+e)
+		}
 		for v := 0; ; v++ {
 			if s.slope(v) <= 0 {
 				why = "the turnover of G(v)"
@@ -150,27 +164,29 @@ func (d Diatomic) spectrum() (*spectrum, error) {
 				break
 			}
 			vTop = v
-			for J := s.Omega; ; J++ {
-				X := J*(J+1) - s.Omega*s.Omega
-				if dv > 0 && float64(bv) <= 2*float64(dv)*X {
-					break // dF/dX is not positive: the turnover
-				}
-				E := s.level(v, J) - lowest
-				if E > limit {
-					break
-				}
-				if v == 0 {
-					jTop = J
-				}
-				g := s.Degeneracy * (2*J + 1)
-				if d.Spin != nil {
-					g *= d.Spin.Weights[int(math.Round(J))%2]
-				}
-				if g > 0 {
-					if len(es) == mostLevels {
-						return nil, fmt.Errorf("%s: more than %d levels: give a dissociation energy", fn, mostLevels)
+			for _, l := range s.ladders(v) {
+				for J := l.first; ; J++ {
+					e, X := l.level(J)
+					if float64(bv)-2*float64(dv)*X+3*float64(s.SexticE)*X*X <= 0 {
+						break // dF/dX is not positive: the turnover
 					}
-					es, gs = append(es, s.Origin+E), append(gs, g)
+					E := s.g(v) + e - lowest
+					if E > limit {
+						break
+					}
+					if v == 0 {
+						jTop = math.Max(jTop, J)
+					}
+					g := s.Degeneracy * (2*J + 1)
+					if d.Spin != nil {
+						g *= d.Spin.Weights[int(math.Round(J))%2]
+					}
+					if g > 0 {
+						if len(es) == mostLevels {
+							return nil, fmt.Errorf("%s: more than %d levels: give a dissociation energy", fn, mostLevels)
+						}
+						es, gs = append(es, s.Origin+E), append(gs, g)
+					}
 				}
 			}
 		}
@@ -189,11 +205,44 @@ func (s DiatomicState) constants(v int) (bv, dv unit.Energy) {
 	return s.BE - unit.Energy(u)*s.AlphaE + unit.Energy(u*u)*s.GammaE, s.CentrifugalE + unit.Energy(u)*s.BetaE
 }
 
-// level returns the energy of (v, J) above the state's potential minimum.
-func (s DiatomicState) level(v int, J float64) unit.Energy {
+// A ladder is a sequence of rotational levels J = first, first+1, ... of one
+// vibrational level; level returns the energy above G(v) and the X of the
+// distortion terms.
+type ladder struct {
+	first float64
+	level func(J float64) (e unit.Energy, X float64)
+}
+
+// ladders returns one ladder, or the two of a ²Π state with spin-orbit coupling.
+func (s DiatomicState) ladders(v int) []ladder {
 	bv, dv := s.constants(v)
-	X := J*(J+1) - s.Omega*s.Omega
-	return s.g(v) + unit.Energy(float64(bv)*X) - unit.Energy(float64(dv)*X*X)
+	distorted := func(X float64) unit.Energy {
+		return unit.Energy(float64(s.SexticE)*X*X*X) - unit.Energy(float64(dv)*X*X)
+	}
+	if s.SpinOrbit == 0 {
+		return []ladder{{s.Omega, func(J float64) (unit.Energy, float64) {
+			X := J*(J+1) - s.Omega*s.Omega
+			return unit.Energy(float64(bv)*X) + distorted(X), X
+		}}}
+	}
+	Y := float64(s.SpinOrbit / bv)
+	branch := func(sign, first float64) ladder {
+		return ladder{first, func(J float64) (unit.Energy, float64) {
+			m := J + 0.5
+			root := math.Sqrt(4*m*m + Y*(Y-4))
+			N := m - 1 // of the lower branch far from the coupling, F₁
+			if sign > 0 {
+				N = m
+			}
+			X := N * (N + 1)
+			return unit.Energy(float64(bv)*(m*m-1+sign*root/2)) + distorted(X), X
+		}}
+	}
+	// J = 1/2 exists once, with the energy (2-Y)B/2 of Ω = 1/2.
+	if Y > 2 {
+		return []ladder{branch(-1, 0.5), branch(1, 1.5)}
+	}
+	return []ladder{branch(-1, 1.5), branch(1, 0.5)}
 }
 
 // mode is the spectrum as a Mode, with symmetry or spin convention applied.
