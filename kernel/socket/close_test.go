@@ -5,10 +5,13 @@ import (
 	"io"
 	"net"
 	"runtime"
+	"slices"
 	"strings"
 	"sync"
 	"testing"
 	"time"
+
+	"github.com/go-zeromq/zmq4"
 )
 
 func TestCloseDeliversWhatWasSent(t *testing.T) {
@@ -52,6 +55,50 @@ func TestCloseLingersForASlowReader(t *testing.T) {
 	c.want(big)
 	if err := <-closed; err != nil {
 		t.Error(err)
+	}
+}
+
+// A connection that is closed with input unread is reset, and what is under
+// way is lost with it. So input is read as long as something may be.
+func TestCloseDeliversDespiteAFloodOfInput(t *testing.T) {
+	for range 5 {
+		s := listen(t, Router, Options{limits: small(func(l *limits) { l.fin = time.Hour })})
+		c := connect(t, s, "DEALER", "c")
+		c.send("hello")
+		if _, err := s.Recv(); err != nil {
+			t.Fatal(err)
+		}
+		flood := message("", strings.Repeat("more", 1000))
+		flooded := make(chan struct{})
+		go func() {
+			defer close(flooded)
+			for {
+				if _, err := c.Write(flood); err != nil {
+					return
+				}
+			}
+		}()
+		text := strings.Repeat("x", 3<<20)
+		if err := s.Send(frames("c", text)); err != nil {
+			t.Fatal(err)
+		}
+		closed := make(chan error, 1)
+		go func() { closed <- s.Close(time.Hour) }()
+		<-s.l.stopping
+		c.want(text)
+		if _, err := c.next(); err != io.EOF {
+			t.Errorf("after the last message: %v, want EOF", err)
+		}
+		c.Close()
+		<-flooded
+		select {
+		case err := <-closed:
+			if err != nil {
+				t.Error(err)
+			}
+		case <-time.After(patience):
+			t.Fatal("Close has not heard that the client has gone")
+		}
 	}
 }
 
@@ -198,7 +245,7 @@ func TestChurnLeavesNothing(t *testing.T) {
 				case 0: // goes at once
 				case 1: // leaves something behind
 					if kind == XPub {
-						c.Write(message("\x01"))
+						c.Write(message("\x01gone"))
 					} else {
 						c.Write(message("", "and gone"))
 					}
@@ -227,6 +274,11 @@ func TestChurnLeavesNothing(t *testing.T) {
 				t.Errorf("%d peers are registered, want 1", n)
 			}
 			use("after")
+			if z, ok := s.z.(zmq4.Topics); ok { // of its connections, the tap among them
+				eventually(t, "zmq4 to forget who has gone", func() bool {
+					return slices.Equal(z.Topics(), []string{"", "good"})
+				})
+			}
 		})
 	}
 }

@@ -329,3 +329,43 @@ func TestSlowButAliveLosesNothing(t *testing.T) {
 		}
 	})
 }
+
+// A gate is a connection of zmq4 that takes messages only once it is open.
+type gate struct {
+	*tap
+	open chan struct{}
+}
+
+func (g gate) Write(b []byte) (int, error) {
+	select {
+	case <-g.up:
+		<-g.open
+	default: // zmq4's handshake
+	}
+	return len(b), nil
+}
+
+// What Send has given to zmq4 and zmq4 not yet to the peers is little, and
+// Send waits where it would be more.
+func TestSendDoesNotRunAhead(t *testing.T) {
+	bubble(t, XPub, Options{}, func(t *testing.T, s *Socket, b *switchboard) {
+		g := gate{newTap(), make(chan struct{})}
+		s.l.ready <- g
+		<-g.up
+		sent := 0
+		done := make(chan struct{})
+		go func() {
+			defer close(done)
+			for range 100 {
+				s.Send([][]byte{make([]byte, 100<<10)})
+				sent++
+			}
+		}()
+		synctest.Wait()
+		if sent < 10 || sent > 12 {
+			t.Errorf("%d messages of 100 kB were sent ahead, want 1 MB", sent)
+		}
+		close(g.open)
+		<-done
+	})
+}
