@@ -6,7 +6,6 @@ import (
 	"go/ast"
 	"go/token"
 	"go/types"
-	"regexp"
 	"slices"
 	"strconv"
 	"strings"
@@ -448,6 +447,10 @@ func (c *checking) attempt() (plan *Plan, errs Diagnostics, again bool) {
 		spkg.SetName("")
 	}
 
+	if c.keyed(files, plan.pkg, plan.info) || c.keyed([]*ast.File{{Name: ast.NewIdent("cell"), Decls: []ast.Decl{body}}}, spkg, plan.sinfo) {
+		return nil, nil, true
+	}
+
 	// Errors: of older decls, which only leaves them behind; of this cell.
 	outer := plan.sinfo.Scopes[body.Type]
 	for _, e := range derrs {
@@ -779,7 +782,8 @@ func (c *checking) blame(e types.Error) (*Decl, *Source) {
 // diagnose turns an error of go/types into a Diagnostic.
 func (c *checking) diagnose(e types.Error, src *Source) Diagnostic {
 	line, col := src.place(c.s.fset, e.Pos)
-	msg := strings.ReplaceAll(e.Msg, "\n", " ")
+	msg := strings.ReplaceAll(e.Msg, "\n\t", ", ")
+	msg = strings.ReplaceAll(msg, "\n", " ")
 	msg = strings.ReplaceAll(msg, `"cell".`, "")
 	return Diagnostic{Source: src, Line: line, Column: col, Msg: msg, Hint: c.hint(msg)}
 }
@@ -792,8 +796,7 @@ func (c *checking) ignorable(e types.Error, plan *Plan, outer *types.Scope) bool
 		strings.Contains(msg, "already declared through import of"),
 		strings.Contains(msg, "already declared through dot-import"),
 		strings.HasPrefix(msg, "other declaration of"),
-		strings.HasPrefix(msg, "initialization cycle") && !c.inLead(e.Pos),
-		implicitField.MatchString(msg):
+		strings.HasPrefix(msg, "initialization cycle") && !c.inLead(e.Pos):
 		return true
 	case strings.HasPrefix(msg, unusedVar):
 		// A variable of depth 0 is for later cells.
@@ -809,10 +812,6 @@ func (c *checking) ignorable(e types.Error, plan *Plan, outer *types.Scope) bool
 	}
 	return false
 }
-
-// implicitField is what go/types says of T{1}, T a struct of an older cell with
-// lower-case fields. In one package, which cells are, this is allowed.
-var implicitField = regexp.MustCompile(`^implicit assignment to unexported field \w+ in struct literal of type [\pL\pN_]+(\[.*)?$`)
 
 // unusedVar begins the error about a variable that nothing reads. It is a
 // warning in a cell, and none at depth 0, where later cells may read it.

@@ -13,8 +13,9 @@ func (s *Scope) Commit(p *Plan, reached func(name string) bool) (lost []string) 
 	for _, d := range p.dots {
 		s.dots = append(s.dots, d)
 	}
-	for _, v := range p.drop {
+	for i, v := range p.drop {
 		s.forget(v)
+		s.dropped[v] = p.Dropped[i]
 	}
 	for _, d := range p.broken {
 		s.leave(d)

@@ -109,15 +109,29 @@ func syntaxErrors(src *Source, errs ...error) Diagnostics {
 			out = append(out, Diagnostic{Source: src, Line: e.Pos.Line, Column: e.Pos.Column, Msg: "syntax error: " + e.Msg})
 		}
 	}
-	last := 1 + strings.Count(src.Text, "\n")
-	for i, d := range out {
-		if d.Line > last { // the closing brace that split adds
-			text := strings.TrimRight(src.Text, " \t\r\n")
-			at := diagnosticAt(src, len(text), "syntax error: the cell ends too early: "+strings.TrimPrefix(d.Msg, "syntax error: "))
-			out[i] = at[0]
+	// What the parser says about the end of the text, where split has added a
+	// brace, is told once, and only if nothing is wrong before.
+	last := 1 + strings.Count(strings.TrimRight(src.Text, " \t\r\n"), "\n")
+	var within, beyond Diagnostics
+	for _, d := range out {
+		if d.Line > last || strings.HasSuffix(d.Msg, "found 'EOF'") {
+			beyond = append(beyond, d)
+		} else {
+			within = append(within, d)
 		}
 	}
-	return out.sorted()
+	if len(within) > 0 {
+		return within.sorted()
+	}
+	for _, d := range beyond {
+		text := strings.TrimRight(src.Text, " \t\r\n")
+		msg := strings.TrimPrefix(d.Msg, "syntax error: ")
+		if strings.HasSuffix(msg, "found '}'") && strings.HasPrefix(msg, "expected declaration") {
+			return diagnosticAt(src, max(len(text)-1, 0), "syntax error: unexpected }")
+		}
+		return diagnosticAt(src, len(text), "syntax error: the cell ends too early: "+msg)
+	}
+	return nil
 }
 
 // place is the position of pos in its cell.

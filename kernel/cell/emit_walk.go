@@ -329,6 +329,9 @@ func (e *emitter) selector(n *ast.SelectorExpr) bool {
 		case "os.Exit":
 			e.replace(n.Pos(), n.End(), e.guard("Exit"))
 			return false
+		case "log.Fatal", "log.Fatalf", "log.Fatalln":
+			e.replace(n.Pos(), n.End(), e.guard(f.Name()))
+			return false
 		}
 	}
 	return true
@@ -336,6 +339,12 @@ func (e *emitter) selector(n *ast.SelectorExpr) bool {
 
 // ident renames one identifier.
 func (e *emitter) ident(id *ast.Ident) {
+	if id.Obj == written {
+		if o := e.info.Uses[id]; o != nil {
+			e.insert(id.Pos(), mark(o.Name())+": ")
+		}
+		return
+	}
 	o := e.info.Uses[id]
 	def := e.info.Defs[id]
 	if o == nil {

@@ -122,7 +122,7 @@ func (w *scripter) lead() {
 			w.known(v.Type())
 		}
 		line, _ := w.p.Source.place(w.p.scope.fset, in.Rhs.Pos())
-		w.s.Steps = append(w.s.Steps, Step{Stmt: -1, Line: line, Text: strings.Join(left, ", ") + " = " + w.expr(in.Rhs)})
+		w.s.Steps = append(w.s.Steps, Step{Stmt: -1, Line: line, Text: w.store(left, w.expr(in.Rhs))})
 	}
 }
 
@@ -209,7 +209,7 @@ func (w *scripter) stmt(st ast.Stmt, last bool) string {
 			op = " - 1"
 		}
 		w.arithmetic(w.info.Types[st.X].Type)
-		return l + " = " + l + op
+		return w.store([]string{l}, l+op)
 	case *ast.AssignStmt:
 		return w.assign(st)
 	case *ast.DeclStmt:
@@ -237,7 +237,7 @@ func (w *scripter) stmt(st ast.Stmt, last bool) string {
 				if len(v.Values) != 1 {
 					return w.refuse("several values assigned at once")
 				}
-				parts = append(parts, strings.Join(left, ", ")+" = "+w.expr(v.Values[0]))
+				parts = append(parts, w.store(left, w.expr(v.Values[0])))
 			}
 		}
 		return strings.Join(parts, "; ")
@@ -276,7 +276,7 @@ func (w *scripter) assign(st *ast.AssignStmt) string {
 		if len(left) == 1 && left[0] == "_" {
 			return "_ = " + w.boxed(st.Rhs[0])
 		}
-		return strings.Join(left, ", ") + " = " + w.expr(st.Rhs[0])
+		return w.store(left, w.expr(st.Rhs[0]))
 	}
 	op, ok := assignOps[st.Tok]
 	if !ok {
@@ -286,7 +286,22 @@ func (w *scripter) assign(st *ast.AssignStmt) string {
 		return w.refuse("an operation on a part of a variable")
 	}
 	w.arithmetic(w.info.Types[st.Lhs[0]].Type)
-	return left[0] + " = " + left[0] + " " + op.String() + " (" + w.expr(st.Rhs[0]) + ")"
+	return w.store(left, left[0]+" "+op.String()+" ("+w.expr(st.Rhs[0])+")")
+}
+
+// store writes an assignment by way of new variables: the interpreter loses a
+// literal that is assigned through a pointer at once.
+func (w *scripter) store(left []string, right string) string {
+	tmp := make([]string, len(left))
+	var puts strings.Builder
+	for i, l := range left {
+		tmp[i] = "_"
+		if l != "_" {
+			tmp[i] = fmt.Sprintf("%st%d", Inner, i)
+			fmt.Fprintf(&puts, "; %s = %s", l, tmp[i])
+		}
+	}
+	return strings.Join(tmp, ", ") + " := " + right + puts.String()
 }
 
 // place writes what can stand on the left of an assignment.
@@ -439,7 +454,7 @@ func (w *scripter) selector(e *ast.SelectorExpr) string {
 
 // slow are library calls that compiled cells replace, so that they can be
 // stopped or do not end the session.
-var slow = map[string]bool{"time.Sleep": true, "os.Exit": true}
+var slow = map[string]bool{"time.Sleep": true, "os.Exit": true, "log.Fatal": true, "log.Fatalf": true, "log.Fatalln": true}
 
 func (w *scripter) call(e *ast.CallExpr) string {
 	tv := w.info.Types[e]

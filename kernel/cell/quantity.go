@@ -180,6 +180,9 @@ func (c *checking) hint(msg string) string {
 		if c.drop[name] {
 			return name + " was dropped, since its type changes in this cell"
 		}
+		if why := c.s.dropped[name]; why != "" {
+			return why
+		}
 		if d := c.s.decls[name]; d != nil && d.broken {
 			return fmt.Sprintf("%s from %s no longer compiles: see the warning of the cell that changed what it uses", name, d.Source.Name())
 		}

@@ -56,6 +56,7 @@ type Scope struct {
 	methods  map[string][]*Decl
 	users    map[string]map[*Decl]bool  // session name -> decls that depend on it
 	typed    map[string]map[string]bool // type name -> variables whose type mentions it
+	dropped  map[string]string          // variables that were dropped, and why
 	slots    map[string][]*Slot         // all slots a name has had
 	sources  map[*token.File]*Source
 	units    map[*types.Package]*Unit
@@ -75,6 +76,7 @@ func NewScope(importer types.Importer, usual map[string]string) *Scope {
 		methods:  map[string][]*Decl{},
 		users:    map[string]map[*Decl]bool{},
 		typed:    map[string]map[string]bool{},
+		dropped:  map[string]string{},
 		slots:    map[string][]*Slot{},
 		sources:  map[*token.File]*Source{},
 		units:    map[*types.Package]*Unit{},

@@ -151,8 +151,8 @@ func split(fset *token.FileSet, src *Source) (*parsed, error) {
 	const mode = parser.ParseComments | parser.SkipObjectResolution | parser.AllErrors
 	df, derr := parser.ParseFile(fset, src.Name(), declPrefix+line+string(decl)+"\n", mode)
 	sf, serr := parser.ParseFile(fset, src.Name(), stmtPrefix+line+string(stmt)+"\n}\n", mode)
-	if derr != nil || serr != nil {
-		return nil, syntaxErrors(src, derr, serr)
+	if ds := syntaxErrors(src, derr, serr); len(ds) > 0 {
+		return nil, ds
 	}
 	for _, d := range df.Decls {
 		if g, ok := d.(*ast.GenDecl); ok && g.Tok == token.IMPORT {

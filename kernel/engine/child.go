@@ -24,6 +24,9 @@ type child struct {
 	exited chan error    // gets what the process ended with
 	ended  chan struct{} // closed when the process is gone and all is read
 
+	text  [5]cleaner // used by the reading goroutine only
+	strip *strings.Replacer
+
 	mu      sync.Mutex // guards what follows
 	waiting map[int]chan *Event
 	reason  string // why it was ended, if we did it
@@ -224,8 +227,11 @@ func (c *child) read(files [5]*os.File) {
 			}
 		}
 	}
-	for _, f := range files {
+	for i, f := range files {
 		f.Close()
+		if rest := c.text[i].rest(); rest != "" && i != events {
+			c.handle(c, nil, "stdout", rest)
+		}
 	}
 	err := <-c.exited
 	c.mu.Lock()
@@ -253,7 +259,7 @@ func (c *child) drain(fds []unix.PollFd, buf []byte) {
 		for fds[i].Fd >= 0 {
 			n, err := unix.Read(int(fds[i].Fd), buf)
 			if n > 0 {
-				c.text(i, string(buf[:n]))
+				c.pass(i, buf[:n])
 				continue
 			}
 			if err != unix.EAGAIN && err != unix.EINTR {
@@ -266,10 +272,14 @@ func (c *child) drain(fds []unix.PollFd, buf []byte) {
 	}
 }
 
-// text passes on text from one of the output pipes. What the process itself
+// pass passes on bytes from one of the output pipes. What the process itself
 // writes to its standard error is held back for a moment, since it may be the
 // first line of a crash.
-func (c *child) text(i int, s string) {
+func (c *child) pass(i int, b []byte) {
+	s := c.clean(c.text[i].whole(b))
+	if s == "" {
+		return
+	}
 	switch i {
 	case stdout, rawOut:
 		c.handle(c, nil, "stdout", s)
@@ -322,6 +332,9 @@ func (c *child) take(pending *bytes.Buffer, fds []unix.PollFd, buf []byte) {
 func (c *child) deliver(ev *Event) {
 	switch ev.Op {
 	case "ready", "done", "reply":
+		if ev.Op == "ready" {
+			c.setMarkers(ev.Text)
+		}
 		c.mu.Lock()
 		ch := c.waiting[ev.ID]
 		delete(c.waiting, ev.ID)

@@ -17,36 +17,39 @@ import (
 
 // prepare makes what runs a checked cell, and says in which way it is run. A
 // cell without anything to run has no job.
-func (r *Runner) prepare(plan *cell.Plan) (job func(), how string, err error) {
-	why := "a directive"
+func (r *Runner) prepare(plan *cell.Plan) (job func(), how, why string, err error) {
+	why = "a directive"
 	if !plan.Force {
 		var script *cell.Script
 		if script, why = plan.Interpret(&r.interp); script != nil {
-			job, err := r.interp.prepare(plan.Source, script)
-			return job, "interpreted", err
+			if job, err = r.interp.prepare(plan.Source, script); err == nil {
+				return job, "interpreted", "", nil
+			}
+			// What the interpreter does not take, the compiler does.
+			why = err.Error()
 		}
 	}
 	if r.kit == nil {
-		return nil, "refused", fmt.Errorf("%s needs the compiled tier, which is not there: %v", why, r.noKit)
+		return nil, "refused", why, fmt.Errorf("%s needs the compiled tier, which is not there: %v", why, r.noKit)
 	}
 	unit, err := plan.Compile(true)
 	if err != nil {
-		return nil, "refused", err
+		return nil, "refused", why, err
 	}
 	if unit == nil {
-		return nil, "declared", nil
+		return nil, "declared", why, nil
 	}
 	offers, err := r.load(unit)
 	if err != nil {
-		return nil, "refused", err
+		return nil, "refused", why, err
 	}
 	if err := r.bind(unit, offers); err != nil {
-		return nil, "refused", err
+		return nil, "refused", why, err
 	}
 	r.scope.Adopt(plan, unit)
 	r.interp.add(unit, offers)
 	run, _ := offers["run"].(func())
-	return run, "compiled", nil
+	return run, "compiled", why, nil
 }
 
 // load builds and opens the plugin of a unit, once in a session.

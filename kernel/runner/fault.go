@@ -90,10 +90,12 @@ func faultOf(v any, frames []frame, src *cell.Source) *engine.Fault {
 		var re runtime.Error
 		if errors.As(err, &re) {
 			f.Name = "runtime error"
-			f.Message = strings.TrimPrefix(translate(re.Error()), "runtime error: ")
+			f.Message = strings.TrimPrefix(re.Error(), "runtime error: ")
 			break
 		}
 		f.Message = oneLine(safely(err.Error))
+	case translated(v) != "":
+		f.Name, f.Message = "runtime error", translated(v)
 	default:
 		if s, ok := v.(fmt.Stringer); ok {
 			f.Message = oneLine(safely(s.String))
@@ -157,14 +159,22 @@ func ours(v any) bool {
 	return strings.HasPrefix(t.PkgPath(), "levelsum/statmech") || strings.HasPrefix(t.PkgPath(), "levelsum/display")
 }
 
-// translate turns reflect's wording, which interpreted code meets, into the
-// runtime's.
-func translate(s string) string {
-	switch {
-	case strings.HasPrefix(s, "reflect: slice index out of range"), strings.HasPrefix(s, "reflect: array index out of range"), strings.HasPrefix(s, "reflect: string index out of range"):
-		return "runtime error: index out of range"
+// translated turns reflect's wording, which interpreted code meets, into the
+// runtime's; "" for other values.
+func translated(v any) string {
+	s, _ := v.(string)
+	if e, ok := v.(*reflect.ValueError); ok {
+		s = e.Error()
 	}
-	return s
+	switch {
+	case strings.HasPrefix(s, "reflect") && strings.Contains(s, "index out of range"):
+		return "index out of range"
+	case strings.HasPrefix(s, "assignment to entry in nil map"):
+		return s
+	case strings.HasPrefix(s, "reflect: call of reflect.Value") && strings.Contains(s, "zero Value"):
+		return "invalid memory address or nil pointer dereference"
+	}
+	return ""
 }
 
 func oneLine(s string) string { return strings.ReplaceAll(strings.TrimSpace(s), "\n", " ") }

@@ -84,8 +84,8 @@ func (i *interpreter) fresh() error {
 		return err
 	}
 	if err := i.offer(map[string]reflect.Value{
-		cell.Inner + "Show": reflect.ValueOf(func(v any) { guard.Show(v) }),
-		cell.Inner + "Zero": reflect.ValueOf(i.r.slots.zero),
+		"Show": reflect.ValueOf(func(v any) { guard.Show(v) }),
+		"Zero": reflect.ValueOf(i.r.slots.zero),
 	}); err != nil {
 		return err
 	}

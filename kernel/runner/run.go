@@ -30,8 +30,11 @@ func (r *Runner) run(c engine.Cell) engine.Outcome {
 	}
 	guard.Reset()
 	guard.SetCell(c.N)
-	job, how, err := r.prepare(plan)
+	job, how, why, err := r.prepare(plan)
 	out.How["tier"] = how
+	if why != "" {
+		out.How["why"] = why
+	}
 	if err != nil {
 		out.Fault = prepareFault(err)
 		return out

@@ -7,7 +7,9 @@
 package guard
 
 import (
+	"fmt"
 	"iter"
+	"log"
 	"sync"
 	"sync/atomic"
 	"time"
@@ -136,6 +138,15 @@ func Sleep(d time.Duration) {
 
 // Exit is os.Exit in a cell: it ends the cell, not the session.
 func Exit(code int) { panic(ExitError{code}) }
+
+// Fatal is log.Fatal in a cell.
+func Fatal(v ...any) { log.Output(2, fmt.Sprint(v...)); Exit(1) }
+
+// Fatalf is log.Fatalf in a cell.
+func Fatalf(format string, v ...any) { log.Output(2, fmt.Sprintf(format, v...)); Exit(1) }
+
+// Fatalln is log.Fatalln in a cell.
+func Fatalln(v ...any) { log.Output(2, fmt.Sprintln(v...)); Exit(1) }
 
 // shown holds the value of the cell's last expression.
 var shown struct {
