@@ -31,7 +31,8 @@ type Finding struct {
 
 // Compare holds a document that has just been run against the stored one. The
 // cells must be the same ones, in the same order. Named results are compared
-// by name, other outputs by their place in the cell.
+// by name, other outputs by their place in the cell. Cells that the run did not
+// reach are left out: nothing is known of them.
 func Compare(stored, now *notebook.Document) ([]Finding, error) {
 	a, b := stored.Cells(), now.Cells()
 	if len(a) != len(b) {
@@ -46,9 +47,16 @@ func Compare(stored, now *notebook.Document) ([]Finding, error) {
 		return nil, err
 	}
 	for i := range a {
-		all = append(all, compareCell(a[i], b[i])...)
+		if reached(b[i]) {
+			all = append(all, compareCell(a[i], b[i])...)
+		}
 	}
 	return append(all, data...), nil
+}
+
+// reached says whether a cell was run, if it is one to be run.
+func reached(c *notebook.Cell) bool {
+	return c.Kind() != notebook.Code || c.ExecutionCount() > 0 || strings.TrimSpace(c.Source()) == ""
 }
 
 func compareResults(stored, now *notebook.Document) ([]Finding, error) {
@@ -100,6 +108,9 @@ func compareResults(stored, now *notebook.Document) ([]Finding, error) {
 	for _, k := range oldKeys {
 		if _, ok := curBy[k]; !ok {
 			o := oldBy[k]
+			if !reached(now.Cells()[o.Cell-1]) {
+				continue
+			}
 			all = append(all, Finding{Kind: "result", Cell: o.Cell, Name: k.name, Verdict: Missing, Old: o.text()})
 		}
 	}

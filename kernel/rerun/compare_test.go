@@ -85,6 +85,7 @@ func TestCompare(t *testing.T) {
 		{"value", s("value 3 K"), s("value 4 K"), `value "output 1" moved 0 0`},
 		{"fewer outputs", s("print a\nshow b"), s("print a"), `value "output 2" missing 0 0`},
 		{"another stream", s("print a"), s("warn a"), `text "output 1" moved 0 0`},
+		{"cells that were not reached", s("print a", "result S 1 0.1 J\nprint b"), s("fail x", "result S 1 0.1 J\nprint b"), `fault "output 1" moved 0 0`},
 		{"fault", s("fail wanted\nprint"), s("fail wanted, another"), `fault "output 1" moved 0 0`},
 	} {
 		if got := compareRuns(t, test.before, test.after); got != test.want {
