@@ -122,10 +122,20 @@ func readTable(s string) (t textTable, ok bool) {
 		}
 		return cells
 	}
+	// A line that writes across the gap between two columns is no row.
+	isRow := func(l string) bool {
+		r := []rune(l)
+		for _, from := range starts[1:] {
+			if from <= len(r) && strings.TrimSpace(string(r[max(from-2, 0):from])) != "" {
+				return false
+			}
+		}
+		return strings.TrimSpace(l) != ""
+	}
 	t.before = strings.Join(lines[:at-1], "\n")
 	t.titles = cut(lines[at-1])
 	end := at + 1
-	for end < len(lines) && strings.TrimSpace(lines[end]) != "" {
+	for end < len(lines) && isRow(lines[end]) {
 		t.rows = append(t.rows, cut(lines[end]))
 		end++
 	}

@@ -69,11 +69,12 @@ func judgeResult(old, now Result) (Verdict, string) {
 		return Moved, "it had a standard uncertainty, now none"
 	case !old.HasU && now.HasU:
 		return Moved, "it had no standard uncertainty, now one"
-	case old.Withheld != now.Withheld:
-		return Moved, "the reason for giving no standard uncertainty changed"
 	}
 	v := judge(old.Value, now.Value, math.Max(math.Abs(old.Value), old.U))
 	if !old.HasU {
+		if v != Moved && old.Withheld != now.Withheld {
+			return Moved, "the reason for giving no standard uncertainty changed"
+		}
 		return v, ""
 	}
 	du := judge(old.U, now.U, old.U)
