@@ -5,6 +5,7 @@ import (
 	"math"
 
 	"gonum.org/v1/plot/vg"
+	"gonum.org/v1/plot/vg/vgpdf"
 
 	"levelsum/display/internal/mark"
 )
@@ -12,11 +13,23 @@ import (
 // canvas draws on one of gonum/plot's canvases, for PDF and PNG. Text is drawn
 // as outlines: the PDF canvas' own fonts have no Greek and no true minus.
 type canvas struct {
-	c vg.Canvas
-	h float64
+	c   vg.Canvas
+	h   float64
+	pdf bool
 }
 
-func newCanvas(c vg.Canvas, h float64) *canvas { return &canvas{c, h} }
+func newCanvas(c vg.Canvas, h float64) *canvas {
+	_, pdf := c.(*vgpdf.Canvas)
+	return &canvas{c, h, pdf}
+}
+
+// straight is a colour that has not been multiplied by its alpha, which is
+// what the PDF canvas takes RGBA's result for.
+type straight struct{ color.NRGBA }
+
+func (c straight) RGBA() (r, g, b, a uint32) {
+	return uint32(c.R) * 0x101, uint32(c.G) * 0x101, uint32(c.B) * 0x101, uint32(c.A) * 0x101
+}
 
 func (s *canvas) at(p point) vg.Point { return vg.Point{X: vg.Length(p.x), Y: vg.Length(s.h - p.y)} }
 
@@ -25,7 +38,12 @@ func (s *canvas) colour(p paint) {
 	if p.ink {
 		c = inkOnPaper
 	}
-	s.c.SetColor(color.NRGBA{c.R, c.G, c.B, uint8(math.Round(255 * p.alpha))})
+	n := color.NRGBA{c.R, c.G, c.B, uint8(math.Round(255 * p.alpha))}
+	if s.pdf {
+		s.c.SetColor(straight{n})
+		return
+	}
+	s.c.SetColor(n)
 }
 
 func (s *canvas) path(p *path) vg.Path {
