@@ -61,6 +61,9 @@ func (r *Runner) run(c engine.Cell) engine.Outcome {
 			out.Fault = faultOf(guard.UnreadError{Err: err}, nil, src)
 			return out
 		}
+		if out.Fault = refusal(values); out.Fault != nil {
+			return out
+		}
 		if v, ok := viewOf(plan.Types(), values); ok {
 			w := wireView(v)
 			out.Value = &w
