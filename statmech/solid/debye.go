@@ -106,15 +106,15 @@ func (d Debye1D) ZeroPointEnergy() unit.Energy {
 }
 
 func (d *Debye) fields() []parameter {
-	return []parameter{{"Theta", (*float64)(&d.Theta)}, {"Modes", &d.Modes}}
+	return []parameter{{"Theta", (*float64)(&d.Theta), "K"}, {"Modes", &d.Modes, ""}}
 }
 
 func (d *Debye2D) fields() []parameter {
-	return []parameter{{"Theta", (*float64)(&d.Theta)}, {"Modes", &d.Modes}}
+	return []parameter{{"Theta", (*float64)(&d.Theta), "K"}, {"Modes", &d.Modes, ""}}
 }
 
 func (d *Debye1D) fields() []parameter {
-	return []parameter{{"Theta", (*float64)(&d.Theta)}, {"Modes", &d.Modes}}
+	return []parameter{{"Theta", (*float64)(&d.Theta), "K"}, {"Modes", &d.Modes, ""}}
 }
 
 // Owns implements [Differentiable].

@@ -70,7 +70,7 @@ func zeroPoint(m model, fn string, factor float64, theta unit.Temperature) unit.
 }
 
 func (e *Einstein) fields() []parameter {
-	return []parameter{{"Theta", (*float64)(&e.Theta)}, {"Modes", &e.Modes}}
+	return []parameter{{"Theta", (*float64)(&e.Theta), "K"}, {"Modes", &e.Modes, ""}}
 }
 
 // Owns implements [Differentiable].

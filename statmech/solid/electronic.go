@@ -39,7 +39,7 @@ func (e Electronic) heats(dst, ts []float64) {
 }
 
 func (e *Electronic) fields() []parameter {
-	return []parameter{{"Gamma", (*float64)(&e.Gamma)}}
+	return []parameter{{"Gamma", (*float64)(&e.Gamma), "J/(mol K2)"}}
 }
 
 // Owns implements [Differentiable].

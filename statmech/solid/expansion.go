@@ -215,13 +215,21 @@ func (d Dilated) HeatCapacities(ts []unit.Temperature) []unit.MolarEntropy {
 // ModeCount returns the number of vibrations in the formula unit.
 func (d Dilated) ModeCount() float64 { return Sum{d.Lattice}.ModeCount() }
 
-// Owns implements [Differentiable].
+// String names the lattice and A.
+func (d Dilated) String() string {
+	return fmt.Sprintf("Dilated{Lattice: %v, A: %.6g mol/J}", d.Lattice, d.A)
+}
+
+// Owns implements [Differentiable]. The lattice's own fields keep their names,
+// with a note that they are those of C_V.
 func (d *Dilated) Owns(p *float64) (string, bool) {
 	if p == &d.A {
 		return "A", true
 	}
 	if inner, ok := d.Lattice.(Differentiable); ok {
-		return inner.Owns(p)
+		if name, ok := inner.Owns(p); ok {
+			return name + " (C_V)", true
+		}
 	}
 	return "", false
 }

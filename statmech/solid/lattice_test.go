@@ -251,7 +251,7 @@ func fieldsOf(m Differentiable) []parameter {
 		return all
 	}
 	if d, ok := m.(*Dilated); ok {
-		return append(fieldsOf(d.Lattice.(Differentiable)), parameter{"A", &d.A})
+		return append(fieldsOf(d.Lattice.(Differentiable)), parameter{"A", &d.A, "mol/J"})
 	}
 	return m.(interface{ fields() []parameter }).fields()
 }

@@ -43,6 +43,11 @@ func (e Einstein) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
 	return energy(e, "solid.Einstein.ThermalEnergy", T)
 }
 
+// ThermalEnergies returns U(T) - U(0) at every temperature.
+func (e Einstein) ThermalEnergies(ts []unit.Temperature) []unit.MolarEnergy {
+	return energies(e, "solid.Einstein.ThermalEnergies", ts)
+}
+
 // EnthalpyIncrement returns U(to) - U(from), which is H(to) - H(from) at
 // constant volume and negligible pressure.
 func (e Einstein) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
@@ -53,6 +58,9 @@ func (e Einstein) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy 
 func (e Einstein) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
 	return enthalpyIncrements(e, "solid.Einstein.EnthalpyIncrements", from, ts)
 }
+
+// String names the fields with their units.
+func (e Einstein) String() string { return describe("Einstein", e.fields()) }
 
 // GroundDegeneracy returns 1.
 func (e Einstein) GroundDegeneracy() float64 { return 1 }
@@ -95,6 +103,11 @@ func (d Debye) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
 	return energy(d, "solid.Debye.ThermalEnergy", T)
 }
 
+// ThermalEnergies returns U(T) - U(0) at every temperature.
+func (d Debye) ThermalEnergies(ts []unit.Temperature) []unit.MolarEnergy {
+	return energies(d, "solid.Debye.ThermalEnergies", ts)
+}
+
 // EnthalpyIncrement returns U(to) - U(from), which is H(to) - H(from) at
 // constant volume and negligible pressure.
 func (d Debye) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
@@ -105,6 +118,9 @@ func (d Debye) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
 func (d Debye) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
 	return enthalpyIncrements(d, "solid.Debye.EnthalpyIncrements", from, ts)
 }
+
+// String names the fields with their units.
+func (d Debye) String() string { return describe("Debye", d.fields()) }
 
 // GroundDegeneracy returns 1.
 func (d Debye) GroundDegeneracy() float64 { return 1 }
@@ -147,6 +163,11 @@ func (d Debye2D) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
 	return energy(d, "solid.Debye2D.ThermalEnergy", T)
 }
 
+// ThermalEnergies returns U(T) - U(0) at every temperature.
+func (d Debye2D) ThermalEnergies(ts []unit.Temperature) []unit.MolarEnergy {
+	return energies(d, "solid.Debye2D.ThermalEnergies", ts)
+}
+
 // EnthalpyIncrement returns U(to) - U(from), which is H(to) - H(from) at
 // constant volume and negligible pressure.
 func (d Debye2D) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
@@ -157,6 +178,9 @@ func (d Debye2D) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
 func (d Debye2D) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
 	return enthalpyIncrements(d, "solid.Debye2D.EnthalpyIncrements", from, ts)
 }
+
+// String names the fields with their units.
+func (d Debye2D) String() string { return describe("Debye2D", d.fields()) }
 
 // GroundDegeneracy returns 1.
 func (d Debye2D) GroundDegeneracy() float64 { return 1 }
@@ -199,6 +223,11 @@ func (d Debye1D) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
 	return energy(d, "solid.Debye1D.ThermalEnergy", T)
 }
 
+// ThermalEnergies returns U(T) - U(0) at every temperature.
+func (d Debye1D) ThermalEnergies(ts []unit.Temperature) []unit.MolarEnergy {
+	return energies(d, "solid.Debye1D.ThermalEnergies", ts)
+}
+
 // EnthalpyIncrement returns U(to) - U(from), which is H(to) - H(from) at
 // constant volume and negligible pressure.
 func (d Debye1D) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
@@ -209,6 +238,9 @@ func (d Debye1D) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
 func (d Debye1D) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
 	return enthalpyIncrements(d, "solid.Debye1D.EnthalpyIncrements", from, ts)
 }
+
+// String names the fields with their units.
+func (d Debye1D) String() string { return describe("Debye1D", d.fields()) }
 
 // GroundDegeneracy returns 1.
 func (d Debye1D) GroundDegeneracy() float64 { return 1 }
@@ -251,6 +283,11 @@ func (t Tarasov) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
 	return energy(t, "solid.Tarasov.ThermalEnergy", T)
 }
 
+// ThermalEnergies returns U(T) - U(0) at every temperature.
+func (t Tarasov) ThermalEnergies(ts []unit.Temperature) []unit.MolarEnergy {
+	return energies(t, "solid.Tarasov.ThermalEnergies", ts)
+}
+
 // EnthalpyIncrement returns U(to) - U(from), which is H(to) - H(from) at
 // constant volume and negligible pressure.
 func (t Tarasov) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
@@ -261,3 +298,6 @@ func (t Tarasov) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
 func (t Tarasov) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
 	return enthalpyIncrements(t, "solid.Tarasov.EnthalpyIncrements", from, ts)
 }
+
+// String names the fields with their units.
+func (t Tarasov) String() string { return describe("Tarasov", t.fields()) }

@@ -44,6 +44,11 @@ func (p *Phonons) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
 	return energy(p, "solid.Phonons.ThermalEnergy", T)
 }
 
+// ThermalEnergies returns U(T) - U(0) at every temperature.
+func (p *Phonons) ThermalEnergies(ts []unit.Temperature) []unit.MolarEnergy {
+	return energies(p, "solid.Phonons.ThermalEnergies", ts)
+}
+
 // EnthalpyIncrement returns U(to) - U(from), which is H(to) - H(from) at
 // constant volume and negligible pressure.
 func (p *Phonons) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {

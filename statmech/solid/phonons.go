@@ -259,6 +259,11 @@ func (p *Phonons) density(i int, w float64) float64 {
 	return u*u*(1+2*t)*a.g + t*t*(1+2*u)*b.g + h*t*u*(u*a.slope-t*b.slope)
 }
 
+// String says how many modes and which range of frequencies the density has.
+func (p *Phonons) String() string {
+	return fmt.Sprintf("Phonons{%g modes per formula unit, %d points up to ħω/k = %.6g K}", p.count, len(p.knots), p.knots[len(p.knots)-1].w)
+}
+
 // Warnings returns what was found wrong with the table and set right.
 func (p *Phonons) Warnings() []string { return append([]string(nil), p.warnings...) }
 

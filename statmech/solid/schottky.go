@@ -133,12 +133,12 @@ func (s Schottky) heats(dst, ts []float64) {
 func (s Schottky) HighTemperatureHeatCapacity() float64 { return 0 }
 
 func (s *Schottky) fields() []parameter {
-	f := []parameter{{"Sites", &s.Sites}}
+	f := []parameter{{"Sites", &s.Sites, ""}}
 	for i := range s.Energies {
-		f = append(f, parameter{fmt.Sprintf("Energies[%d]", i), (*float64)(&s.Energies[i])})
+		f = append(f, parameter{fmt.Sprintf("Energies[%d]", i), (*float64)(&s.Energies[i]), "J"})
 	}
 	for i := range s.Degeneracies {
-		f = append(f, parameter{fmt.Sprintf("Degeneracies[%d]", i), &s.Degeneracies[i]})
+		f = append(f, parameter{fmt.Sprintf("Degeneracies[%d]", i), &s.Degeneracies[i], ""})
 	}
 	return f
 }

@@ -66,7 +66,7 @@ func (w FerroSpinWave) heats(dst, ts []float64) {
 func (w FerroSpinWave) GroundDegeneracy() float64 { return 1 }
 
 func (w *FerroSpinWave) fields() []parameter {
-	return []parameter{{"Coefficient", &w.Coefficient}, {"Gap", (*float64)(&w.Gap)}}
+	return []parameter{{"Coefficient", &w.Coefficient, "J mol-1 K-2.5"}, {"Gap", (*float64)(&w.Gap), "K"}}
 }
 
 // Owns implements [Differentiable].
@@ -170,7 +170,7 @@ func (w AntiferroSpinWave) heats(dst, ts []float64) {
 func (w AntiferroSpinWave) GroundDegeneracy() float64 { return 1 }
 
 func (w *AntiferroSpinWave) fields() []parameter {
-	return []parameter{{"Coefficient", &w.Coefficient}, {"Gap", (*float64)(&w.Gap)}}
+	return []parameter{{"Coefficient", &w.Coefficient, "J mol-1 K-4"}, {"Gap", (*float64)(&w.Gap), "K"}}
 }
 
 // Owns implements [Differentiable].

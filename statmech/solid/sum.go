@@ -141,6 +141,15 @@ func (s Sum) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
 	return sum
 }
 
+// ThermalEnergies returns U(T) - U(0) of all terms at every temperature.
+func (s Sum) ThermalEnergies(ts []unit.Temperature) []unit.MolarEnergy {
+	sum := make([]unit.MolarEnergy, len(ts))
+	for i, T := range ts {
+		sum[i] = s.ThermalEnergy(T)
+	}
+	return sum
+}
+
 // Reduced returns ln q, U/kT and C/k of one formula unit; see [statmech.Mode].
 func (s Sum) Reduced(T unit.Temperature) statmech.Reduced {
 	var r statmech.Reduced
@@ -208,7 +217,17 @@ func (s Sum) CheckModes(atoms int) error {
 // addresses does, and every other term knows its heat capacity. A term that is
 // not Differentiable must not depend on the numbers at those addresses, or
 // their derivatives miss its part.
-func (s Sum) Accumulate(ts []unit.Temperature, at []*float64, c []float64, partials [][]float64) error {
+func (s Sum) Accumulate(ts []unit.Temperature, at []*float64, c []float64, partials [][]float64) (err error) {
+	defer func() {
+		// A term that is not Differentiable panics where others return an error.
+		if r := recover(); r != nil {
+			domain, ok := r.(*statmech.DomainError)
+			if !ok {
+				panic(r)
+			}
+			err = domain
+		}
+	}()
 	for _, term := range s {
 		if d, ok := term.(Differentiable); ok {
 			if err := d.Accumulate(ts, at, c, partials); err != nil {
@@ -253,6 +272,45 @@ func (s Sum) Owns(p *float64) (string, bool) {
 		return kind + "." + name, true
 	}
 	return "", false
+}
+
+// Warnings returns what a composition makes doubtful: terms of the same form,
+// which a heat capacity cannot tell apart.
+func (s Sum) Warnings() []string {
+	lattice, cubic := false, ""
+	linear := 0
+	for _, term := range s {
+		switch m := term.(type) {
+		case Debye, *Debye, Tarasov, *Tarasov, *Phonons:
+			lattice = true
+		case AntiferroSpinWave:
+			if m.Gap == 0 {
+				cubic = "AntiferroSpinWave without a gap"
+			}
+		case *AntiferroSpinWave:
+			if m.Gap == 0 {
+				cubic = "AntiferroSpinWave without a gap"
+			}
+		case PowerLaw:
+			if m.Power == 3 {
+				cubic = "PowerLaw with Power 3"
+			}
+		case *PowerLaw:
+			if m.Power == 3 {
+				cubic = "PowerLaw with Power 3"
+			}
+		case Electronic, *Electronic:
+			linear++
+		}
+	}
+	var out []string
+	if lattice && cubic != "" {
+		out = append(out, cubic+" has the T³ of the lattice: heat capacities alone do not separate the two; measurements in a magnetic field may")
+	}
+	if linear > 1 {
+		out = append(out, fmt.Sprintf("%d Electronic terms are one: only the sum of their coefficients shows", linear))
+	}
+	return out
 }
 
 // OfMode makes a Term of any [statmech.Mode], such as a type declared in a

@@ -63,7 +63,7 @@ func (n NuclearTail) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEner
 	return unit.MolarEnergy(n.A * (1/a - 1/b))
 }
 
-func (n *NuclearTail) fields() []parameter { return []parameter{{"A", &n.A}} }
+func (n *NuclearTail) fields() []parameter { return []parameter{{"A", &n.A, "J K/mol"}} }
 
 // Owns implements [Differentiable].
 func (n *NuclearTail) Owns(p *float64) (string, bool) { return owns(n.fields(), p) }
@@ -138,7 +138,7 @@ func (e ExponentialGap) heats(dst, ts []float64) {
 }
 
 func (e *ExponentialGap) fields() []parameter {
-	return []parameter{{"A", (*float64)(&e.A)}, {"Gap", (*float64)(&e.Gap)}}
+	return []parameter{{"A", (*float64)(&e.A), "J/(mol K)"}, {"Gap", (*float64)(&e.Gap), "K"}}
 }
 
 // Owns implements [Differentiable].
@@ -191,7 +191,7 @@ func (p PowerLaw) heats(dst, ts []float64) {
 }
 
 func (p *PowerLaw) fields() []parameter {
-	return []parameter{{"Coefficient", &p.Coefficient}, {"Power", &p.Power}}
+	return []parameter{{"Coefficient", &p.Coefficient, "J/mol K^(-1-Power)"}, {"Power", &p.Power, ""}}
 }
 
 // Owns implements [Differentiable].
@@ -208,3 +208,6 @@ func (p *PowerLaw) Accumulate(ts []unit.Temperature, at []*float64, c []float64,
 			}
 		})
 }
+
+// String names the field with its unit.
+func (n NuclearTail) String() string { return describe("NuclearTail", n.fields()) }

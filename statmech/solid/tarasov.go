@@ -154,7 +154,7 @@ func (t Tarasov) ZeroPointEnergy() unit.Energy {
 }
 
 func (t *Tarasov) fields() []parameter {
-	return []parameter{{"Theta1", (*float64)(&t.Theta1)}, {"Theta2", (*float64)(&t.Theta2)}, {"Theta3", (*float64)(&t.Theta3)}, {"Modes", &t.Modes}}
+	return []parameter{{"Theta1", (*float64)(&t.Theta1), "K"}, {"Theta2", (*float64)(&t.Theta2), "K"}, {"Theta3", (*float64)(&t.Theta3), "K"}, {"Modes", &t.Modes, ""}}
 }
 
 // Owns implements [Differentiable].

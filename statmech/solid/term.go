@@ -3,6 +3,7 @@ package solid
 import (
 	"fmt"
 	"math"
+	"strings"
 
 	"levelsum/statmech"
 	"levelsum/statmech/unit"
@@ -155,24 +156,60 @@ func energy(m model, fn string, T unit.Temperature) unit.MolarEnergy {
 	return unit.MolarEnergy(m.reduced(t).U*t) * unit.MolarEnergy(unit.GasConstant)
 }
 
+func energies(m model, fn string, ts []unit.Temperature) []unit.MolarEnergy {
+	x := kelvins(m, fn, ts)
+	out := make([]unit.MolarEnergy, len(ts))
+	for i, r := range reducedAt(m, x) {
+		out[i] = unit.MolarEnergy(r.U*x[i]) * unit.MolarEnergy(unit.GasConstant)
+	}
+	return out
+}
+
 func enthalpyIncrement(m model, fn string, from, to unit.Temperature) unit.MolarEnergy {
 	return energy(m, fn, to) - energy(m, fn, from)
 }
 
 func enthalpyIncrements(m model, fn string, from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
 	base := energy(m, fn, from)
-	h := make([]unit.MolarEnergy, len(ts))
-	x := kelvins(m, fn, ts)
-	for i, r := range reducedAt(m, x) {
-		h[i] = unit.MolarEnergy(r.U*x[i])*unit.MolarEnergy(unit.GasConstant) - base
+	out := energies(m, fn, ts)
+	for i := range out {
+		out[i] -= base
 	}
-	return h
+	return out
 }
 
 // A parameter is a field of a model that a fit may vary.
 type parameter struct {
 	name string
 	at   *float64
+	unit string
+}
+
+// describe writes a model with its fields and units.
+func describe(kind string, fields []parameter) string {
+	var b strings.Builder
+	b.WriteString(kind)
+	b.WriteByte('{')
+	for i, f := range fields {
+		if i > 0 {
+			b.WriteString(", ")
+		}
+		v := *f.at
+		if f.name == "Modes" {
+			v = modes(v)
+		} else if f.name == "Sites" && v == 0 {
+			v = 1
+		}
+		fmt.Fprintf(&b, "%s: %.6g", f.name, v)
+		switch {
+		case f.unit != "":
+			b.WriteString(" " + f.unit)
+		case f.name == "Modes" || f.name == "Sites":
+			b.WriteString(" per formula unit")
+		}
+	}
+	b.WriteByte('}')
+	return b.String()
 }
 
 func owns(fields []parameter, p *float64) (string, bool) {

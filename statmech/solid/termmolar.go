@@ -44,6 +44,11 @@ func (e Electronic) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
 	return energy(e, "solid.Electronic.ThermalEnergy", T)
 }
 
+// ThermalEnergies returns U(T) - U(0) at every temperature.
+func (e Electronic) ThermalEnergies(ts []unit.Temperature) []unit.MolarEnergy {
+	return energies(e, "solid.Electronic.ThermalEnergies", ts)
+}
+
 // EnthalpyIncrement returns U(to) - U(from), which is H(to) - H(from) at
 // constant volume and negligible pressure.
 func (e Electronic) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
@@ -54,6 +59,9 @@ func (e Electronic) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnerg
 func (e Electronic) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
 	return enthalpyIncrements(e, "solid.Electronic.EnthalpyIncrements", from, ts)
 }
+
+// String names the fields with their units.
+func (e Electronic) String() string { return describe("Electronic", e.fields()) }
 
 // Reduced returns ln q, U/kT and C/k of one formula unit; see [statmech.Mode].
 func (w FerroSpinWave) Reduced(T unit.Temperature) statmech.Reduced {
@@ -90,6 +98,11 @@ func (w FerroSpinWave) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
 	return energy(w, "solid.FerroSpinWave.ThermalEnergy", T)
 }
 
+// ThermalEnergies returns U(T) - U(0) at every temperature.
+func (w FerroSpinWave) ThermalEnergies(ts []unit.Temperature) []unit.MolarEnergy {
+	return energies(w, "solid.FerroSpinWave.ThermalEnergies", ts)
+}
+
 // EnthalpyIncrement returns U(to) - U(from), which is H(to) - H(from) at
 // constant volume and negligible pressure.
 func (w FerroSpinWave) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
@@ -100,6 +113,9 @@ func (w FerroSpinWave) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEn
 func (w FerroSpinWave) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
 	return enthalpyIncrements(w, "solid.FerroSpinWave.EnthalpyIncrements", from, ts)
 }
+
+// String names the fields with their units.
+func (w FerroSpinWave) String() string { return describe("FerroSpinWave", w.fields()) }
 
 // Reduced returns ln q, U/kT and C/k of one formula unit; see [statmech.Mode].
 func (w AntiferroSpinWave) Reduced(T unit.Temperature) statmech.Reduced {
@@ -136,6 +152,11 @@ func (w AntiferroSpinWave) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
 	return energy(w, "solid.AntiferroSpinWave.ThermalEnergy", T)
 }
 
+// ThermalEnergies returns U(T) - U(0) at every temperature.
+func (w AntiferroSpinWave) ThermalEnergies(ts []unit.Temperature) []unit.MolarEnergy {
+	return energies(w, "solid.AntiferroSpinWave.ThermalEnergies", ts)
+}
+
 // EnthalpyIncrement returns U(to) - U(from), which is H(to) - H(from) at
 // constant volume and negligible pressure.
 func (w AntiferroSpinWave) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
@@ -146,6 +167,9 @@ func (w AntiferroSpinWave) EnthalpyIncrement(from, to unit.Temperature) unit.Mol
 func (w AntiferroSpinWave) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
 	return enthalpyIncrements(w, "solid.AntiferroSpinWave.EnthalpyIncrements", from, ts)
 }
+
+// String names the fields with their units.
+func (w AntiferroSpinWave) String() string { return describe("AntiferroSpinWave", w.fields()) }
 
 // Reduced returns ln q, U/kT and C/k of one formula unit; see [statmech.Mode].
 func (s Schottky) Reduced(T unit.Temperature) statmech.Reduced {
@@ -182,6 +206,11 @@ func (s Schottky) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
 	return energy(s, "solid.Schottky.ThermalEnergy", T)
 }
 
+// ThermalEnergies returns U(T) - U(0) at every temperature.
+func (s Schottky) ThermalEnergies(ts []unit.Temperature) []unit.MolarEnergy {
+	return energies(s, "solid.Schottky.ThermalEnergies", ts)
+}
+
 // EnthalpyIncrement returns U(to) - U(from), which is H(to) - H(from) at
 // constant volume and negligible pressure.
 func (s Schottky) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
@@ -192,6 +221,9 @@ func (s Schottky) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy 
 func (s Schottky) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
 	return enthalpyIncrements(s, "solid.Schottky.EnthalpyIncrements", from, ts)
 }
+
+// String names the fields with their units.
+func (s Schottky) String() string { return describe("Schottky", s.fields()) }
 
 // Reduced returns ln q, U/kT and C/k of one formula unit; see [statmech.Mode].
 func (e ExponentialGap) Reduced(T unit.Temperature) statmech.Reduced {
@@ -228,6 +260,11 @@ func (e ExponentialGap) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
 	return energy(e, "solid.ExponentialGap.ThermalEnergy", T)
 }
 
+// ThermalEnergies returns U(T) - U(0) at every temperature.
+func (e ExponentialGap) ThermalEnergies(ts []unit.Temperature) []unit.MolarEnergy {
+	return energies(e, "solid.ExponentialGap.ThermalEnergies", ts)
+}
+
 // EnthalpyIncrement returns U(to) - U(from), which is H(to) - H(from) at
 // constant volume and negligible pressure.
 func (e ExponentialGap) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
@@ -238,6 +275,9 @@ func (e ExponentialGap) EnthalpyIncrement(from, to unit.Temperature) unit.MolarE
 func (e ExponentialGap) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
 	return enthalpyIncrements(e, "solid.ExponentialGap.EnthalpyIncrements", from, ts)
 }
+
+// String names the fields with their units.
+func (e ExponentialGap) String() string { return describe("ExponentialGap", e.fields()) }
 
 // Reduced returns ln q, U/kT and C/k of one formula unit; see [statmech.Mode].
 func (p PowerLaw) Reduced(T unit.Temperature) statmech.Reduced {
@@ -274,6 +314,11 @@ func (p PowerLaw) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
 	return energy(p, "solid.PowerLaw.ThermalEnergy", T)
 }
 
+// ThermalEnergies returns U(T) - U(0) at every temperature.
+func (p PowerLaw) ThermalEnergies(ts []unit.Temperature) []unit.MolarEnergy {
+	return energies(p, "solid.PowerLaw.ThermalEnergies", ts)
+}
+
 // EnthalpyIncrement returns U(to) - U(from), which is H(to) - H(from) at
 // constant volume and negligible pressure.
 func (p PowerLaw) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
@@ -284,3 +329,6 @@ func (p PowerLaw) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy 
 func (p PowerLaw) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
 	return enthalpyIncrements(p, "solid.PowerLaw.EnthalpyIncrements", from, ts)
 }
+
+// String names the fields with their units.
+func (p PowerLaw) String() string { return describe("PowerLaw", p.fields()) }
