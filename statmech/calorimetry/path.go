@@ -33,10 +33,19 @@ type Path struct {
 // piece is one phase: points and the spline through them.
 type piece struct {
 	name     string
-	from, to float64 // where it is used, K; at a transition beyond its own points
-	t, cp    []float64
+	from, to float64   // where it is used, K; at a transition beyond its own points
+	t, x, cp []float64 // T in K, ln T, Cp in J/(mol K)
 	c        []uncertain.Quantity
-	s        *spline
+	s        curve
+	note     string // how it was smoothed, "" for interpolation
+}
+
+// curve is a function of ln T that is linear in the heat capacities: what it
+// gives are their weights.
+type curve interface {
+	at(x float64) []float64
+	slope(x float64) []float64
+	integral(a, b float64, f func(x float64) float64) []float64
 }
 
 // jump is what happens at one temperature.
@@ -61,8 +70,21 @@ type jump struct {
 // of Cp. The error of interpolation is not in it: for points 5 % apart in T it
 // is below 1e-4 J/(mol K) in 63 (TestThirdLawSynthetic).
 func ThirdLaw(run *data.Table, low Extrapolation, transitions ...Transition) (*Path, error) {
+	return newPath(run, low, transitions, false)
+}
+
+// Smooth is [ThirdLaw] for measured points that scatter, lie close together or
+// in any order: each phase is smoothed by a cubic spline in ln T fitted with the
+// weights 1/u² (1/Cp² if the table has no uncertainties), whose number of knots
+// is found by leave-one-out cross-validation. The smoothed values are weighted
+// sums of the points too, so that uncertainties follow as for interpolation.
+func Smooth(run *data.Table, low Extrapolation, transitions ...Transition) (*Path, error) {
+	return newPath(run, low, transitions, true)
+}
+
+func newPath(run *data.Table, low Extrapolation, transitions []Transition, smooth bool) (*Path, error) {
 	if run == nil || len(run.T) == 0 || len(run.Cp) == 0 {
-		return nil, fmt.Errorf("calorimetry: ThirdLaw: no columns T and Cp")
+		return nil, fmt.Errorf("calorimetry: no columns T and Cp")
 	}
 	p := &Path{Name: run.Name, low: low}
 	ts := append([]Transition(nil), transitions...)
@@ -72,10 +94,10 @@ func ThirdLaw(run *data.Table, low Extrapolation, transitions ...Transition) (*P
 			return nil, err
 		}
 		if i > 0 && t.T == ts[i-1].T {
-			return nil, fmt.Errorf("calorimetry: ThirdLaw: two transitions at %v; add their enthalpies", t.T)
+			return nil, fmt.Errorf("calorimetry: two transitions at %v; add their enthalpies", t.T)
 		}
 	}
-	if err := p.cut(run, ts); err != nil {
+	if err := p.cut(run, ts, smooth); err != nil {
 		return nil, err
 	}
 	first := p.pieces[0].t[0]
@@ -83,13 +105,17 @@ func ThirdLaw(run *data.Table, low Extrapolation, transitions ...Transition) (*P
 		p.Warnings = append(p.Warnings, fmt.Sprintf("no extrapolation: entropy and enthalpy are counted from the first point, %.6g K", first))
 	}
 	for _, pc := range p.pieces {
-		p.Warnings = append(p.Warnings, pc.anomalies()...)
+		if !smooth {
+			p.Warnings = append(p.Warnings, pc.anomalies()...)
+		} else {
+			p.Warnings = append(p.Warnings, pc.outliers()...)
+		}
 	}
 	return p, nil
 }
 
 // cut makes the pieces.
-func (p *Path) cut(run *data.Table, ts []Transition) error {
+func (p *Path) cut(run *data.Table, ts []Transition, smooth bool) error {
 	phase, err := run.Column("phase")
 	byPhase := err == nil && phase.Text != nil
 	order := make([]int, len(run.T))
@@ -103,7 +129,7 @@ func (p *Path) cut(run *data.Table, ts []Transition) error {
 		g := sort.Search(len(ts), func(k int) bool { return ts[k].T > run.T[i] })
 		if g > 0 && ts[g-1].T == run.T[i] {
 			if !byPhase {
-				return fmt.Errorf("calorimetry: ThirdLaw: row %d lies at the transition temperature %v: a column \"phase\" must say to which side it belongs", i+1, run.T[i])
+				return fmt.Errorf("calorimetry: row %d lies at the transition temperature %v: a column \"phase\" must say to which side it belongs", i+1, run.T[i])
 			}
 			if len(groups[g-1]) > 0 && phase.Text[groups[g-1][0]] == phase.Text[i] {
 				g--
@@ -127,7 +153,7 @@ func (p *Path) cut(run *data.Table, ts []Transition) error {
 			name = phase.Text[rows[0]]
 			for _, i := range rows {
 				if phase.Text[i] != name {
-					return fmt.Errorf("calorimetry: ThirdLaw: row %d is of phase %q, the rows before it of %q, and no transition is given between them; a spline does not cross a transition", i+1, phase.Text[i], name)
+					return fmt.Errorf("calorimetry: row %d is of phase %q, the rows before it of %q, and no transition is given between them; a spline does not cross a transition", i+1, phase.Text[i], name)
 				}
 			}
 		}
@@ -135,20 +161,22 @@ func (p *Path) cut(run *data.Table, ts []Transition) error {
 			break // the path ends with the last transition
 		}
 		if len(rows) < 2 {
-			return fmt.Errorf("calorimetry: ThirdLaw: %d points between %s and %s, want at least two", len(rows), limit(from), limit(to))
+			return fmt.Errorf("calorimetry: %d points between %s and %s, want at least two", len(rows), limit(from), limit(to))
 		}
 		pc := &piece{name: name, from: from, to: to}
 		for k, i := range rows {
 			T := float64(run.T[i])
-			if k > 0 && T == pc.t[k-1] {
-				return fmt.Errorf("calorimetry: ThirdLaw: rows %d and %d have the same temperature %v: average or smooth them first", rows[k-1]+1, i+1, run.T[i])
+			if k > 0 && T == pc.t[k-1] && !smooth {
+				return fmt.Errorf("calorimetry: rows %d and %d have the same temperature %v: average them, or use Smooth", rows[k-1]+1, i+1, run.T[i])
 			}
 			if !(run.Cp[i] > 0) {
-				return fmt.Errorf("calorimetry: ThirdLaw: row %d: Cp = %v, want positive", i+1, run.Cp[i])
+				return fmt.Errorf("calorimetry: row %d: Cp = %v, want positive", i+1, run.Cp[i])
 			}
 			pc.t, pc.cp, pc.c = append(pc.t, T), append(pc.cp, float64(run.Cp[i])), append(pc.c, pts[i])
 		}
-		pc.prepare(run, rows)
+		if err := pc.prepare(run, rows, smooth); err != nil {
+			return err
+		}
 		p.pieces = append(p.pieces, pc)
 	}
 	p.pieces[0].from = p.pieces[0].t[0]
@@ -193,22 +221,29 @@ func points(run *data.Table) []uncertain.Quantity {
 	return out
 }
 
-// prepare makes the spline and adds the uncertainties of T.
-func (pc *piece) prepare(run *data.Table, rows []int) {
-	x := make([]float64, len(pc.t))
+// prepare makes the curve and adds the uncertainties of T.
+func (pc *piece) prepare(run *data.Table, rows []int, smooth bool) error {
+	pc.x = make([]float64, len(pc.t))
 	for i, T := range pc.t {
-		x[i] = math.Log(T)
+		pc.x[i] = math.Log(T)
 	}
-	pc.s = newSpline(x)
+	if smooth {
+		if err := pc.smooth(run, rows); err != nil {
+			return err
+		}
+	} else {
+		pc.s = newSpline(pc.x)
+	}
 	if run.UT == nil {
-		return
+		return nil
 	}
 	for k, i := range rows {
 		if u := float64(run.UT[i]); u > 0 {
-			slope := dotted(pc.s.slope(x[k]), pc.cp) / pc.t[k]
+			slope := dotted(pc.s.slope(pc.x[k]), pc.cp) / pc.t[k]
 			pc.c[k] = pc.c[k].Plus(uncertain.Measured(0, u).Named(fmt.Sprintf("T(%.6g K)", pc.t[k])).Scale(-slope))
 		}
 	}
+	return nil
 }
 
 func dotted(w, y []float64) float64 {
@@ -240,7 +275,7 @@ func (pc *piece) anomalies() []string {
 	}
 	d, curvature := make([]float64, n-2), make([]float64, n-2)
 	for i := range d {
-		x0, x1, x2 := pc.s.x[i], pc.s.x[i+1], pc.s.x[i+2]
+		x0, x1, x2 := pc.x[i], pc.x[i+1], pc.x[i+2]
 		f := (x1 - x0) / (x2 - x0)
 		d[i] = math.Log(pc.cp[i+1]) - (1-f)*math.Log(pc.cp[i]) - f*math.Log(pc.cp[i+2])
 		curvature[i] = d[i] / ((x1 - x0) * (x2 - x1))
@@ -379,13 +414,12 @@ func (p *Path) HeatCapacity(T unit.Temperature) uncertain.Quantity {
 // and the share of the extrapolation where it is large.
 func (p *Path) Notes(T unit.Temperature) []string {
 	notes := append([]string(nil), p.Warnings...)
-	if p.low == nil {
-		return notes
-	}
-	cs := p.Contributions(T)
-	total := p.Entropy(T).Value()
-	if share := cs[0].Entropy.Value() / total; share > largeShare {
-		notes = append(notes, fmt.Sprintf("%.1f %% of the entropy lies below the first point, %v", 100*share, p.First()))
+	p.check("Notes", T)
+	if p.low != nil {
+		part, total := p.Contributions(T)[0].Entropy.Value(), p.Entropy(T).Value()
+		if share := part / total; share > largeShare {
+			notes = append(notes, fmt.Sprintf("%.1f %% of the entropy lies below the first point, %v", 100*share, p.First()))
+		}
 	}
 	for _, pc := range p.pieces {
 		if n := len(pc.t); pc.to > pc.t[n-1] && float64(T) > pc.t[n-1] {
