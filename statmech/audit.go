@@ -204,13 +204,13 @@ func thirdLaw(m Mode, o AuditOptions) AuditCheck {
 		c.Note = "not made: the mode declares no ground degeneracy"
 		return c
 	}
-	for T := o.From; T > 1e-6; T /= 2 {
-		if r := m.Reduced(T); r.U < 1e-8 && r.C < 1e-8 {
+	for T := o.From; T > 1e-9; T /= 2 {
+		if r := m.Reduced(T); r.U < 1e-7 && r.C < 1e-7 {
 			c.worst(math.Abs(r.Entropy()-math.Log(g.GroundDegeneracy())), T)
 			return c
 		}
 	}
-	c.Departure, c.Note = math.Inf(1), "U/kT does not vanish down to 1e-6 K"
+	c.Departure, c.Note = math.Inf(1), "U/kT does not vanish down to 1e-9 K"
 	return c
 }
 
