@@ -168,3 +168,18 @@ func TestTermDomain(t *testing.T) {
 		}
 	}
 }
+
+// TestAudit runs the library's own audit, which differentiates and integrates
+// by routes of its own, over every model with a partition function.
+func TestAudit(t *testing.T) {
+	for _, m := range models() {
+		mode, ok := m.(statmech.Mode)
+		if !ok {
+			continue
+		}
+		o := statmech.AuditOptions{From: 2 * unit.K, To: 2000 * unit.K, Points: 40}
+		if r := statmech.Audit(mode, o); !r.OK() {
+			t.Errorf("%v: %v", m, r)
+		}
+	}
+}
