@@ -19,12 +19,15 @@ func parentPID() int {
 	return pid
 }
 
-// watchParent looks once a second whether the process pid is there and calls
+// watchEvery is how often the parent is looked for.
+const watchEvery = 500 * time.Millisecond
+
+// watchParent looks now and then whether the process pid is there and calls
 // gone when it is not: a killed front end cannot tell its kernels to leave.
 func watchParent(ctx context.Context, pid int, gone func()) {
 	// Under a wrapper pid is not our parent, and can only be asked for.
 	child := os.Getppid() == pid
-	t := time.NewTicker(time.Second)
+	t := time.NewTicker(watchEvery)
 	defer t.Stop()
 	for {
 		select {
