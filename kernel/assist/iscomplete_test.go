@@ -4,51 +4,51 @@ import "testing"
 
 func TestIsComplete(t *testing.T) {
 	for _, test := range []struct{ source, status, indent string }{
-		{"", Complete, ""},
-		{"1 + 2", Complete, ""},
-		{"x := 3; y := 4", Complete, ""},
-		{"undeclared", Complete, ""},
-		{"// only a comment", Complete, ""},
-		{"import \"fmt\"\nfmt.Println(1)", Complete, ""},
-		{"func f() int { return 1 }\nf()", Complete, ""},
-		{"func f[T any](x T) T { return x }", Complete, ""},
-		{"type T struct{ x int }\nfunc (t T) X() int { return t.x }\nT{1}.X()", Complete, ""},
-		{"func(x int) int { return x }(3)", Complete, ""},
-		{"func(x int) unit.Energy { return 0 }(3)", Complete, ""},
-		{"f := func() {\n}", Complete, ""},
-		{"for i := range 3 {\n\tfmt.Println(i)\n}", Complete, ""},
-		{"s := `two\nlines`", Complete, ""},
-		{"s := \"{[(\"", Complete, ""},
-		{"return", Complete, ""},
-		{"/* a\nb */ 1", Complete, ""},
-		{"x := []int{\n1,\n2,\n}", Complete, ""},
+		{"", complete, ""},
+		{"1 + 2", complete, ""},
+		{"x := 3; y := 4", complete, ""},
+		{"undeclared", complete, ""},
+		{"// only a comment", complete, ""},
+		{"import \"fmt\"\nfmt.Println(1)", complete, ""},
+		{"func f() int { return 1 }\nf()", complete, ""},
+		{"func f[T any](x T) T { return x }", complete, ""},
+		{"type T struct{ x int }\nfunc (t T) X() int { return t.x }\nT{1}.X()", complete, ""},
+		{"func(x int) int { return x }(3)", complete, ""},
+		{"func(x int) unit.Energy { return 0 }(3)", complete, ""},
+		{"f := func() {\n}", complete, ""},
+		{"for i := range 3 {\n\tfmt.Println(i)\n}", complete, ""},
+		{"s := `two\nlines`", complete, ""},
+		{"s := \"{[(\"", complete, ""},
+		{"return", complete, ""},
+		{"/* a\nb */ 1", complete, ""},
+		{"x := []int{\n1,\n2,\n}", complete, ""},
 
-		{"func f() {", Incomplete, "\t"},
-		{"for i := range 3 {\n\tfmt.Println(i)", Incomplete, "\t"},
-		{"func f() {\n\tfor {\n\t\tg(1,", Incomplete, "\t\t\t"},
-		{"f(g(", Incomplete, "\t"},
-		{"x := 1 +", Incomplete, "\t"},
-		{"x :=", Incomplete, "\t"},
-		{"fmt.", Incomplete, "\t"},
-		{"s := `one line", Incomplete, ""},
-		{"x := 1 /* and", Incomplete, ""},
-		{"if x", Invalid, ""},
+		{"func f() {", incomplete, "\t"},
+		{"for i := range 3 {\n\tfmt.Println(i)", incomplete, "\t"},
+		{"func f() {\n\tfor {\n\t\tg(1,", incomplete, "\t\t\t"},
+		{"f(g(", incomplete, "\t"},
+		{"x := 1 +", incomplete, "\t"},
+		{"x :=", incomplete, "\t"},
+		{"fmt.", incomplete, "\t"},
+		{"s := `one line", incomplete, ""},
+		{"x := 1 /* and", incomplete, ""},
+		{"if x", invalid, ""},
 
-		{"x := )", Invalid, ""},
-		{"f(]", Invalid, ""},
-		{"}", Invalid, ""},
-		{"s := \"open", Invalid, ""},
-		{"r := 'ab'", Invalid, ""},
-		{"a b c", Invalid, ""},
-		{"x := 1 2", Invalid, ""},
-		{"func () {", Incomplete, "\t"},
-		{"func f( { }", Incomplete, "\t"},
-		{"else { }", Invalid, ""},
-		{"package main", Invalid, ""},
-		{"x := 3 }; func g() {", Invalid, ""},
-		{"import 3", Invalid, ""},
-		{"a ? b", Invalid, ""},
-		{"x := 0o9", Invalid, ""},
+		{"x := )", invalid, ""},
+		{"f(]", invalid, ""},
+		{"}", invalid, ""},
+		{"s := \"open", invalid, ""},
+		{"r := 'ab'", invalid, ""},
+		{"a b c", invalid, ""},
+		{"x := 1 2", invalid, ""},
+		{"func () {", incomplete, "\t"},
+		{"func f( { }", incomplete, "\t"},
+		{"else { }", invalid, ""},
+		{"package main", invalid, ""},
+		{"x := 3 }; func g() {", invalid, ""},
+		{"import 3", invalid, ""},
+		{"a ? b", invalid, ""},
+		{"x := 0o9", invalid, ""},
 	} {
 		status, indent := IsComplete(test.source)
 		if status != test.status || indent != test.indent {
@@ -89,7 +89,7 @@ f(P{1, 2})`
 		if c != '\n' {
 			continue
 		}
-		if status, _ := IsComplete(cell[:i+1]); status == Invalid {
+		if status, _ := IsComplete(cell[:i+1]); status == invalid {
 			t.Errorf("the first lines are called invalid:\n%s", cell[:i+1])
 		}
 	}
@@ -100,7 +100,7 @@ func FuzzIsComplete(f *testing.F) {
 	f.Add("x := `")
 	f.Fuzz(func(t *testing.T, source string) {
 		status, indent := IsComplete(source)
-		if status != Incomplete && indent != "" {
+		if status != incomplete && indent != "" {
 			t.Errorf("IsComplete(%q) = %s with the indent %q", source, status, indent)
 		}
 	})

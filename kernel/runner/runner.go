@@ -11,6 +11,7 @@ import (
 
 	"levelsum/display"
 	"levelsum/display/draw"
+	"levelsum/kernel/assist"
 	"levelsum/kernel/cell"
 	"levelsum/kernel/compile"
 	"levelsum/kernel/engine"
@@ -32,6 +33,7 @@ type Runner struct {
 	slots   slots
 	interp  interpreter
 	built   builds
+	docs    *assist.Docs              // nil until something is inspected
 	plugins map[string]map[string]any // by unit path: what the plugin offers
 	told    bool                      // the reader has been told that there is no compiled tier
 
@@ -142,6 +144,10 @@ func (r *Runner) answer(q engine.Request) {
 		out := r.run(*q.Cell)
 		r.over()
 		ev = engine.Event{Op: "done", ID: q.ID, Sync: true, Outcome: &out}
+	case "complete":
+		ev.Completion = r.complete(q.Source, q.Cursor)
+	case "inspect":
+		ev.Found = r.inspect(q.Source, q.Cursor, q.Detail)
 	case "state":
 		ev.Facts = r.state()
 	}

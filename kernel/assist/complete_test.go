@@ -1,0 +1,227 @@
+package assist
+
+import (
+	"go/ast"
+	"go/importer"
+	"go/parser"
+	"go/token"
+	"go/types"
+	"maps"
+	"slices"
+	"strings"
+	"testing"
+)
+
+// A session whose declarations are one file.
+type session struct {
+	pkg   *types.Package
+	names map[string]string
+	imp   types.Importer
+}
+
+func (s session) Names() []string                            { return s.pkg.Scope().Names() }
+func (s session) Lookup(name string) types.Object            { return s.pkg.Scope().Lookup(name) }
+func (s session) ImportNames() []string                      { return slices.Sorted(maps.Keys(s.names)) }
+func (s session) ImportPath(name string) string              { return s.names[name] }
+func (s session) Import(path string) (*types.Package, error) { return s.imp.Import(path) }
+
+const declared = `package cell
+
+import "time"
+
+type Sample struct {
+	Mass, Temp float64
+	label      string
+	Wait       time.Duration
+	Inner
+}
+
+type Inner struct{ Depth int }
+
+func (i Inner) Below() int         { return i.Depth }
+func (s *Sample) SetMass(m float64) { s.Mass = m }
+func (s Sample) Label() string     { return s.label }
+
+type Shape interface{ Area() float64 }
+
+var run Sample
+var pointer *Sample
+var list []Sample
+var byName map[string]Sample
+var θ = 343.0
+var shape Shape
+
+func heat(d time.Duration, more ...Sample) float64 { return 0 }
+func pair() (int, error)                            { return 0, nil }
+
+const steps = 12
+`
+
+func newSession(t testing.TB) session {
+	t.Helper()
+	fset := token.NewFileSet()
+	f, err := parser.ParseFile(fset, "", declared, 0)
+	if err != nil {
+		t.Fatal(err)
+	}
+	imp := importer.ForCompiler(fset, "source", nil)
+	pkg, err := (&types.Config{Importer: imp}).Check("cell", fset, []*ast.File{f}, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return session{pkg, map[string]string{"time": "time", "math": "math", "strings": "strings"}, imp}
+}
+
+// In the sources | is the cursor. Want are matches that must be there, each
+// with its kind if it says so; first is the first; never are those that must
+// not be there.
+func TestComplete(t *testing.T) {
+	s := newSession(t)
+	for _, test := range []struct{ name, source, want, first, never string }{
+		{"package member", "math.Sq|", "Sqrt:function Sqrt2:constant", "Sqrt", "Abs"},
+		{"package member, nothing typed", "math.|", "Sqrt Pi:constant", "", "float64"},
+		{"session variable", "ru|", "run:instance rune:class", "run", "list"},
+		{"session function", "he|", "heat:function", "heat", ""},
+		{"fields and methods", "run.|", "Mass:property Temp Inner Depth label SetMass:method Label Below", "", "heat"},
+		{"methods of a pointer", "pointer.|", "Mass SetMass Below", "", ""},
+		{"element of a list", "list[0].|", "Mass Label", "", ""},
+		{"element of a map", "byName[\"x\"].La|", "Label label", "", "Mass"},
+		{"result of a call", "time.Now().Ad|", "Add:method AddDate", "Add", "Sub"},
+		{"field of a field", "run.Inner.|", "Depth Below", "", "Mass"},
+		{"interface", "shape.|", "Area:method", "Area", ""},
+		{"case does not count", "math.sq|", "Sqrt", "Sqrt", ""},
+		{"value declared in the cell", "b := strings.Builder{}\nb.Wr|", "Write WriteString WriteByte WriteRune", "Write", "Len"},
+		{"value of a cell with an error", "x := nosuch\nb := strings.Builder{}\nb.Wr|\ny := nosuch + 1", "WriteString", "", ""},
+		{"variable of the cell", "alpha := 1\nbeta := alp|", "alpha:instance", "alpha", ""},
+		{"not yet declared", "be| \nbeta := 1", "", "", "beta"},
+		{"inside an open function", "func f(width float64) {\n\tif width > 1 {\n\t\tx := wid|", "width", "width", ""},
+		{"inside an open call", "heat(time.Sec|", "Second:constant", "Second", ""},
+		{"open call, more after it", "heat(ru|\nz := 1", "run", "run", ""},
+		{"receiver in an open method", "func (s Sample) F() float64 {\n\treturn s.Ma|", "Mass", "Mass", ""},
+		{"type declared in the cell", "type Cell struct{ Wall int }\nvar c Cell\nc.|", "Wall:property", "Wall", ""},
+		{"method declared in the cell", "type Cell struct{}\nfunc (Cell) Open() {}\nCell{}.|", "Open:method", "Open", ""},
+		{"fields of a literal", "Sample{Ma|}", "Mass:property", "Mass", ""},
+		{"fields that are missing", "Sample{Mass: 1, |}", "Temp label Inner", "", "Mass run"},
+		{"open literal", "Sample{Mass: 1, Te|", "Temp", "Temp", ""},
+		{"wanted type first", "heat(|)", "time.Second:constant time.Hour run", "time.Hour", ""},
+		{"wanted type by its own name", "heat(Sec|)", "time.Second", "time.Second", ""},
+		{"wanted beside an operator", "heat(3*time.Second + |)", "time.Minute", "", ""},
+		{"wanted by a field", "Sample{Wait: Sec|}", "time.Second", "time.Second", ""},
+		{"wanted by a field of an open literal", "Sample{Wait: 3 * Sec|", "time.Second", "time.Second", ""},
+		{"wanted in a literal of another package", "x := time.Time{}\nstrings.Builder{|", "", "", "time.Second"},
+		{"range variable", "for i, sample := range list {\n\tsam|", "sample", "sample", ""},
+		{"closure", "f := func(depth int) int { return dep| }", "depth", "depth", ""},
+		{"two results are no value", "pair().|", "", "", ""},
+		{"package name", "stri|", "strings:module string:class", "strings", ""},
+		{"keyword and builtin", "ra|", "range:keyword", "", ""},
+		{"builtin", "appe|", "append:function", "append", ""},
+		{"type", "var x flo|", "float64:class float32", "", ""},
+		{"after a name of several bytes", "θ + θ*math.Sq|", "Sqrt", "Sqrt", ""},
+		{"name of several bytes", "θ|", "θ:instance", "θ", ""},
+		{"own import", "import \"math/bits\"\nbits.Len|", "Len:function Len64", "Len", ""},
+		{"import under another name", "import b \"math/bits\"\nb.Len6|", "Len64", "Len64", ""},
+		{"shadowed name", "run := 3.5\nrun.|", "", "", "Mass"},
+		{"statement before a declaration", "x := 1\nfunc g() { heat(run.Te| }", "Temp", "Temp", ""},
+		{"unexported member of another package", "time.Now().|", "Unix", "", "wall"},
+		{"in a string", "s := \"math.|\"", "", "", "Sqrt"},
+		{"in a comment", "// math.|", "", "", "Sqrt"},
+		{"in a number", "x := 12|", "", "", "steps"},
+		{"unknown package", "nosuch.|", "", "", "run"},
+		{"constant", "st|", "steps:constant", "steps", ""},
+		{"empty cell", "|", "run heat math", "", ""},
+	} {
+		t.Run(test.name, func(t *testing.T) {
+			cursor := strings.IndexByte(test.source, '|')
+			source := test.source[:cursor] + test.source[cursor+1:]
+			got := Complete(s, source, cursor)
+			kinds := map[string]string{}
+			var names []string
+			for _, m := range got.Matches {
+				kinds[m.Text] = m.Kind
+				names = append(names, m.Text)
+			}
+			for w := range strings.FieldsSeq(test.want) {
+				name, kind, _ := strings.Cut(w, ":")
+				if k, ok := kinds[name]; !ok || kind != "" && k != kind {
+					t.Errorf("%s is %q, want %q, among %q", name, k, kind, names)
+				}
+			}
+			for n := range strings.FieldsSeq(test.never) {
+				if _, ok := kinds[n]; ok {
+					t.Errorf("%s is among %q", n, names)
+				}
+			}
+			if test.first != "" && (len(names) == 0 || names[0] != test.first) {
+				t.Errorf("first of %q, want %s", names, test.first)
+			}
+			if test.want == "" && test.never == "" && len(names) > 0 {
+				t.Errorf("matches %q, want none", names)
+			}
+			if start, _ := wordAt(source, cursor); got.Start > cursor || got.End < cursor || len(names) > 0 && got.Start != start {
+				t.Errorf("replaces %d to %d with the cursor at %d", got.Start, got.End, cursor)
+			}
+		})
+	}
+}
+
+// The whole name is replaced when the cursor is inside it.
+func TestCompleteInsideAName(t *testing.T) {
+	const source = "x := math.Sqrx + 1"
+	got := Complete(newSession(t), source, strings.Index(source, "rx"))
+	if source[got.Start:got.End] != "Sqrx" || got.Matches[0].Text != "Sqrt" {
+		t.Errorf("replaces %q by %v", source[got.Start:got.End], got.Matches)
+	}
+}
+
+func TestSignatures(t *testing.T) {
+	s := newSession(t)
+	for _, test := range []struct{ source, name, want string }{
+		{"he", "heat", "func(d time.Duration, more ...Sample) float64"},
+		{"run.", "SetMass", "func(m float64)"},
+		{"run.", "Mass", "float64"},
+		{"run.", "Inner", "Inner"},
+		{"st", "steps", "untyped int = 12"},
+		{"Sa", "Sample", "struct"},
+		{"math.", "Sqrt", "func(x float64) float64"},
+		{"ma", "math", "math"},
+		{"Sh", "Shape", "interface"},
+	} {
+		got := ""
+		for _, m := range Complete(s, test.source, len(test.source)).Matches {
+			if m.Text == test.name {
+				got = m.Signature
+			}
+		}
+		if got != test.want {
+			t.Errorf("after %q: signature of %s = %q, want %q", test.source, test.name, got, test.want)
+		}
+	}
+}
+
+// Whatever is typed there is an answer, and it is about the cursor.
+func FuzzComplete(f *testing.F) {
+	s := newSession(f)
+	f.Add("heat(run.", 9)
+	f.Add("for i := range list { list[i].", 30)
+	f.Add("func (s Sample) f() { s.\n}\nx := `", 24)
+	f.Add("type T[P any] struct { x P }; T[int]{}.", 39)
+	f.Fuzz(func(t *testing.T, source string, cursor int) {
+		got := Complete(s, source, cursor)
+		if got.Start < 0 || got.End > len(source) || got.Start > got.End {
+			t.Errorf("replaces %d to %d of %d bytes", got.Start, got.End, len(source))
+		}
+		for _, m := range got.Matches {
+			if strings.Contains(m.Text, placeholder) {
+				t.Errorf("the placeholder is offered: %q", m.Text)
+			}
+		}
+	})
+}
+
+func BenchmarkComplete(b *testing.B) {
+	s := newSession(b)
+	const source = "for i := range list {\n\tx := list[i].Mass * math.Sqrt(θ)\n\theat(time.Second, list[i])\n\tlist[i]."
+	for b.Loop() {
+		Complete(s, source, len(source))
+	}
+}

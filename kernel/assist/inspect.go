@@ -1,0 +1,164 @@
+package assist
+
+import (
+	"fmt"
+	"go/ast"
+	"go/doc/comment"
+	"go/token"
+	"go/types"
+	"strings"
+)
+
+// A Valued scope knows what session variables hold. Cell is the number of the
+// cell that declared the variable last.
+type Valued interface {
+	ValueOf(name string) (text string, cell int, ok bool)
+}
+
+// An Inspection describes what stands at a cursor, as plain text and as
+// Markdown.
+type Inspection struct {
+	Text, Markdown string
+}
+
+// Inspect describes the name at the offset cursor, or the function whose
+// arguments the cursor is among. With more detail than 0 all members of a type
+// are listed. Docs may be nil.
+func Inspect(scope Scope, docs *Docs, source string, cursor, detail int) (Inspection, bool) {
+	cursor = max(0, min(cursor, len(source)))
+	start, _ := wordAt(source, cursor)
+	if inText(source, start) {
+		return Inspection{}, false
+	}
+	c := check(scope, source)
+	at := c.where(start)
+	path := c.pathTo(func(id *ast.Ident) bool { return id.Pos() == at })
+	if path == nil {
+		path = c.callee(c.where(cursor))
+	}
+	if path == nil {
+		return Inspection{}, false
+	}
+	id := path[0].(*ast.Ident)
+	o := c.info.ObjectOf(id)
+	if o == nil {
+		if importPath := scope.ImportPath(id.Name); importPath != "" {
+			if p, err := scope.Import(importPath); err == nil {
+				o = types.NewPkgName(token.NoPos, c.pkg, id.Name, p)
+			}
+		}
+	}
+	if o == nil {
+		return Inspection{}, false
+	}
+	d := c.describe(scope, docs, o, detail)
+	return d, d.Text != ""
+}
+
+// callee returns the way to the name of the function of the innermost call that
+// has pos between its brackets.
+func (c *checked) callee(pos token.Pos) []ast.Node {
+	var name *ast.Ident
+	ast.Inspect(c.file, func(n ast.Node) bool {
+		call, ok := n.(*ast.CallExpr)
+		if !ok || pos <= call.Lparen || call.Rparen.IsValid() && pos > call.Rparen {
+			return true
+		}
+		switch f := ast.Unparen(call.Fun).(type) {
+		case *ast.Ident:
+			name = f
+		case *ast.SelectorExpr:
+			name = f.Sel
+		}
+		return true
+	})
+	if name == nil {
+		return nil
+	}
+	return c.pathTo(func(id *ast.Ident) bool { return id == name })
+}
+
+// fewMembers is how many members of a type are listed without further detail.
+const fewMembers = 12
+
+// describe says what o is.
+func (c *checked) describe(scope Scope, docs *Docs, o types.Object, detail int) Inspection {
+	head := headOf(o)
+	var extra []string
+	switch o := o.(type) {
+	case *types.Var:
+		v, ok := scope.(Valued)
+		if !ok || o.IsField() || o.Parent() != c.pkg.Scope() {
+			break
+		}
+		if text, cell, ok := v.ValueOf(o.Name()); ok {
+			extra = append(extra, fmt.Sprintf("// set by In[%d]", cell), o.Name()+" = "+text)
+		}
+	case *types.TypeName:
+		members := append(c.fields(o.Type()), c.methods(o.Type(), true)...)
+		for i, m := range members {
+			if detail == 0 && i == fewMembers {
+				extra = append(extra, fmt.Sprintf("// and %d more", len(members)-i))
+				break
+			}
+			extra = append(extra, strings.TrimRight("\t"+m.line(), " "))
+		}
+	case *types.PkgName:
+		members := packageMembers(o.Imported())
+		if detail > 0 {
+			for _, m := range members {
+				extra = append(extra, strings.TrimRight("\t"+m.line(), " "))
+			}
+		} else {
+			extra = append(extra, fmt.Sprintf("// %d names", len(members)))
+		}
+	}
+	code := strings.Join(append([]string{head}, extra...), "\n")
+	d := Inspection{Text: code, Markdown: "```go\n" + code + "\n```"}
+	if text := docs.of(o); text != "" {
+		var p comment.Parser
+		parsed := p.Parse(text)
+		var pr comment.Printer
+		d.Text += "\n\n" + strings.TrimSpace(string(pr.Text(parsed)))
+		d.Markdown += "\n\n" + strings.TrimSpace(string(pr.Markdown(parsed)))
+	}
+	return d
+}
+
+// line is a member of a type or package on a line of its own.
+func (m Match) line() string {
+	if s, ok := strings.CutPrefix(m.Signature, "func"); ok {
+		return m.Text + s
+	}
+	return m.Text + " " + m.Signature
+}
+
+// headOf is the declaration of o in one line.
+func headOf(o types.Object) string {
+	name := o.Name()
+	if p := o.Pkg(); p != nil && p.Path() != "cell" && o.Parent() == p.Scope() {
+		name = p.Name() + "." + name
+	}
+	switch o := o.(type) {
+	case *types.PkgName:
+		return fmt.Sprintf("package %s // %q", o.Imported().Name(), o.Imported().Path())
+	case *types.Func:
+		s := o.Signature()
+		if r := s.Recv(); r != nil {
+			name = "(" + types.TypeString(r.Type(), byName) + ") " + name
+		}
+		return "func " + name + strings.TrimPrefix(types.TypeString(s, byName), "func")
+	case *types.Builtin:
+		return "func " + name
+	case *types.TypeName:
+		return "type " + name + " " + signatureOf(o)
+	case *types.Const:
+		return "const " + name + " " + signatureOf(o)
+	case *types.Var:
+		if o.IsField() {
+			return "field " + name + " " + signatureOf(o)
+		}
+		return "var " + name + " " + signatureOf(o)
+	}
+	return name
+}

@@ -1,0 +1,21 @@
+package cell
+
+import (
+	"go/types"
+	"maps"
+	"slices"
+)
+
+// ImportNames lists the names of packages that a new cell can use without an
+// import: those that cells have imported and the usual ones.
+func (s *Scope) ImportNames() []string {
+	names := maps.Clone(s.usual)
+	maps.Copy(names, s.imports)
+	return slices.Sorted(maps.Keys(names))
+}
+
+// ImportPath is the package that such a name means, "" if none.
+func (s *Scope) ImportPath(name string) string { return s.importPath(name) }
+
+// Import returns a package that cells can import.
+func (s *Scope) Import(path string) (*types.Package, error) { return s.importer.Import(path) }

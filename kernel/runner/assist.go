@@ -1,0 +1,79 @@
+package runner
+
+import (
+	"fmt"
+	"strings"
+	"time"
+
+	"levelsum/display"
+	"levelsum/kernel/assist"
+	"levelsum/kernel/cell"
+	"levelsum/kernel/engine"
+)
+
+// complete answers how a cell can go on.
+func (r *Runner) complete(source string, cursor int) *engine.Completion {
+	c := assist.Complete(r.scope, source, cursor)
+	out := &engine.Completion{Start: c.Start, End: c.End}
+	for _, m := range c.Matches {
+		out.Matches = append(out.Matches, engine.Match{Text: cell.Unmark(m.Text), Kind: m.Kind, Signature: cell.Unmark(m.Signature)})
+	}
+	return out
+}
+
+// inspect answers what stands at the cursor; nil if that is not known.
+func (r *Runner) inspect(source string, cursor, detail int) map[string]any {
+	if r.docs == nil {
+		goroot, folder := "", ""
+		if r.kit != nil {
+			goroot, folder = r.kit.Manifest.GOROOT, r.kit.Manifest.Source
+		}
+		r.docs = assist.NewDocs(goroot, "levelsum", folder)
+	}
+	d, ok := assist.Inspect(valued{r.scope, r}, r.docs, source, cursor, detail)
+	if !ok {
+		return nil
+	}
+	return map[string]any{"text/plain": cell.Unmark(d.Text), "text/markdown": cell.Unmark(d.Markdown)}
+}
+
+// valued is the session's scope with what its variables hold.
+type valued struct {
+	*cell.Scope
+	r *Runner
+}
+
+// A value is shown up to valueLimit bytes, if that takes no longer than
+// valueTime: showing it may run the user's own code.
+const (
+	valueLimit = 400
+	valueTime  = 100 * time.Millisecond
+)
+
+// ValueOf returns the value of a session variable as text.
+func (v valued) ValueOf(name string) (text string, number int, ok bool) {
+	slot := v.Slot(name)
+	if slot == nil {
+		return "", 0, false
+	}
+	value := v.r.slots.value(slot.ID)
+	shown := make(chan string, 1)
+	go func() {
+		defer func() {
+			if p := recover(); p != nil {
+				shown <- fmt.Sprintf("(cannot be shown: %v)", p)
+			}
+		}()
+		text, _ := display.ViewOf(value).Data["text/plain"].(string)
+		shown <- text
+	}()
+	select {
+	case text = <-shown:
+	case <-time.After(valueTime):
+		text = "(takes long to show)"
+	}
+	if len(text) > valueLimit {
+		text = strings.ToValidUTF8(text[:valueLimit], "") + " ..."
+	}
+	return text, slot.Cell, true
+}
