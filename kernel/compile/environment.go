@@ -27,6 +27,7 @@ type toolchain struct {
 	goroot  string            // where it is installed
 	tools   string            // folder of compile and link
 	cc      string            // C compiler, needed to link plugins
+	plugins bool              // the platform has plugins and the C compiler is there
 	env     map[string]string // the settings in kept
 }
 
@@ -63,13 +64,19 @@ func find(ctx context.Context, dir string) (*toolchain, error) {
 			t.env[k] = env[k]
 		}
 	}
+	t.plugins = Supported() == nil && findCC(t.cc) == nil
 	return t, nil
 }
 
 // environ is the environment in which packages are compiled: nothing of the
 // user's that could change the result.
 func (t *toolchain) environ() []string {
-	env := append(withoutGo(os.Environ()), "GOENV=off", "GOTOOLCHAIN=local", "GOWORK=off", "GOFLAGS=", "GOROOT="+t.goroot, "CGO_ENABLED=1")
+	env := append(withoutGo(os.Environ()), "GOENV=off", "GOTOOLCHAIN=local", "GOWORK=off", "GOFLAGS=", "GOROOT="+t.goroot)
+	if t.plugins {
+		env = append(env, "CGO_ENABLED=1")
+	} else {
+		env = append(env, "CGO_ENABLED=0")
+	}
 	for k, v := range t.env {
 		env = append(env, k+"="+v)
 	}

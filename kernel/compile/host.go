@@ -7,11 +7,9 @@ import (
 	"encoding/binary"
 	"encoding/hex"
 	"errors"
-	"fmt"
 	"io"
 	"os"
 	"path/filepath"
-	"runtime"
 	"runtime/debug"
 	"strings"
 )
@@ -83,11 +81,7 @@ func Here() (*Kit, error) {
 // Fits says whether the running program could open what the kit builds, as far
 // as that can be told without trying. The error is an [*Unavailable].
 func (k *Kit) Fits() error {
-	m := &k.Manifest
-	if m.Go != runtime.Version() {
-		return &Unavailable{Reason: fmt.Sprintf("this levelsum was built with %s, its compiled packages with %s", runtime.Version(), m.Go), Do: "run install.sh again"}
-	}
-	if here := Race; m.Race != here {
+	if here := Race; k.Manifest.Race != here {
 		return &Unavailable{Reason: "this levelsum and its compiled packages differ in the flag -race", Do: "run levelsum install"}
 	}
 	return CanOpen()

@@ -36,9 +36,9 @@ func Kits() ([]string, error) {
 	return filepath.Glob(filepath.Join(root, "kit", "*"))
 }
 
-// Source returns the folder of the source of a kit that was made for an
+// SourceOf returns the folder of the source of a kit that was made for an
 // executable, also for an earlier build of it; empty if there is none.
-func Source(executable string) string {
+func SourceOf(executable string) string {
 	dirs, _ := Kits()
 	for _, dir := range dirs {
 		if m, err := readManifest(dir); err == nil && m.Executable == executable {

@@ -56,7 +56,7 @@ func TestRetireRemovesKitsOfEarlierBuilds(t *testing.T) {
 	earlier := kit("earlier", exe)
 	gone := kit("gone", filepath.Join(root, "no-such"))
 	kit("nobody's", "")
-	if got := Source(filepath.Join(root, "no-such")); got != "/src/gone" {
+	if got := SourceOf(filepath.Join(root, "no-such")); got != "/src/gone" {
 		t.Errorf("the source of the program that is gone is %q", got)
 	}
 	unfinished := filepath.Join(root, "kit", "x.new-1")

@@ -2,16 +2,11 @@ package compile
 
 import (
 	"context"
-	"encoding/json"
-	"errors"
 	"fmt"
-	"io"
-	"io/fs"
 	"os"
 	"os/exec"
 	"path/filepath"
 	"runtime"
-	"slices"
 	"strings"
 	"sync"
 )
@@ -37,9 +32,12 @@ type Manifest struct {
 	// Source is where the module's source stood when the kit was made.
 	Source string `json:"source"`
 	// Executable is the program that the kit was made for.
-	Executable string     `json:"executable,omitempty"`
-	CC         string     `json:"cc"`
-	Archives   []*Archive `json:"archives"`
+	Executable string `json:"executable,omitempty"`
+	CC         string `json:"cc"`
+	// TypesOnly says that there was no C compiler, or that the platform has no
+	// plugins: the archives serve the type checker only.
+	TypesOnly bool       `json:"types_only,omitempty"`
+	Archives  []*Archive `json:"archives"`
 }
 
 // An Archive is one compiled package of a kit.
@@ -57,14 +55,12 @@ type Archive struct {
 
 // A Kit is an opened kit. It is safe for concurrent use.
 type Kit struct {
-	Dir      string
-	Manifest Manifest
-	Cache    *Cache
+	*Types
+	Cache *Cache
 
-	archives map[string]*Archive
-	config   []byte // importcfg lines of all archives
-	compile  string // the compiler
-	link     string // the linker
+	config  []byte // importcfg lines of all archives
+	compile string // the compiler
+	link    string // the linker
 
 	mu    sync.Mutex           // guards known
 	known map[string]*compiled // packages of cells by path
@@ -76,42 +72,37 @@ func Open(dir, cache string) (*Kit, error) {
 	if err := Supported(); err != nil {
 		return nil, err
 	}
-	data, err := os.ReadFile(filepath.Join(dir, manifestName))
-	switch {
-	case errors.Is(err, fs.ErrNotExist):
-		return nil, &Unavailable{Reason: "cells cannot be compiled yet: nothing has been prepared for this levelsum", Do: "run levelsum install"}
-	case err != nil:
-		return nil, &Unavailable{Reason: "the compiled packages in " + dir + " cannot be read", Do: "run levelsum install", Err: err}
+	types, err := OpenTypes(dir)
+	if err != nil {
+		return nil, err
 	}
-	k := &Kit{Dir: dir, archives: map[string]*Archive{}, known: map[string]*compiled{}, Cache: &Cache{Dir: cache}}
-	if err := json.Unmarshal(data, &k.Manifest); err != nil || k.Manifest.Format != format {
-		return nil, &Unavailable{Reason: "the compiled packages in " + dir + " are those of another levelsum", Do: "run levelsum install", Err: err}
-	}
+	k := &Kit{Types: types, known: map[string]*compiled{}, Cache: &Cache{Dir: cache}}
 	m := &k.Manifest
-	if m.GOOS != runtime.GOOS || m.GOARCH != runtime.GOARCH {
-		return nil, &Unavailable{Reason: fmt.Sprintf("the compiled packages in %s are for %s/%s, this is %s/%s", dir, m.GOOS, m.GOARCH, runtime.GOOS, runtime.GOARCH), Do: "run levelsum install"}
-	}
 	if err := k.tools(); err != nil {
 		return nil, err
 	}
-	if _, err := exec.LookPath(m.CC); err != nil {
-		return nil, &Unavailable{Reason: fmt.Sprintf("the C compiler %s, with which Go links compiled cells, is not found", m.CC), Do: installCC()}
+	if err := findCC(m.CC); err != nil {
+		return nil, err
 	}
-	var b []byte
-	missing := 0
+	if m.TypesOnly {
+		return nil, &Unavailable{Reason: "levelsum was installed when there was no C compiler", Do: "run install.sh again"}
+	}
 	for _, a := range m.Archives {
-		k.archives[a.Path] = a
-		file := k.file(a.Path)
-		if _, err := os.Stat(file); err != nil {
-			missing++
-		}
-		b = fmt.Appendf(b, "packagefile %s=%s\n", a.Path, file)
+		k.config = fmt.Appendf(k.config, "packagefile %s=%s\n", a.Path, k.file(a.Path))
 	}
-	if missing > 0 {
-		return nil, &Unavailable{Reason: fmt.Sprintf("%d of the %d compiled packages are gone from %s", missing, len(m.Archives), dir), Do: "run levelsum install"}
-	}
-	k.config = b
 	return k, nil
+}
+
+// findCC looks for the C compiler.
+func findCC(cc string) error {
+	if _, err := exec.LookPath(cc); err == nil {
+		return nil
+	}
+	do := "install gcc with your system's packages"
+	if runtime.GOOS == "darwin" {
+		do = "install the command line developer tools (xcode-select --install)"
+	}
+	return &Unavailable{Reason: fmt.Sprintf("the C compiler %s, with which Go links compiled cells, is not found", cc), Do: do}
 }
 
 // Supported says whether this platform has plugins.
@@ -121,13 +112,6 @@ func Supported() error {
 		return nil
 	}
 	return &Unavailable{Reason: "cells cannot be compiled on " + runtime.GOOS, Do: "Linux and macOS can"}
-}
-
-func installCC() string {
-	if runtime.GOOS == "darwin" {
-		return "install the command line developer tools (xcode-select --install)"
-	}
-	return "install gcc with your system's packages"
 }
 
 // tools finds compiler and linker of the kit's own Go version: where they were,
@@ -176,39 +160,4 @@ func rootVersion(root string) (string, error) {
 func exists(file string) bool {
 	_, err := os.Stat(file)
 	return err == nil
-}
-
-// file is the path of a package's archive.
-func (k *Kit) file(path string) string {
-	return filepath.Join(k.Dir, "pkg", filepath.FromSlash(path)+".a")
-}
-
-// Lookup opens the archive of a package, for the type information in it. It is
-// the lookup function that go/importer wants.
-func (k *Kit) Lookup(path string) (io.ReadCloser, error) {
-	if k.archives[path] == nil {
-		return nil, fmt.Errorf("package %s is not among those that cells can use", path)
-	}
-	return os.Open(k.file(path))
-}
-
-// Paths lists the packages that cells may import, sorted.
-func (k *Kit) Paths() []string {
-	var ps []string
-	for _, a := range k.Manifest.Archives {
-		if a.Import {
-			ps = append(ps, a.Path)
-		}
-	}
-	slices.Sort(ps)
-	return ps
-}
-
-// Name returns the name that a package of the kit gives itself.
-func (k *Kit) Name(path string) (string, bool) {
-	a := k.archives[path]
-	if a == nil {
-		return "", false
-	}
-	return a.Name, true
 }

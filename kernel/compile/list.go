@@ -5,7 +5,6 @@ import (
 	"fmt"
 	"io"
 	"os"
-	"os/exec"
 	"sync"
 )
 
@@ -52,21 +51,13 @@ func (l *Listing) fetch(path string) error {
 	if err != nil {
 		return err
 	}
-	// Built as a kit's packages are, so that Go's cache serves both; but that
-	// needs the C compiler.
-	mode := "-buildmode=default"
-	if _, err := exec.LookPath(t.cc); err == nil && Supported() == nil {
-		mode = "-buildmode=plugin"
-	}
-	// What it imports comes with it, so that few calls serve many packages.
-	pkgs, err := t.list(context.Background(), l.source, mode, "-trimpath", "-pgo=off", "-export", "-deps", "-json=ImportPath,Name,Export,Error", "--", path)
+	// Built as a kit's packages are, so that Go's cache serves both. What it
+	// imports comes with it, so that few calls serve many packages.
+	pkgs, err := t.export(context.Background(), l.source, false, []string{path})
 	if err != nil {
 		return err
 	}
 	for _, p := range pkgs {
-		if p.Error != nil {
-			return fmt.Errorf("package %s: %s", p.ImportPath, p.Error.Err)
-		}
 		if p.Export != "" {
 			l.files[p.ImportPath] = p.Export
 		}

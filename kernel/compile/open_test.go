@@ -189,6 +189,42 @@ func TestLookupServesTypes(t *testing.T) {
 	}
 }
 
+// Without a C compiler there is a kit all the same, for the type checker.
+func TestKitWithoutC(t *testing.T) {
+	_, k := open(t)
+	bin := t.TempDir()
+	if err := os.Symlink(filepath.Join(k.Manifest.GOROOT, "bin", "go"), filepath.Join(bin, "go")); err != nil {
+		t.Fatal(err)
+	}
+	path := os.Getenv("PATH")
+	t.Setenv("PATH", bin)
+	dir := filepath.Join(t.TempDir(), "kit")
+	_, err := compile.Prepare(t.Context(), dir, k.Manifest.Source, compile.Options{Cache: t.TempDir()})
+	var u *compile.Unavailable
+	if !errors.As(err, &u) || !strings.Contains(err.Error(), "the C compiler "+k.Manifest.CC) {
+		t.Fatalf("got %v, want that there is no C compiler", err)
+	}
+	// Now the go command goes too; later the C compiler is installed.
+	t.Setenv("PATH", "/nowhere")
+	types, err := compile.OpenTypes(dir)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if !slices.Equal(types.Paths(), k.Paths()) {
+		t.Errorf("%d packages without a C compiler, %d with it", len(types.Paths()), len(k.Paths()))
+	}
+	imp := importer.ForCompiler(token.NewFileSet(), "gc", types.Lookup)
+	for _, p := range []string{"net", "levelsum/statmech", "gonum.org/v1/gonum/mat"} {
+		if _, err := imp.Import(p); err != nil {
+			t.Errorf("%s: %v", p, err)
+		}
+	}
+	t.Setenv("PATH", path)
+	if _, err := compile.Open(dir, t.TempDir()); err == nil || !strings.Contains(err.Error(), "installed when there was no C compiler; run install.sh again") {
+		t.Errorf("with a C compiler: %v", err)
+	}
+}
+
 func TestListingServesTypes(t *testing.T) {
 	_, k := open(t)
 	l := compile.List(filepath.Join("..", ".."))

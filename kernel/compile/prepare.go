@@ -63,11 +63,10 @@ type listed struct {
 
 // Prepare compiles all that cells may import, from the module whose source is
 // in the folder source, and makes a kit of it in dir. What was in dir is
-// replaced once the new kit is complete.
+// replaced once the new kit is complete. Without a C compiler, or where there
+// are no plugins, the kit serves the type checker only; then the error is the
+// [*Unavailable] that says so.
 func Prepare(ctx context.Context, dir, source string, opt Options) (*Kit, error) {
-	if err := Supported(); err != nil {
-		return nil, err
-	}
 	if !exists(filepath.Join(source, "go.mod")) {
 		return nil, &Unavailable{Reason: "there is no Go module in " + source, Do: "name the folder of levelsum's source with -source"}
 	}
@@ -85,8 +84,9 @@ func Prepare(ctx context.Context, dir, source string, opt Options) (*Kit, error)
 	if t.version != runtime.Version() {
 		return nil, otherGo(runtime.Version(), t.version)
 	}
-	if _, err := exec.LookPath(t.cc); err != nil {
-		return nil, &Unavailable{Reason: fmt.Sprintf("the C compiler %s, with which Go links compiled cells, is not found", t.cc), Do: installCC()}
+	m := Manifest{
+		Format: format, Go: t.version, GOROOT: t.goroot, Tools: t.tools, GOOS: runtime.GOOS, GOARCH: runtime.GOARCH,
+		Race: opt.Race, Source: source, Executable: opt.Executable, CC: t.cc, TypesOnly: !t.plugins,
 	}
 	paths, err := t.importable(ctx, source)
 	if err != nil {
@@ -106,53 +106,8 @@ func Prepare(ctx context.Context, dir, source string, opt Options) (*Kit, error)
 	if err != nil {
 		return nil, err
 	}
-	m := Manifest{
-		Format: format, Go: t.version, GOROOT: t.goroot, Tools: t.tools, GOOS: runtime.GOOS, GOARCH: runtime.GOARCH,
-		Race: opt.Race, Source: source, Executable: opt.Executable, CC: t.cc,
-	}
-	for _, p := range pkgs {
-		if p.Module != nil && p.Module.Main {
-			m.Module, m.Lang = p.Module.Path, language(p.Module.GoVersion)
-		}
-	}
-	if err := os.MkdirAll(filepath.Dir(dir), 0o777); err != nil {
-		return nil, &CacheError{filepath.Dir(dir), err}
-	}
-	tmp, err := os.MkdirTemp(filepath.Dir(dir), filepath.Base(dir)+".new-")
-	if err != nil {
-		return nil, &CacheError{filepath.Dir(dir), err}
-	}
-	defer os.RemoveAll(tmp)
-	for _, p := range pkgs {
-		if p.Export == "" {
-			continue // unsafe, which others import
-		}
-		file := filepath.Join(tmp, "pkg", filepath.FromSlash(p.ImportPath)+".a")
-		if err := keep(p.Export, file); err != nil {
-			return nil, &CacheError{dir, err}
-		}
-		hash, err := contentHash(p.Export)
-		if err != nil {
-			return nil, err
-		}
-		m.Archives = append(m.Archives, &Archive{
-			Path: p.ImportPath, Hash: hash, Standard: p.Standard, Import: slices.Contains(paths, p.ImportPath), Name: p.Name,
-		})
-	}
-	slices.SortFunc(m.Archives, func(a, b *Archive) int { return strings.Compare(a.Path, b.Path) })
-	m.ID = m.identity()
-	data, err := json.MarshalIndent(m, "", "\t")
-	if err != nil {
+	if err := m.store(dir, pkgs, paths); err != nil {
 		return nil, err
-	}
-	if err := os.WriteFile(filepath.Join(tmp, manifestName), append(data, '\n'), 0o666); err != nil {
-		return nil, &CacheError{dir, err}
-	}
-	if err := os.Chmod(tmp, 0o755); err != nil {
-		return nil, &CacheError{dir, err}
-	}
-	if err := replace(tmp, dir); err != nil {
-		return nil, &CacheError{dir, err}
 	}
 	cache := opt.Cache
 	if cache == "" {
@@ -161,6 +116,54 @@ func Prepare(ctx context.Context, dir, source string, opt Options) (*Kit, error)
 		}
 	}
 	return Open(dir, cache)
+}
+
+// store puts the packages' archives and the manifest, which it completes, into
+// the folder dir. Of the packages, cells may import those in paths.
+func (m *Manifest) store(dir string, pkgs []listed, paths []string) error {
+	if err := os.MkdirAll(filepath.Dir(dir), 0o777); err != nil {
+		return &CacheError{filepath.Dir(dir), err}
+	}
+	tmp, err := os.MkdirTemp(filepath.Dir(dir), filepath.Base(dir)+".new-")
+	if err != nil {
+		return &CacheError{filepath.Dir(dir), err}
+	}
+	defer os.RemoveAll(tmp)
+	for _, p := range pkgs {
+		if p.Module != nil && p.Module.Main {
+			m.Module, m.Lang = p.Module.Path, language(p.Module.GoVersion)
+		}
+		if p.Export == "" {
+			continue // unsafe, which others import
+		}
+		if err := keep(p.Export, filepath.Join(tmp, "pkg", filepath.FromSlash(p.ImportPath)+".a")); err != nil {
+			return &CacheError{dir, err}
+		}
+		hash, err := contentHash(p.Export)
+		if err != nil {
+			return err
+		}
+		m.Archives = append(m.Archives, &Archive{
+			Path: p.ImportPath, Name: p.Name, Hash: hash, Standard: p.Standard, Import: slices.Contains(paths, p.ImportPath),
+		})
+	}
+	slices.SortFunc(m.Archives, func(a, b *Archive) int { return strings.Compare(a.Path, b.Path) })
+	m.ID = m.identity()
+	data, err := json.MarshalIndent(m, "", "\t")
+	if err != nil {
+		return err
+	}
+	err = os.WriteFile(filepath.Join(tmp, manifestName), append(data, '\n'), 0o666)
+	if err == nil {
+		err = os.Chmod(tmp, 0o755)
+	}
+	if err == nil {
+		err = replace(tmp, dir)
+	}
+	if err != nil {
+		return &CacheError{dir, err}
+	}
+	return nil
 }
 
 // replace moves the folder new to old's place.
@@ -210,6 +213,7 @@ func (t *toolchain) importable(ctx context.Context, source string) ([]string, er
 	for _, p := range pkgs {
 		switch {
 		case p.Error != nil, p.Name == "main", p.ImportPath == "unsafe": // unsafe has no archive
+		case p.ImportPath == "runtime/cgo", p.ImportPath == "runtime/race": // the toolchain's own; not on every platform
 		case slices.Contains(strings.Split(p.ImportPath, "/"), "internal"), strings.HasPrefix(p.ImportPath, "vendor/"):
 		case !p.Standard && slices.Contains(p.Imports, "testing"): // helpers of a library's own tests
 		default:
@@ -220,16 +224,19 @@ func (t *toolchain) importable(ctx context.Context, source string) ([]string, er
 	return paths, nil
 }
 
-// export compiles packages and what they import, as a plugin's build does.
+// export compiles packages and what they import, as a plugin's build does, or,
+// where there are no plugins, as any build does.
 func (t *toolchain) export(ctx context.Context, source string, race bool, paths []string) ([]listed, error) {
-	args := []string{"-buildmode=plugin", "-trimpath", "-pgo=off", "-export", "-deps"}
-	paths = append(slices.Clone(paths), "runtime/cgo") // the linker wants it
-	if race {
+	args := []string{"-trimpath", "-pgo=off", "-export", "-deps", "-json=ImportPath,Name,Export,Standard,Module,Error"}
+	if t.plugins {
+		args = append(args, "-buildmode=plugin")
+		paths = append(slices.Clone(paths), "runtime/cgo") // the linker wants it
+	}
+	if t.plugins && race {
 		args = append(args, "-race")
 		paths = append(paths, "runtime/race")
 	}
-	args = append(args, "-json=ImportPath,Name,Export,Standard,Module,Error")
-	pkgs, err := t.list(ctx, source, args, paths)
+	pkgs, err := t.list(ctx, source, args, "--", paths)
 	if err != nil {
 		return nil, err
 	}

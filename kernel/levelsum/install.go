@@ -134,7 +134,7 @@ func findSource(exe, given string) (string, error) {
 		}
 		return filepath.Abs(given)
 	}
-	if dir := compile.Source(exe); dir != "" && isSource(dir) {
+	if dir := compile.SourceOf(exe); dir != "" && isSource(dir) {
 		return dir, nil
 	}
 	wd, err := os.Getwd()
