@@ -20,7 +20,8 @@ type Listing struct {
 	files map[string]string
 }
 
-// List makes a listing of the module whose source is in a folder.
+// List makes a listing of the module whose source is in a folder; an empty name
+// means the working folder.
 func List(source string) *Listing {
 	l := &Listing{source: source, files: map[string]string{}}
 	l.tools = sync.OnceValues(func() (*toolchain, error) { return find(context.Background(), source) })

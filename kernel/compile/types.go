@@ -62,7 +62,9 @@ func OpenTypes(dir string) (*Types, error) {
 }
 
 // TypesHere finds type information for the running program without a compiled
-// tier: that of its kit, or what the go command makes of its source.
+// tier: that of its kit, or what the go command makes of its source, or of the
+// module around the working folder, where that may be the standard library
+// alone.
 func TypesHere() (Source, error) {
 	exe, err := os.Executable()
 	if err != nil {
@@ -76,13 +78,11 @@ func TypesHere() (Source, error) {
 	if err == nil {
 		return t, nil
 	}
-	if source := SourceOf(exe); source != "" {
-		l := List(source)
-		if _, e := l.tools(); e == nil {
-			return l, nil
-		}
+	l := List(SourceOf(exe))
+	if _, e := l.tools(); e != nil {
+		return nil, err
 	}
-	return nil, err
+	return l, nil
 }
 
 // file is the path of a package's archive.

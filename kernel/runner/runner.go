@@ -80,8 +80,10 @@ func New(w *engine.Writer) (*Runner, error) {
 	r.kit, r.noKit = compile.Here()
 	if r.noKit == nil {
 		source = r.kit
+	} else if t, err := compile.TypesHere(); err == nil {
+		source = t
 	} else {
-		source = compile.List("")
+		return nil, err
 	}
 	r.scope = cell.NewScope(export.New(source), usual)
 	r.slots.init()

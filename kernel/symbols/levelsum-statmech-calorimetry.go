@@ -12,14 +12,27 @@ import (
 func init() {
 	Symbols["levelsum/statmech/calorimetry/calorimetry"] = map[string]reflect.Value{
 		// function, constant and variable definitions
-		"Model":    reflect.ValueOf(calorimetry.Model),
-		"ThirdLaw": reflect.ValueOf(calorimetry.ThirdLaw),
+		"Berthelot":              reflect.ValueOf(calorimetry.Berthelot),
+		"ConstantPressure":       reflect.ValueOf(calorimetry.ConstantPressure),
+		"FromIPTS68":             reflect.ValueOf(calorimetry.FromIPTS68),
+		"Imperfection":           reflect.ValueOf(calorimetry.Imperfection),
+		"ImperfectionFromVirial": reflect.ValueOf(calorimetry.ImperfectionFromVirial),
+		"Model":                  reflect.ValueOf(calorimetry.Model),
+		"PressureChange":         reflect.ValueOf(calorimetry.PressureChange),
+		"Residual":               reflect.ValueOf(calorimetry.Residual),
+		"StandardPressure":       reflect.ValueOf(calorimetry.StandardPressure),
+		"ThirdLaw":               reflect.ValueOf(calorimetry.ThirdLaw),
+		"ToITS90":                reflect.ValueOf(calorimetry.ToITS90),
+		"ToStandardPressure":     reflect.ValueOf(calorimetry.ToStandardPressure),
+		"TotalEntropy":           reflect.ValueOf(calorimetry.TotalEntropy),
 
 		// type definitions
 		"Contribution":      reflect.ValueOf((*calorimetry.Contribution)(nil)),
 		"ContributionTable": reflect.ValueOf((*calorimetry.ContributionTable)(nil)),
 		"Extrapolation":     reflect.ValueOf((*calorimetry.Extrapolation)(nil)),
 		"Path":              reflect.ValueOf((*calorimetry.Path)(nil)),
+		"ResidualEntropy":   reflect.ValueOf((*calorimetry.ResidualEntropy)(nil)),
+		"Stage":             reflect.ValueOf((*calorimetry.Stage)(nil)),
 		"Transition":        reflect.ValueOf((*calorimetry.Transition)(nil)),
 
 		// interface wrapper definitions

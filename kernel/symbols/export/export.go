@@ -49,9 +49,14 @@ func (e *Hidden) Error() string {
 type Missing struct {
 	Path string
 	Near []string
+	// Bare says that the source has the standard library alone.
+	Bare bool
 }
 
 func (e *Missing) Error() string {
+	if first, _, _ := strings.Cut(e.Path, "/"); e.Bare && (first == "levelsum" || first == "gonum.org") {
+		return fmt.Sprintf("package %s is not known: the packages beside the standard library have not been prepared; run levelsum install", e.Path)
+	}
 	s := fmt.Sprintf("package %s is not among those that cells can import (the standard library, gonum, gonum/plot and levelsum's own)", e.Path)
 	if len(e.Near) > 0 {
 		s += "; did you mean " + strings.Join(e.Near, " or ") + "?"
@@ -95,7 +100,8 @@ func (i *Importer) Import(path string) (*types.Package, error) {
 		if strings.HasPrefix(path, "levelsum/kernel/") {
 			return nil, &Hidden{path, "it is a part of the kernel"}
 		}
-		return nil, &Missing{path, i.near(path)}
+		bare := !slices.ContainsFunc(i.paths(), func(p string) bool { return strings.HasPrefix(p, "levelsum/") })
+		return nil, &Missing{path, i.near(path), bare}
 	}
 	return i.Load(path)
 }

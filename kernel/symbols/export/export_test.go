@@ -85,6 +85,19 @@ func TestRefusals(t *testing.T) {
 	}
 }
 
+// Outside of the module and without a kit there is the standard library.
+func TestStandardLibraryAlone(t *testing.T) {
+	imp := export.New(compile.List(t.TempDir()))
+	if _, err := imp.Import("fmt"); err != nil {
+		t.Error(err)
+	}
+	for _, path := range []string{"gonum.org/v1/gonum/mat", "levelsum/statmech"} {
+		if _, err := imp.Import(path); err == nil || !strings.Contains(err.Error(), "have not been prepared; run levelsum install") {
+			t.Errorf("import %q: %v", path, err)
+		}
+	}
+}
+
 func TestImportAtOnce(t *testing.T) {
 	imp := export.New(source())
 	paths := []string{"fmt", "net/http", "encoding/json", "os", "gonum.org/v1/gonum/mat", "io", "strings", "sort"}
