@@ -79,8 +79,33 @@ func (r AuditReport) String() string {
 	return b.String()
 }
 
-// View shows the report.
-func (r AuditReport) View() display.View { return display.Text(r.String()) }
+// View shows the report as a table.
+func (r AuditReport) View() display.View {
+	var names, at, verdicts []string
+	var departures, allowed []float64
+	for _, c := range r.Checks {
+		T, verdict := "", "holds"
+		if c.At > 0 {
+			T = c.At.String()
+		}
+		switch {
+		case !c.OK():
+			verdict = "does not hold"
+		case strings.HasPrefix(c.Note, "not made"):
+			verdict = c.Note
+		}
+		departure := c.Departure
+		if math.IsInf(departure, 0) {
+			departure, verdict = 1, "does not hold: "+c.Note
+		}
+		names, at, verdicts = append(names, c.Name), append(at, T), append(verdicts, verdict)
+		departures, allowed = append(departures, departure), append(allowed, c.Allowed)
+	}
+	return display.Table{Caption: "Audit of a mode", Columns: []display.Column{
+		{Quantity: "check", Values: names}, {Quantity: "largest departure", Values: departures, Digits: 2}, {Quantity: "at", Values: at},
+		{Quantity: "allowed", Values: allowed, Digits: 2}, {Quantity: "verdict", Values: verdicts},
+	}}.View()
+}
 
 // Audit checks the three functions of a mode against one another over a grid
 // of temperatures. The derivatives are taken by extrapolated central

@@ -67,6 +67,9 @@ func TestAuditNamesTheFault(t *testing.T) {
 				}
 			}
 		}
+		if s, ok := r.View().Data["text/plain"].(string); !ok || !strings.Contains(s, "does not hold") || !strings.Contains(s, "Audit of a mode") {
+			t.Errorf("fault %q shows itself as\n%v", fault, r.View().Data["text/plain"])
+		}
 		if r.OK() || !found || !strings.Contains(r.String(), "DOES NOT HOLD") {
 			t.Errorf("fault %q:\n%s", fault, r)
 		}

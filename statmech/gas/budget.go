@@ -33,6 +33,7 @@ func (m *Molecule) inputs() []input {
 			})
 		}
 	}
+	add("centrifugal ρ", d.URho, func(d *Description, by float64) { d.Rho += by })
 	for i, v := range d.Vibrations {
 		add(fmt.Sprintf("vibration at %.6g cm-1", v.Quantum.In(unit.PerCm)), float64(v.U), func(d *Description, by float64) {
 			d.Vibrations = append([]Vibration(nil), d.Vibrations...)

@@ -23,6 +23,8 @@ type Description struct {
 	UConstants        []unit.Energy
 	Moments           []unit.MomentOfInertia
 	Distortion        unit.Energy // D of a linear molecule
+	Rho               float64     // ρ in 1/K: centrifugal stretching of a non-linear molecule, q = q_rigid (1 + ρT)
+	URho              float64
 	Atoms             []Atom
 	Symmetry          int          // symmetry number; 0 to find it from Atoms
 	Spin              *SpinWeights // in place of Symmetry

@@ -108,6 +108,9 @@ func (d Diatomic) spectrum() (*spectrum, error) {
 	} else if d.Symmetry > 2 {
 		return nil, &statmech.DomainError{Func: fn, Arg: "Symmetry", Value: fmt.Sprint(d.Symmetry), Want: "1 or 2 for a diatomic molecule"}
 	}
+	if err := tripletTwice(d.States); err != nil {
+		return nil, err
+	}
 	D0, estimated := d.Dissociation()
 	first := d.States[0]
 	if first.Origin != 0 {
@@ -198,6 +201,20 @@ func (d Diatomic) spectrum() (*spectrum, error) {
 	}
 	sp.levels = l
 	return sp, nil
+}
+
+// tripletTwice refuses a triplet that is there with g = 3 and again as its fine
+// structure.
+func tripletTwice(states []DiatomicState) error {
+	for i, s := range states {
+		for j, o := range states {
+			if d := o.Origin - s.Origin; j != i && s.Degeneracy == 3 && o.Degeneracy < 3 && d > -100*unit.PerCm && d < 100*unit.PerCm {
+				return fmt.Errorf("gas.Diatomic: States[%d] has degeneracy 3 and States[%d], of degeneracy %g, is %.3g cm-1 from it: a triplet and its fine structure: %w",
+					i, j, o.Degeneracy, d.In(unit.PerCm), ErrDouble)
+			}
+		}
+	}
+	return nil
 }
 
 func (s DiatomicState) constants(v int) (bv, dv unit.Energy) {

@@ -41,7 +41,7 @@ var prose = map[string]bool{"source": true, "where": true, "how obtained": true,
 // Lines: name; formula; M/(g mol-1) or m/u; A, B, C or for a linear molecule B
 // alone, in cm-1, GHz, MHz or another unit of energy, with u(A) ...; Ia, Ib, Ic
 // in (u Å2), or I for a linear one; D_J for its centrifugal distortion; symmetry
-// number; spin weights ("1 3") with spin states ("4") and nuclear spin ("counted"
+// number; rho/K-1 for centrifugal stretching (1 + ρT); spin weights ("1 3") with spin states ("4") and nuclear spin ("counted"
 // or "divided out"); scale, u(scale), zero-point scale; mirror forms ("yes");
 // saddle point ("yes"); p; T_ref; D0, the atomisation or dissociation energy of
 // the ground level; DfH0, the enthalpy of formation at 0 K; geometry, the name of
@@ -236,7 +236,7 @@ func (r *fileReader) scalars() error {
 	if err := r.spin(); err != nil {
 		return err
 	}
-	for key, at := range map[string]*float64{"scale": &d.Scale, "u(scale)": &d.UScale, "zero-point scale": &d.ZeroPointScale} {
+	for key, at := range map[string]*float64{"rho/K-1": &d.Rho, "u(rho)/K-1": &d.URho, "scale": &d.Scale, "u(scale)": &d.UScale, "zero-point scale": &d.ZeroPointScale} {
 		if x, ok, err := r.numberOf(key); err != nil {
 			return err
 		} else if ok {

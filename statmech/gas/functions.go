@@ -6,9 +6,10 @@ import (
 )
 
 // Reduced returns the functions of the molecule at T and its pressure: the sum
-// of its parts.
+// of its parts. It panics with a [*statmech.DomainError] if T is not positive and
+// finite, or so low that nΛ³ > 1: there the classical ideal gas does not exist.
 func (m *Molecule) Reduced(T unit.Temperature) statmech.Reduced {
-	statmech.CheckTemperature("gas.Molecule.Reduced", T)
+	m.check("gas.Molecule.Reduced", T)
 	var r statmech.Reduced
 	for _, p := range m.parts {
 		r = r.Add(p.Mode.Reduced(T))
@@ -16,11 +17,20 @@ func (m *Molecule) Reduced(T unit.Temperature) statmech.Reduced {
 	return r
 }
 
+// check refuses temperatures at which the gas is degenerate.
+func (m *Molecule) check(fn string, T unit.Temperature) {
+	statmech.CheckTemperature(fn, T)
+	if d := (Translation{Mass: m.mass, Pressure: m.pressure}).Degeneracy(T); d > 1 {
+		panic(&statmech.DomainError{Func: fn, Arg: "T", Value: T.String(),
+			Want: "higher: at " + m.pressure.String() + " the gas of " + m.Name() + " is degenerate there (nΛ³ = " + short(d) + " > 1); use a quantum gas"})
+	}
+}
+
 // ReducedAt is Reduced at each temperature.
 func (m *Molecule) ReducedAt(ts []unit.Temperature) []statmech.Reduced {
 	rs := make([]statmech.Reduced, len(ts))
 	for _, T := range ts {
-		statmech.CheckTemperature("gas.Molecule.ReducedAt", T)
+		m.check("gas.Molecule.ReducedAt", T)
 	}
 	for _, p := range m.parts {
 		for i, r := range statmech.ReducedAt(p.Mode, ts) {
@@ -133,4 +143,9 @@ func (m *Molecule) Contributions(T unit.Temperature) []Contribution {
 			(unit.MolarEntropy(r.U) * unit.R).Times(T)}
 	}
 	return out
+}
+
+// SpinCounted reports whether nuclear-spin degeneracy is in the functions.
+func (m *Molecule) SpinCounted() bool {
+	return m.d.Spin != nil && m.d.Spin.Include || m.d.Diatomic != nil && m.d.Diatomic.Spin != nil && m.d.Diatomic.Spin.Include
 }

@@ -28,6 +28,25 @@ func Library() []string {
 	return names
 }
 
+// FromLibrary returns a molecule or atom of the library at 1 bar. It returns an
+// error that lists the names if there is none of that name.
+func FromLibrary(name string) (*Molecule, error) {
+	d, err := Find(name)
+	if err != nil {
+		return nil, err
+	}
+	return New(d)
+}
+
+// Open returns the molecule that a table file describes, see [ReadMolecule].
+func Open(path string) (*Molecule, error) {
+	d, err := ReadMolecule(path)
+	if err != nil {
+		return nil, err
+	}
+	return New(d)
+}
+
 // Find returns the description of a molecule or atom of the library, to be
 // changed or given to [New]. It returns an error that lists the names if there
 // is none of that name.

@@ -252,6 +252,13 @@ func (m *Molecule) addRotation() error {
 			t, method = t.ClassicalForm(), "classical"
 		}
 		m.add("rotation", method, t)
+		if d.Rho != 0 {
+			s := stretching(d.Rho)
+			if !(d.Rho > 0) || d.Rho > 0.01 {
+				return &statmech.DomainError{Func: "gas.New", Arg: "Rho", Value: short(d.Rho) + " 1/K", Want: "a small positive coefficient"}
+			}
+			m.add("centrifugal stretching", "q (1 + ρT)", s)
+		}
 		// I_c <= I_a + I_b for any distribution of masses; averaging over the
 		// zero-point motion moves it by some per cent (water: 3 %).
 		if a, b, c := t.Constants(); float64(a*b)/float64(c*(a+b)) > 1.1 {
@@ -338,6 +345,7 @@ func (m *Molecule) addVibrations() error {
 	}
 	if len(modes) > 0 {
 		m.add("vibration", "harmonic", modes)
+		m.note("rigid rotor and harmonic vibrations: for small molecules S° is commonly within 0.12 J/(mol K) of measured values at 298.15 K, low by more at high temperature (anharmonicity, vibration-rotation interaction, centrifugal stretching)")
 	}
 	for _, s := range soft {
 		m.note("low wavenumber " + s)
@@ -404,6 +412,15 @@ func (m *Molecule) addElectronic() error {
 		return err
 	}
 	g := 1.0
+	if l != nil && m.formula.Count() != 1 {
+		var states []DiatomicState
+		for _, e := range m.d.Electronic {
+			states = append(states, DiatomicState{Origin: e.Energy, Degeneracy: e.Degeneracy})
+		}
+		if err := tripletTwice(states); err != nil {
+			return err
+		}
+	}
 	if l != nil {
 		m.add("electronic", "sum over the levels given", l)
 		g = math.Exp(l.Reduced(1500 * unit.K).Entropy()) // low fine structure counts
@@ -418,6 +435,18 @@ func (m *Molecule) checkElectrons(g float64) {
 	if err == nil && m.formula.Count() > 0 && n%2 == 1 && g < 1.5 {
 		m.warn(fmt.Sprintf("%s has an odd number of electrons (%d) but an electronic degeneracy of 1: a doublet adds R ln 2 = 5.763 J/(mol K)", m.d.Formula, n))
 	}
+}
+
+// stretching is the factor 1 + ρT of centrifugal stretching to first order (E.
+// B. Wilson, J. Chem. Phys. 4, 526, 1936).
+type stretching float64
+
+func (s stretching) Reduced(T unit.Temperature) statmech.Reduced {
+	statmech.CheckTemperature("gas.stretching.Reduced", T)
+	x := float64(s) * float64(T)
+	u := x / (1 + x)
+	// U = T ∂ln(1+ρT)/∂T, C = ∂(TU)/∂T.
+	return statmech.Reduced{LogQ: math.Log1p(x), U: u, C: u * (2 - u)}
 }
 
 // constant is a mode that adds a fixed number of states.

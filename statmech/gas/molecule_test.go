@@ -271,6 +271,17 @@ func TestRefusals(t *testing.T) {
 			_, err = New(d)
 			return err
 		}(), ErrDouble, "electronic"},
+		"triplet and fine structure": {func() error {
+			d, err := Find("O2")
+			if err != nil {
+				t.Fatal(err)
+			}
+			dia := *d.Diatomic
+			dia.States = append([]DiatomicState{dia.States[0], {Origin: 4 * unit.PerCm, Degeneracy: 2}}, dia.States[1:]...)
+			d.Diatomic = &dia
+			_, err = New(d)
+			return err
+		}(), ErrDouble, "triplet"},
 		"no end of the sum": {func() error {
 			_, err := New(Description{Formula: "N2", Symmetry: 2, Diatomic: &Diatomic{States: []DiatomicState{{Degeneracy: 1, OmegaE: 2358 * unit.PerCm, BE: 2 * unit.PerCm}}}})
 			return err
@@ -295,6 +306,21 @@ func TestRefusals(t *testing.T) {
 	if n := strings.Join(library(t, "35Cl2").Notes(), ";"); contains(n, "isotopologue") {
 		t.Errorf("35Cl2 by its own mass: %q", n)
 	}
+}
+
+// He at 4.2 K and 1 bar has nΛ³ = 0.13: a warning; at 1 K it is refused.
+func TestDegenerateGas(t *testing.T) {
+	m := library(t, "He")
+	if w := strings.Join(m.Warnings(4.2*unit.K), ";"); !contains(w, "degenerate") {
+		t.Errorf("He at 4.2 K: warnings %q", w)
+	}
+	defer func() {
+		err, _ := recover().(error)
+		if !errors.Is(err, statmech.ErrDomain) || !contains(err.Error(), "quantum gas") {
+			t.Errorf("He at 1 K: %v", err)
+		}
+	}()
+	m.Entropy(1 * unit.K)
 }
 
 // 1 bar against 1 atm: R ln 1.01325.
