@@ -16,8 +16,30 @@ import (
 func (s *Scope) Check(src *Source) (*Plan, error) {
 	p, err := split(s.fset, src)
 	if err != nil {
+		s.release(p)
 		return nil, err
 	}
+	plan, err := s.check(p)
+	if err != nil {
+		s.release(p)
+		return nil, err
+	}
+	plan.parsed = p
+	return plan, nil
+}
+
+// release gives back what the positions of a cell take that nothing of lasts.
+func (s *Scope) release(p *parsed) {
+	if p != nil {
+		for _, f := range p.files {
+			s.fset.RemoveFile(f)
+		}
+	}
+}
+
+// check checks a cell, its leading variables as a package's or, if that does
+// not compile, as statements.
+func (s *Scope) check(p *parsed) (*Plan, error) {
 	plan, err := s.checkParsed(p)
 	if err != nil && len(p.lead) > 0 {
 		// As in var x = x + 1, where the right side means an older x.
@@ -52,11 +74,6 @@ type checking struct {
 }
 
 func (s *Scope) checkParsed(p *parsed) (*Plan, error) {
-	for _, f := range []ast.Node{p.body} {
-		if tf := s.fset.File(f.Pos()); tf != nil {
-			s.sources[tf] = p.src
-		}
-	}
 	c := &checking{s: s, p: p, imports: map[string]string{}, broken: map[*Decl]Diagnostics{}, drop: map[string]bool{}}
 	if err := c.readImports(); err != nil {
 		return nil, err

@@ -7,6 +7,9 @@ import "go/types"
 // reached the later ones). It returns the names of decls that lost what they
 // depend on.
 func (s *Scope) Commit(p *Plan, reached func(name string) bool) (lost []string) {
+	if len(p.decls) == 0 {
+		defer s.release(p.parsed)
+	}
 	for n, path := range p.imports {
 		s.imports[n] = path
 	}

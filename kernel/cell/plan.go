@@ -28,6 +28,7 @@ type Plan struct {
 	Force    bool        // a directive asks for compiling
 	Reached  int         // the statement that a run came to, set by who runs it
 
+	parsed  *parsed
 	imports map[string]string
 	dots    []string
 	decls   []*Decl // new or changed, of this cell and dependents

@@ -58,7 +58,6 @@ type Scope struct {
 	typed    map[string]map[string]bool // type name -> variables whose type mentions it
 	dropped  map[string]string          // variables that were dropped, and why
 	slots    map[string][]*Slot         // all slots a name has had
-	sources  map[*token.File]*Source
 	units    map[*types.Package]*Unit
 }
 
@@ -78,7 +77,6 @@ func NewScope(importer types.Importer, usual map[string]string) *Scope {
 		typed:    map[string]map[string]bool{},
 		dropped:  map[string]string{},
 		slots:    map[string][]*Slot{},
-		sources:  map[*token.File]*Source{},
 		units:    map[*types.Package]*Unit{},
 	}
 }

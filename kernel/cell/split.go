@@ -112,7 +112,8 @@ type parsed struct {
 	lead    []ast.Decl // VAR before the first statement: initialised in Go's order
 	body    *ast.BlockStmt
 	stmts   []ast.Stmt // statements in order, including later VAR
-	directs []string   // directive comments: //levelsum:compile
+	files   []*token.File
+	directs []string // directive comments: //levelsum:compile
 }
 
 const (
@@ -151,8 +152,13 @@ func split(fset *token.FileSet, src *Source) (*parsed, error) {
 	const mode = parser.ParseComments | parser.SkipObjectResolution | parser.AllErrors
 	df, derr := parser.ParseFile(fset, src.Name(), declPrefix+line+string(decl)+"\n", mode)
 	sf, serr := parser.ParseFile(fset, src.Name(), stmtPrefix+line+string(stmt)+"\n}\n", mode)
+	for _, f := range []*ast.File{df, sf} {
+		if f != nil && f.Pos().IsValid() {
+			p.files = append(p.files, fset.File(f.Pos()))
+		}
+	}
 	if ds := syntaxErrors(src, derr, serr); len(ds) > 0 {
-		return nil, ds
+		return p, ds
 	}
 	for _, d := range df.Decls {
 		if g, ok := d.(*ast.GenDecl); ok && g.Tok == token.IMPORT {

@@ -1,6 +1,7 @@
 package engine
 
 import (
+	"regexp"
 	"strings"
 	"unicode/utf8"
 )
@@ -47,5 +48,13 @@ func (c *child) clean(s string) string {
 	if c.strip == nil {
 		return s
 	}
-	return c.strip.Replace(s)
+	s = c.strip.Replace(s)
+	if strings.Contains(s, "cell/k") {
+		s = unitPath.ReplaceAllString(s, "cell")
+	}
+	return s
 }
+
+// unitPath is the path of a package of compiled cells, which reflection prints
+// in the name of an instance: F[cell/k3f9....foo].
+var unitPath = regexp.MustCompile(`\bcell/k[0-9a-f]{16}\b`)

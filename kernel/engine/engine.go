@@ -6,7 +6,7 @@ import (
 	"fmt"
 	"maps"
 	"os"
-	"strings"
+	"slices"
 	"sync"
 	"time"
 )
@@ -19,6 +19,8 @@ type Options struct {
 	Dir string
 	// Env is added to the child's environment.
 	Env []string
+	// Compiled has every cell compiled and none interpreted.
+	Compiled bool
 	// MemoryLimit ends the child when its resident memory less file pages
 	// passes it, in bytes; 0 means three quarters of what the machine or its
 	// control group has.
@@ -51,6 +53,9 @@ func Start(ctx context.Context, o Options) (*Engine, error) {
 			return nil, fmt.Errorf("engine: %w", err)
 		}
 		o.Command = []string{exe, "engine"}
+	}
+	if o.Compiled {
+		o.Command = append(slices.Clone(o.Command), "-compiled")
 	}
 	if o.MemoryLimit == 0 {
 		o.MemoryLimit = memoryAvailable() / 4 * 3
@@ -321,8 +326,12 @@ func (e *Engine) State(ctx context.Context) (map[string]any, error) {
 	return maps.Clone(ev.Facts), nil
 }
 
-// oneLine is the first line of text.
-func oneLine(s string) string {
-	s, _, _ = strings.Cut(strings.TrimSpace(s), "\n")
-	return s
+// Pid is the process in which cells run, 0 if there is none.
+func (e *Engine) Pid() int {
+	e.mu.Lock()
+	defer e.mu.Unlock()
+	if e.child == nil {
+		return 0
+	}
+	return e.child.cmd.Process.Pid
 }

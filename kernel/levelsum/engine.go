@@ -9,9 +9,10 @@ import (
 
 // runEngine is the process that runs cells. Levelsum starts it itself.
 func runEngine(args []string, _ io.Reader, _, stderr io.Writer) int {
-	if len(args) > 0 {
-		fmt.Fprintln(stderr, "levelsum engine: takes no arguments; it is started by levelsum itself")
+	compileAll := len(args) == 1 && args[0] == "-compiled"
+	if len(args) > 0 && !compileAll {
+		fmt.Fprintln(stderr, "levelsum engine: takes no arguments but -compiled; it is started by levelsum itself")
 		return 2
 	}
-	return child.Main()
+	return child.Main(compileAll)
 }

@@ -19,7 +19,7 @@ import (
 // cell without anything to run has no job.
 func (r *Runner) prepare(plan *cell.Plan) (job func(), how, why string, err error) {
 	why = "a directive"
-	if !plan.Force {
+	if !plan.Force && !r.compileAll {
 		var script *cell.Script
 		if script, why = plan.Interpret(&r.interp); script != nil {
 			if job, err = r.interp.prepare(plan.Source, script); err == nil {

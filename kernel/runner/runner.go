@@ -35,7 +35,8 @@ type Runner struct {
 	built   builds
 	docs    *assist.Docs              // nil until something is inspected
 	plugins map[string]map[string]any // by unit path: what the plugin offers
-	told    bool                      // the reader has been told that there is no compiled tier
+
+	compileAll bool // no cell is interpreted
 
 	mu       sync.Mutex // guards what follows
 	running  bool
@@ -44,9 +45,10 @@ type Runner struct {
 	syncDone sync.Mutex
 }
 
-// Main runs the child until the parent closes its end. It returns the exit
-// status.
-func Main() int {
+// Main runs the child until the parent closes its end. With compileAll no
+// cell is interpreted. It returns the exit status.
+func Main(compileAll bool) int {
+	os.Args = os.Args[:1]        // a cell has no arguments
 	debug.SetMaxStack(256 << 20) // endless recursion ends in seconds, not in swap
 	requests := os.NewFile(engine.FdRequests, "requests")
 	events := os.NewFile(engine.FdEvents, "events")
@@ -65,6 +67,7 @@ func Main() int {
 		fmt.Fprintln(os.NewFile(2, "crash"), "fatal error:", err)
 		return 1
 	}
+	r.compileAll = compileAll
 	return r.serve(requests)
 }
 
