@@ -15,6 +15,7 @@ type rounded struct {
 	unc    string // "70": the standard uncertainty in units of the last digit, or "1.2" where it reaches over the point
 	exp    int    // power of ten that digits and unc are multiplied by
 	word   string // "NaN", "∞", "-∞", "" or text
+	split  bool   // the word is a number, to be aligned at its point
 }
 
 // round rounds v by its standard uncertainty u as JCGM 100:2008, 7.2.6 has it:

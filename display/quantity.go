@@ -74,6 +74,8 @@ type column struct {
 	unit    string
 	kind    string       // what a typed quantity measures
 	typ     reflect.Type // the named quantity type, nil for plain numbers
+	// withheld are the reasons why values have no standard uncertainty.
+	withheld []string
 }
 
 func (c *column) len() int {
@@ -158,6 +160,9 @@ func readColumn(what string, x any) (*column, error) {
 		}
 		if m.hasU {
 			c.u[i] = m.u
+		}
+		if m.withheld != "" {
+			c.withheld = append(c.withheld, m.withheld)
 		}
 	}
 	if numbers {

@@ -5,6 +5,8 @@ import (
 	"math"
 	"os"
 	"path/filepath"
+	"regexp"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -39,6 +41,9 @@ type Table struct {
 	Caption string
 	Columns []Column
 	Notes   []string
+	// Rules are the numbers of rows after which a line is drawn, as between the
+	// phases of a substance: 3 draws one after the third row.
+	Rules []int
 	// Limit is the number of rows shown, 60 if 0; more are cut in the middle
 	// with a count. The CSV has all of them.
 	Limit int
@@ -62,6 +67,7 @@ type sheet struct {
 	cols    []sheetColumn
 	rows    int
 	notes   []string
+	rules   map[int]bool // indices of rows with a line below
 	limit   int
 }
 
@@ -70,6 +76,7 @@ type sheetColumn struct {
 	quantity string
 	digits   int
 	cells    []rounded // of the rows shown; empty entries elsewhere
+	numbers  bool      // text that holds numbers
 }
 
 // Check says why the table cannot be shown.
@@ -79,7 +86,7 @@ func (t Table) Check() error {
 }
 
 func (t Table) sheet() (*sheet, error) {
-	s := &sheet{caption: t.Caption, notes: Notes(t.Notes...), limit: t.Limit}
+	s := &sheet{caption: t.Caption, notes: Notes(t.Notes...), limit: t.Limit, rules: map[int]bool{}}
 	if s.limit <= 0 {
 		s.limit = 60
 	}
@@ -129,6 +136,21 @@ func (t Table) sheet() (*sheet, error) {
 	}
 	if uncertain {
 		s.notes = append(s.notes, "In parentheses: standard uncertainty (k = 1) in the last digits.")
+	}
+	for _, n := range t.Rules {
+		if n < 1 || n >= s.rows {
+			return nil, &Refusal{"Table", fmt.Sprintf("a rule after row %d of %d", n, s.rows)}
+		}
+		s.rules[n-1] = true
+	}
+	var reasons []string
+	for _, c := range s.cols {
+		for _, w := range c.withheld {
+			if !slices.Contains(reasons, w) {
+				reasons = append(reasons, w)
+				s.notes = append(s.notes, "No standard uncertainty is given where "+w+".")
+			}
+		}
 	}
 	for i := range s.cols {
 		s.cols[i].format(s.shown())
@@ -184,13 +206,22 @@ func (s *sheet) shown() []int {
 	return out
 }
 
+// numberText matches numbers that have been written already, so that columns of
+// them are aligned as numbers are; noNumber are words that stand for none.
+var (
+	numberText = regexp.MustCompile(`^\s*[-+−±]?\d+(\.\d*)?(\(\d+(\.\d+)?\))?([eE][-+]?\d+|×10[⁰¹²³⁴-⁹⁻]+)?\s*%?$`)
+	noNumber   = map[string]bool{"": true, "-": true, "−": true, "—": true, "–": true, "n/a": true, "∞": true, "exact": true, "NaN": true}
+)
+
 // format rounds the cells of the rows shown.
 func (c *sheetColumn) format(rows []int) {
 	c.cells = make([]rounded, len(rows))
 	if c.text != nil {
+		c.numbers = slices.ContainsFunc(c.text, numberText.MatchString) &&
+			!slices.ContainsFunc(c.text, func(s string) bool { return !numberText.MatchString(s) && !noNumber[s] })
 		for k, i := range rows {
 			if i >= 0 {
-				c.cells[k] = rounded{word: c.text[i]}
+				c.cells[k] = rounded{word: c.text[i], split: c.numbers}
 			}
 		}
 		return

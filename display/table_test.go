@@ -97,10 +97,33 @@ func TestTableRefused(t *testing.T) {
 func TestTableOfUncertainValues(t *testing.T) {
 	got := text(Table{Columns: []Column{{Quantity: "S", Values: []estimate{
 		{v: 33.1512, u: 0.0462, unit: "J/(mol K)"}, {v: 154.8464, u: 0.003, unit: "J K-1 mol-1"}, {v: 1.5, unit: "J/(mol K)", withheld: "the fit is bad"}}}}})
-	for _, want := range []string{"S / (J mol⁻¹ K⁻¹)", " 33.151(46)", "154.8464(30)", "  1.5"} {
+	for _, want := range []string{"S / (J mol⁻¹ K⁻¹)", " 33.151(46)", "154.8464(30)", "  1.5", "No standard uncertainty is given where the fit is bad."} {
 		if !strings.Contains(got, want) {
 			t.Errorf("no %q in\n%s", want, got)
 		}
+	}
+}
+
+// Numbers that somebody has written are aligned like numbers.
+func TestTableOfWrittenNumbers(t *testing.T) {
+	got := text(Table{Columns: []Column{
+		{Quantity: "value", Values: []string{"343.20(70)", "-1.5", "12", "", "1.2×10⁻²¹"}},
+		{Quantity: "unit", Values: []string{"K", "J", "1", "7", "kg"}},
+		{Quantity: "note", Values: []string{"12", "about 13", "", "", ""}},
+	}, Rules: []int{2}})
+	want := "      value  unit  note\n" +
+		"-----------  ----  --------\n" +
+		"343.20(70)   K     12\n" +
+		" -1.5        J     about 13\n" +
+		"-----------  ----  --------\n" +
+		" 12          1\n" +
+		"             7\n" +
+		"  1.2×10⁻²¹  kg"
+	if got != want {
+		t.Errorf("got\n%s\nwant\n%s", got, want)
+	}
+	if err := (Table{Columns: []Column{{Values: []int{1, 2}}}, Rules: []int{2}}).Check(); err == nil {
+		t.Error("a rule below the last row is taken")
 	}
 }
 

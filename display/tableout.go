@@ -14,7 +14,14 @@ import (
 // point with all that follows.
 func (r rounded) parts(minusSign string) (head, tail string) {
 	if r.word != "" {
-		return r.word, ""
+		w := r.word
+		if r.split {
+			w = strings.TrimSpace(w)
+			if i := strings.IndexAny(w, ".(eE×%"); i >= 0 {
+				return w[:i], w[i:]
+			}
+		}
+		return w, ""
 	}
 	s := r.digits
 	head, tail = s, ""
@@ -26,6 +33,9 @@ func (r rounded) parts(minusSign string) (head, tail string) {
 	}
 	return strings.Replace(head, "-", minusSign, 1), tail
 }
+
+// words reports whether the column is set as text, not as numbers.
+func (c *sheetColumn) words() bool { return c.text != nil && !c.numbers }
 
 // text writes the table in columns aligned on the decimal point, two spaces
 // apart, so that a change of one number changes one line.
@@ -48,7 +58,7 @@ func (s *sheet) text() string {
 			left, right = max(left, utf8.RuneCountInString(h)), max(right, utf8.RuneCountInString(t))
 		}
 		width := max(left+right, utf8.RuneCountInString(title), 1)
-		isText := c.text != nil
+		isText := c.words()
 		last := ci == len(s.cols)-1
 		put := func(line int, text string) {
 			if ci > 0 {
@@ -87,6 +97,9 @@ func (s *sheet) text() string {
 		if i >= 2 && rows[i-2] < 0 {
 			fmt.Fprintf(&b, "(%d rows more)\n", s.rows-len(rows)+1)
 		}
+		if i >= 2 && rows[i-2] >= 0 && s.rules[rows[i-2]] {
+			b.WriteString(lines[1].String() + "\n")
+		}
 	}
 	for _, n := range s.notes {
 		b.WriteString(mark.Plain(mark.Label(oneLineText(n))) + "\n")
@@ -116,7 +129,7 @@ func (s *sheet) html() string {
 	for i := range s.cols {
 		c := &s.cols[i]
 		aligns[i] = "right"
-		if c.text != nil {
+		if c.words() {
 			aligns[i] = "left"
 		}
 		for k := range rows {
@@ -126,9 +139,10 @@ func (s *sheet) html() string {
 		fmt.Fprintf(&b, "<th scope=\"col\" "+th+">%s</th>", aligns[i], mark.HTML(mark.Over(c.quantity, c.unit)))
 	}
 	b.WriteString("</tr></thead>\n<tbody>\n")
-	cell := make([]string, len(s.cols))
+	cell, ruled := make([]string, len(s.cols)), make([]string, len(s.cols))
 	for i := range s.cols {
 		cell[i] = fmt.Sprintf("<td "+td+">", aligns[i])
+		ruled[i] = strings.Replace(cell[i], "white-space", "border-bottom:"+rule+";white-space", 1)
 	}
 	for k, row := range rows {
 		if row < 0 {
@@ -138,9 +152,13 @@ func (s *sheet) html() string {
 		b.WriteString("<tr>")
 		for i := range s.cols {
 			c := &s.cols[i]
-			b.WriteString(cell[i])
+			if s.rules[row] {
+				b.WriteString(ruled[i])
+			} else {
+				b.WriteString(cell[i])
+			}
 			b.WriteString(c.cells[k].html())
-			if c.text == nil && c.cells[k].exp == 0 {
+			if !c.words() && c.cells[k].exp == 0 {
 				_, t := c.cells[k].parts(minus)
 				b.WriteString(filler(t, tails[i]))
 			}
@@ -224,7 +242,7 @@ func (s *sheet) latex() string {
 	var b strings.Builder
 	spec := ""
 	for _, c := range s.cols {
-		if c.text != nil {
+		if c.words() {
 			spec += "l"
 		} else {
 			spec += "r@{}l"
@@ -240,7 +258,7 @@ func (s *sheet) latex() string {
 			b.WriteString(" & ")
 		}
 		head := mark.LaTeX(mark.Over(c.quantity, c.unit))
-		if c.text != nil {
+		if c.words() {
 			b.WriteString(head)
 			span++
 		} else {
@@ -259,8 +277,13 @@ func (s *sheet) latex() string {
 				b.WriteString(" & ")
 			}
 			r := c.cells[k]
-			if c.text != nil {
+			if c.words() {
 				b.WriteString(mark.EscapeLaTeX(r.word))
+				continue
+			}
+			if r.split {
+				h, t := r.parts("-")
+				b.WriteString(mark.EscapeLaTeX(h) + " & " + mark.EscapeLaTeX(t))
 				continue
 			}
 			if r.word != "" {
@@ -275,6 +298,9 @@ func (s *sheet) latex() string {
 			b.WriteString(t)
 		}
 		b.WriteString(" \\\\\n")
+		if s.rules[row] {
+			b.WriteString("\\midrule\n")
+		}
 	}
 	b.WriteString("\\bottomrule\n\\end{tabular}\n")
 	for _, n := range s.notes {

@@ -80,6 +80,9 @@ func (c cellOutput) Stream(name, text string) {
 }
 
 func (c cellOutput) Show(v display.View, id string, replace bool) {
+	if display.Transient(v) { // a progress line, which is gone at the end
+		return
+	}
 	c.r.mu.Lock()
 	defer c.r.mu.Unlock()
 	o := notebook.Output{Kind: notebook.DisplayData, Data: v.Data, Metadata: v.Metadata}
