@@ -93,10 +93,12 @@ func Open(dir, cache string) (*Kit, error) {
 	return k, nil
 }
 
-// findCC looks for the C compiler.
+// findCC looks for the C compiler, a command that may have arguments.
 func findCC(cc string) error {
-	if _, err := exec.LookPath(cc); err == nil {
-		return nil
+	if words := strings.Fields(cc); len(words) > 0 {
+		if _, err := exec.LookPath(words[0]); err == nil {
+			return nil
+		}
 	}
 	do := "install gcc with your system's packages"
 	if runtime.GOOS == "darwin" {

@@ -101,6 +101,19 @@ func TestOpenFindsMovedGo(t *testing.T) {
 	build(t, k, "cell/moved", "c.A", pack("cell/moved", "package cell\nconst A = 1\n"))
 }
 
+// CC may be a command with arguments.
+func TestCompilerWithArguments(t *testing.T) {
+	h, _ := open(t)
+	k, err := compile.Open(altered(t, func(_ string, m *compile.Manifest) { m.CC = "env FROM=test " + m.CC }), t.TempDir())
+	if err != nil {
+		t.Fatal(err)
+	}
+	p := build(t, k, "cell/cc", "c.Run", pack("cell/cc", "package cell\nfunc Run(any) any { return 5 }\n"))
+	if got := run(t, h, p); got != "int: 5\n" {
+		t.Errorf("got %q", got)
+	}
+}
+
 func TestBrokenTools(t *testing.T) {
 	_, good := open(t)
 	link := func(script string) func(string, *compile.Manifest) {
