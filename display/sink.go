@@ -43,6 +43,14 @@ func Current() Sink {
 	return sink
 }
 
+// Interrupted reports whether the reader has asked the running work to stop.
+// Long computations of libraries ask it now and then, and end with what they
+// have. A sink that knows has a method Interrupted; elsewhere it is false.
+func Interrupted() bool {
+	s, ok := Current().(interface{ Interrupted() bool })
+	return ok && s.Interrupted()
+}
+
 // terminal is the sink of a program without a front end.
 type terminal struct{}
 

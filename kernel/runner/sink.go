@@ -5,6 +5,7 @@ import (
 	"encoding/json"
 	"errors"
 	"fmt"
+	"sync/atomic"
 
 	"levelsum/display"
 	"levelsum/kernel/engine"
@@ -20,6 +21,9 @@ func (s sink) Show(v display.View, id string, replace bool) {
 }
 
 func (s sink) Clear(wait bool) { s.r.send(engine.Event{Op: "clear", Sync: true, Wait: wait}) }
+
+// Interrupted lets long computations of libraries notice that they are to end.
+func (s sink) Interrupted() bool { return atomic.LoadUint32(&guard.Stop) != 0 }
 
 func (s sink) Ask(prompt string, secret bool) (string, error) {
 	s.r.asking.Lock()

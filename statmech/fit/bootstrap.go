@@ -9,6 +9,7 @@ import (
 	"sort"
 	"sync"
 
+	"levelsum/display"
 	"levelsum/statmech/uncertain"
 )
 
@@ -17,6 +18,7 @@ type Bootstrap struct {
 	Seed     uint64
 	Values   [][]float64 // Values[k][j]: parameter j of refit k, in the order of Vary
 	Failed   int         // refits that did not converge; they are left out
+	Stopped  bool        // interrupted; what was done is kept
 	Serial   bool        // the model could not be copied, so one refit ran after the other
 	names    []string
 	original []float64
@@ -58,7 +60,9 @@ func (r *Result) Bootstrap(n int, seed uint64) (*Bootstrap, error) {
 	if len(regs) == 0 {
 		regs, b.Serial = append(regs, r.reg.shallow()), true
 	}
-	values := make([][]float64, n)
+	values, tried := make([][]float64, n), make([]bool, n)
+	progress := display.NewProgress("bootstrap", n)
+	defer progress.Done()
 	var wg sync.WaitGroup
 	panics := make(chan any, len(regs))
 	for w, reg := range regs {
@@ -69,9 +73,11 @@ func (r *Result) Bootstrap(n int, seed uint64) (*Bootstrap, error) {
 				}
 			}()
 			for k := w; k < n; k += len(regs) {
-				if reg.stop != nil && reg.stop() {
+				if reg.stop() {
 					return
 				}
+				tried[k] = true
+				progress.Step(1)
 				r.redraw(reg, rand.New(rand.NewPCG(seed, uint64(k))))
 				if m := reg.solve(r.p); m.stop == Converged {
 					values[k] = m.p
@@ -85,15 +91,21 @@ func (r *Result) Bootstrap(n int, seed uint64) (*Bootstrap, error) {
 		panic(e)
 	default:
 	}
-	for _, v := range values {
-		if v == nil {
+	for k, v := range values {
+		switch {
+		case v != nil:
+			b.Values = append(b.Values, v)
+		case tried[k]:
 			b.Failed++
-			continue
+		default:
+			b.Stopped = true
 		}
-		b.Values = append(b.Values, v)
 	}
 	if len(b.Values) < 2 {
 		return nil, fmt.Errorf("fit: Bootstrap: %d of %d refits failed", b.Failed, n)
+	}
+	if b.Stopped {
+		return b, fmt.Errorf("fit: Bootstrap: interrupted after %d of %d refits", len(b.Values)+b.Failed, n)
 	}
 	return b, nil
 }

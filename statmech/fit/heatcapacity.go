@@ -227,7 +227,7 @@ func (m *thermal) warn(r *Result) {
 	}
 	for j, p := range r.reg.free {
 		theta := r.p[j]
-		if p.unit != "K" || !isTheta(p.name) || theta <= 0 || highest <= theta/3 {
+		if p.unit != "K" || !isTheta(p.field) || theta <= 0 || highest <= theta/3 {
 			continue
 		}
 		r.Warnings = append(r.Warnings, fmt.Sprintf("points up to %.4g K, above a third of %s = %.4g K: the model gives C_V, the data are Cp; subtract Cp - C_V or add a term for it", highest, p.name, theta))

@@ -5,6 +5,7 @@ import (
 	"math"
 	"reflect"
 
+	"levelsum/display"
 	"levelsum/statmech/uncertain"
 	"levelsum/statmech/unit"
 )
@@ -80,6 +81,7 @@ type parameter struct {
 	at     *float64
 	name   string
 	unit   string
+	field  string // the model's own name, whatever the caller calls it
 	lo, hi float64
 	start  float64
 }
@@ -90,7 +92,7 @@ type tie struct {
 }
 
 func newSettings(opts []Option) (*settings, error) {
-	s := &settings{from: math.Inf(-1), to: math.Inf(1), bounds: map[*float64][2]float64{}, names: map[*float64]string{}}
+	s := &settings{stop: display.Interrupted, from: math.Inf(-1), to: math.Inf(1), bounds: map[*float64][2]float64{}, names: map[*float64]string{}}
 	for _, o := range opts {
 		if o == nil {
 			return nil, fmt.Errorf("fit: a nil option")
@@ -109,8 +111,11 @@ func newSettings(opts []Option) (*settings, error) {
 		if name, ok := s.names[p.at]; ok {
 			p.name = name
 		}
-		if p.name == "" && s.nameOf != nil {
-			p.name = s.nameOf(p.at)
+		if s.nameOf != nil {
+			p.field = s.nameOf(p.at)
+		}
+		if p.name == "" {
+			p.name = p.field
 		}
 		if p.name == "" {
 			p.name = fmt.Sprintf("p%d", i+1)
@@ -292,7 +297,14 @@ func Starts(n int, seed uint64) Option {
 }
 
 // Until asks stop at every step and ends the fit when it is true, keeping the
-// best values so far.
+// best values so far, in place of the notebook's interrupt, which does the same
+// where this option is not given.
 func Until(stop func() bool) Option {
-	return optionFunc(func(s *settings) error { s.stop = stop; return nil })
+	return optionFunc(func(s *settings) error {
+		if stop == nil {
+			return fmt.Errorf("fit: Until: no function")
+		}
+		s.stop = stop
+		return nil
+	})
 }

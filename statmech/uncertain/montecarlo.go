@@ -8,6 +8,7 @@ import (
 	"sort"
 	"sync"
 
+	"levelsum/display"
 	"levelsum/statmech"
 )
 
@@ -123,6 +124,7 @@ func MonteCarloJoint(qs []Quantity, opts ...Option) (*Joint, error) {
 	stable, tolerance := d.draws > 0, make([]float64, len(qs))
 	if d.draws > 0 {
 		s.draw(d.draws)
+		stable = !s.halted
 	} else {
 		stable = s.adapt(batch, tolerance)
 	}
@@ -136,6 +138,7 @@ type sampler struct {
 	next   uint64 // number of the next block, which is its stream of random numbers
 	drawn  int
 	bad    int
+	halted bool
 	values [][]float64 // of each output, finite draws only
 	l      map[*source][]float64
 }
@@ -162,6 +165,7 @@ func (s *sampler) draw(n int) {
 	}
 	var wg sync.WaitGroup
 	panics := make(chan any, workers)
+	done := make([]bool, blocks)
 	for w := range workers {
 		wg.Go(func() {
 			defer func() {
@@ -176,11 +180,15 @@ func (s *sampler) draw(n int) {
 				pcg.Seed(s.d.seed, s.next+uint64(k))
 				from := k * blockSize
 				m := min(blockSize, n-from)
+				if display.Interrupted() {
+					return
+				}
 				s.inputs(b, r, m)
 				s.run(b, m)
 				for i, slot := range s.outputs {
 					copy(out[i][from:from+m], b.values[slot][:m])
 				}
+				done[k] = true
 			}
 		})
 	}
@@ -191,8 +199,12 @@ func (s *sampler) draw(n int) {
 	default:
 	}
 	s.next += uint64(blocks)
-	s.drawn += n
 	for k := range n {
+		if !done[k/blockSize] {
+			s.halted = true
+			continue
+		}
+		s.drawn++
 		ok := true
 		for i := range out {
 			ok = ok && !math.IsNaN(out[i][k]) && !math.IsInf(out[i][k], 0)
@@ -303,6 +315,9 @@ func (s *sampler) adapt(batch int, tolerance []float64) bool {
 	for s.drawn+batch <= s.d.most {
 		before := len(s.values[0])
 		s.draw(batch)
+		if s.halted {
+			return false
+		}
 		if len(s.values[0])-before < batch/2 {
 			return false // most draws are not finite: the report says so
 		}
