@@ -135,7 +135,7 @@ func (l *Levels) direct(kt float64) Reduced {
 		var z, zx float64
 		for i := lo; i < min(lo+block, len(l.energies)); i++ {
 			x := float64(l.energies[i]-l.min) / kt
-			if x == 0 && l.energies[i] == l.min || x > 745 {
+			if l.energies[i] == l.min || x > 745 {
 				continue
 			}
 			w := l.weight(i) * math.Exp(-x)
@@ -152,7 +152,7 @@ func (l *Levels) direct(kt float64) Reduced {
 		var zxx float64
 		for i := lo; i < min(lo+block, len(l.energies)); i++ {
 			x := float64(l.energies[i]-l.min) / kt
-			if x == 0 && l.energies[i] == l.min || x > 745 {
+			if l.energies[i] == l.min || x > 745 {
 				continue
 			}
 			d := x - mean

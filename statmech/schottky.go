@@ -30,6 +30,9 @@ func (s Schottky) Reduced(T unit.Temperature) Reduced {
 	CheckPositive(fn, "Splitting", s.Splitting)
 	CheckRatio(fn, "Ratio", s.Ratio)
 	x := s.Splitting.OverKT(T)
+	if x > 1e6 {
+		return Reduced{} // exp(-x) is zero, x may be infinite
+	}
 	w := s.Ratio * math.Exp(-x)
 	d := 1 + w
 	u := x * (w / d)

@@ -1,6 +1,7 @@
 package gas
 
 import (
+	"errors"
 	"fmt"
 	"math"
 	"path/filepath"
@@ -48,7 +49,9 @@ var prose = map[string]bool{"source": true, "where": true, "how obtained": true,
 // a file with columns atom, x, y, z.
 //
 // Kinds of rows: vibration (treat: harmonic, raised, entropy-interpolated or
-// interpolated); electronic; torsion (wavenumber is that of the vibration it
+// interpolated; with a column x its anharmonic constant, wavenumber is then the
+// harmonic quantum); x (the constant x of the vibrations i and k before it,
+// counted from 1); electronic; torsion (wavenumber is that of the vibration it
 // replaces; columns F, V, n, sigma; treat: diagonalised, Pitzer-Gwinn or
 // classical; or treat "scan: FILE"); torsion-term (V, n of one more term of the
 // torsion before); state (a diatomic molecule: wavenumber is the origin; columns
@@ -372,7 +375,7 @@ func (c cell) text(symbol string) string {
 }
 
 var fileColumns = map[string]bool{"kind": true, "wavenumber": true, "g": true, "u(wavenumber)": true, "treat": true, "F": true, "u(F)": true, "V": true,
-	"n": true, "sigma": true, "name": true, "note": true, "source": true, "omega_e": true, "omega_e x_e": true, "omega_e y_e": true, "B_e": true, "alpha_e": true, "gamma_e": true,
+	"n": true, "i": true, "k": true, "x": true, "sigma": true, "name": true, "note": true, "source": true, "omega_e": true, "omega_e x_e": true, "omega_e y_e": true, "B_e": true, "alpha_e": true, "gamma_e": true,
 	"D_J": true, "A_so": true, "beta_e": true, "H_J": true, "Omega": true, "u(omega_e)": true, "u(omega_e x_e)": true, "u(B_e)": true, "u(alpha_e)": true, "u(D_J)": true}
 
 func (r *fileReader) rows() error {
@@ -398,8 +401,10 @@ func (r *fileReader) rows() error {
 			err = r.torsionTerm(c)
 		case "state":
 			err = r.state(c)
+		case "x":
+			err = r.anharmonic(c)
 		default:
-			err = fmt.Errorf("kind %q, want vibration, electronic, torsion, torsion-term or state", kind)
+			err = fmt.Errorf("kind %q, want vibration, electronic, torsion, torsion-term, state or x", kind)
 		}
 		if err != nil {
 			return fmt.Errorf("row %d: %w", i+1, err)
@@ -454,6 +459,42 @@ func (r *fileReader) vibration(c cell) error {
 		return fmt.Errorf("treat %q, want harmonic, raised, entropy-interpolated or interpolated", t)
 	}
 	r.d.Vibrations = append(r.d.Vibrations, v)
+	if x, ok, err := c.energy("x"); err != nil || ok {
+		n := len(r.d.Vibrations)
+		return errors.Join(err, r.setX(n, n, x))
+	}
+	return nil
+}
+
+// anharmonic reads x_ik between the vibrations i and k, counted from 1.
+func (r *fileReader) anharmonic(c cell) error {
+	x, ok, err := c.energy("x")
+	if err != nil || !ok {
+		return orMissing(err, "x")
+	}
+	i, _, okI := c.number("i")
+	k, _, okK := c.number("k")
+	if !okI || !okK || i != math.Trunc(i) || k != math.Trunc(k) {
+		return fmt.Errorf("columns i and k, the numbers of two vibrations counted from 1, are missing")
+	}
+	return r.setX(int(i), int(k), x)
+}
+
+func (r *fileReader) setX(i, k int, x unit.Energy) error {
+	n := len(r.d.Vibrations)
+	if i < 1 || k < 1 || i > n || k > n {
+		return fmt.Errorf("x_%d,%d: there are %d vibrations before this row", i, k, n)
+	}
+	for len(r.d.X) < n {
+		r.d.X = append(r.d.X, nil)
+	}
+	if i < k {
+		i, k = k, i
+	}
+	for len(r.d.X[i-1]) < i {
+		r.d.X[i-1] = append(r.d.X[i-1], 0)
+	}
+	r.d.X[i-1][k-1] = x
 	return nil
 }
 

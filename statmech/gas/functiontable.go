@@ -61,7 +61,22 @@ func (m *Molecule) Table(ts []unit.Temperature) display.Table {
 		}
 		notes = append(notes, "uncertainties are those of the molecular constants, taken as independent; the error of the model is not in them")
 	}
+	notes = append(notes, m.softNotes(m.reference)...)
 	return display.Table{Caption: "Standard functions of " + m.Name(), Columns: columns, Notes: append(notes, m.gridWarnings(ts)...)}
+}
+
+// softNotes compares low-frequency treatments with the harmonic value at T.
+func (m *Molecule) softNotes(T unit.Temperature) []string {
+	modes, _ := m.Part("vibration").(statmech.Sum)
+	var out []string
+	for _, mode := range modes {
+		if times, ok := mode.(statmech.Times); ok {
+			if s, ok := times.Mode.(SoftOscillator); ok {
+				out = append(out, s.softNote(T))
+			}
+		}
+	}
+	return out
 }
 
 // gridWarnings returns the warnings at the ends of the grid, each once.
@@ -107,7 +122,7 @@ func (m *Molecule) ContributionTable(T unit.Temperature) display.Table {
 			{Quantity: "part", Values: names}, {Quantity: "S°", Values: S, Digits: 7}, {Quantity: "C_{p}°", Values: C, Digits: 7},
 			{Quantity: "H°-H°(0)", Unit: "kJ/mol", In: unit.MolarKJ, Values: H, Digits: 7}, {Quantity: "method", Values: methods},
 		},
-		Notes: append([]string{"per " + m.Molar().Per}, m.Notes()...),
+		Notes: append(append([]string{"per " + m.Molar().Per}, m.Notes()...), m.softNotes(T)...),
 	}
 }
 

@@ -174,6 +174,10 @@ func (s *levelSum) reduced() statmech.Reduced {
 	var rest, first float64
 	w := make([]float64, len(s.x))
 	for i := len(s.x) - 1; i > 0; i-- { // small terms first
+		if s.x[i] > 745 {
+			s.x[i] = 745 // its weight is zero, and the product must not be ∞·0
+			continue
+		}
 		w[i] = s.g[i] * math.Exp(-s.x[i])
 		rest += w[i]
 		first += float64(w[i] * s.x[i])

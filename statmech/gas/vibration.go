@@ -1,6 +1,7 @@
 package gas
 
 import (
+	"fmt"
 	"math"
 
 	"levelsum/statmech"
@@ -35,6 +36,9 @@ func (o Oscillator) Reduced(T unit.Temperature) statmech.Reduced {
 }
 
 func harmonic(x float64) statmech.Reduced {
+	if x > 1e6 {
+		return statmech.Reduced{} // exp(-x) is zero, x may be infinite
+	}
 	e := math.Exp(-x)
 	d := -math.Expm1(-x) // 1 - e⁻ˣ
 	u := x * e / d
@@ -146,6 +150,18 @@ func (s SoftOscillator) Warnings(T unit.Temperature) []string {
 	slope := float64(T) * (S(float64(T)+h) - S(float64(T)-h)) / (2 * h)
 	return []string{"at " + short(s.Quantum.In(unit.PerCm)) + " cm-1 only the entropy is interpolated: T dS/dT = " + short(slope*unit.GasConstant) +
 		" but C = " + short(s.Reduced(T).C*unit.GasConstant) + " J/(mol K)"}
+}
+
+// softNote says what the treatment does at T, with the harmonic value beside and
+// what 10 cm⁻¹ more or less do to the Gibbs energy.
+func (s SoftOscillator) softNote(T unit.Temperature) string {
+	S := func(r statmech.Reduced) float64 { return r.Entropy() * unit.GasConstant }
+	up, down := s, s
+	up.Quantum += 10 * unit.PerCm
+	down.Quantum = max(down.Quantum-10*unit.PerCm, down.Quantum/2)
+	dG := -(up.Reduced(T).LogQ - down.Reduced(T).LogQ) / float64((up.Quantum-down.Quantum)/(10*unit.PerCm)) * unit.GasConstant * float64(T) / 1e3
+	return fmt.Sprintf("%.6g cm-1 at %s, %s: S = %.4g, harmonic %.4g J/(mol K); G changes by %+.3g kJ/mol for +10 cm-1",
+		s.Quantum.In(unit.PerCm), T, s.Treatment, S(s.Reduced(T)), S(s.Harmonic(T)), dG)
 }
 
 // ZeroPointEnergy returns ½ Quantum of the untreated oscillator.
