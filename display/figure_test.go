@@ -13,7 +13,7 @@ import (
 func line(T kelvin) molar { return molar(2 * float64(T)) }
 
 // elsewhere is a curve that was fitted to other data.
-type elsewhere struct{ seen []float64 }
+type elsewhere struct{}
 
 func (elsewhere) Curve() func(kelvin) molar    { return line }
 func (elsewhere) FittedTo(x, y []float64) bool { return false }

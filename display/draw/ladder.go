@@ -29,7 +29,7 @@ func (p *plan) ladder(q *panelPlan, l scene.Ladder) {
 			t = strings.TrimSpace(t + "  g = " + strconv.Itoa(l.Degeneracy[i]))
 		}
 		if t != "" {
-			texts[i] = mark.Label(t)
+			texts[i] = mark.Upright(t)
 			wide = max(wide, width(texts[i], fs))
 		}
 	}

@@ -21,24 +21,38 @@ type Run struct {
 // only the letters that name quantities or running numbers (p, V, T, x, n, i,
 // j) are italic, so that C_p and C_{p,m} come out as the Green Book has them.
 // Greek letters may be written \theta or θ.
-func Symbol(s string) []Run { return parse(s, true) }
+func Symbol(s string) []Run { return parse(s, symbols) }
 
-// Label parses running text with _{}, ^{} and Greek names; it stays upright.
-func Label(s string) []Run { return parse(s, false) }
+// Label parses running text with _{}, ^{} and Greek names. It stays upright,
+// but for a single letter with a sub- or superscript, which is a symbol: the
+// C_p of "from C_p". An underscore after a word, as in run_7.csv, is itself.
+func Label(s string) []Run { return parse(s, running) }
 
-func parse(s string, symbol bool) []Run {
+// Upright parses text with _{}, ^{} and Greek names in which nothing is
+// italic, such as term symbols.
+func Upright(s string) []Run { return parse(s, upright) }
+
+type manner int
+
+const (
+	symbols manner = iota
+	running
+	upright
+)
+
+func parse(s string, how manner) []Run {
 	var out []Run
+	symbol := how == symbols
+	hung := false // a symbol stands before the shift that comes
 	add := func(text string, shift int) {
 		if text == "" {
 			return
 		}
-		if !symbol {
+		if how == upright || how == running && (shift == 0 || !hung) {
 			out = append(out, Run{Text: text, Shift: shift})
 			return
 		}
-		for _, r := range italics(text, shift) {
-			out = append(out, r)
-		}
+		out = append(out, italics(text, shift)...)
 	}
 	var plain strings.Builder
 	for s != "" {
@@ -54,8 +68,28 @@ func parse(s string, symbol bool) []Run {
 				s = s[1:]
 				continue
 			}
-			add(plain.String(), 0)
+			base := plain.String()
+			if how == running {
+				was := hung
+				r, n := utf8.DecodeLastRuneInString(base)
+				before, _ := utf8.DecodeLastRuneInString(base[:len(base)-n])
+				hung = base == "" && was || unicode.IsLetter(r) && (n == len(base) || !unicode.IsLetter(before) && !unicode.IsDigit(before))
+				if c == '_' && !hung && s[1] != '{' { // a file name, not a symbol
+					plain.WriteByte(c)
+					s = s[1:]
+					continue
+				}
+			}
 			plain.Reset()
+			if how == running && base != "" {
+				r, n := utf8.DecodeLastRuneInString(base)
+				if hung {
+					add(base[:len(base)-n], 0)
+					out = append(out, italics(string(r), 0)...)
+					base = ""
+				}
+			}
+			add(base, 0)
 			add(greek(body), shift)
 			s = rest
 		case c == '\\':

@@ -31,6 +31,24 @@ func TestOver(t *testing.T) {
 	}
 }
 
+func TestLabel(t *testing.T) {
+	for _, test := range []struct{ in, label, upright string }{
+		{"from C_p", "from <i>C</i><sub><i>p</i></sub>", "from C<sub>p</sub>"},
+		{"T_{trs}, a phase", "<i>T</i><sub>trs</sub>, a phase", "T<sub>trs</sub>, a phase"},
+		{"x² and C_p^2", "x<sup>2</sup> and <i>C</i><sub><i>p</i></sub><sup>2</sup>", "x<sup>2</sup> and C<sub>p</sub><sup>2</sup>"},
+		{"^3P_2", "<sup>3</sup><i>P</i><sub>2</sub>", "<sup>3</sup>P<sub>2</sub>"},
+		{"10^{-3} kg, A1_x", "10<sup>-3</sup> kg, A1_x", "10<sup>-3</sup> kg, A1<sub>x</sub>"},
+		{"alloy_run_7.csv", "alloy_run_7.csv", "alloy<sub>r</sub>un<sub>7</sub>.csv"},
+	} {
+		if got := HTML(Label(test.in)); got != test.label {
+			t.Errorf("Label(%q): %s, want %s", test.in, got, test.label)
+		}
+		if got := HTML(Upright(test.in)); got != test.upright {
+			t.Errorf("Upright(%q): %s, want %s", test.in, got, test.upright)
+		}
+	}
+}
+
 func TestSameUnit(t *testing.T) {
 	for _, test := range []struct {
 		a, b string
