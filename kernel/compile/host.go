@@ -75,6 +75,7 @@ func Here() (*Kit, error) {
 	if err := k.Fits(); err != nil {
 		return nil, err
 	}
+	hold(dir)
 	return k, nil
 }
 

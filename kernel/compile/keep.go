@@ -50,14 +50,15 @@ func SourceOf(executable string) string {
 
 // Retire removes the kits whose executable is gone or has been built anew, and
 // what unfinished preparations left behind; it returns their folders. A kit
-// that was made for no executable stays.
+// that was made for no executable stays, and so does one that a process still
+// uses: notebooks that are open while levelsum is installed anew go on.
 func Retire() (removed []string, err error) {
 	dirs, err := Kits()
 	if err != nil {
 		return nil, err
 	}
 	for _, dir := range dirs {
-		if !obsolete(dir) {
+		if !obsolete(dir) || held(dir) {
 			continue
 		}
 		if e := os.RemoveAll(dir); e != nil {

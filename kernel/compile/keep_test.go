@@ -56,6 +56,8 @@ func TestRetireRemovesKitsOfEarlierBuilds(t *testing.T) {
 	earlier := kit("earlier", exe)
 	gone := kit("gone", filepath.Join(root, "no-such"))
 	kit("nobody's", "")
+	used := kit("used", exe)
+	hold(used)
 	if got := SourceOf(filepath.Join(root, "no-such")); got != "/src/gone" {
 		t.Errorf("the source of the program that is gone is %q", got)
 	}
@@ -75,7 +77,7 @@ func TestRetireRemovesKitsOfEarlierBuilds(t *testing.T) {
 		t.Errorf("removed %v, %v; want %v", removed, err, want)
 	}
 	left, _ := filepath.Glob(filepath.Join(root, "kit", "*"))
-	if len(left) != 3 || !exists(mine) || !exists(fresh) {
+	if len(left) != 4 || !exists(mine) || !exists(fresh) || !exists(used) {
 		t.Errorf("left %v", left)
 	}
 }
