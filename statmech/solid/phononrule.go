@@ -58,8 +58,9 @@ func (p *Phonons) makeRule(low float64) rule {
 		start := min(p.knots[1].w, 4*low)
 		first = start * math.Exp2(-float64(doublings))
 		r.first = first
-		r.add(p.piece(0, 0, first))
+		r.piece(p, 0, 0, first, first)
 	}
+	var points rule // of one panel
 	cell := 0
 	for a := first; a < top; {
 		width := a
@@ -70,12 +71,12 @@ func (p *Phonons) makeRule(low float64) rule {
 		if top-b < 1e-9*top {
 			b = top
 		}
-		var points rule
 		for p.knots[cell+1].w <= a {
 			cell++
 		}
+		points.w, points.weight = points.w[:0], points.weight[:0]
 		for i := cell; i < len(p.knots)-1 && p.knots[i].w < b; i++ {
-			points.add(p.piece(i, max(a, p.knots[i].w), min(b, p.knots[i+1].w)))
+			points.piece(p, i, max(a, p.knots[i].w), min(b, p.knots[i+1].w), b-a)
 		}
 		r.add(points.condensed(a, b))
 		a = b
@@ -88,27 +89,32 @@ func (r *rule) add(w, weight []float64) {
 	r.weight = append(r.weight, weight...)
 }
 
-// piece returns Gauss points for a part of the cubic between knots i and i+1.
-// Six points are exact for the cubic times a polynomial of degree eight, and a
-// part is at most one panel wide; wide parts are cut.
-func (p *Phonons) piece(i int, a, b float64) (w, weight []float64) {
+// piece adds Gauss points for the part from a to b of the cubic between knots i
+// and i+1, in a panel of the given width. Six points are exact for the cubic
+// times a polynomial of degree eight; parts that are wide against their
+// distance from ω = 0 are cut, and four points do for parts that are small
+// against the panel.
+func (r *rule) piece(p *Phonons, i int, a, b, panel float64) {
+	if !(b > a) {
+		return
+	}
 	parts := 1
 	if b-a > a/8 && a > 0 {
 		parts = min(8, int(math.Ceil(8*(b-a)/a)))
 	}
-	if !(b > a) {
-		return nil, nil
+	nodes, weights := gauss6Nodes[:], gauss6Weights[:]
+	if b-a < panel/16 {
+		nodes, weights = gauss4Nodes[:], gauss4Weights[:]
 	}
 	h := (b - a) / float64(parts)
 	for k := range parts {
 		mid := a + h*(float64(k)+0.5)
-		for j, x := range gauss6Nodes {
+		for j, x := range nodes {
 			v := mid + h/2*x
-			w = append(w, v)
-			weight = append(weight, h/2*gauss6Weights[j]*p.density(i, v))
+			r.w = append(r.w, v)
+			r.weight = append(r.weight, h/2*weights[j]*p.density(i, v))
 		}
 	}
-	return w, weight
 }
 
 // condensed returns the panel's points, or Chebyshev nodes in their place if
@@ -122,10 +128,15 @@ func (r rule) condensed(a, b float64) (w, weight []float64) {
 	var moment [panelNodes]float64 // ∫ g Tₖ dω
 	for i, v := range r.w {
 		t := (v - mid) / half
-		t0, t1 := 1.0, t
-		for k := range moment {
-			moment[k] += r.weight[i] * t0
-			t0, t1 = t1, 2*t*t1-t0
+		// The recurrence carries the weight along.
+		t0 := r.weight[i]
+		t1 := t0 * t
+		t *= 2
+		for k := 0; k < panelNodes; k += 2 {
+			moment[k] += t0
+			moment[k+1] += t1
+			t0 = float64(t*t1) - t0
+			t1 = float64(t*t0) - t1
 		}
 	}
 	// Weight of node j: (1/n) Σ' 2 Tₖ(tⱼ) moment_k.
@@ -143,8 +154,12 @@ func (r rule) condensed(a, b float64) (w, weight []float64) {
 	return w, weight
 }
 
-// Gauss-Legendre points on [-1, 1]: Abramowitz and Stegun, table 25.4, n = 6.
+// Gauss-Legendre points on [-1, 1]: Abramowitz and Stegun, table 25.4, n = 4
+// and 6.
 var (
+	gauss4Nodes   = [...]float64{-0.861136311594052575223946488893, -0.339981043584856264802665759103, 0.339981043584856264802665759103, 0.861136311594052575223946488893}
+	gauss4Weights = [...]float64{0.347854845137453857373063949222, 0.652145154862546142626936050778, 0.652145154862546142626936050778, 0.347854845137453857373063949222}
+
 	gauss6Nodes = [...]float64{
 		-0.932469514203152027812301554494, -0.661209386466264513661399595020, -0.238619186083196908630501721681,
 		0.238619186083196908630501721681, 0.661209386466264513661399595020, 0.932469514203152027812301554494,

@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"runtime"
 	"slices"
 	"sync"
 
@@ -360,9 +361,11 @@ func (p *Phonons) reducedAt(ts []float64) []statmech.Reduced {
 		return out
 	}
 	r := p.rule(slices.Min(ts))
-	for i, T := range ts {
-		out[i] = r.reduced(T).Scale(p.count)
-	}
+	inParallel(len(ts), len(r.w), func(from, to int) {
+		for i := from; i < to; i++ {
+			out[i] = r.reduced(ts[i]).Scale(p.count)
+		}
+	})
 	return out
 }
 
@@ -377,13 +380,30 @@ func (p *Phonons) heats(dst, ts []float64) {
 		return
 	}
 	r := p.rule(slices.Min(ts))
-	for k, T := range ts {
-		sum := 0.0
-		for i, w := range r.w {
-			sum += float64(r.weight[i] * special.EinsteinC(w/T))
+	inParallel(len(ts), len(r.w), func(from, to int) {
+		for k := from; k < to; k++ {
+			sum, inverse := 0.0, 1/ts[k]
+			for i, w := range r.w {
+				sum += float64(r.weight[i] * special.EinsteinC(w*inverse))
+			}
+			dst[k] = p.count * sum
 		}
-		dst[k] = p.count * sum
+	})
+}
+
+// inParallel calls f for parts of 0 … n-1, on all processors if n calls of the
+// given cost (in evaluations of a mode) are worth it, and waits for them.
+func inParallel(n, cost int, f func(from, to int)) {
+	workers := min(runtime.GOMAXPROCS(0), n)
+	if n*cost < 20_000 || workers < 2 {
+		f(0, n)
+		return
 	}
+	var wait sync.WaitGroup
+	for k := range workers {
+		wait.Go(func() { f(k*n/workers, (k+1)*n/workers) })
+	}
+	wait.Wait()
 }
 
 // Owns implements [Differentiable]: nothing of a table is free.
