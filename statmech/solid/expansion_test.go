@@ -113,3 +113,52 @@ func TestEffectiveThetas(t *testing.T) {
 		}
 	}
 }
+
+func TestEffectiveThetasMeasured(t *testing.T) {
+	// Copper, White & Collocott 1984 (see the file), up to θ/50, beyond which
+	// real lattices leave their T³ law, less the electrons' γT: 344.3 K and γ = 0.691 mJ/(mol K²), D. L. Martin, Phys.
+	// Rev. B 8, 5357 (1973). The table's 1 % is the tolerance.
+	gamma := Electronic{Gamma: 0.691 * unit.MilliJPerMolK2}
+	var ts []unit.Temperature
+	var cv, u []unit.MolarEntropy
+	for _, row := range readReference(t, "white-collocott-1984", "copper.csv") {
+		T := unit.Temperature(number(t, row[0]))
+		if T > 344.3/50 {
+			break
+		}
+		cp := unit.MolarEntropy(number(t, row[1]))
+		ts, cv, u = append(ts, T), append(cv, cp-gamma.HeatCapacity(T)), append(u, 0.01*cp)
+	}
+	curve, err := EffectiveThetas(ts, cv, u, 3)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if len(curve) < 5 {
+		t.Fatalf("%d points of copper up to θ/50", len(curve))
+	}
+	for _, e := range curve {
+		if d := e.Theta - 344.3*unit.K; math.Abs(float64(d)) > float64(e.U) {
+			t.Errorf("copper at %v: %v ± %v, want 344.3 K", e.T, e.Theta, e.U)
+		}
+	}
+	// Aluminium at 10 K: Cp 0.0378 J/(mol K) (R. J. Corruccini and J. J.
+	// Gniewek, NBS Monograph 21, 1960), γ = 1.35 mJ/(mol K²) and θ = 428 K
+	// (C. Kittel, Introduction to Solid State Physics, tables of chapters 5 and
+	// 6), all from memory; 1 %. Lead at 10 K: 2.8 J/(mol K) (textbook table,
+	// from memory, two digits), γ = 2.98 mJ/(mol K²): 87 K, and not the 105 K of
+	// the elastic limit, which lead has left at θ/10.
+	for _, test := range []struct {
+		name       string
+		cp, gamma  float64
+		want, half float64
+	}{{"aluminium", 0.0378, 1.35e-3, 428, 4.3}, {"lead", 2.8, 2.98e-3, 87, 1}} {
+		c := unit.MolarEntropy(test.cp - test.gamma*10)
+		e, err := EffectiveThetas([]unit.Temperature{10}, []unit.MolarEntropy{c}, []unit.MolarEntropy{0.01 * c}, 3)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if math.Abs(float64(e[0].Theta)-test.want) > test.half {
+			t.Errorf("%s at 10 K: %v, want %g", test.name, e[0], test.want)
+		}
+	}
+}

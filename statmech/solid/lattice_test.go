@@ -27,7 +27,7 @@ func readReference(t testing.TB, source, name string) [][]string {
 		}
 	}
 	r := csv.NewReader(strings.NewReader(string(text)))
-	r.Comment = '#'
+	r.Comment, r.TrimLeadingSpace = '#', true
 	rows, err := r.ReadAll()
 	if err != nil {
 		t.Fatal(err)
