@@ -151,14 +151,38 @@ type emitter struct {
 type edit struct {
 	start, end int
 	text       string
+	closes     bool // stands behind a node: before what follows, inner nodes first
 }
 
 func (e *emitter) replace(start, end token.Pos, text string) {
 	fset := e.plan.scope.fset
-	e.edits = append(e.edits, edit{e.src.offset(fset, start), e.src.offset(fset, end), text})
+	e.edits = append(e.edits, edit{e.src.offset(fset, start), e.src.offset(fset, end), text, false})
 }
 
 func (e *emitter) insert(at token.Pos, text string) { e.replace(at, at, text) }
+
+// after inserts text behind a node.
+func (e *emitter) after(n ast.Node, text string) {
+	at := e.src.offset(e.plan.scope.fset, n.End())
+	e.edits = append(e.edits, edit{at, at, text, true})
+}
+
+// ordered sorts edits by place. Nodes are visited outside in, so what closes
+// an inner node was added later and comes first.
+func ordered(edits []edit) []edit {
+	var open, closing []edit
+	for _, e := range edits {
+		if e.closes {
+			closing = append(closing, e)
+		} else {
+			open = append(open, e)
+		}
+	}
+	slices.Reverse(closing)
+	all := append(closing, open...)
+	slices.SortStableFunc(all, func(a, b edit) int { return a.start - b.start })
+	return all
+}
 
 // node returns the text of a node with all edits in it.
 func (e *emitter) node(n ast.Node) string {
@@ -169,7 +193,7 @@ func (e *emitter) node(n ast.Node) string {
 	e.edits = outer
 	fset := e.plan.scope.fset
 	start, end := e.src.offset(fset, n.Pos()), min(e.src.offset(fset, n.End()), len(e.src.Text))
-	slices.SortStableFunc(edits, func(a, b edit) int { return a.start - b.start })
+	edits = ordered(edits)
 	var out strings.Builder
 	at := start
 	for _, ed := range edits {

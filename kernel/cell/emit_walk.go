@@ -59,7 +59,7 @@ func (e *emitter) visit(n ast.Node, stack []ast.Node) bool {
 		if t := e.info.Types[n.X].Type; t != nil {
 			if _, ok := t.Underlying().(*types.Chan); ok {
 				e.insert(n.X.Pos(), e.guard("Chan")+"(")
-				e.insert(n.X.End(), ")")
+				e.after(n.X, ")")
 			}
 		}
 	case *ast.BranchStmt:
@@ -71,7 +71,7 @@ func (e *emitter) visit(n ast.Node, stack []ast.Node) bool {
 	case *ast.SendStmt:
 		if !e.comm[n] && inList(n, parent) {
 			e.insert(n.Pos(), "select { case ")
-			e.insert(n.End(), ": ; case <-"+e.guard("Done()")+": "+e.guard("Halt()")+" }")
+			e.after(n, ": ; case <-"+e.guard("Done()")+": "+e.guard("Halt()")+" }")
 		}
 	case *ast.UnaryExpr:
 		if n.Op == token.ARROW && !e.comm[n] {
@@ -83,7 +83,7 @@ func (e *emitter) visit(n ast.Node, stack []ast.Node) bool {
 		if id, ok := ast.Unparen(n.Fun).(*ast.Ident); ok && e.isBuiltin(id, "recover") {
 			if _, deferred := parent.(*ast.DeferStmt); !deferred {
 				e.insert(n.Pos(), e.guard("Recover")+"(")
-				e.insert(n.End(), ")")
+				e.after(n, ")")
 			}
 		}
 	case *ast.StructType:
@@ -188,7 +188,7 @@ func (e *emitter) receive(n *ast.UnaryExpr, parent ast.Node) {
 	}
 	_ = parent
 	e.replace(n.OpPos, n.OpPos+2, e.guard(name)+"(")
-	e.insert(n.End(), ")")
+	e.after(n, ")")
 }
 
 func (e *emitter) isBuiltin(id *ast.Ident, name string) bool {
@@ -207,7 +207,7 @@ func (e *emitter) goStmt(n *ast.GoStmt) {
 	sig, ok := fun.Type.Underlying().(*types.Signature)
 	if fun.IsBuiltin() || fun.IsType() || !ok {
 		e.insert(n.Call.Pos(), "func() {"+guard)
-		e.insert(n.Call.End(), "}()")
+		e.after(n.Call, "}()")
 		return
 	}
 	// go func(f F, a0 T0, ...) { guard; f(a0, ...) }(fun, args...)
@@ -228,7 +228,7 @@ func (e *emitter) goStmt(n *ast.GoStmt) {
 	}
 	if len(n.Call.Args) == 1 && sig.Params().Len() > 1 { // go f(g())
 		e.insert(n.Call.Pos(), "func() {"+guard)
-		e.insert(n.Call.End(), "}()")
+		e.after(n.Call, "}()")
 		return
 	}
 	e.insert(n.Call.Pos(), fmt.Sprintf("func(%s) {%s%sf(%s) }(", params.String(), guard, Inner, args.String()))
@@ -239,7 +239,7 @@ func (e *emitter) goStmt(n *ast.GoStmt) {
 			for i := range inst.TypeArgs.Len() {
 				ts = append(ts, e.typ(inst.TypeArgs.At(i)))
 			}
-			e.insert(n.Call.Fun.End(), "["+strings.Join(ts, ", ")+"]")
+			e.after(n.Call.Fun, "["+strings.Join(ts, ", ")+"]")
 		}
 	}
 	e.replace(n.Call.Lparen, n.Call.Lparen+1, ", ")
@@ -449,7 +449,7 @@ func (e *emitter) structType(n *ast.StructType) {
 		if f.Tag != nil {
 			e.replace(f.Tag.Pos(), f.Tag.End(), fieldTag(f.Tag, tag, true))
 		} else {
-			e.insert(f.Type.End(), " `"+tag+"`")
+			e.after(f.Type, " `"+tag+"`")
 		}
 	}
 }
@@ -527,7 +527,7 @@ func (e *emitter) unusedIn(n ast.Node, parent ast.Node, stack []ast.Node) {
 	case *ast.ForStmt:
 		e.insert(p.Body.Lbrace+1, names)
 	case *ast.SwitchStmt:
-		e.insert(n.End(), "; "+strings.TrimSuffix(names, "; "))
+		e.after(n, "; "+strings.TrimSuffix(names, "; "))
 	case *ast.TypeSwitchStmt:
 		if a, ok := n.(*ast.AssignStmt); ok && p.Assign == ast.Stmt(a) {
 			e.replace(a.Pos(), a.Rhs[0].Pos(), "")
@@ -539,10 +539,10 @@ func (e *emitter) unusedIn(n ast.Node, parent ast.Node, stack []ast.Node) {
 		if p.Comm == n {
 			e.insert(p.Colon+1, names)
 		} else {
-			e.insert(n.End(), "; "+names)
+			e.after(n, "; "+names)
 		}
 	default:
-		e.insert(n.End(), "; "+names)
+		e.after(n, "; "+names)
 	}
 }
 

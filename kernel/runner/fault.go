@@ -193,7 +193,7 @@ func runningCall() string {
 	buf := make([]byte, 1<<20)
 	buf = buf[:runtime.Stack(buf, true)]
 	for g := range strings.SplitSeq(string(buf), "\n\n") {
-		if !strings.Contains(g, "runner.(*Runner).goroutine") {
+		if !strings.Contains(g, "runner.(*Runner).goroutine.func") {
 			continue
 		}
 		lines := strings.Split(g, "\n")
@@ -201,8 +201,10 @@ func runningCall() string {
 			if strings.HasPrefix(l, "\t") || strings.HasPrefix(l, "runtime.") || strings.HasPrefix(l, "internal/") {
 				continue
 			}
-			name, _, _ := strings.Cut(l, "(")
-			return "a call of " + cell.Unmark(name)
+			if i := strings.LastIndex(l, "("); i > 0 {
+				l = l[:i]
+			}
+			return "a call of " + cell.Unmark(l)
 		}
 	}
 	return "a call that does not look whether it is to stop"
