@@ -14,6 +14,7 @@ func init() {
 		// function, constant and variable definitions
 		"Correlation":      reflect.ValueOf(display.Correlation),
 		"Current":          reflect.ValueOf(display.Current),
+		"Interrupted":      reflect.ValueOf(display.Interrupted),
 		"NewProgress":      reflect.ValueOf(display.NewProgress),
 		"Notes":            reflect.ValueOf(display.Notes),
 		"NumberOf":         reflect.ValueOf(display.NumberOf),

@@ -25,6 +25,7 @@ func init() {
 		"NernstLindemannFromMelting":   reflect.ValueOf(solid.NernstLindemannFromMelting),
 		"NewPhonons":                   reflect.ValueOf(solid.NewPhonons),
 		"OrthorhombicStiffness":        reflect.ValueOf(solid.OrthorhombicStiffness),
+		"PhononsFrom":                  reflect.ValueOf(solid.PhononsFrom),
 		"TetragonalStiffness":          reflect.ValueOf(solid.TetragonalStiffness),
 		"TriclinicStiffness":           reflect.ValueOf(solid.TriclinicStiffness),
 		"TrigonalStiffness":            reflect.ValueOf(solid.TrigonalStiffness),
