@@ -20,7 +20,6 @@ type fileReader struct {
 	d    Description
 	dir  string
 	used map[string]bool // note keys that were understood
-	dia  bool
 }
 
 // prose are the keys of lines that are for people.
