@@ -12,6 +12,11 @@ class LevelsumKernelTests(jupyter_kernel_test.KernelTests):
 
     code_hello_world = 'import "fmt"\nfmt.Println("hello, world")'
     code_stderr = 'import ("fmt"; "os")\nfmt.Fprintln(os.Stderr, "test")'
+    completion_samples = [
+        {"text": "strings.HasPr", "matches": {"HasPrefix"}},
+        {"text": "solid.Deb", "matches": {"Debye", "Debye1D", "Debye2D"}},
+    ]
+    code_inspect_sample = "math.Sqrt"
     complete_code_samples = ["x := 1", "1 + 1", "func f() int {\n\treturn 1\n}"]
     incomplete_code_samples = ["func f() int {", "x := []int{1,", "s := `raw"]
     invalid_code_samples = ["x := )", "func 1() {}"]
