@@ -138,23 +138,6 @@ func TestCloseTwiceAndAtOnce(t *testing.T) {
 	}
 }
 
-// Close ends a Send that waits for a slow peer.
-func TestCloseEndsAWaitingSend(t *testing.T) {
-	s := listen(t, Router, Options{limits: small(func(l *limits) { l.stall = time.Hour })})
-	c := connect(t, s, "DEALER", "c").pause()
-	c.send("hello")
-	if _, err := s.Recv(); err != nil {
-		t.Fatal(err)
-	}
-	s.Send([][]byte{[]byte("c"), make([]byte, 30<<20)})
-	sent := make(chan error, 1)
-	go func() { sent <- s.Send(frames("c", "x")) }()
-	s.Close(0)
-	if err := <-sent; err != ErrClosed {
-		t.Errorf("the waiting Send: %v, want ErrClosed", err)
-	}
-}
-
 // Sockets are closed with input unread, replies under way, subscriptions
 // coming, connections in their handshake; nothing is left behind.
 func TestOpenCloseLeavesNothing(t *testing.T) {

@@ -40,6 +40,24 @@ func TestWelcomeIsNeverLost(t *testing.T) {
 	}
 }
 
+// A subscription counts when it is reported, not only soon afterwards.
+func TestSubscriptionsCountWhenReported(t *testing.T) {
+	counts := make(chan bool, 1)
+	s := listen(t, XPub, Options{OnSubscribe: func(s *Socket, topic []byte, on bool) {
+		topics := s.z.(zmq4.Topics).Topics()
+		counts <- slices.Contains(topics, string(topic)) == on
+	}})
+	c := connect(t, s, "SUB", "")
+	for i := range 50 {
+		for _, m := range []string{"\x01", "\x00"} {
+			c.send(fmt.Sprint(m, "topic", i))
+			if !<-counts {
+				t.Fatalf("event %q came before zmq4 knew", m)
+			}
+		}
+	}
+}
+
 func TestBigThenSmall(t *testing.T) {
 	big := strings.Repeat("b", 20<<20)
 	on, seen := events()

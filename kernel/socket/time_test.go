@@ -2,10 +2,8 @@ package socket
 
 import (
 	"errors"
-	"fmt"
 	"io"
 	"net"
-	"runtime"
 	"strings"
 	"testing"
 	"testing/synctest"
@@ -170,23 +168,55 @@ func TestCloseEndsHandshakes(t *testing.T) {
 	})
 }
 
+// Close ends a Send that waits for a slow peer.
+func TestCloseEndsAWaitingSend(t *testing.T) {
+	bubble(t, Router, Options{}, func(t *testing.T, s *Socket, b *switchboard) {
+		c := b.call(t, "DEALER", "c")
+		if err := s.Send([][]byte{[]byte("c"), make([]byte, 9<<20)}); err != nil {
+			t.Fatal(err)
+		}
+		sent := make(chan error, 1)
+		go func() { sent <- s.Send(frames("c", "x")) }()
+		synctest.Wait()
+		start := time.Now()
+		s.Close(0)
+		if err, d := <-sent, time.Since(start); err != ErrClosed || d != 0 {
+			t.Errorf("the waiting Send: %v after %v, want ErrClosed at once", err, d)
+		}
+		c.Close()
+	})
+}
+
 // What is sent to an identity between its handshake and the moment at which
 // zmq4 knows it waits for the latter.
 func TestSendAtOnceAfterTheHandshake(t *testing.T) {
 	bubble(t, Router, Options{}, func(t *testing.T, s *Socket, b *switchboard) {
-		for i := range 50 {
-			id := fmt.Sprint(i)
-			c := b.call(t, "DEALER", id)
-			for s.l.lookup([]byte(id)) == nil {
-				runtime.Gosched()
-			}
-			if err := s.Send(frames(id, "hello")); err != nil {
-				t.Fatal(err)
-			}
-			c.want("hello")
-			c.Close()
+		first := b.call(t, "DEALER", "first") // or zmq4 itself would wait
+		held := stuck{newTap()}
+		s.l.ready <- held // zmq4 accepts nobody now
+		c := b.call(t, "DEALER", "c")
+		sent := make(chan error, 1)
+		go func() { sent <- s.Send(frames("c", "hello")) }()
+		synctest.Wait()
+		if len(sent) > 0 {
+			t.Errorf("Send returned %v", <-sent)
 		}
+		held.Close()
+		if err := <-sent; err != nil {
+			t.Fatal(err)
+		}
+		c.want("hello")
+		first.Close()
+		c.Close()
 	})
+}
+
+// stuck is a connection that keeps zmq4 in its handshake until it is closed.
+type stuck struct{ *tap }
+
+func (s stuck) Read([]byte) (int, error) {
+	<-s.closed
+	return 0, net.ErrClosed
 }
 
 // A stalled peer costs one second, once; afterwards it loses messages at once,
