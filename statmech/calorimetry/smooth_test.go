@@ -271,3 +271,26 @@ func TestLargeExtrapolation(t *testing.T) {
 		t.Errorf("notes %q", all)
 	}
 }
+
+// TestTransitionFile reads the transition of nitrogen (54.71 cal/mol, Giauque
+// & Clayton 1933, from memory) from a file.
+func TestTransitionFile(t *testing.T) {
+	const head = "name, kind, T / K, u(T) / K, dH / (J mol-1), u(dH) / (J mol-1)\n"
+	run, err := data.Parse("transitions.csv", []byte(head+"alpha-beta, first-order, 35.61, 0.01, 228.9, 0.5\n"))
+	if err != nil {
+		t.Fatal(err)
+	}
+	ts, err := Transitions(run)
+	if err != nil || len(ts) != 1 {
+		t.Fatal(ts, err)
+	}
+	s := ts[0].Entropy()
+	within(t, "ΔS", s.Value(), 228.9/35.61, 1e-12)
+	within(t, "u(ΔS)", s.StandardUncertainty(), 228.9/35.61*math.Hypot(0.5/228.9, 0.01/35.61), 1e-9)
+	if run, err = data.Parse("transitions.csv", []byte(head+"Tc, lambda, 35.61, 0.01, 228.9, 0.5\n")); err != nil {
+		t.Fatal(err)
+	}
+	if _, err := Transitions(run); err == nil || !strings.Contains(err.Error(), "has no heat at one temperature") {
+		t.Errorf("a lambda transition: %v", err)
+	}
+}

@@ -3,7 +3,9 @@ package calorimetry
 import (
 	"fmt"
 	"math"
+	"strings"
 
+	"levelsum/statmech/data"
 	"levelsum/statmech/uncertain"
 	"levelsum/statmech/unit"
 )
@@ -51,4 +53,50 @@ func (t Transition) Entropy() uncertain.Quantity {
 		panic(err)
 	}
 	return t.jump().s.WithUnit("J/(mol K)")
+}
+
+// Transitions reads first-order transitions from a table with the columns name,
+// T, u(T), dH (or ΔH) and u(dH); a column "kind" may say first-order,
+// melting, boiling or the like, and lambda or glass transitions are refused,
+// since they have no heat at one temperature (see [ExcessOver]).
+func Transitions(file *data.Table) ([]Transition, error) {
+	bad := func(format string, args ...any) ([]Transition, error) {
+		return nil, fmt.Errorf("calorimetry: Transitions: %s: %s", file.Name, fmt.Sprintf(format, args...))
+	}
+	if len(file.T) == 0 {
+		return bad("no column T")
+	}
+	h, err := file.Column("dH")
+	if err != nil {
+		if h, err = file.Column("ΔH"); err != nil {
+			return bad("no column dH")
+		}
+	}
+	if h.Unit.Kind != unit.KindMolarEnergy {
+		return bad("column %s is in %q, a unit of %s; want an enthalpy per mole", h.Symbol, h.Unit.Symbol, h.Unit.Kind)
+	}
+	u := columnOr(file, "u("+h.Symbol+")")
+	name, nameErr := file.Column("name")
+	kind, kindErr := file.Column("kind")
+	out := make([]Transition, len(file.T))
+	for i, T := range file.T {
+		t := Transition{T: T, Enthalpy: unit.MolarEnergy(h.Values[i]), U: unit.MolarEnergy(at(u, i, 0))}
+		if file.UT != nil {
+			t.UT = file.UT[i]
+		}
+		if nameErr == nil && name.Text != nil {
+			t.Name = name.Text[i]
+		}
+		if kindErr == nil && kind.Text != nil {
+			switch k := strings.ToLower(kind.Text[i]); {
+			case strings.HasPrefix(k, "lambda"), strings.HasPrefix(k, "λ"), strings.HasPrefix(k, "glass"), strings.HasPrefix(k, "second"):
+				return bad("row %d: a transition of the kind %q has no heat at one temperature; integrate the anomaly over a baseline", i+1, kind.Text[i])
+			}
+		}
+		if err := t.check(); err != nil {
+			return bad("row %d: %v", i+1, err)
+		}
+		out[i] = t
+	}
+	return out, nil
 }

@@ -1,7 +1,9 @@
 package data
 
 import (
+	"fmt"
 	"math"
+	"regexp"
 	"strconv"
 	"strings"
 
@@ -121,7 +123,7 @@ func (t *Table) textColumn(c *Column, k int, rows [][]string, lines []int, p *pr
 		return false
 	}
 	if numeric > 0 && !labels[c.Symbol] {
-		p.add(p.head, 0, c.Symbol, "no unit; write \"%s / unit\" in the header, with / 1 for a pure number", c.Symbol)
+		p.add(p.head, 0, c.Symbol, "no unit; write %s", proposal(c.Symbol))
 		return true
 	}
 	c.Text = make([]string, len(rows))
@@ -131,13 +133,29 @@ func (t *Table) textColumn(c *Column, k int, rows [][]string, lines []int, p *pr
 	return true
 }
 
+var bracketed = regexp.MustCompile(`^(.*\S)\s*[\[(](.+)[\])]$`)
+
+// proposal says how a header without "quantity / unit" is to be written.
+func proposal(symbol string) string {
+	if m := bracketed.FindStringSubmatch(symbol); m != nil {
+		if u, err := unit.Parse(m[2]); err == nil {
+			return strconv.Quote(u.Header(m[1]))
+		}
+	}
+	return fmt.Sprintf("\"%s / unit\" in the header, with / 1 for a pure number", symbol)
+}
+
 // needed reports whether every cell of the column must be filled.
 func needed(c *Column) bool {
+	name := c.Symbol
 	if c.of != "" {
-		return c.of == "T" || heatCapacity[c.of]
+		name = c.of
 	}
-	return c.Symbol == "T" || heatCapacity[c.Symbol] || c.Symbol == "C"
+	return temperature[name] || heatCapacity[name] || name == "C"
 }
+
+// Names of the two quantities that a table has typed columns for.
+var temperature = map[string]bool{"T": true, "Temperature": true, "temperature": true, "T90": true, "T_90": true}
 
 var heatCapacity = map[string]bool{"Cp": true, "C_p": true, "Cp,m": true, "C_p,m": true}
 
@@ -216,8 +234,8 @@ func (t *Table) convert(p *problems, lines []int) {
 // one meaning here.
 func (t *Table) checkKind(c *Column, p *problems) {
 	switch {
-	case c.Symbol == "T" && c.Unit.Kind != unit.KindTemperature:
-		p.add(0, 0, c.Symbol, "%q is a unit of %s, and T is a temperature; energies become temperatures only by a call that says so", c.Unit.Symbol, c.Unit.Kind)
+	case temperature[c.Symbol] && c.Unit.Kind != unit.KindTemperature:
+		p.add(0, 0, c.Symbol, "%q is a unit of %s, and %s is a temperature; energies become temperatures only by a call that says so", c.Unit.Symbol, c.Unit.Kind, c.Symbol)
 	case heatCapacity[c.Symbol] && c.Unit.Kind != unit.KindMolarEntropy && c.Unit.Kind != unit.KindSpecificEntropy:
 		p.add(0, 0, c.Symbol, "%q is a unit of %s, and %s is a molar or specific heat capacity (J K-1 mol-1, J K-1 g-1); the heat capacity of a whole sample is the column C", c.Unit.Symbol, c.Unit.Kind, c.Symbol)
 	}

@@ -56,6 +56,7 @@ func TestForms(t *testing.T) {
 		{"per gram", "# M/(g mol-1): 50\nT / K, Cp / (J K-1 g-1), u(Cp) / %\n300, 0.49, 1\n310.5, 0.494, 2\n"},
 		{"coverage", "# coverage of u: k=2\nT / K, Cp / (J K-1 mol-1), u(Cp) / %\n300, 24.5, 2\n310.5, 24.7, 4\n"},
 		{"byte-order mark", "\ufeffT / K, Cp / (J K-1 mol-1), u(Cp) / %\n300, 24.5, 1\n310.5, 24.7, 2"},
+		{"temperature in words", "Temperature / K, Cp / (J K-1 mol-1), u(Cp) / %\n300, 24.5, 1\n310.5, 24.7, 2"},
 		{"notes between rows", "# a remark\nT / K, Cp / (J K-1 mol-1), u(Cp) / %\n# run: 2\n300, 24.5, 1\n\n310.5, 24.7, 2"},
 	} {
 		t.Run(test.name, func(t *testing.T) {
@@ -90,6 +91,8 @@ func TestEchoShowsConversion(t *testing.T) {
 func TestRefusals(t *testing.T) {
 	for _, test := range []struct{ name, text, want string }{
 		{"no unit", "T / K, Cp\n300, 24.5\n", `line 1, column "Cp": no unit`},
+		{"unit in brackets", "T [K], Cp / (J/(mol K))\n300, 24.5\n", `line 1, column "T [K]": no unit; write "T / K"`},
+		{"unit in parentheses", "T / K, Cp (J K-1 mol-1)\n300, 24.5\n", `no unit; write "Cp / (J K-1 mol-1)"`},
 		{"unknown unit", "T / K, Cp / (J/mol/Kelvin)\n300, 24.5\n", `line 1, column "Cp / (J/mol/Kelvin)"`},
 		{"column twice", "T / K, T / K\n300, 300\n", `line 1, column "T": a column of this name is there twice`},
 		{"not positive", "T / K, Cp / (J K-1 mol-1)\n300, 24.5\n0, 1\n", `line 3 (row 2), column "T": 0 K is not a positive temperature`},

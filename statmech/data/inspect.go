@@ -23,12 +23,12 @@ func (t *Table) assign() {
 			continue
 		}
 		switch {
-		case c.Symbol == "T":
+		case temperature[c.Symbol] && t.T == nil:
 			t.T = make([]unit.Temperature, len(c.Values))
 			for i, v := range c.Values {
 				t.T[i] = unit.Temperature(v)
 			}
-		case c.of == "T":
+		case temperature[c.of]:
 			if t.UT == nil {
 				t.UT = make([]unit.TemperatureDifference, len(c.Values))
 			}
