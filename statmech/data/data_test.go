@@ -257,6 +257,10 @@ func FuzzParse(f *testing.F) {
 	f.Add([]byte("T   Cp               u(Cp)\nK   (J K-1 mol-1)    %\n300   24.5  1\n310.5 24.7 2\n"))
 	f.Add([]byte("\ufeff\"a,b\"; T / °C; n\n\"x\"\"y\";3,5;1\n#k: v, w: x\n;4;2\n"))
 	f.Add([]byte("# M/(g mol-1): 50, coverage of u: k=2\nT / K, Cp / (J K-1 g-1), u_r(Cp) / %, u_c(Cp)/(J K-1 g-1)\n300, 0.49, 1, 2\n"))
+	f.Add([]byte("0 1 }\n1 (1) 1\n0 0 0"))      // a brace in a symbol
+	f.Add([]byte("0 2 1 ()\nA ( A A\nA A A A")) // a second row that looks like units
+	f.Add([]byte("\v() 1\n1 1\n0 0"))           // a control character
+	f.Add([]byte("0(000 0\n1 1\n0 0"))          // an open parenthesis
 	var z bytes.Buffer
 	w := gzip.NewWriter(&z)
 	w.Write(raw)

@@ -11,6 +11,7 @@ import (
 	"os"
 	"path/filepath"
 	"strings"
+	"unicode"
 	"unicode/utf8"
 
 	"levelsum/statmech/unit"
@@ -99,6 +100,10 @@ func (t *Table) lines(text []byte, p *problems) []line {
 		l := s.Text()
 		if !utf8.ValidString(l) || strings.ContainsRune(l, 0) {
 			p.add(n, 0, "", "the line is not UTF-8 text; save the file as UTF-8 (for °, ± and µ)")
+			return nil
+		}
+		if strings.ContainsFunc(l, func(r rune) bool { return r != '\t' && unicode.IsControl(r) }) {
+			p.add(n, 0, "", "a control character in the line: is this a text file?")
 			return nil
 		}
 		l = strings.TrimSpace(l)
@@ -246,11 +251,11 @@ func (t *Table) parse(lines []line, p *problems) {
 
 // header makes a column of a header cell.
 func (t *Table) header(cell string, i int, units []string, number int, p *problems) {
-	if cell == "" {
+	if cell = strings.TrimSpace(cell); cell == "" {
 		p.add(number, 0, "", "column %d has no name", i+1)
 		return
 	}
-	if strings.Count(cell, "(") != strings.Count(cell, ")") || strings.Count(cell, "[") != strings.Count(cell, "]") {
+	if !balanced(cell) {
 		p.add(number, 0, cell, "a parenthesis is not closed, or closed twice")
 		return
 	}
@@ -338,5 +343,8 @@ func (t *Table) unitsRow(cells []string, rest []line, sep byte) ([]string, bool)
 		}
 		numbers = numbers || i < len(next) && isNumeric(next[i])
 	}
-	return units, numbers
+	if !numbers {
+		return nil, false
+	}
+	return units, true
 }

@@ -26,9 +26,9 @@ func outsideParentheses(s string) string {
 	depth := 0
 	for i := range len(s) {
 		switch s[i] {
-		case '(', '[':
+		case '(', '[', '{':
 			depth++
-		case ')', ']':
+		case ')', ']', '}':
 			depth = max(0, depth-1)
 		default:
 			if depth == 0 {
@@ -85,9 +85,9 @@ func splitCells(s string, sep byte, header bool) ([]string, error) {
 			return nil, errors.New("text after the closing quote of a field")
 		case wasQuoted:
 		default:
-			if header && (ch == '(' || ch == '[') {
+			if header && (ch == '(' || ch == '[' || ch == '{') {
 				depth++
-			} else if header && (ch == ')' || ch == ']') {
+			} else if header && (ch == ')' || ch == ']' || ch == '}') {
 				depth = max(0, depth-1)
 			}
 			b.WriteByte(ch)
@@ -125,9 +125,9 @@ func splitGroups(s string) []string {
 		case (ch == ' ' || ch == '\t') && depth == 0:
 			flush()
 		default:
-			if ch == '(' || ch == '[' {
+			if ch == '(' || ch == '[' || ch == '{' {
 				depth++
-			} else if ch == ')' || ch == ']' {
+			} else if ch == ')' || ch == ']' || ch == '}' {
 				depth = max(0, depth-1)
 			}
 			b.WriteByte(ch)
@@ -150,4 +150,21 @@ func joinHeader(words []string) []string {
 		out = append(out, words[i])
 	}
 	return out
+}
+
+// balanced reports whether every parenthesis, bracket and brace that is opened
+// is closed, and none before it is opened.
+func balanced(s string) bool {
+	depth := 0
+	for i := range len(s) {
+		switch s[i] {
+		case '(', '[', '{':
+			depth++
+		case ')', ']', '}':
+			if depth--; depth < 0 {
+				return false
+			}
+		}
+	}
+	return depth == 0
 }

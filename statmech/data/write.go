@@ -84,18 +84,7 @@ func (t *Table) Save(name string) error {
 // field quotes a text that would not be read back as it is. always quotes it
 // anyway: a text that stands first or alone in its line.
 func field(s string, always bool) string {
-	balanced := true
-	depth := 0
-	for i := range len(s) {
-		switch s[i] {
-		case '(', '[':
-			depth++
-		case ')', ']':
-			depth--
-			balanced = balanced && depth >= 0
-		}
-	}
-	if always || !balanced || depth != 0 || strings.ContainsAny(s, "\",;\t#") || s != strings.TrimSpace(s) {
+	if always || !balanced(s) || strings.ContainsAny(s, "\",;\t#") || s != strings.TrimSpace(s) {
 		return `"` + strings.ReplaceAll(s, `"`, `""`) + `"`
 	}
 	return s
