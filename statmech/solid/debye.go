@@ -66,6 +66,14 @@ func debye(dim int, theta unit.Temperature, n, T float64) statmech.Reduced {
 	return statmech.Reduced{LogQ: lnq, U: u, C: c}.Scale(modes(n))
 }
 
+func (d Debye) heat(T float64) float64   { return debyeHeat(3, d.Theta, d.Modes, T) }
+func (d Debye2D) heat(T float64) float64 { return debyeHeat(2, d.Theta, d.Modes, T) }
+func (d Debye1D) heat(T float64) float64 { return debyeHeat(1, d.Theta, d.Modes, T) }
+
+func debyeHeat(dim int, theta unit.Temperature, n, T float64) float64 {
+	return modes(n) * special.DebyeC(dim, float64(theta)/T)
+}
+
 func (d Debye) heats(dst, ts []float64)   { debyeHeats(dst, ts, 3, d.Theta, d.Modes) }
 func (d Debye2D) heats(dst, ts []float64) { debyeHeats(dst, ts, 2, d.Theta, d.Modes) }
 func (d Debye1D) heats(dst, ts []float64) { debyeHeats(dst, ts, 1, d.Theta, d.Modes) }

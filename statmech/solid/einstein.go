@@ -45,10 +45,13 @@ func (e Einstein) reduced(T float64) statmech.Reduced {
 	return statmech.Reduced{LogQ: lnq, U: u, C: c}.Scale(modes(e.Modes))
 }
 
+func (e Einstein) heat(T float64) float64 {
+	return modes(e.Modes) * special.EinsteinC(float64(e.Theta)/T)
+}
+
 func (e Einstein) heats(dst, ts []float64) {
-	n := modes(e.Modes)
 	for i, t := range ts {
-		dst[i] = n * special.EinsteinC(float64(e.Theta)/t)
+		dst[i] = e.heat(t)
 	}
 }
 

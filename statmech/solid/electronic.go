@@ -32,9 +32,11 @@ func (e Electronic) reduced(T float64) statmech.Reduced {
 	return statmech.Reduced{LogQ: c / 2, U: c / 2, C: c}
 }
 
+func (e Electronic) heat(T float64) float64 { return float64(e.Gamma) * T / unit.GasConstant }
+
 func (e Electronic) heats(dst, ts []float64) {
-	for i, t := range ts {
-		dst[i] = float64(e.Gamma) * t / unit.GasConstant
+	for i, T := range ts {
+		dst[i] = e.heat(T)
 	}
 }
 

@@ -346,3 +346,26 @@ func BenchmarkAccumulate(b *testing.B) {
 		}
 	}
 }
+
+func BenchmarkHeatCapacity(b *testing.B) {
+	d := Debye{Theta: 343 * unit.K}
+	b.Run("scalar", func(b *testing.B) {
+		b.ReportAllocs()
+		for b.Loop() {
+			sinkMolar = d.HeatCapacity(77 * unit.K)
+		}
+	})
+	ts := make([]unit.Temperature, 1_000_000)
+	for i := range ts {
+		ts[i] = unit.Temperature(1 + 999*float64(i)/1e6)
+	}
+	b.Run("slice", func(b *testing.B) {
+		b.ReportAllocs()
+		for b.Loop() {
+			sinkMolar = d.HeatCapacities(ts)[7]
+		}
+		b.ReportMetric(float64(b.Elapsed().Nanoseconds())/float64(b.N)/float64(len(ts)), "ns/point")
+	})
+}
+
+var sinkMolar unit.MolarEntropy

@@ -375,6 +375,14 @@ func (p *Phonons) ReducedAt(ts []unit.Temperature) []statmech.Reduced {
 	return p.reducedAt(kelvins(p, "solid.Phonons.ReducedAt", ts))
 }
 
+func (p *Phonons) whole() {}
+
+func (p *Phonons) heat(T float64) float64 {
+	x := []float64{T}
+	p.heats(x, x)
+	return x[0]
+}
+
 func (p *Phonons) heats(dst, ts []float64) {
 	if len(ts) == 0 {
 		return

@@ -121,6 +121,12 @@ func (s Schottky) reduced(T float64) statmech.Reduced {
 	return statmech.Reduced{LogQ: lnq, U: r.mean, C: r.variance}.Scale(s.sites())
 }
 
+func (s Schottky) heat(T float64) float64 {
+	n := len(s.Energies)
+	buffer := make([]float64, 2*n)
+	return s.sites() * s.at(T, buffer[:n], buffer[n:]).variance
+}
+
 func (s Schottky) heats(dst, ts []float64) {
 	n := len(s.Energies)
 	buffer := make([]float64, 2*n)

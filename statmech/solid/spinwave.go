@@ -56,9 +56,11 @@ func (w FerroSpinWave) reduced(T float64) statmech.Reduced {
 	return r.Scale(a)
 }
 
+func (w FerroSpinWave) heat(T float64) float64 { return w.reduced(T).C }
+
 func (w FerroSpinWave) heats(dst, ts []float64) {
 	for i, T := range ts {
-		dst[i] = w.reduced(T).C
+		dst[i] = w.heat(T)
 	}
 }
 
@@ -160,9 +162,11 @@ func (w AntiferroSpinWave) reduced(T float64) statmech.Reduced {
 	return r.Scale(w.Coefficient / unit.GasConstant * T * T * T)
 }
 
+func (w AntiferroSpinWave) heat(T float64) float64 { return w.reduced(T).C }
+
 func (w AntiferroSpinWave) heats(dst, ts []float64) {
 	for i, T := range ts {
-		dst[i] = w.reduced(T).C
+		dst[i] = w.heat(T)
 	}
 }
 

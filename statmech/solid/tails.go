@@ -31,9 +31,11 @@ func (n NuclearTail) bad() *statmech.DomainError {
 }
 
 // heats writes C/k.
+func (n NuclearTail) heat(T float64) float64 { return n.A / unit.GasConstant / T / T }
+
 func (n NuclearTail) heats(dst, ts []float64) {
 	for i, T := range ts {
-		dst[i] = n.A / unit.GasConstant / T / T
+		dst[i] = n.heat(T)
 	}
 }
 
@@ -131,9 +133,13 @@ func gapLogQ(x float64) float64 {
 	return math.Exp(-x) * sum
 }
 
+func (e ExponentialGap) heat(T float64) float64 {
+	return float64(e.A) / unit.GasConstant * math.Exp(-float64(e.Gap)/T)
+}
+
 func (e ExponentialGap) heats(dst, ts []float64) {
 	for i, T := range ts {
-		dst[i] = float64(e.A) / unit.GasConstant * math.Exp(-float64(e.Gap)/T)
+		dst[i] = e.heat(T)
 	}
 }
 
@@ -184,9 +190,13 @@ func (p PowerLaw) reduced(T float64) statmech.Reduced {
 	return statmech.Reduced{LogQ: c / p.Power / (p.Power + 1), U: c / (p.Power + 1), C: c}
 }
 
+func (p PowerLaw) heat(T float64) float64 {
+	return p.Coefficient / unit.GasConstant * math.Pow(T, p.Power)
+}
+
 func (p PowerLaw) heats(dst, ts []float64) {
 	for i, T := range ts {
-		dst[i] = p.Coefficient / unit.GasConstant * math.Pow(T, p.Power)
+		dst[i] = p.heat(T)
 	}
 }
 

@@ -128,9 +128,11 @@ func (t Tarasov) reduced(T float64) statmech.Reduced {
 	return r.Scale(modes(t.Modes))
 }
 
+func (t Tarasov) heat(T float64) float64 { return t.reduced(T).C }
+
 func (t Tarasov) heats(dst, ts []float64) {
 	for i, T := range ts {
-		dst[i] = t.reduced(T).C
+		dst[i] = t.heat(T)
 	}
 }
 

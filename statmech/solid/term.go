@@ -40,7 +40,7 @@ type model interface {
 	// bad returns a field outside its range, or nil.
 	bad() *statmech.DomainError
 	reduced(T float64) statmech.Reduced
-	// heats writes C/k at every temperature.
+	heat(T float64) float64 // C/k
 	heats(dst, ts []float64)
 }
 
@@ -70,7 +70,7 @@ func temperature(fn, arg string, T unit.Temperature) (float64, *statmech.DomainE
 }
 
 // checked panics if the model or T is bad and returns T in K.
-func checked(m model, fn string, T unit.Temperature) float64 {
+func checked[M model](m M, fn string, T unit.Temperature) float64 {
 	if err := m.bad(); err != nil {
 		err.Func = fn
 		panic(err)
@@ -82,22 +82,36 @@ func checked(m model, fn string, T unit.Temperature) float64 {
 	return x
 }
 
-func reduced(m model, fn string, T unit.Temperature) statmech.Reduced {
+func reduced[M model](m M, fn string, T unit.Temperature) statmech.Reduced {
 	return m.reduced(checked(m, fn, T))
 }
 
-func heatCapacity(m model, fn string, T unit.Temperature) unit.MolarEntropy {
-	t := [1]float64{checked(m, fn, T)}
-	m.heats(t[:], t[:])
-	return unit.MolarEntropy(t[0]) * unit.R
+func heatCapacity[M model](m M, fn string, T unit.Temperature) unit.MolarEntropy {
+	return unit.MolarEntropy(m.heat(checked(m, fn, T))) * unit.R
 }
 
+// A wholeModel wants all temperatures at once.
+type wholeModel interface{ whole() }
+
 func heatCapacities(m model, fn string, ts []unit.Temperature) []unit.MolarEntropy {
-	x := kelvins(m, fn, ts)
-	m.heats(x, x)
+	if err := m.bad(); err != nil {
+		err.Func = fn
+		panic(err)
+	}
 	c := make([]unit.MolarEntropy, len(ts))
-	for i, v := range x {
-		c[i] = unit.MolarEntropy(v) * unit.R
+	size := min(len(ts), chunk)
+	if _, ok := m.(wholeModel); ok {
+		size = len(ts)
+	}
+	x := make([]float64, size)
+	for from := 0; from < len(ts); from += size {
+		part := ts[from:min(from+size, len(ts))]
+		x := x[:len(part)]
+		convert(fn, x, part, from)
+		m.heats(x, x)
+		for i, v := range x {
+			c[from+i] = unit.MolarEntropy(v) * unit.R
+		}
 	}
 	return c
 }
@@ -109,14 +123,20 @@ func kelvins(m model, fn string, ts []unit.Temperature) []float64 {
 		panic(err)
 	}
 	x := make([]float64, len(ts))
+	convert(fn, x, ts, 0)
+	return x
+}
+
+// convert writes temperatures in K; ts begins at the given index of the
+// argument.
+func convert(fn string, x []float64, ts []unit.Temperature, at int) {
 	for i, T := range ts {
-		t, err := temperature(fn, fmt.Sprintf("ts[%d]", i), T)
-		if err != nil {
+		if !positive(float64(T)) {
+			_, err := temperature(fn, fmt.Sprintf("ts[%d]", at+i), T)
 			panic(err)
 		}
-		x[i] = t
+		x[i] = float64(T)
 	}
-	return x
 }
 
 func entropy(m model, fn string, T unit.Temperature) unit.MolarEntropy {
