@@ -2,6 +2,7 @@ package display
 
 import (
 	"fmt"
+	"math"
 	"strings"
 
 	"levelsum/display/internal/mark"
@@ -40,6 +41,11 @@ type Step struct {
 	Symbols []Symbol
 	Result  string // the name of one of Symbols
 	Source  string // where the formula is from
+	// Compute works the result out again from the numbers of the other symbols,
+	// in the units that they are shown in. A result that differs by more than a
+	// part in 1e9 is refused: a wrong unit, or a formula that is not the one
+	// that gave the number.
+	Compute func(number map[string]float64) float64
 }
 
 // A Symbol of a formula.
@@ -137,7 +143,36 @@ func (s Step) read() (stepRead, error) {
 			return r, fmt.Errorf("the result %s is no symbol with a number", s.Result)
 		}
 	}
-	return r, nil
+	return r, r.recompute()
+}
+
+// computeTolerance allows for another order of the same operations.
+const computeTolerance = 1e-9
+
+func (r *stepRead) recompute() (err error) {
+	if r.Compute == nil {
+		return nil
+	}
+	if r.Result == "" {
+		return fmt.Errorf("Compute is given, but no Result")
+	}
+	numbers := map[string]float64{}
+	for name, v := range r.vals {
+		if name != r.Result && v.number {
+			numbers[name] = v.m.v
+		}
+	}
+	defer func() {
+		if p := recover(); p != nil {
+			err = fmt.Errorf("Compute panicked: %s", panicText(p))
+		}
+	}()
+	m := r.vals[r.Result].m
+	if got := r.Compute(numbers); !(math.Abs(got-m.v) <= computeTolerance*math.Abs(m.v)) {
+		return fmt.Errorf("the formula gives %s = %s %s from the numbers put in, but the result is %s %s",
+			r.Result, full(got), m.unit, full(m.v), m.unit)
+	}
+	return nil
 }
 
 // symbols is the formula with its symbols, numbers the one with numbers.

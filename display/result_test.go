@@ -125,12 +125,13 @@ func wEqual() Derivation {
 		Text:    "For equal probabilities the sum has one value, so $S>0$:",
 		Formula: `[[S]] = [[k]] \ln [[W]]`,
 		Symbols: []Symbol{
-			{Name: "S", Meaning: "entropy", Value: 3.828e-23, Unit: "J/K"},
+			{Name: "S", Meaning: "entropy", Value: 1.380649e-23 * math.Log(16), Unit: "J/K"},
 			{Name: "k", Meaning: "Boltzmann constant", Value: 1.380649e-23, Unit: "J/K"},
 			{Name: "W", Meaning: "number of states, p_i = 1/W", Value: 16},
 		},
-		Result: "S",
-		Source: "an invented example",
+		Result:  "S",
+		Compute: func(x map[string]float64) float64 { return x["k"] * math.Log(x["W"]) },
+		Source:  "an invented example",
 	}}}
 }
 
@@ -149,6 +150,9 @@ func TestDerivation(t *testing.T) {
 		{func(s *Step) { s.Symbols[0].Unit = "" }, "give its Unit"},
 		{func(s *Step) { s.Symbols[0].Value = kelvin(3) }, `said to be in "J/K", but its value is in "K"`},
 		{func(s *Step) { s.Symbols[0].Value = nil }, "the result S is no symbol with a number"},
+		{func(s *Step) { s.Symbols[0].Value = 3.83e-23 }, "but the result is 3.83e-23 J/K"},
+		{func(s *Step) { s.Symbols[2].Value = nil }, "the formula gives S = -Inf J/K"},
+		{func(s *Step) { s.Compute = func(map[string]float64) float64 { panic("no") } }, "Compute panicked: no"},
 		{func(s *Step) { s.Symbols[1].Name = "S" }, "declared twice"},
 		{func(s *Step) { s.Formula += `\href{x}{y}` }, "no mathematics"},
 	} {
