@@ -3,6 +3,8 @@ package display
 import (
 	"fmt"
 	"math"
+	"strconv"
+	"strings"
 
 	"levelsum/display/internal/mark"
 )
@@ -100,6 +102,11 @@ func (m measured) rounded() rounded {
 	}
 	if m.integer || math.Abs(m.v) < 1e9 && m.v == math.Trunc(m.v) {
 		return plainNumber(m.v, 17) // a count has no digits to spare
+	}
+	// A number that was given with few digits is shown with all of them.
+	m10, _, _ := strings.Cut(strconv.FormatFloat(math.Abs(m.v), 'e', -1, 64), "e")
+	if len(m10) <= 11 {
+		return plainNumber(m.v, 10)
 	}
 	return plainNumber(m.v, 7)
 }
