@@ -13,9 +13,7 @@ func (s *Scope) Commit(p *Plan, reached func(name string) bool) (lost []string) 
 	for n, path := range p.imports {
 		s.imports[n] = path
 	}
-	for _, d := range p.dots {
-		s.dots = append(s.dots, d)
-	}
+	s.dots = append(s.dots, p.dots...)
 	for i, v := range p.drop {
 		s.forget(v)
 		s.dropped[v] = p.Dropped[i]

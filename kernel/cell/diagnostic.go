@@ -7,7 +7,6 @@ import (
 	"go/token"
 	"sort"
 	"strings"
-	"unicode/utf8"
 )
 
 // A Diagnostic is one error or warning about a cell: the compiler's words and
@@ -123,29 +122,19 @@ func syntaxErrors(src *Source, errs ...error) Diagnostics {
 	if len(within) > 0 {
 		return within.sorted()
 	}
-	for _, d := range beyond {
-		text := strings.TrimRight(src.Text, " \t\r\n")
-		msg := strings.TrimPrefix(d.Msg, "syntax error: ")
-		if strings.HasSuffix(msg, "found '}'") && strings.HasPrefix(msg, "expected declaration") {
-			return diagnosticAt(src, max(len(text)-1, 0), "syntax error: unexpected }")
-		}
-		return diagnosticAt(src, len(text), "syntax error: the cell ends too early: "+msg)
+	if len(beyond) == 0 {
+		return nil
 	}
-	return nil
+	text := strings.TrimRight(src.Text, " \t\r\n")
+	msg := strings.TrimPrefix(beyond[0].Msg, "syntax error: ")
+	if strings.HasPrefix(msg, "expected declaration") && strings.HasSuffix(msg, "found '}'") {
+		return diagnosticAt(src, max(len(text)-1, 0), "syntax error: unexpected }")
+	}
+	return diagnosticAt(src, len(text), "syntax error: the cell ends too early: "+msg)
 }
 
 // place is the position of pos in its cell.
 func (s *Source) place(fset *token.FileSet, pos token.Pos) (line, column int) {
 	p := fset.Position(pos)
 	return p.Line, p.Column
-}
-
-// runeColumn turns a byte column into one that counts code points.
-func (d Diagnostic) runeColumn() int {
-	lines := strings.Split(d.Source.Text, "\n")
-	if d.Line < 1 || d.Line > len(lines) {
-		return d.Column
-	}
-	l := lines[d.Line-1]
-	return 1 + utf8.RuneCountInString(l[:min(d.Column-1, len(l))])
 }

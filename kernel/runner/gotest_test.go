@@ -13,7 +13,6 @@ import (
 	"os/exec"
 	"path/filepath"
 	"regexp"
-	"runtime"
 	"slices"
 	"sort"
 	"strings"
@@ -32,7 +31,7 @@ var notOurs = []string{"unsafe", "reflect", "runtime", "os/exec", "syscall", "ru
 // goTestPrograms lists the programs of the Go distribution's tests that are
 // run and need nothing but the language.
 func goTestPrograms(t *testing.T) []string {
-	root := filepath.Join(runtime.GOROOT(), "test")
+	root := filepath.Join(goroot(t), "test")
 	var out []string
 	for _, dir := range []string{".", "typeparam", "ken", "chan", "interface", "closedchan"} {
 		files, err := filepath.Glob(filepath.Join(root, dir, "*.go"))
@@ -93,7 +92,7 @@ func TestGoPrograms(t *testing.T) {
 	verdicts := map[string]goVerdict{}
 	count := map[string]int{}
 	for _, f := range files {
-		name, _ := filepath.Rel(filepath.Join(runtime.GOROOT(), "test"), f)
+		name, _ := filepath.Rel(filepath.Join(goroot(t), "test"), f)
 		v := runGoProgram(t, f)
 		if slices.Contains(ownPackage, name) && v.Verdict != "refused" {
 			v = goVerdict{"right", "but for the name of its package"}
@@ -212,4 +211,14 @@ func goRun(t *testing.T, file string) (out string, exit int) {
 		return string(b), cmd.ProcessState.ExitCode()
 	}
 	return string(b), 0
+}
+
+// goroot is the folder of the Go that the go command belongs to.
+func goroot(t *testing.T) string {
+	t.Helper()
+	b, err := exec.Command("go", "env", "GOROOT").Output()
+	if err != nil {
+		t.Fatal(err)
+	}
+	return strings.TrimSpace(string(b))
 }
