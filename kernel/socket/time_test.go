@@ -45,7 +45,8 @@ func (b *switchboard) Close() error {
 
 func (b *switchboard) Addr() net.Addr { return tapAddr{} }
 
-// call connects, with the handshake of a socket of this type.
+// call connects, with the handshake of a socket of this type, from within a
+// bubble.
 func (b *switchboard) call(t *testing.T, socketType, id string) *client {
 	t.Helper()
 	ours, theirs := net.Pipe()
@@ -64,6 +65,7 @@ func (b *switchboard) call(t *testing.T, socketType, id string) *client {
 		t.Fatal(err)
 	}
 	c.TB, c.Conn = t, ours
+	synctest.Wait() // the other side has ended the handshake as well
 	return c
 }
 
@@ -224,7 +226,6 @@ func (s stuck) Read([]byte) (int, error) {
 func TestStalledDealerCostsOneSecond(t *testing.T) {
 	bubble(t, Router, Options{}, func(t *testing.T, s *Socket, b *switchboard) {
 		c := b.call(t, "DEALER", "c")
-		synctest.Wait()
 		m := [][]byte{[]byte("c"), make([]byte, 1<<20)}
 		sent := 0
 		start := time.Now()
@@ -264,7 +265,6 @@ func TestStalledDealerCostsOneSecond(t *testing.T) {
 func TestTricklingDealerCostsThirtySeconds(t *testing.T) {
 	bubble(t, Router, Options{}, func(t *testing.T, s *Socket, b *switchboard) {
 		c := b.call(t, "DEALER", "c")
-		synctest.Wait()
 		done := make(chan struct{})
 		go func() {
 			defer close(done)
