@@ -26,6 +26,7 @@ func init() {
 		"GroundLevels":            reflect.ValueOf(gas.GroundLevels),
 		"Harmonic":                reflect.ValueOf(gas.Harmonic),
 		"Library":                 reflect.ValueOf(gas.Library),
+		"NaturalDiatomic":         reflect.ValueOf(gas.NaturalDiatomic),
 		"New":                     reflect.ValueOf(gas.New),
 		"NewAsymmetricTop":        reflect.ValueOf(gas.NewAsymmetricTop),
 		"NewConformers":           reflect.ValueOf(gas.NewConformers),
