@@ -83,6 +83,15 @@ func (l *Levels) weight(i int) float64 {
 	return l.g[i]
 }
 
+// String says how many levels there are and between which energies.
+func (l *Levels) String() string {
+	s := fmt.Sprintf("%d levels from %.6g to %.6g cm-1, %g states", l.Len(), l.min.In(unit.PerCm), l.max.In(unit.PerCm), l.gSum)
+	if l.truncated {
+		s += ", truncated"
+	}
+	return s
+}
+
 // Len returns the number of levels.
 func (l *Levels) Len() int { return len(l.energies) }
 

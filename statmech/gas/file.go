@@ -532,6 +532,13 @@ func (r *fileReader) torsion(c cell) error {
 		if t.Potential, err = ReadScan(filepath.Join(r.dir, filepath.Base(strings.TrimSpace(file)))); err != nil {
 			return err
 		}
+		if t.Symmetry > 1 {
+			var dropped unit.Energy
+			height := t.Potential.height()
+			if t.Potential, dropped = t.Potential.Symmetrised(t.Symmetry); dropped > 0.05*height {
+				return fmt.Errorf("the scan has a term of %.3g cm-1 that a rotor of symmetry %d cannot have", dropped.In(unit.PerCm), t.Symmetry)
+			}
+		}
 		method = ""
 	}
 	switch strings.ToLower(method) {

@@ -127,6 +127,16 @@ func NewGeometry(atoms []Atom) (*Geometry, error) {
 	return g, nil
 }
 
+// String says what shape it has.
+func (g *Geometry) String() string {
+	shape := "bent"
+	if g.Linear {
+		shape = "linear"
+	}
+	return fmt.Sprintf("%d atoms, %s, moments %.6g, %.6g, %.6g u Å2, symmetry number %d", len(g.Atoms), shape,
+		g.Moments[0].In(unit.UAngstrom2), g.Moments[1].In(unit.UAngstrom2), g.Moments[2].In(unit.UAngstrom2), g.SymmetryNumber(SymmetryTolerance))
+}
+
 func distance(a, b [3]float64) float64 {
 	return math.Sqrt((a[0]-b[0])*(a[0]-b[0]) + (a[1]-b[1])*(a[1]-b[1]) + (a[2]-b[2])*(a[2]-b[2]))
 }

@@ -61,7 +61,7 @@ func New(d Description) (*Molecule, error) {
 	if d.MirrorForms {
 		m.add("mirror forms", "two forms of equal energy", constant(math.Ln2))
 	}
-	m.note(fmt.Sprintf("p° = %s, T_ref = %s", m.pressure, m.reference))
+	m.note(fmt.Sprintf("p° = %s, T_ref = %s", pressureText(m.pressure), m.reference))
 	if m.pressure == unit.Atm {
 		m.note("at 1 atm the entropy is 0.10944 J/(mol K) less than at 1 bar")
 	}
@@ -435,6 +435,14 @@ func (m *Molecule) checkElectrons(g float64) {
 	if err == nil && m.formula.Count() > 0 && n%2 == 1 && g < 1.5 {
 		m.warn(fmt.Sprintf("%s has an odd number of electrons (%d) but an electronic degeneracy of 1: a doublet adds R ln 2 = 5.763 J/(mol K)", m.d.Formula, n))
 	}
+}
+
+// pressureText returns a pressure in bar or atm where that is a round number.
+func pressureText(p unit.Pressure) string {
+	if p == unit.Atm {
+		return "1 atm (101325 Pa)"
+	}
+	return fmt.Sprintf("%.6g bar", p.In(unit.Bar))
 }
 
 // stretching is the factor 1 + ρT of centrifugal stretching to first order (E.

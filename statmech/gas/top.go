@@ -166,6 +166,12 @@ func (t *Top) ClassicalForm() *Top {
 	return &Top{kind: t.kind, a: t.a, b: t.b, c: t.c, unique: t.unique, sigma: t.sigma, spin: t.spin, jMax: t.jMax, reach: t.reach, classical: true}
 }
 
+// String says what top it is.
+func (t *Top) String() string {
+	name := map[topKind]string{spherical: "spherical top", symmetric: "symmetric top", asymmetric: "asymmetric top"}[t.kind]
+	return fmt.Sprintf("%s, A, B, C = %.6g, %.6g, %.6g cm-1", name, unit.Energy(t.a).In(unit.PerCm), unit.Energy(t.b).In(unit.PerCm), unit.Energy(t.c).In(unit.PerCm))
+}
+
 // Constants returns A >= B >= C as energies.
 func (t *Top) Constants() (A, B, C unit.Energy) {
 	return unit.Energy(t.a), unit.Energy(t.b), unit.Energy(t.c)

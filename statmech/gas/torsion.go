@@ -66,6 +66,22 @@ func (f Fourier) Plus(g Fourier) Fourier {
 	return Fourier{sum(f.Cos, g.Cos), sum(f.Sin, g.Sin)}
 }
 
+// Symmetrised returns the terms whose orders n divides, and the largest
+// coefficient that was left out: what noise or a real asymmetry put into a scan
+// of a rotor with n equal positions.
+func (f Fourier) Symmetrised(n int) (g Fourier, dropped unit.Energy) {
+	g = f.Plus(Fourier{})
+	for _, list := range [][]unit.Energy{g.Cos, g.Sin} {
+		for k := range list {
+			if n > 1 && k%n != 0 {
+				dropped = max(dropped, max(list[k], -list[k]))
+				list[k] = 0
+			}
+		}
+	}
+	return g, dropped
+}
+
 // At returns V(φ).
 func (f Fourier) At(phi unit.Angle) unit.Energy {
 	v, _, _ := f.derivatives(float64(phi))
@@ -112,6 +128,19 @@ func (f Fourier) even() bool {
 		}
 	}
 	return true
+}
+
+// height returns half the sum of the amplitudes, a measure of the barrier.
+func (f Fourier) height() unit.Energy {
+	var h unit.Energy
+	for _, list := range [][]unit.Energy{f.Cos, f.Sin} {
+		for k, a := range list {
+			if k > 0 {
+				h += max(a, -a)
+			}
+		}
+	}
+	return h
 }
 
 // fold returns the largest n that divides the order of every term.
@@ -263,6 +292,11 @@ func (t *Torsion) ReducedAt(ts []unit.Temperature) []statmech.Reduced {
 		rs[i] = t.Reduced(T)
 	}
 	return rs
+}
+
+// String says what torsion it is.
+func (t *Torsion) String() string {
+	return fmt.Sprintf("torsion, F = %.6g cm-1, potential up to cos %dφ, internal symmetry number %d, %s", t.f.In(unit.PerCm), t.potential.order(), t.sigma, t.method)
 }
 
 // WithMethod returns the same torsion computed in another way.

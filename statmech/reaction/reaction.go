@@ -294,6 +294,9 @@ func (r *Reaction) SetEnthalpy(T unit.Temperature, H, u unit.MolarEnergy) error 
 	return nil
 }
 
+// String returns the equation.
+func (r *Reaction) String() string { return r.Equation }
+
 // Terms returns the species with their net stoichiometric numbers.
 func (r *Reaction) Terms() []Term { return append([]Term(nil), r.terms...) }
 

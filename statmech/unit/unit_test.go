@@ -1,8 +1,11 @@
 package unit
 
 import (
+	"encoding/csv"
 	"errors"
 	"math"
+	"os"
+	"strconv"
 	"strings"
 	"testing"
 )
@@ -80,6 +83,52 @@ func TestConstantsPublished(t *testing.T) {
 		if !strings.Contains(s, want) {
 			t.Errorf("Constants() lacks %q:\n%s", want, s)
 		}
+	}
+}
+
+// Every constant of the reference list that this package has: values to the
+// printed digits, uncertainties as printed.
+func TestConstantsList(t *testing.T) {
+	raw, err := os.ReadFile("testdata/codata2022/constants.csv")
+	if err != nil {
+		t.Fatal(err)
+	}
+	have := map[string]Constant{}
+	for _, c := range Constants() {
+		have[c.Name] = c
+	}
+	names := map[string]string{
+		"Boltzmann constant k": "Boltzmann constant", "Planck constant h": "Planck constant", "Avogadro constant N_A": "Avogadro constant",
+		"molar gas constant R": "molar gas constant", "elementary charge e": "elementary charge", "speed of light c": "speed of light in vacuum",
+		"Bohr radius a0": "Bohr radius", "Hartree energy E_h": "Hartree energy", "second radiation constant hc/k": "second radiation constant",
+		"electron mass": "electron mass", "proton mass": "proton mass", "Rydberg constant": "Rydberg constant", "molar mass constant": "molar mass constant",
+		"Faraday constant": "Faraday constant", "atomic mass constant m_u": "atomic mass constant",
+	}
+	n := 0
+	r := csv.NewReader(strings.NewReader(string(raw)))
+	r.Comment, r.FieldsPerRecord = '#', -1
+	rows, err := r.ReadAll()
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, row := range rows[1:] {
+		c, ok := have[names[row[0]]]
+		if !ok {
+			continue
+		}
+		n++
+		value, err1 := strconv.ParseFloat(row[2], 64)
+		u, err2 := strconv.ParseFloat(row[3], 64)
+		if err1 != nil || err2 != nil {
+			t.Fatal(row)
+		}
+		// M_u is computed from m_u here and printed with 12 digits there.
+		if !near(c.Value, value, 1e-15) && !near(c.Value, value, 2e-12*map[bool]float64{true: 1}[row[0] == "molar mass constant"]) || c.StandardUncertainty != u {
+			t.Errorf("%s = %.17g, u %g; want %s, %s", row[0], c.Value, c.StandardUncertainty, row[2], row[3])
+		}
+	}
+	if n != len(names) {
+		t.Errorf("%d of %d constants compared", n, len(names))
 	}
 }
 
