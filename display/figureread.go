@@ -3,7 +3,6 @@ package display
 import (
 	"fmt"
 	"math"
-	"reflect"
 	"slices"
 
 	"levelsum/display/internal/scene"
@@ -33,73 +32,6 @@ type figureReader struct {
 	marker  int
 	dash    int
 	wantRes bool
-}
-
-// axisState gathers what is known of an axis.
-type axisState struct {
-	spec     Axis
-	name     string // "x axis"
-	typ      reflect.Type
-	factor   float64 // values of typ are divided by it
-	quantity string
-	unit     string
-	known    bool // unit settled by some data
-	lo, hi   float64
-	used     bool
-}
-
-// take converts a column to the axis and settles the axis' unit by it.
-func (a *axisState) take(what string, c *column) error {
-	if c.text != nil {
-		return fmt.Errorf("%s is text, want numbers", what)
-	}
-	if err := c.applyUnit(what+" ("+a.name+")", a.spec.Unit, a.spec.In); err != nil {
-		return err
-	}
-	if a.used && a.known != (c.unit != "") {
-		return fmt.Errorf("%s has %s, other data on the %s have %s", what, unitOr(c.unit), a.name, unitOr(a.unit))
-	}
-	if a.known && !sameUnit(a.unit, c.unit) {
-		return fmt.Errorf("%s is in %s, other data on the %s are in %s", what, c.unit, a.name, a.unit)
-	}
-	if c.unit != "" {
-		a.unit, a.known = c.unit, true
-	}
-	if c.typ != nil {
-		a.typ = c.typ
-	}
-	if a.spec.In != nil {
-		a.factor = reflect.ValueOf(a.spec.In).Float()
-	}
-	if a.quantity == "" {
-		a.quantity = c.name
-	}
-	if a.quantity == "" {
-		a.quantity = c.kind
-	}
-	a.used = true
-	return nil
-}
-
-func unitOr(u string) string {
-	if u == "" {
-		return "no unit"
-	}
-	return u
-}
-
-func (a *axisState) cover(vs ...[]float64) {
-	for _, v := range vs {
-		for _, x := range v {
-			if !math.IsNaN(x) && !math.IsInf(x, 0) && (!a.spec.Log || x > 0) {
-				a.lo, a.hi = math.Min(a.lo, x), math.Max(a.hi, x)
-			}
-		}
-	}
-}
-
-func newAxisState(name string, spec Axis) axisState {
-	return axisState{spec: spec, name: name, factor: 1, quantity: spec.Quantity, lo: math.Inf(1), hi: math.Inf(-1)}
 }
 
 // read builds the scene and the plotted numbers.
@@ -239,86 +171,6 @@ func (r *figureReader) finish() error {
 	r.out.Alt = f.Alt
 	if r.out.Alt == "" {
 		r.out.Alt = r.describe()
-	}
-	return nil
-}
-
-// settle returns the axis with its range, 4 % wider than the data.
-func (a *axisState) settle(tight bool) (scene.Axis, error) {
-	s := a.spec
-	out := scene.Axis{Quantity: a.quantity, Unit: a.unit, Log: s.Log, Min: a.lo, Max: a.hi}
-	if out.Unit == "" {
-		out.Unit = s.Unit
-	}
-	if a.quantity == "" && out.Unit == "" {
-		return out, fmt.Errorf("the %s has neither quantity nor unit: give %s.Quantity and .Unit (\"1\" for a pure number)", a.name, a.field())
-	}
-	if a.lo > a.hi {
-		out.Min, out.Max = 0, 1
-		if s.Log {
-			out.Min, out.Max = 1, 10
-		}
-	}
-	given := s.Min != 0 || s.Max != 0
-	switch {
-	case given && !(s.Min < s.Max):
-		return out, fmt.Errorf("the %s goes from %v to %v: want Min < Max", a.name, s.Min, s.Max)
-	case given && s.Log && !(s.Min > 0):
-		return out, fmt.Errorf("the %s is logarithmic and begins at %v: want a positive Min", a.name, s.Min)
-	case given:
-		out.Min, out.Max = s.Min, s.Max
-	case tight && a.lo < a.hi:
-	case s.Log:
-		l, h := math.Log10(out.Min), math.Log10(out.Max)
-		pad := 0.04 * (h - l)
-		if pad == 0 {
-			pad = 0.3
-		}
-		out.Min, out.Max = math.Pow(10, l-pad), math.Pow(10, h+pad)
-	default:
-		pad := 0.04 * (out.Max - out.Min)
-		if pad == 0 {
-			pad = 0.04*math.Abs(out.Max) + 0.5*b2f(out.Max == 0)
-		}
-		out.Min, out.Max = out.Min-pad, out.Max+pad
-	}
-	return out, nil
-}
-
-func b2f(b bool) float64 {
-	if b {
-		return 1
-	}
-	return 0
-}
-
-func (a *axisState) field() string {
-	switch a.name {
-	case "x axis":
-		return "XAxis"
-	case "y axis":
-		return "YAxis"
-	}
-	return "RightAxis"
-}
-
-// checkLog refuses values that a logarithmic axis cannot show.
-func (a *axisState) checkLog(what string, v []float64) error {
-	if !a.spec.Log {
-		return nil
-	}
-	n, first := 0, -1
-	for i, x := range v {
-		if !(x > 0) && !math.IsNaN(x) {
-			if first < 0 {
-				first = i
-			}
-			n++
-		}
-	}
-	if n > 0 {
-		return fmt.Errorf("the %s is logarithmic, but %d of %d values of %s are not positive (the first is %v, at index %d)",
-			a.name, n, len(v), what, v[first], first)
 	}
 	return nil
 }
