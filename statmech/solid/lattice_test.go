@@ -283,6 +283,36 @@ func TestSum(t *testing.T) {
 	near(t, "OfMode", float64(mode.Entropy(77*unit.K)), float64(Einstein{Theta: 400 * unit.K}.Entropy(77*unit.K)), 1e-14)
 }
 
+// broken is a term of a user that divides by zero at 5 K.
+type broken struct{}
+
+func (broken) HeatCapacity(T unit.Temperature) unit.MolarEntropy {
+	return unit.MolarEntropy(0 / (T - 5))
+}
+
+func TestSumRefusals(t *testing.T) {
+	for _, test := range []struct {
+		want string
+		f    func()
+	}{
+		{"solid.Sum.HeatCapacity: term 2, broken, at 5 K = NaN J/(mol K), want a finite heat capacity", func() { Sum{Einstein{Theta: 10}, broken{}}.HeatCapacity(5) }},
+		{"solid.Sum.HeatCapacities: term 1, broken, at 5 K = NaN J/(mol K), want a finite heat capacity", func() { Sum{broken{}}.HeatCapacities([]unit.Temperature{4, 5}) }},
+		{"solid.Sum.HeatCapacity: T = -5 K, want positive and finite", func() { Sum{}.HeatCapacity(-5) }},
+		{"solid.Sum.HeatCapacity: term 1 = nil, want a term", func() { Sum{nil}.HeatCapacity(5) }},
+		{"solid.OfMode.Reduced: T = 0 K, want positive and finite", func() { OfMode{Mode: Einstein{Theta: 10}}.HeatCapacity(0) }},
+	} {
+		if got := message(test.f); got != test.want {
+			t.Errorf("got  %s\nwant %s", got, test.want)
+		}
+	}
+	if err := (Sum{broken{}}).Accumulate([]unit.Temperature{5}, nil, make([]float64, 1), nil); !errors.Is(err, statmech.ErrDomain) {
+		t.Errorf("Accumulate of a term that gives NaN: %v", err)
+	}
+	if w := (Sum{&Debye{Theta: 1}, AntiferroSpinWave{Coefficient: 1}}).Warnings(); len(w) != 1 || !strings.Contains(w[0], "T³") {
+		t.Errorf("warnings: %q", w)
+	}
+}
+
 // message returns what f panics with.
 func message(f func()) (s string) {
 	defer func() {

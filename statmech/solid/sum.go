@@ -19,21 +19,43 @@ import (
 // [*statmech.DomainError].
 type Sum []Term
 
-// HeatCapacity returns the heat capacity of all terms at T.
+// HeatCapacity returns the heat capacity of all terms at T. A term of the
+// user's own that gives NaN or an infinity is named.
 func (s Sum) HeatCapacity(T unit.Temperature) unit.MolarEntropy {
+	const fn = "solid.Sum.HeatCapacity"
+	statmech.CheckTemperature(fn, T)
 	var c unit.MolarEntropy
-	for _, term := range s {
-		c += term.HeatCapacity(T)
+	for i := range s {
+		c += s.finite(fn, i, T, s.term(fn, i).HeatCapacity(T))
+	}
+	return c
+}
+
+// term returns the i-th term, which must be there.
+func (s Sum) term(fn string, i int) Term {
+	if s[i] == nil {
+		panic(s.lacks(fn, i, "a term"))
+	}
+	return s[i]
+}
+
+func (s Sum) finite(fn string, i int, T unit.Temperature, c unit.MolarEntropy) unit.MolarEntropy {
+	if math.IsNaN(float64(c)) || math.IsInf(float64(c), 0) {
+		panic(&statmech.DomainError{Func: fn, Arg: fmt.Sprintf("term %d, %s, at %v", i+1, typeName(s[i]), T), Value: c.String(), Want: "a finite heat capacity"})
 	}
 	return c
 }
 
 // HeatCapacities returns the heat capacity of all terms at every temperature.
 func (s Sum) HeatCapacities(ts []unit.Temperature) []unit.MolarEntropy {
+	const fn = "solid.Sum.HeatCapacities"
+	for _, T := range ts {
+		statmech.CheckTemperature(fn, T)
+	}
 	c := make([]unit.MolarEntropy, len(ts))
-	for _, term := range s {
-		for i, v := range HeatCapacities(term, ts) {
-			c[i] += v
+	for k := range s {
+		for i, v := range HeatCapacities(s.term(fn, k), ts) {
+			c[i] += s.finite(fn, k, ts[i], v)
 		}
 	}
 	return c
@@ -105,6 +127,7 @@ func checkRange(fn string, from, to unit.Temperature) {
 // Entropy returns S(T) of all terms, counted from T = 0.
 func (s Sum) Entropy(T unit.Temperature) unit.MolarEntropy {
 	var sum unit.MolarEntropy
+	statmech.CheckTemperature("solid.Sum.Entropy", T)
 	for i, term := range s {
 		absolute, ok := term.(interface {
 			Entropy(unit.Temperature) unit.MolarEntropy
@@ -129,6 +152,7 @@ func (s Sum) Entropies(ts []unit.Temperature) []unit.MolarEntropy {
 // ThermalEnergy returns U(T) - U(0) of all terms.
 func (s Sum) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
 	var sum unit.MolarEnergy
+	statmech.CheckTemperature("solid.Sum.ThermalEnergy", T)
 	for i, term := range s {
 		absolute, ok := term.(interface {
 			ThermalEnergy(unit.Temperature) unit.MolarEnergy
@@ -153,6 +177,7 @@ func (s Sum) ThermalEnergies(ts []unit.Temperature) []unit.MolarEnergy {
 // Reduced returns ln q, U/kT and C/k of one formula unit; see [statmech.Mode].
 func (s Sum) Reduced(T unit.Temperature) statmech.Reduced {
 	var r statmech.Reduced
+	statmech.CheckTemperature("solid.Sum.Reduced", T)
 	for i, term := range s {
 		m, ok := term.(statmech.Mode)
 		if !ok {
@@ -228,7 +253,7 @@ func (s Sum) Accumulate(ts []unit.Temperature, at []*float64, c []float64, parti
 			err = domain
 		}
 	}()
-	for _, term := range s {
+	for k, term := range s {
 		if d, ok := term.(Differentiable); ok {
 			if err := d.Accumulate(ts, at, c, partials); err != nil {
 				return err
@@ -238,8 +263,9 @@ func (s Sum) Accumulate(ts []unit.Temperature, at []*float64, c []float64, parti
 		if c == nil {
 			continue
 		}
-		for i, v := range HeatCapacities(term, ts) {
-			c[i] += float64(v)
+		const fn = "solid.Sum.Accumulate"
+		for i, v := range HeatCapacities(s.term(fn, k), ts) {
+			c[i] += float64(s.finite(fn, k, ts[i], v))
 		}
 	}
 	return nil
@@ -329,6 +355,7 @@ func (o OfMode) count() float64 {
 
 // Reduced returns ln q, U/kT and C/k of one formula unit.
 func (o OfMode) Reduced(T unit.Temperature) statmech.Reduced {
+	statmech.CheckTemperature("solid.OfMode.Reduced", T)
 	return o.Mode.Reduced(T).Scale(o.count())
 }
 
