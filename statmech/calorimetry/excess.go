@@ -3,6 +3,7 @@ package calorimetry
 import (
 	"fmt"
 	"math"
+	"strings"
 
 	"levelsum/statmech/data"
 	"levelsum/statmech/uncertain"
@@ -17,7 +18,7 @@ type Excess struct {
 	Entropy  uncertain.Quantity // ∫ (Cp - baseline)/T dT, J/(mol K)
 	Enthalpy uncertain.Quantity // ∫ (Cp - baseline) dT, J/mol
 	Peak     unit.Temperature   // of the largest point
-	Baseline string
+	Warnings []string
 }
 
 // ExcessOver integrates the heat capacity of a table over a baseline between
@@ -44,6 +45,9 @@ func ExcessOver(run *data.Table, from, to unit.Temperature, baseline func(T unit
 	ws, wh := make([]float64, len(pc.t)), make([]float64, len(pc.t))
 	var baseS, baseH float64
 	x := &Excess{From: from, To: to}
+	if method := run.Note("method"); strings.Contains(strings.ToLower(method), "relaxation") || strings.Contains(strings.ToLower(method), "heat pulse") {
+		x.Warnings = append(x.Warnings, fmt.Sprintf("method %q: each point averages over its temperature rise, which underestimates a sharp peak; check the enthalpy with a run through the transition", method))
+	}
 	top := math.Inf(-1)
 	for i := range len(pc.t) - 1 {
 		lo, hi := max(pc.t[i], float64(from)), min(pc.t[i+1], float64(to))

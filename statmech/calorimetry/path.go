@@ -421,7 +421,14 @@ func (p *Path) Notes(T unit.Temperature) []string {
 			notes = append(notes, fmt.Sprintf("%.1f %% of the entropy lies below the first point, %v", 100*share, p.First()))
 		}
 	}
+	total := p.Entropy(T).Value()
 	for _, pc := range p.pieces {
+		for k := 2; k+1 < len(pc.t) && pc.t[k] <= float64(T); k++ {
+			a, b, c, d := pc.t[k-2], pc.t[k-1], pc.t[k], pc.t[k+1]
+			if b > a && d > c && c-b > 3*max(b-a, d-c) && math.Log(c/b) > 3*max(math.Log(b/a), math.Log(d/c)) {
+				notes = append(notes, fmt.Sprintf("%.1f %% of the entropy lies in a gap of the points between %.6g K and %.6g K", 100*pc.entropy(b, c).Value()/total, b, c))
+			}
+		}
 		if n := len(pc.t); pc.to > pc.t[n-1] && float64(T) > pc.t[n-1] {
 			notes = append(notes, fmt.Sprintf("%s carried on from its last point, %.6g K, to %.6g K", pc.name, pc.t[n-1], pc.to))
 		}

@@ -164,6 +164,10 @@ func TestExcess(t *testing.T) {
 		t.Fatal(err)
 	}
 	within(t, "ΔH", exact.Enthalpy.Value(), area, 0.02)
+	pulses, err := ExcessOver(run.WithNote("method", "relaxation"), 80, 100, m.HeatCapacity)
+	if err != nil || len(exact.Warnings) != 0 || len(pulses.Warnings) != 1 || !strings.Contains(pulses.Warnings[0], "underestimates a sharp peak") {
+		t.Errorf("%v, warnings %q and %q", err, exact.Warnings, pulses.Warnings)
+	}
 	within(t, "ΔS", exact.Entropy.Value(), area/centre*(1+width*width/(centre*centre)), 2e-3)
 	within(t, "peak", float64(exact.Peak), centre, 0)
 	within(t, "u(ΔH)", exact.Enthalpy.StandardUncertainty(), 0.05*0.5*math.Sqrt(40), 0.01)

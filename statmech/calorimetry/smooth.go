@@ -222,14 +222,29 @@ func (pc *piece) outliers() []string {
 		d[i] = pc.cp[i]/dotted(pc.s.at(x), pc.cp) - 1
 	}
 	usual := medianSize(d) / 0.6745
+	type cluster struct{ first, last, count int }
+	var clusters []cluster
 	for i, v := range d {
 		u := math.Max(usual, pc.c[i].StandardUncertainty()/pc.cp[i])
-		if math.Abs(v) > outlierLimit*u && usual > 0 {
-			out = append(out, fmt.Sprintf("%s: the point at %.6g K deviates by %.2g %%, %.1f times the usual", pc.name, pc.t[i], 100*v, math.Abs(v)/u))
+		if math.Abs(v) <= outlierLimit*u || usual == 0 {
+			continue
+		}
+		out = append(out, fmt.Sprintf("%s: the point at %.6g K deviates by %.2g %%, %.1f times the usual", pc.name, pc.t[i], 100*v, math.Abs(v)/u))
+		// One good point between two bad ones does not part them.
+		if n := len(clusters); n > 0 && i-clusters[n-1].last <= 2 {
+			clusters[n-1].last = i
+			clusters[n-1].count++
+		} else {
+			clusters = append(clusters, cluster{i, i, 1})
 		}
 	}
 	if len(out) > 5 {
 		out = append(out[:5], fmt.Sprintf("%s: and %d more points that deviate", pc.name, len(out)-5))
+	}
+	for _, c := range clusters {
+		if c.count >= 3 {
+			out = append(out, fmt.Sprintf("%s: neighbouring points from %.4g K to %.4g K deviate together: a transition hidden in the phase?", pc.name, pc.t[c.first], pc.t[c.last]))
+		}
 	}
 	return out
 }

@@ -1,6 +1,7 @@
 package calorimetry
 
 import (
+	"fmt"
 	"math"
 	"math/rand/v2"
 	"strings"
@@ -292,5 +293,47 @@ func TestTransitionFile(t *testing.T) {
 	}
 	if _, err := Transitions(run); err == nil || !strings.Contains(err.Error(), "has no heat at one temperature") {
 		t.Errorf("a lambda transition: %v", err)
+	}
+}
+
+// TestGap: the share of the entropy in a gap is said.
+func TestGap(t *testing.T) {
+	m := synthetic()
+	var ts, cs []float64
+	for T := 20.0; T < 300; T += 4 {
+		if T > 100 && T < 160 {
+			continue
+		}
+		ts, cs = append(ts, T), append(cs, float64(m.HeatCapacity(unit.Temperature(T))))
+	}
+	p, err := ThirdLaw(table(t, ts, cs, nil), nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	want := 100 * float64(m.EntropyIncrement(100, 160)/m.EntropyIncrement(20, 296))
+	if all := strings.Join(p.Notes(296), "\n"); !strings.Contains(all, fmt.Sprintf("%.1f %% of the entropy lies in a gap of the points between 100 K and 160 K", want)) {
+		t.Errorf("notes %q, want a share of %.1f %%", all, want)
+	}
+}
+
+// TestSmoothedPeak: a broad peak inside a phase that is smoothed does not pass
+// unseen.
+func TestSmoothedPeak(t *testing.T) {
+	m := synthetic()
+	random := rand.New(rand.NewPCG(4, 4))
+	var ts, cs, us []float64
+	for T := 20.0; T < 300; T *= 1.02 {
+		c := float64(m.HeatCapacity(unit.Temperature(T)))
+		if z := (T - 95) / 3; z < 0 {
+			c *= 1 + 0.5*math.Exp(z) // a λ: slow rise, sudden fall
+		}
+		ts, cs, us = append(ts, T), append(cs, c*(1+0.002*random.NormFloat64())), append(us, 0.002*c)
+	}
+	p, err := Smooth(table(t, ts, cs, us), nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if all := strings.Join(p.Warnings, "\n"); !strings.Contains(all, "deviate together: a transition hidden in the phase?") {
+		t.Errorf("warnings\n%s", all)
 	}
 }

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"reflect"
+	"slices"
 
 	"levelsum/statmech"
 	"levelsum/statmech/data"
@@ -35,9 +36,10 @@ func (r *Result) Model() any {
 }
 
 // HeatCapacity fits a model to the heat capacities of a table. The model is
-// anything with a method HeatCapacity (a solid, a term, a type of a notebook
-// cell) or a [statmech.Mode], whose C_V of one mole is taken; give pointers
-// where fields are free.
+// anything with a method HeatCapacity or HeatCapacities, which takes all
+// temperatures at once (a solid, a term, a type of a notebook cell), or a
+// [statmech.Mode], whose C_V of one mole is taken; give pointers where fields
+// are free.
 //
 // The weights come from the random part of the uncertainty of Cp if the table
 // has one (u_r), else from u(Cp); a column u(T) is carried over with the slope
@@ -99,12 +101,22 @@ type thermal struct {
 	diff   differentiable
 	ts     []unit.Temperature
 	rows   [][]float64
+
+	// The derivatives of the last evaluation, which come at no cost with the
+	// values: valid for the temperatures x0 and the parameters p at the
+	// addresses at.
+	at  []*float64
+	p   []float64
+	jac []float64
+	x0  []float64
 }
 
 func newThermal(source any) (*thermal, error) {
 	m := &thermal{source: source}
 	if h, ok := source.(heatCapacity); ok {
 		m.one = h.HeatCapacity
+	} else if h, ok := source.(heatCapacities); ok {
+		m.one = func(T unit.Temperature) unit.MolarEntropy { return h.HeatCapacities([]unit.Temperature{T})[0] }
 	} else if mode, ok := source.(statmech.Mode); ok {
 		m.one = func(T unit.Temperature) unit.MolarEntropy {
 			return unit.MolarEntropy(mode.Reduced(T).C) * unit.R
@@ -134,6 +146,20 @@ func (m *thermal) temperatures(x []float64) []unit.Temperature {
 func (m *thermal) values(x, out []float64) bool {
 	ts := m.temperatures(x)
 	switch {
+	case m.at != nil:
+		clear(out)
+		m.x0 = nil
+		if len(m.jac) != len(m.at)*len(x) {
+			m.jac = make([]float64, len(m.at)*len(x))
+		}
+		clear(m.jac)
+		if m.diff.Accumulate(ts, m.at, out, m.split(m.jac, len(x))) != nil {
+			return false
+		}
+		m.x0, m.p = x, m.p[:0]
+		for _, a := range m.at {
+			m.p = append(m.p, *a)
+		}
 	case m.diff != nil:
 		clear(out)
 		return m.diff.Accumulate(ts, nil, out, nil) == nil
@@ -153,17 +179,43 @@ func (m *thermal) partials(x []float64, at []*float64, jac []float64) bool {
 	if m.diff == nil {
 		return false
 	}
-	for _, p := range at {
-		if _, ok := m.diff.Owns(p); !ok {
+	if !slices.Equal(m.at, at) {
+		for _, p := range at {
+			if _, ok := m.diff.Owns(p); !ok {
+				return false
+			}
+		}
+		m.at, m.x0 = slices.Clone(at), nil
+	}
+	if m.current(x) {
+		copy(jac, m.jac)
+		return true
+	}
+	clear(jac)
+	return m.diff.Accumulate(m.temperatures(x), at, nil, m.split(jac, len(x))) == nil
+}
+
+// current reports whether the derivatives of the last evaluation are those at x
+// and the present parameters.
+func (m *thermal) current(x []float64) bool {
+	if len(x) == 0 || len(m.x0) != len(x) || &m.x0[0] != &x[0] {
+		return false
+	}
+	for j, a := range m.at {
+		if *a != m.p[j] {
 			return false
 		}
 	}
-	clear(jac)
+	return true
+}
+
+// split returns the columns of a Jacobian.
+func (m *thermal) split(jac []float64, n int) [][]float64 {
 	m.rows = m.rows[:0]
-	for j := range at {
-		m.rows = append(m.rows, jac[j*len(x):(j+1)*len(x)])
+	for j := range len(jac) / n {
+		m.rows = append(m.rows, jac[j*n:(j+1)*n])
 	}
-	return m.diff.Accumulate(m.temperatures(x), at, nil, m.rows) == nil
+	return m.rows
 }
 
 // describe gives the free parameters the names of their fields.

@@ -8,6 +8,7 @@ import (
 
 	"levelsum/statmech/data"
 	"levelsum/statmech/solid"
+	"levelsum/statmech/uncertain"
 	"levelsum/statmech/unit"
 )
 
@@ -108,6 +109,52 @@ func TestCoverage(t *testing.T) {
 	}
 }
 
+// TestDerivedEntropy: dropping the covariances of a Debye + Einstein fit makes
+// u(S(298.15 K)) too large, by a factor of 4.7 in an independent computation.
+func TestDerivedEntropy(t *testing.T) {
+	ts, cs, us := syntheticSolid()
+	var m debyeEinstein
+	res := m.fit(t, newTable(t, ts, cs, us), AbsoluteSigma)
+	s := res.Function(func() float64 { return float64(m.deb.Entropy(298.15) + m.ein.Entropy(298.15)) })
+	var alone float64
+	for _, c := range s.Budget().Inputs {
+		alone += c.Part * c.Part
+	}
+	within(t, "ratio", math.Sqrt(alone)/s.StandardUncertainty(), 4.7, 0.1)
+	// The same by drawing: the covariance goes into Monte Carlo too.
+	sim, err := uncertain.MonteCarlo(s, uncertain.Draws(4000))
+	if err != nil {
+		t.Fatal(err)
+	}
+	within(t, "u by Monte Carlo", sim.U, s.StandardUncertainty(), 4*s.StandardUncertainty()/math.Sqrt(8000))
+	if float64(m.deb.Theta) != res.Parameter(&m.deb.Theta).Value() {
+		t.Errorf("θ was left at %v", m.deb.Theta)
+	}
+}
+
+// sliceOnly is a model that takes all temperatures at once.
+type sliceOnly struct{ A, B float64 }
+
+func (s *sliceOnly) HeatCapacities(ts []unit.Temperature) []unit.MolarEntropy {
+	out := make([]unit.MolarEntropy, len(ts))
+	for i, T := range ts {
+		out[i] = unit.MolarEntropy(s.A + s.B*float64(T))
+	}
+	return out
+}
+
+// TestUserModel: a model of the user's own, by slices, named by its fields.
+func TestUserModel(t *testing.T) {
+	m := &sliceOnly{A: 1, B: 1}
+	res, err := HeatCapacity(m, newTable(t, []float64{10, 20, 30, 40}, []float64{3.01, 4.98, 7.02, 8.99}, nil), Vary(&m.A, &m.B), ScaledSigma)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if q := res.Parameter(&m.B); q.Name() != "sliceOnly.B" || math.Abs(q.Value()-0.2) > 0.01 {
+		t.Errorf("%v %v", q.Name(), q)
+	}
+}
+
 // TestStraightLine compares with the closed form of the weighted straight line
 // (both standard uncertainties and the covariance), absolute and scaled.
 func TestStraightLine(t *testing.T) {
@@ -164,6 +211,28 @@ func TestStraightLine(t *testing.T) {
 			t.Errorf("profile %v leaves a = %g", p, a)
 		}
 	}
+}
+
+// TestCalibrationLine is the thermometer calibration of JCGM 100:2008, H.3
+// (readings and results from memory): intercept -0.1712(29), slope 0.00218(67),
+// r = -0.930, s = 0.0035, and -0.1494 with u = 0.0041 predicted at 30 °C.
+func TestCalibrationLine(t *testing.T) {
+	temperature := []float64{21.521, 22.012, 22.512, 23.003, 23.507, 23.999, 24.513, 25.002, 25.503, 26.010, 26.511}
+	correction := []float64{-0.171, -0.169, -0.166, -0.159, -0.164, -0.165, -0.156, -0.157, -0.159, -0.161, -0.160}
+	var y1, y2 float64
+	res, err := Curve(func(x float64) float64 { return y1 + y2*(x-20) }, temperature, correction, nil, Vary(&y1, &y2), ScaledSigma)
+	if err != nil {
+		t.Fatal(err)
+	}
+	within(t, "y1", y1, -0.1712, 0.00005)
+	within(t, "u(y1)", res.Parameter(&y1).StandardUncertainty(), 0.0029, 0.00005)
+	within(t, "y2", y2, 0.00218, 0.000005)
+	within(t, "u(y2)", res.Parameter(&y2).StandardUncertainty(), 0.00067, 0.000005)
+	within(t, "r", res.Correlation()[0][1], -0.930, 0.0005)
+	within(t, "s", math.Sqrt(res.Ratio()), 0.0035, 0.00005)
+	b := res.At(30)
+	within(t, "b(30 °C)", b.Value(), -0.1494, 0.00005)
+	within(t, "u", b.StandardUncertainty(), 0.0041, 0.00005)
 }
 
 // TestUncertainX: with the same relative errors everywhere, weights from
