@@ -135,6 +135,62 @@ func TestIdentities(t *testing.T) {
 	}
 }
 
+// Formation enthalpies of the CODATA key values, in the library at 0 K, against
+// NASA's constants for the whole reaction: within twice the standard uncertainty
+// and 1 %, the rotor and oscillator bound of water and CO2 included (1.4 %).
+func TestFormationEnthalpies(t *testing.T) {
+	for _, c := range []struct {
+		equation string
+		T        unit.Temperature
+	}{
+		{"I2 = 2 I", 1000}, {"H2 = 2 H", 1500}, {"Cl2 = 2 Cl", 1000}, {"N2 = 2 N", 2000}, {"H2 + I2 = 2 HI", 700}, {"CO + 0.5 O2 = CO2", 1000}, {"H2 + 0.5 O2 = H2O", 1000},
+	} {
+		r := newReaction(t, c.equation, FormationAt0K)
+		u, err := r.UncertaintyOfLogK(c.T)
+		if err != nil || u <= 0 {
+			t.Fatal(u, err)
+		}
+		d := r.LogK(c.T) - published(t, strings.ReplaceAll(c.equation, " ", ""), c.T)*math.Ln10
+		if math.Abs(d) > 2*u+0.024 {
+			t.Errorf("%s at %v: ln K differs by %+.4f, u = %.4f", c.equation, c.T, d, u)
+		}
+		t.Logf("%s at %v: ln K differs by %+.4f, u = %.4f", c.equation, c.T, d, u)
+	}
+}
+
+// Measured constants of H2 + I2 = 2 HI: A. H. Taylor, R. H. Crist, J. Am. Chem.
+// Soc. 63, 1377 (1941), from memory.
+func TestHydrogenIodideMeasured(t *testing.T) {
+	r := newReaction(t, "H2 + I2 = 2 HI", FormationAt0K)
+	for T, want := range map[unit.Temperature]float64{666.8: 60.8, 730.8: 48.7, 763.8: 45.6} {
+		u, err := r.UncertaintyOfLogK(T)
+		if K := r.K(T); err != nil || math.Abs(math.Log(K/want)) > 2*u {
+			t.Errorf("K(%v) = %.2f, measured %.1f, u(ln K) = %.3f, %v", T, K, want, u, err)
+		}
+	}
+}
+
+// published returns log10 K of the NASA table.
+func published(t *testing.T, reaction string, T unit.Temperature) float64 {
+	t.Helper()
+	raw, err := os.ReadFile("testdata/nasa2002/equilibrium_constants.csv")
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, line := range strings.Split(string(raw), "\n") {
+		f := strings.Split(line, ",")
+		if f[0] == reaction && f[1] == strconv.FormatFloat(float64(T), 'g', -1, 64) {
+			x, err := strconv.ParseFloat(f[4], 64)
+			if err != nil {
+				t.Fatal(err)
+			}
+			return x
+		}
+	}
+	t.Fatalf("%s at %v is not in the table", reaction, T)
+	return 0
+}
+
 func TestRefuses(t *testing.T) {
 	o2, err := gas.Find("O2")
 	if err != nil {
@@ -166,7 +222,7 @@ func TestRefuses(t *testing.T) {
 		"1 atm, 1 bar":  {"N2 + O2 = 2 NO", AtomisationD0, []*gas.Molecule{atm}, ErrMixed, "101325"},
 		"spin":          {"H2 = 2 H", AtomisationD0, []*gas.Molecule{spin}, ErrMixed, "spin"},
 		"no energy":     {"CO + 1/2 O2 = CO2", AtomisationD0, nil, ErrMixed, "CO2"},
-		"other kind":    {"I2 = 2 I", FormationAt0K, nil, ErrMixed, "0 K"},
+		"other kind":    {"N2 + O2 = 2 NO", FormationAt0K, nil, ErrMixed, "0 K"},
 		"kind not said": {"I2 = 2 I", 0, nil, statmech.ErrDomain, ""},
 		"unknown":       {"Xx = 2 I", Given, nil, nil, "Xx"},
 		"no equation":   {"I2", Given, nil, nil, "equals"},
