@@ -8,6 +8,7 @@ import (
 	"levelsum/statmech/data"
 	"levelsum/statmech/fit"
 	"levelsum/statmech/solid"
+	"levelsum/statmech/uncertain"
 	"levelsum/statmech/unit"
 )
 
@@ -69,6 +70,19 @@ func TestCopperEntropy(t *testing.T) {
 	}
 	t.Logf("independent %v, common %v; H %v; %v", s, c, p.Enthalpy(298.15), p.Notes(298.15))
 	t.Log("\n" + p.View().Data["text/plain"].(string))
+}
+
+// TestCopperMonteCarlo draws the points and the fit below them together.
+func TestCopperMonteCarlo(t *testing.T) {
+	for _, common := range []bool{false, true} {
+		s := copperPath(t, common).Entropy(298.15)
+		sim, err := uncertain.MonteCarlo(s, uncertain.Draws(20000))
+		if err != nil {
+			t.Fatal(err)
+		}
+		within(t, "u(S) by Monte Carlo", sim.U, s.StandardUncertainty(), 0.02*s.StandardUncertainty())
+		within(t, "S by Monte Carlo", sim.Mean, s.Value(), 4*s.StandardUncertainty()/math.Sqrt(20000))
+	}
 }
 
 // synthetic is a solid with one Debye term of 200 K (3 modes) and 3 Einstein

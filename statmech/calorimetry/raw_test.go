@@ -11,15 +11,6 @@ import (
 	"levelsum/statmech/unit"
 )
 
-func parse(t testing.TB, text string) *data.Table {
-	t.Helper()
-	run, err := data.Parse("made-up.csv", []byte(text))
-	if err != nil {
-		t.Fatal(err)
-	}
-	return run
-}
-
 func columns(t testing.TB, notes []data.Note, cs ...any) *data.Table {
 	t.Helper()
 	var cols []data.Column

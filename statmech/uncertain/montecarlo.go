@@ -5,7 +5,6 @@ import (
 	"math"
 	"math/rand/v2"
 	"runtime"
-	"sort"
 	"sync"
 
 	"levelsum/display"
@@ -121,7 +120,8 @@ func MonteCarloJoint(qs []Quantity, opts ...Option) (*Joint, error) {
 	}
 	s := newSampler(newTape(outputs), d)
 	batch := max(int(math.Ceil(100/(1-d.coverage))), 10000)
-	stable, tolerance := d.draws > 0, make([]float64, len(qs))
+	tolerance := make([]float64, len(qs))
+	var stable bool
 	if d.draws > 0 {
 		s.draw(d.draws)
 		stable = !s.halted
@@ -418,95 +418,5 @@ func (s *Simulation) judge() {
 	delta := max(toleranceOf(s.U, 2), 3*s.U/math.Sqrt(float64(s.Draws)))
 	if math.Abs(u-s.U) > max(delta, 0.05*s.U) || math.Abs(s.Quantity.Value()-s.Mean) > max(delta, 0.1*s.U) {
 		warn("the first order is not enough: it gives %.4g with u = %.2g, the draws %.4g with u = %.2g", s.Quantity.Value(), u, s.Mean, s.U)
-	}
-}
-
-// Values returns the finite draws in the order in which they were made.
-func (s *Simulation) Values() []float64 { return append([]float64(nil), s.values...) }
-
-// Interval returns the ends of the probabilistically symmetric coverage
-// interval for probability p (JCGM 101:2008, 7.7).
-func (s *Simulation) Interval(p float64) (lo, hi float64) {
-	checkProbability("Interval", p)
-	v := s.inOrder()
-	m := len(v)
-	q := int(p*float64(m) + 0.5)
-	r := (m - q) / 2
-	return v[max(0, r-1)], v[min(m-1, r+q-1)]
-}
-
-// Shortest returns the ends of the shortest coverage interval for probability
-// p (JCGM 101:2008, 5.3.4): where the distribution is not symmetric it is not
-// the symmetric one.
-func (s *Simulation) Shortest(p float64) (lo, hi float64) {
-	checkProbability("Shortest", p)
-	v := s.inOrder()
-	q := min(len(v)-1, int(p*float64(len(v))+0.5))
-	best := 0
-	for r := range len(v) - q {
-		if v[r+q]-v[r] < v[best+q]-v[best] {
-			best = r
-		}
-	}
-	return v[best], v[best+q]
-}
-
-func checkProbability(fn string, p float64) {
-	if !(p > 0) || !(p < 1) {
-		panic(&statmech.DomainError{Func: "uncertain.Simulation." + fn, Arg: "p", Value: fmt.Sprint(p), Want: "between 0 and 1"})
-	}
-}
-
-func (s *Simulation) inOrder() []float64 {
-	s.mu.Lock()
-	defer s.mu.Unlock()
-	if s.sorted == nil {
-		s.sorted = append([]float64(nil), s.values...)
-		sort.Float64s(s.sorted)
-	}
-	return s.sorted
-}
-
-// interval returns the symmetric interval of values that it may reorder.
-func interval(v []float64, p float64) (lo, hi float64) {
-	m := len(v)
-	q := int(p*float64(m) + 0.5)
-	r := (m - q) / 2
-	a, b := max(0, r-1), min(m-1, r+q-1)
-	selectRank(v, a)
-	lo = v[a]
-	selectRank(v[a:], b-a)
-	return lo, v[b]
-}
-
-// selectRank moves the element of rank k to its place (C. A. R. Hoare, Commun.
-// ACM 4, 321 (1961), algorithm 65).
-func selectRank(v []float64, k int) {
-	lo, hi := 0, len(v)-1
-	for lo < hi {
-		a, b, c := v[lo], v[lo+(hi-lo)/2], v[hi]
-		pivot := max(min(a, b), min(max(a, b), c))
-		i, j := lo, hi
-		for i <= j {
-			for v[i] < pivot {
-				i++
-			}
-			for v[j] > pivot {
-				j--
-			}
-			if i <= j {
-				v[i], v[j] = v[j], v[i]
-				i++
-				j--
-			}
-		}
-		switch {
-		case k <= j:
-			hi = j
-		case k >= i:
-			lo = i
-		default:
-			return
-		}
 	}
 }

@@ -10,6 +10,7 @@ import (
 	"testing"
 
 	"levelsum/statmech"
+	"levelsum/statmech/unit"
 )
 
 func within(t testing.TB, what string, got, want, tol float64) {
@@ -317,5 +318,37 @@ func TestLongSum(t *testing.T) {
 	within(t, "u of a chain", chain.StandardUncertainty(), 1e4, 1e-6)
 	if _, err := MonteCarlo(chain, Draws(1)); err == nil {
 		t.Error("one draw has a standard deviation")
+	}
+}
+
+func TestUnits(t *testing.T) {
+	gamma := Measured(6.919e-4, 5.3e-6).WithUnit("J/(mol K2)").Named("γ")
+	if s := gamma.In("mJ/(mol K2)").String(); s != "0.6919(53) mJ/(mol K2)" {
+		t.Errorf("γ = %s", s)
+	}
+	theta := Of(343.2*unit.K, 0.7*unit.K)
+	if s := theta.String(); s != "343.20(70) K" {
+		t.Errorf("θ = %s", s)
+	}
+	if c := theta.In("°C"); math.Abs(c.Value()-70.05) > 1e-12 || math.Abs(c.StandardUncertainty()-0.7) > 1e-15 {
+		t.Errorf("θ = %v", c)
+	}
+	if r := Correlation(gamma, gamma.In("cal/(mol K2)")); math.Abs(r-1) > 1e-15 {
+		t.Errorf("correlation with itself in another unit %g", r)
+	}
+	for name, f := range map[string]func(){
+		"another kind": func() { theta.In("cm-1") },
+		"no unit":      func() { Measured(1, 1).In("K") },
+		"unknown":      func() { theta.In("furlong") },
+		"Of":           func() { Of(343*unit.K, 1*unit.Pressure(1)) },
+	} {
+		func() {
+			defer func() {
+				if _, ok := recover().(*statmech.DomainError); !ok {
+					t.Errorf("%s: no DomainError", name)
+				}
+			}()
+			f()
+		}()
 	}
 }
