@@ -286,6 +286,14 @@ func (m diatomicMode) ReducedAt(ts []unit.Temperature) []statmech.Reduced {
 // the potential of the first state.
 func (m diatomicMode) ZeroPointEnergy() unit.Energy { return m.zero + m.levels.ZeroPointEnergy() }
 
+// Warnings says when levels near dissociation begin to matter.
+func (m diatomicMode) Warnings(T unit.Temperature) []string {
+	if 30*T.AsEnergy() < m.limit {
+		return nil
+	}
+	return []string{"at " + T.String() + " levels near dissociation and excited states that the constants do not describe begin to matter (kT above D0/30)"}
+}
+
 // Extent says in words where the sums over v and J end.
 func (m diatomicMode) Extent() string { return strings.Join(m.extent, "; ") }
 
