@@ -5,6 +5,7 @@ var usual = map[string]string{
 	"bufio":       "bufio",
 	"bytes":       "bytes",
 	"calorimetry": "levelsum/statmech/calorimetry",
+	"derive":      "levelsum/statmech/derive",
 	"cmp":         "cmp",
 	"context":     "context",
 	"data":        "levelsum/statmech/data",
