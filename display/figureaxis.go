@@ -112,9 +112,23 @@ func (a *axisState) settle(tight bool) (scene.Axis, error) {
 		if pad == 0 {
 			pad = 0.04*math.Abs(out.Max) + 0.5*b2f(out.Max == 0)
 		}
+		// Values that differ in the last digits only are shown as equal.
+		pad = math.Max(pad, 1e-9*math.Max(math.Abs(out.Min), math.Abs(out.Max)))
 		out.Min, out.Max = out.Min-pad, out.Max+pad
 	}
-	return out, nil
+	return out, drawable(a.name, out)
+}
+
+// drawable refuses ranges that have no ticks in floating point.
+func drawable(name string, a scene.Axis) error {
+	size := math.Max(math.Abs(a.Min), math.Abs(a.Max))
+	switch {
+	case !(size < 1e290) || !(a.Max-a.Min > 1e-290) || a.Log && !(a.Min > 1e-290):
+		return fmt.Errorf("the %s would go from %v to %v, which cannot be drawn: give Min and Max, or another unit", name, a.Min, a.Max)
+	case !(a.Max-a.Min > 1e-11*size):
+		return fmt.Errorf("the %s would go from %v to %v: too narrow for its values", name, a.Min, a.Max)
+	}
+	return nil
 }
 
 func b2f(b bool) float64 {

@@ -196,6 +196,9 @@ func (e *curveReader) checkFunc(what string, f any) error {
 		}
 		c := &column{typ: p.t, v: []float64{1}}
 		c.unit, c.kind = unitOf(p.t)
+		if p.a.typ == nil && p.a.used && !sameUnit(c.unit, p.a.unit) {
+			return fmt.Errorf("%s is a %s in %s, but the %s is in %s", what, t, unitOr(c.unit), p.a.name, unitOr(p.a.unit))
+		}
 		if err := p.a.take(what, c); err != nil {
 			return err
 		}

@@ -106,11 +106,19 @@ func (r *figureReader) heatMap(m *Map) error {
 	if lo > hi {
 		return fmt.Errorf("Z of the map has no numbers")
 	}
+	if m.Diverging && m.Log {
+		return fmt.Errorf("the colours of the map cannot part at zero on a logarithmic scale")
+	}
 	if m.Diverging {
 		lo, hi = -math.Max(math.Abs(lo), math.Abs(hi)), math.Max(math.Abs(lo), math.Abs(hi))
 	}
-	if lo == hi {
-		lo, hi = lo-0.5, hi+0.5
+	if pad := 1e-9 * math.Max(math.Abs(lo), math.Abs(hi)); hi-lo < pad || lo == hi {
+		pad = math.Max(pad, 0.5*b2f(lo == 0))
+		lo, hi = lo-pad, hi+pad
+	}
+	scale := scene.Axis{Quantity: m.Quantity, Unit: m.Unit, Min: lo, Max: hi, Log: m.Log}
+	if err := drawable("scale of colours", scale); err != nil {
+		return err
 	}
 	ex, ey := edges(grid[0], r.x.spec.Log), edges(grid[1], r.y.spec.Log)
 	if m.LinesOnly {
@@ -119,8 +127,12 @@ func (r *figureReader) heatMap(m *Map) error {
 	} else {
 		r.x.cover(ex)
 		r.y.cover(ey)
-		r.main = append(r.main, scene.Cells{XEdges: ex, YEdges: ey, Z: z, Diverging: m.Diverging,
-			Scale: scene.Axis{Quantity: m.Quantity, Unit: m.Unit, Min: lo, Max: hi, Log: m.Log}})
+		r.main = append(r.main, scene.Cells{XEdges: ex, YEdges: ey, Z: z, Diverging: m.Diverging, Scale: scale})
+	}
+	for _, v := range m.Contours {
+		if math.IsNaN(v) || math.IsInf(v, 0) {
+			return fmt.Errorf("a contour of the map is at %v", v)
+		}
 	}
 	if len(m.Contours) > 0 {
 		r.main = append(r.main, scene.Contours{X: grid[0], Y: grid[1], Z: z, Levels: slices.Clone(m.Contours), Style: scene.Style{Colour: -1}})

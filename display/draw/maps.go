@@ -20,6 +20,9 @@ func paletteOf(c *scene.Cells) []color.RGBA {
 func shade(a scene.Axis, v float64) float64 {
 	t := (v - a.Min) / (a.Max - a.Min)
 	if a.Log {
+		if !(v > 0) {
+			return 0
+		}
 		t = math.Log(v/a.Min) / math.Log(a.Max/a.Min)
 	}
 	return min(max(t, 0), 1)
