@@ -39,7 +39,8 @@ func TestEveryFileHasSources(t *testing.T) {
 func TestLibrary(t *testing.T) {
 	for _, name := range Library() {
 		m := library(t, name)
-		if w := m.Warnings(T0); w != nil {
+		// Na2, bound by 5942 cm⁻¹, is above D0/30k at room temperature.
+		if w := m.Warnings(T0); w != nil && !(name == "Na2" && len(w) == 1 && contains(w[0], "dissociation")) {
 			t.Errorf("%s: warnings %q", name, w)
 		}
 		if !contains(strings.Join(m.Notes(), "\n"), "source: ") {
