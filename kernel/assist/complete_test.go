@@ -9,6 +9,7 @@ import (
 	"maps"
 	"slices"
 	"strings"
+	"sync"
 	"testing"
 )
 
@@ -57,19 +58,25 @@ func pair() (int, error)                            { return 0, nil }
 const steps = 12
 `
 
-func newSession(t testing.TB) session {
-	t.Helper()
+// oneSession is made once: the checker reads the source of all that it imports.
+var oneSession = sync.OnceValues(func() (session, error) {
 	fset := token.NewFileSet()
 	f, err := parser.ParseFile(fset, "", declared, 0)
 	if err != nil {
-		t.Fatal(err)
+		return session{}, err
 	}
 	imp := importer.ForCompiler(fset, "source", nil)
 	pkg, err := (&types.Config{Importer: imp}).Check("cell", fset, []*ast.File{f}, nil)
+	return session{pkg, map[string]string{"time": "time", "math": "math", "strings": "strings"}, imp}, err
+})
+
+func newSession(t testing.TB) session {
+	t.Helper()
+	s, err := oneSession()
 	if err != nil {
 		t.Fatal(err)
 	}
-	return session{pkg, map[string]string{"time": "time", "math": "math", "strings": "strings"}, imp}
+	return s
 }
 
 // In the sources | is the cursor. Want are matches that must be there, each

@@ -1,7 +1,7 @@
 package assist
 
 import (
-	"runtime"
+	"go/build"
 	"strings"
 	"testing"
 )
@@ -17,7 +17,7 @@ func (s session) ValueOf(name string) (string, int, bool) {
 // order.
 func TestInspect(t *testing.T) {
 	s := newSession(t)
-	docs := NewDocs(runtime.GOROOT(), "levelsum", "../..")
+	docs := NewDocs(build.Default.GOROOT, "levelsum", "../..")
 	for _, test := range []struct {
 		name, source string
 		detail       int

@@ -30,6 +30,7 @@ type served struct {
 	engine  *fake
 	log     *strings.Builder // read after the end only
 	done    chan struct{}
+	hasty   bool // does not wait long for a cell when it ends
 	restart bool // after done
 	err     error
 }
@@ -47,11 +48,18 @@ func serveFake(t testing.TB, e *fake, more ...func(*Options)) *served {
 	for _, f := range more {
 		f(&o)
 	}
+	k.hasty = o.Version == hastyVersion
 	s, err := Open(o)
 	if err != nil {
 		t.Fatal(err)
 	}
 	k.session = s
+	// On a machine with much to do the answers that a test waits for may take
+	// longer than a user would.
+	s.queue.grace = giveUp
+	if !k.hasty {
+		s.patience = giveUp
+	}
 	go func() {
 		defer close(k.done)
 		k.restart, k.err = s.Serve(context.Background())
@@ -59,6 +67,11 @@ func serveFake(t testing.TB, e *fake, more ...func(*Options)) *served {
 	t.Cleanup(k.end)
 	return k
 }
+
+// hasty makes a session that ends as soon as one of a user does.
+func hasty(o *Options) { o.Version = hastyVersion }
+
+const hastyVersion = "hasty"
 
 // end stops the session and waits for it.
 func (k *served) end() {

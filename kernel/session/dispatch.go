@@ -111,7 +111,7 @@ func (s *Session) atOnce(r *request) {
 	case "shutdown_request":
 		var q wire.ShutdownRequest
 		if r.msg.Decode(&q) == nil {
-			time.AfterFunc(patience, s.Stop)
+			time.AfterFunc(s.patience, s.Stop)
 		}
 	}
 }

@@ -136,7 +136,7 @@ func TestShutdown(t *testing.T) {
 func TestShutdownOfACellThatHangs(t *testing.T) {
 	hold := make(chan struct{})
 	f := &fake{cells: cellMap{"hang": func(*running) engine.Outcome { <-hold; return engine.Outcome{} }}}
-	k := serveFake(t, f)
+	k := serveFake(t, f, hasty)
 	c := connect(k)
 	c.run("hang", nil)
 	k.waitFor(func() bool { return len(f.sources()) == 1 })

@@ -18,6 +18,7 @@ type queue struct {
 	stored  int  // how many of waiting will be given a number
 	busy    bool // the worker has a request
 	barrier barrier
+	grace   time.Duration // how long barrier stands
 }
 
 // A barrier aborts what was sent before its sender could know of an error, but
@@ -28,11 +29,11 @@ type barrier struct {
 	until   time.Time
 }
 
-// barrierTime is how long after an error a request may come in that was sent
+// usualGrace is how long after an error a request may come in that was sent
 // before it.
-const barrierTime = 200 * time.Millisecond
+const usualGrace = 200 * time.Millisecond
 
-func newQueue() *queue { return &queue{ready: make(chan struct{}, 1)} }
+func newQueue() *queue { return &queue{ready: make(chan struct{}, 1), grace: usualGrace} }
 
 // push adds r. If r is a cell that will have to wait and be stored, push
 // returns the number that it will have if no cell before it fails.
@@ -113,5 +114,5 @@ func (q *queue) abort(r *request, told time.Time) {
 		w.abort = true
 		w.started.Store(true)
 	}
-	q.barrier = barrier{session: r.msg.Header.Session, sent: told, until: time.Now().Add(barrierTime)}
+	q.barrier = barrier{session: r.msg.Header.Session, sent: told, until: time.Now().Add(q.grace)}
 }

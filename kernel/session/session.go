@@ -33,20 +33,21 @@ type Options struct {
 }
 
 // linger is how long the sockets may take to send what they hold when the
-// session ends, and patience how long the last request may take to end.
+// session ends, and usualPatience how long the last request may take to end.
 const (
-	linger   = 300 * time.Millisecond
-	patience = 450 * time.Millisecond
+	linger        = 300 * time.Millisecond
+	usualPatience = 450 * time.Millisecond
 )
 
 // A Session is one served kernel.
 type Session struct {
-	start   func(context.Context) (Engine, error)
-	version string
-	journal *Journal
-	log     *log.Logger
-	codec   *wire.Codec
-	sender  *wire.Sender
+	start    func(context.Context) (Engine, error)
+	version  string
+	patience time.Duration
+	journal  *Journal
+	log      *log.Logger
+	codec    *wire.Codec
+	sender   *wire.Sender
 
 	shell, control, stdin, iopub, heartbeat *socket.Socket
 
@@ -75,16 +76,17 @@ type Session struct {
 // Open binds the sockets of a session. The caller calls [Session.Serve] next.
 func Open(o Options) (*Session, error) {
 	s := &Session{
-		start:   o.Start,
-		up:      make(chan struct{}),
-		version: o.Version,
-		journal: o.Journal,
-		log:     o.Log,
-		codec:   wire.NewCodec([]byte(o.Connection.Key)),
-		sender:  wire.NewSender("kernel"),
-		queue:   newQueue(),
-		hints:   newHints(),
-		flow:    newFlow(),
+		start:    o.Start,
+		up:       make(chan struct{}),
+		version:  o.Version,
+		patience: usualPatience,
+		journal:  o.Journal,
+		log:      o.Log,
+		codec:    wire.NewCodec([]byte(o.Connection.Key)),
+		sender:   wire.NewSender("kernel"),
+		queue:    newQueue(),
+		hints:    newHints(),
+		flow:     newFlow(),
 	}
 	if s.log == nil {
 		s.log = log.New(io.Discard, "", 0)
@@ -157,7 +159,7 @@ func (s *Session) Serve(ctx context.Context) (restart bool, err error) {
 	}()
 	select {
 	case <-closed:
-	case <-time.After(patience):
+	case <-time.After(s.patience):
 		s.log.Print("the running request did not end in time")
 	}
 	s.closeSockets(linger)
@@ -165,7 +167,7 @@ func (s *Session) Serve(ctx context.Context) (restart bool, err error) {
 	select {
 	case <-closed:
 		err = s.engineErr
-	case <-time.After(patience / 8):
+	case <-time.After(s.patience / 8):
 		// Nothing more can be done here; the process ends soon.
 	}
 	if o := s.lastOutput.Load(); o != nil {
