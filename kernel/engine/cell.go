@@ -32,6 +32,15 @@ type Output interface {
 	Ask(prompt string, secret bool) (string, error)
 }
 
+// A Hinter is an Output that takes hints for the reader of the moment: that the
+// cell is being compiled, what it waits for, which call does not return. When
+// they come depends on the machine's load, so what is stored must not hold
+// them. An Output that is no Hinter gets them as text written to "stderr", but
+// is not told that the cell is being compiled.
+type Hinter interface {
+	Hint(text string)
+}
+
 // An Outcome says how a cell ended.
 type Outcome struct {
 	// Value is the value of the last expression, nil if there is nothing to show.

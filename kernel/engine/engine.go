@@ -121,6 +121,12 @@ func (e *Engine) handle(c *child, ev *Event, stream, text string) {
 		if out != nil {
 			out.Stream("stderr", ev.Text)
 		}
+	case "hint":
+		if h, ok := out.(Hinter); ok {
+			h.Hint(ev.Text)
+		} else if out != nil && ev.Name != "build" {
+			out.Stream("stderr", ev.Text)
+		}
 	case "show":
 		if out != nil {
 			out.Show(*ev.View, ev.Name, ev.Replace)

@@ -35,7 +35,7 @@ type Request struct {
 // "ack" after an event with Sync, so that what was printed before it has been
 // read before it is handled.
 type Event struct {
-	Op         string         // "ready", "show", "clear", "ask", "done", "reply", "warn"
+	Op         string         // "ready", "show", "clear", "ask", "done", "reply", "warn", "hint"
 	ID         int            `json:",omitempty"`
 	Sync       bool           `json:",omitempty"`
 	View       *display.View  `json:",omitempty"`

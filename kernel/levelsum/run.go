@@ -181,6 +181,7 @@ func execute(ctx context.Context, file string, f runFlags, start runner, stderr 
 		Limit:     f.limit,
 		Set:       f.set,
 		Step:      func(s rerun.Step) { printStep(stderr, s) },
+		Hint:      func(text string) { fmt.Fprintf(stderr, "  %s\n", strings.TrimRight(text, "\n")) },
 	})
 	if err != nil {
 		return nil, nil, fmt.Errorf("%s: %w", file, err)

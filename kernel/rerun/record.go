@@ -18,6 +18,8 @@ type recorder struct {
 	clear   map[int]bool       // cells whose outputs go when the next one comes
 	places  map[string][]place // where a display id is shown
 	over    bool
+
+	hint func(text string)
 }
 
 type place struct{ cell, at int }
@@ -97,6 +99,13 @@ func (c cellOutput) Show(v display.View, id string, replace bool) {
 	c.r.addLocked(c.n, o)
 	if id != "" && !c.r.over {
 		c.r.places[id] = append(c.r.places[id], place{c.n, len(c.r.outputs[c.n]) - 1})
+	}
+}
+
+// Hint passes on what is of interest only now.
+func (c cellOutput) Hint(text string) {
+	if c.r.hint != nil {
+		c.r.hint(text)
 	}
 }
 

@@ -35,6 +35,9 @@ type Options struct {
 	Set []Setting
 	// Step, if not nil, is called when a cell is over.
 	Step func(Step)
+	// Hint, if not nil, gets hints for the reader of the moment, see
+	// [engine.Hinter]. They are not stored.
+	Hint func(text string)
 }
 
 // A Step says how one code cell ended.
@@ -103,7 +106,7 @@ func Run(ctx context.Context, d *notebook.Document, o Options) (*Report, error) 
 		return nil, err
 	}
 	defer session.Close()
-	rec := &recorder{places: map[string][]place{}}
+	rec := &recorder{places: map[string][]place{}, hint: o.Hint}
 	for i, c := range code {
 		if i+1 < len(code) {
 			announce(session, i+2, code[i+1])

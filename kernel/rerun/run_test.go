@@ -53,6 +53,8 @@ func (f *fake) Run(ctx context.Context, c engine.Cell, out engine.Output) (o eng
 			out.Stream("stdout", arg+"\n")
 		case "warn":
 			out.Stream("stderr", arg+"\n")
+		case "hint":
+			out.(engine.Hinter).Hint(arg)
 		case "show":
 			out.Show(display.Text(arg), id, false)
 		case "replace":
@@ -208,6 +210,15 @@ func TestRunWithoutReader(t *testing.T) {
 	r, _ := run(t, d, Options{})
 	if r.Failed != 1 || !strings.Contains(outline(d.Cells()[0]), "without a reader") {
 		t.Errorf("%+v: %s", r, outline(d.Cells()[0]))
+	}
+}
+
+func TestHintsAreNotStored(t *testing.T) {
+	d := doc(t, "print a\nhint compiling\nprint b")
+	var hints []string
+	run(t, d, Options{Hint: func(s string) { hints = append(hints, s) }})
+	if got := outline(d.Cells()[0]); got != `stdout "a\nb\n"` || !reflect.DeepEqual(hints, []string{"compiling"}) {
+		t.Errorf("stored %s, hints %q", got, hints)
 	}
 }
 

@@ -113,7 +113,7 @@ func (b *builds) init(r *Runner) { b.r, b.m = r, map[string]*build{} }
 // get builds a unit, or waits for the build that is under way.
 func (b *builds) get(u *cell.Unit) (*compile.Plugin, error) {
 	t := time.AfterFunc(2*time.Second, func() {
-		_ = b.r.w.Send(engine.Event{Op: "warn", Text: "the cell is being compiled ...\n"})
+		_ = b.r.w.Send(engine.Event{Op: "hint", Name: "build", Text: "the cell is being compiled ...\n"})
 	})
 	defer t.Stop()
 	bu := b.start(u)

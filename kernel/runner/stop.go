@@ -66,7 +66,7 @@ func (r *Runner) stop() {
 		still := r.running && r.stopped == request
 		r.mu.Unlock()
 		if still {
-			_ = r.w.Send(engine.Event{Op: "warn", Text: "still running: " + runningCall() + "; interrupt once more to end the engine, which loses all values\n"})
+			_ = r.w.Send(engine.Event{Op: "hint", Text: "still running: " + runningCall() + "; interrupt once more to end the engine, which loses all values\n"})
 		}
 	})
 }

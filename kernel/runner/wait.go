@@ -33,7 +33,7 @@ func (r *Runner) watchWait() chan struct{} {
 			}
 			hint, blocked := blockedHint()
 			if blocked && hint == last {
-				_ = r.w.Send(engine.Event{Op: "warn", Text: hint})
+				_ = r.w.Send(engine.Event{Op: "hint", Text: hint})
 				return
 			}
 			last = ""
