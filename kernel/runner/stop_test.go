@@ -74,7 +74,7 @@ func TestInterruptEndsCells(t *testing.T) {
 
 func TestVariablesStandStillAfterInterrupt(t *testing.T) {
 	e := start(t)
-	if o, _, _ := interrupted(t, e, "n := 0\nfmt.Println(\"go\")\nfor { n++ }"); o.Fault == nil {
+	if o, _, _ := interrupted(t, e, "n := 0\nfor {\n\tn++\n\tif n == 1000 {\n\t\tfmt.Println(\"go\")\n\t}\n}"); o.Fault == nil {
 		t.Fatal("not interrupted")
 	}
 	a, _ := run(t, e, 2, "n")
