@@ -332,3 +332,57 @@ func (p PowerLaw) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperatur
 
 // String names the fields with their units.
 func (p PowerLaw) String() string { return describe("PowerLaw", p.fields()) }
+
+// Reduced returns ln q, U/kT and C/k of one formula unit; see [statmech.Mode].
+func (s Superconductor) Reduced(T unit.Temperature) statmech.Reduced {
+	return reduced(s, "solid.Superconductor.Reduced", T)
+}
+
+// HeatCapacity returns C_V at T.
+func (s Superconductor) HeatCapacity(T unit.Temperature) unit.MolarEntropy {
+	return heatCapacity(s, "solid.Superconductor.HeatCapacity", T)
+}
+
+// HeatCapacities returns C_V at every temperature.
+func (s Superconductor) HeatCapacities(ts []unit.Temperature) []unit.MolarEntropy {
+	return heatCapacities(s, "solid.Superconductor.HeatCapacities", ts)
+}
+
+// Entropy returns S(T).
+func (s Superconductor) Entropy(T unit.Temperature) unit.MolarEntropy {
+	return entropy(s, "solid.Superconductor.Entropy", T)
+}
+
+// Entropies returns S at every temperature.
+func (s Superconductor) Entropies(ts []unit.Temperature) []unit.MolarEntropy {
+	return entropies(s, "solid.Superconductor.Entropies", ts)
+}
+
+// EntropyIncrement returns S(to) - S(from).
+func (s Superconductor) EntropyIncrement(from, to unit.Temperature) unit.MolarEntropy {
+	return entropyIncrement(s, "solid.Superconductor.EntropyIncrement", from, to)
+}
+
+// ThermalEnergy returns U(T) - U(0).
+func (s Superconductor) ThermalEnergy(T unit.Temperature) unit.MolarEnergy {
+	return energy(s, "solid.Superconductor.ThermalEnergy", T)
+}
+
+// ThermalEnergies returns U(T) - U(0) at every temperature.
+func (s Superconductor) ThermalEnergies(ts []unit.Temperature) []unit.MolarEnergy {
+	return energies(s, "solid.Superconductor.ThermalEnergies", ts)
+}
+
+// EnthalpyIncrement returns U(to) - U(from), which is H(to) - H(from) at
+// constant volume and negligible pressure.
+func (s Superconductor) EnthalpyIncrement(from, to unit.Temperature) unit.MolarEnergy {
+	return enthalpyIncrement(s, "solid.Superconductor.EnthalpyIncrement", from, to)
+}
+
+// EnthalpyIncrements returns U(ts[i]) - U(from) for every temperature.
+func (s Superconductor) EnthalpyIncrements(from unit.Temperature, ts []unit.Temperature) []unit.MolarEnergy {
+	return enthalpyIncrements(s, "solid.Superconductor.EnthalpyIncrements", from, ts)
+}
+
+// String names the fields with their units.
+func (s Superconductor) String() string { return describe("Superconductor", s.fields()) }
