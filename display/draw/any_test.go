@@ -43,7 +43,7 @@ func TestAnyFigure(t *testing.T) {
 		return a
 	}
 	drawn := 0
-	for range 1500 {
+	for range 600 {
 		n := r.IntN(30)
 		f := display.Figure{XAxis: axis(), YAxis: axis(), RightAxis: axis(), Width: float64(30 + r.IntN(200))}
 		for range r.IntN(3) {
@@ -96,7 +96,7 @@ func TestAnyFigure(t *testing.T) {
 			}
 		}
 	}
-	if drawn < 200 {
-		t.Errorf("only %d figures of 1500 were drawn", drawn)
+	if drawn < 80 {
+		t.Errorf("only %d figures of 600 were drawn", drawn)
 	}
 }

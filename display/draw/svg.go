@@ -30,7 +30,10 @@ func newSVG(w, h float64, alt string, alone bool) *svg {
 	} else {
 		s.b.WriteString(` style="max-width:100%;height:auto;background:transparent">`)
 	}
-	s.b.WriteString("\n<title>" + mark.Escape(alt) + "</title>\n" + `<g fill="none" stroke-linejoin="round">` + "\n")
+	if alone { // in a page it would be a tooltip over the whole figure
+		s.b.WriteString("\n<title>" + mark.Escape(alt) + "</title>")
+	}
+	s.b.WriteString("\n" + `<g fill="none" stroke-linejoin="round">` + "\n")
 	return s
 }
 
