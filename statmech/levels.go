@@ -18,7 +18,8 @@ import (
 // an unbounded spectrum see [Levels.MarkTruncated].
 //
 // Accuracy: ln q, U and C within 1e-14 relative (direct sum, TestLevelsSchottky)
-// and 5e-15 for long lists at many temperatures (TestLevelsTable).
+// and 2e-14 for long lists at many temperatures (TestLevelsTableClosedForm; 2e-15
+// was seen for 10⁷ equally spaced levels at 100 temperatures).
 type Levels struct {
 	energies  []unit.Energy
 	g         []float64 // nil if every degeneracy is 1

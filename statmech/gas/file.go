@@ -50,8 +50,9 @@ var prose = map[string]bool{"source": true, "where": true, "how obtained": true,
 // interpolated; with a column x its anharmonic constant, wavenumber is then the
 // harmonic quantum); x (the constant x of the vibrations i and k before it,
 // counted from 1); electronic; torsion (wavenumber is that of the vibration it
-// replaces; columns F, V, n, sigma; treat: diagonalised, Pitzer-Gwinn or
-// classical; or treat "scan: FILE"); torsion-term (V, n of one more term of the
+// replaces; columns F or I_r, V, n, sigma; treat: diagonalised, Pitzer-Gwinn or
+// classical; or treat "scan: FILE", where FILE has columns phi and V and may have
+// lines F or I_r and symmetry number); torsion-term (V, n of one more term of the
 // torsion before); state (a diatomic molecule: wavenumber is the origin; columns
 // omega_e, omega_e x_e, omega_e y_e, B_e, alpha_e, gamma_e, D_J, beta_e, H_J,
 // and Omega or A_so). Wavenumbers may be in any unit that stands for an energy.

@@ -100,6 +100,19 @@ torsion, 250, 1, 10, 3, scan: scan.csv
 	if a, b := m.Part("torsion").Reduced(T0), want.Reduced(T0); math.Abs(a.LogQ-b.LogQ) > 1e-9 || math.Abs(a.C-b.C) > 1e-9 {
 		t.Errorf("torsion from a scan %+v, from the barrier %+v", a, b)
 	}
+	// The same with everything about the rotor in the file of the scan.
+	scan, err := os.ReadFile(filepath.Join(dir, "scan.csv"))
+	if err != nil {
+		t.Fatal(err)
+	}
+	write("rotor.csv", "# F/cm-1: 10, symmetry number: 3\n"+string(scan))
+	p = write("methyl2.csv", "# name: invented rotor, M/(g mol-1): 30\n# A/cm-1: 3, B/cm-1: 0.7, C/cm-1: 0.6, symmetry number: 1\nkind, wavenumber / cm-1, g, treat\nvibration, 900, 1, harmonic\ntorsion, 250, 1, replaced-by: rotor.csv\n")
+	if d, err = ReadMolecule(p); err != nil {
+		t.Fatal(err)
+	}
+	if a, b := molecule(t, d).Reduced(T0), m.Reduced(T0); a != b {
+		t.Errorf("rotor in the scan's file %+v, in the row %+v", a, b)
+	}
 	for name, c := range map[string]struct{ text, says string }{
 		"unknown line":   {"# formula: H2O, simmetry number: 2\nkind, wavenumber / cm-1\nvibration, 1\n", "simmetry number"},
 		"unknown kind":   {"# formula: H2O\nkind, wavenumber / cm-1\nvibrations, 1\n", "vibrations"},

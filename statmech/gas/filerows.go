@@ -52,7 +52,7 @@ func (c cell) text(symbol string) string {
 	return strings.TrimSpace(col.Text[c.i])
 }
 
-var fileColumns = map[string]bool{"kind": true, "wavenumber": true, "g": true, "u(wavenumber)": true, "treat": true, "F": true, "u(F)": true, "V": true,
+var fileColumns = map[string]bool{"kind": true, "wavenumber": true, "g": true, "u(wavenumber)": true, "treat": true, "F": true, "I_r": true, "u(F)": true, "V": true,
 
 	"n": true, "i": true, "k": true, "x": true, "sigma": true, "name": true, "note": true, "source": true, "omega_e": true, "omega_e x_e": true, "omega_e y_e": true, "B_e": true, "alpha_e": true, "gamma_e": true,
 	"D_J": true, "A_so": true, "beta_e": true, "H_J": true, "Omega": true, "u(omega_e)": true, "u(omega_e x_e)": true, "u(B_e)": true, "u(alpha_e)": true, "u(D_J)": true}
@@ -198,8 +198,11 @@ func (r *fileReader) torsion(c cell) error {
 	if t.F, _, err = c.energy("F"); err != nil {
 		return err
 	}
-	if t.F == 0 {
-		return orMissing(nil, "F")
+	if x, u, ok := c.number("I_r"); ok && t.F == 0 {
+		if u.Kind != unit.KindMomentOfInertia {
+			return fmt.Errorf("column I_r: %s is a unit of %s, want one of %s", u, u.Kind, unit.KindMomentOfInertia)
+		}
+		t.F = unit.MomentOfInertia(x).RotationalConstant()
 	}
 	if t.UF, _, err = c.energy("u(F)"); err != nil {
 		return err
@@ -208,8 +211,12 @@ func (r *fileReader) torsion(c cell) error {
 		t.Symmetry = int(x)
 	}
 	method := c.text("treat")
-	if file, ok := strings.CutPrefix(method, "scan:"); ok {
-		if t.Potential, err = ReadScan(filepath.Join(r.dir, filepath.Base(strings.TrimSpace(file)))); err != nil {
+	file, ok := strings.CutPrefix(method, "scan:")
+	if !ok {
+		file, ok = strings.CutPrefix(method, "replaced-by:")
+	}
+	if ok {
+		if err := r.scan(&t, filepath.Join(r.dir, filepath.Base(strings.TrimSpace(file)))); err != nil {
 			return err
 		}
 		if t.Symmetry > 1 {
@@ -220,6 +227,9 @@ func (r *fileReader) torsion(c cell) error {
 			}
 		}
 		method = ""
+	}
+	if t.F == 0 {
+		return fmt.Errorf("torsion %s: neither F nor the reduced moment I_r is given", t.Name)
 	}
 	switch strings.ToLower(method) {
 	case "", "diagonalised":
@@ -233,6 +243,35 @@ func (r *fileReader) torsion(c cell) error {
 	r.d.Vibrations = append(r.d.Vibrations, Vibration{Quantum: e, U: u})
 	r.d.Torsions = append(r.d.Torsions, t)
 	return r.torsionTerm(c)
+}
+
+// scan reads the potential of a torsion and, if the row does not have them, F or
+// I_r and the symmetry number from the scan's own lines.
+func (r *fileReader) scan(t *TorsionDescription, path string) error {
+	potential, notes, err := readScan(path)
+	if err != nil {
+		return err
+	}
+	t.Potential = potential
+	s := &fileReader{t: notes, used: map[string]bool{}}
+	if t.F == 0 {
+		if t.F, _, err = s.energyOf("F"); err != nil {
+			return err
+		}
+		if I, ok, err := s.quantityOf("I_r", unit.KindMomentOfInertia); err != nil {
+			return err
+		} else if ok && t.F == 0 {
+			t.F = unit.MomentOfInertia(I).RotationalConstant()
+		}
+	}
+	if t.Symmetry == 0 {
+		n, _, err := s.numberOf("symmetry number")
+		if err != nil {
+			return err
+		}
+		t.Symmetry = int(n)
+	}
+	return nil
 }
 
 func (r *fileReader) torsionTerm(c cell) error {

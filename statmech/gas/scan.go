@@ -43,10 +43,21 @@ func ReadGeometry(path string) ([]Atom, error) {
 // ReadScan reads a torsion scan from a table with the columns phi (deg or rad)
 // and V and returns its Fourier series, see [FitScan].
 func ReadScan(path string) (Fourier, error) {
+	f, _, err := readScan(path)
+	return f, err
+}
+
+func readScan(path string) (Fourier, *data.Table, error) {
 	t, err := data.Read(path)
 	if err != nil {
-		return Fourier{}, err
+		return Fourier{}, nil, err
 	}
+	f, err := scanOf(t)
+	return f, t, err
+}
+
+// scanOf fits the columns phi and V of a table.
+func scanOf(t *data.Table) (Fourier, error) {
 	phi, err := t.Column("phi")
 	if err != nil {
 		return Fourier{}, err
