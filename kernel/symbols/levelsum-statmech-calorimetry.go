@@ -36,6 +36,7 @@ func init() {
 		"ToITS90":                reflect.ValueOf(calorimetry.ToITS90),
 		"ToStandardPressure":     reflect.ValueOf(calorimetry.ToStandardPressure),
 		"TotalEntropy":           reflect.ValueOf(calorimetry.TotalEntropy),
+		"Transitions":            reflect.ValueOf(calorimetry.Transitions),
 
 		// type definitions
 		"Contribution":      reflect.ValueOf((*calorimetry.Contribution)(nil)),

@@ -40,6 +40,7 @@ func init() {
 		"Normal":           reflect.ValueOf(uncertain.Normal),
 		"Observed":         reflect.ValueOf(uncertain.Observed),
 		"ObservedTogether": reflect.ValueOf(uncertain.ObservedTogether),
+		"Of":               reflect.ValueOf(uncertain.Of),
 		"Oscillating":      reflect.ValueOf(uncertain.Oscillating),
 		"Parallel":         reflect.ValueOf(uncertain.Parallel),
 		"Pow":              reflect.ValueOf(uncertain.Pow),
