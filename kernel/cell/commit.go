@@ -46,6 +46,7 @@ func (s *Scope) Commit(p *Plan, reached func(name string) bool) (lost []string) 
 		}
 		s.setVar(v.Name(), obj, slot)
 	}
+	s.note(p, p.Source.ID)
 	return lost
 }
 

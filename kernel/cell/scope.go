@@ -59,6 +59,7 @@ type Scope struct {
 	dropped  map[string]string          // variables that were dropped, and why
 	slots    map[string][]*Slot         // all slots a name has had
 	units    map[*types.Package]*Unit
+	origins  origins
 }
 
 // NewScope returns an empty scope. The importer gives type information of
@@ -78,6 +79,7 @@ func NewScope(importer types.Importer, usual map[string]string) *Scope {
 		dropped:  map[string]string{},
 		slots:    map[string][]*Slot{},
 		units:    map[*types.Package]*Unit{},
+		origins:  origins{at: map[string]int{}, made: map[string]*origin{}},
 	}
 }
 

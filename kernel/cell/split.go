@@ -13,6 +13,7 @@ import (
 type Source struct {
 	N    int    // the cell's number in messages
 	Text string // what the user wrote
+	ID   string // the front end's name of the cell, or ""
 }
 
 // Name is the file name of the cell in positions: In[3].

@@ -15,7 +15,7 @@ import (
 // run checks and runs one cell.
 func (r *Runner) run(c engine.Cell) engine.Outcome {
 	out := engine.Outcome{How: map[string]any{}}
-	src := &cell.Source{N: c.N, Text: c.Source}
+	src := &cell.Source{N: c.N, Text: c.Source, ID: c.ID}
 	plan, err := r.scope.Check(src)
 	if err != nil {
 		out.Fault = compileFault(err)

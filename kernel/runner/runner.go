@@ -4,10 +4,10 @@ import (
 	"errors"
 	"fmt"
 	"io"
+	"log"
 	"os"
 	"runtime/debug"
 	"sync"
-	"time"
 
 	"levelsum/display"
 	"levelsum/display/draw"
@@ -93,6 +93,7 @@ func New(w *engine.Writer) (*Runner, error) {
 	r.interp.init(r)
 	r.built.init(r)
 	guard.Hooks.Panic = r.goroutinePanic
+	guard.Hooks.Fatal = logFatal
 	draw.Register()
 	display.SetSink(sink{r})
 	draw.Register()
@@ -183,19 +184,6 @@ func (r *Runner) send(ev engine.Event) {
 	<-r.acks
 }
 
-// state lists facts about the session for the parent.
-func (r *Runner) state() map[string]any {
-	var gs []string
-	for _, g := range guard.Goroutines() {
-		gs = append(gs, fmt.Sprintf("of In[%d], for %s", g.Cell, time.Since(g.Since).Round(time.Second)))
-	}
-	facts := map[string]any{"names": r.scope.Names(), "goroutines": gs}
-	if r.noKit != nil {
-		facts["compiled"] = r.noKit.Error()
-	}
-	return facts
-}
-
 // goroutinePanic notes a panic in a goroutine that the cell started and stops
 // the cell, which in Go would have ended with it.
 func (r *Runner) goroutinePanic(v any) {
@@ -211,4 +199,16 @@ func (r *Runner) goroutinePanic(v any) {
 		return
 	}
 	_ = r.w.Send(engine.Event{Op: "warn", Text: "a goroutine that a cell left behind has panicked: " + f.Message + "\n"})
+}
+
+// logFatal writes what a cell gave to log.Fatal and its kin.
+func logFatal(format string, v []any) {
+	switch format {
+	case "":
+		log.Print(v...)
+	case "\n":
+		log.Println(v...)
+	default:
+		log.Printf(format, v...)
+	}
 }

@@ -1,7 +1,7 @@
 package guard
 
 import (
-	"sort"
+	"slices"
 	"sync"
 	"time"
 )
@@ -61,6 +61,6 @@ func Goroutines() []Goroutine {
 	for _, g := range live.all {
 		out = append(out, g)
 	}
-	sort.Slice(out, func(i, j int) bool { return out[i].Since.Before(out[j].Since) })
+	slices.SortFunc(out, func(a, b Goroutine) int { return a.Since.Compare(b.Since) })
 	return out
 }

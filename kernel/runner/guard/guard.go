@@ -7,9 +7,7 @@
 package guard
 
 import (
-	"fmt"
 	"iter"
-	"log"
 	"sync"
 	"sync/atomic"
 	"time"
@@ -49,6 +47,10 @@ func (e UnreadError) Unwrap() error { return e.Err }
 var Hooks struct {
 	// Panic is told of a panic in a goroutine that a cell started.
 	Panic func(value any)
+	// Fatal logs what log.Fatal, log.Fatalf (with a format) or log.Fatalln
+	// (with "\n" for a format) was given. It is here because this package is
+	// linked into every plugin and is kept small.
+	Fatal func(format string, v []any)
 }
 
 var done atomic.Pointer[chan struct{}]
@@ -140,13 +142,13 @@ func Sleep(d time.Duration) {
 func Exit(code int) { panic(ExitError{code}) }
 
 // Fatal is log.Fatal in a cell.
-func Fatal(v ...any) { log.Output(2, fmt.Sprint(v...)); Exit(1) }
+func Fatal(v ...any) { Hooks.Fatal("", v); Exit(1) }
 
 // Fatalf is log.Fatalf in a cell.
-func Fatalf(format string, v ...any) { log.Output(2, fmt.Sprintf(format, v...)); Exit(1) }
+func Fatalf(format string, v ...any) { Hooks.Fatal(format, v); Exit(1) }
 
 // Fatalln is log.Fatalln in a cell.
-func Fatalln(v ...any) { log.Output(2, fmt.Sprintln(v...)); Exit(1) }
+func Fatalln(v ...any) { Hooks.Fatal("\n", v); Exit(1) }
 
 // shown holds the value of the cell's last expression.
 var shown struct {
