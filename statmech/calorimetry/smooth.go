@@ -20,6 +20,7 @@ type smoothed struct {
 	knots *spline
 	gain  [][]float64 // [knot][point]
 	press float64     // Σ w (leave-one-out residual)²
+	q, r  [][]float64 // factors of the weighted design
 }
 
 // pull turns weights of the knots into weights of the points.
@@ -77,6 +78,9 @@ func (pc *piece) smooth(run *data.Table, rows []int) error {
 		}
 		all = append(all, s)
 		best = min(best, s.press)
+		if n := len(all); n > 6 && all[n-1].press > 1.2*best && all[n-2].press > 1.2*best && all[n-3].press > 1.2*best && best < all[0].press {
+			break // more knots only follow the noise
+		}
 	}
 	if len(all) == 0 {
 		return fmt.Errorf("calorimetry: Smooth: no spline fits %s", pc.name)
@@ -88,6 +92,7 @@ func (pc *piece) smooth(run *data.Table, rows []int) error {
 		if s.press > limit {
 			continue
 		}
+		s.solve(weight)
 		pc.s = s
 		var sum, relative float64
 		for i, x := range pc.x {
@@ -140,23 +145,13 @@ func fitSpline(knots, x, y, weight []float64) *smoothed {
 	if !ok {
 		return nil
 	}
-	s := &smoothed{knots: sp, gain: make([][]float64, k)}
-	for j := range s.gain {
-		s.gain[j] = make([]float64, n)
-	}
-	for i := range n { // gain = R⁻¹ Qᵀ √W
-		root := math.Sqrt(weight[i])
-		for j := k - 1; j >= 0; j-- {
-			v := q[i][j] * root
-			for l := j + 1; l < k; l++ {
-				v -= float64(r[j][l] * s.gain[l][i])
-			}
-			s.gain[j][i] = v / r[j][j]
+	s := &smoothed{knots: sp, q: q, r: r}
+	c := make([]float64, k) // Qᵀ √W y
+	for i := range n {
+		v := math.Sqrt(weight[i]) * y[i]
+		for j := range k {
+			c[j] += float64(q[i][j] * v)
 		}
-	}
-	at := make([]float64, k)
-	for j := range at {
-		at[j] = dotted(s.gain[j], y)
 	}
 	for i := range n {
 		h := 0.0
@@ -166,10 +161,30 @@ func fitSpline(knots, x, y, weight []float64) *smoothed {
 		if h > 1-1e-9 {
 			return nil // a point that a coefficient of its own follows
 		}
-		d := (y[i]*math.Sqrt(weight[i]) - dotted(rows[i], at)) / (1 - h)
+		d := (y[i]*math.Sqrt(weight[i]) - dotted(q[i], c)) / (1 - h)
 		s.press += d * d
 	}
 	return s
+}
+
+// solve fills the gain, R⁻¹ Qᵀ √W.
+func (s *smoothed) solve(weight []float64) {
+	k, n := len(s.r), len(s.q)
+	s.gain = make([][]float64, k)
+	for j := range s.gain {
+		s.gain[j] = make([]float64, n)
+	}
+	for i := range n {
+		root := math.Sqrt(weight[i])
+		for j := k - 1; j >= 0; j-- {
+			v := s.q[i][j] * root
+			for l := j + 1; l < k; l++ {
+				v -= float64(s.r[j][l] * s.gain[l][i])
+			}
+			s.gain[j][i] = v / s.r[j][j]
+		}
+	}
+	s.q, s.r = nil, nil
 }
 
 // gramSchmidt factors rows = Q R, orthogonalising twice.
