@@ -210,6 +210,9 @@ func points(run *data.Table) []uncertain.Quantity {
 	out := make([]uncertain.Quantity, len(run.T))
 	for i, c := range run.Cp {
 		q := uncertain.Exact(float64(c))
+		if random == nil && run.UCommon == nil {
+			q = q.Withhold("the table has no uncertainties of Cp")
+		}
 		if random != nil && random[i] > 0 {
 			q = uncertain.Measured(float64(c), float64(random[i])).Named(fmt.Sprintf("Cp(%.6g K)", float64(run.T[i])))
 		}

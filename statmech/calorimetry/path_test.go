@@ -72,6 +72,33 @@ func TestCopperEntropy(t *testing.T) {
 	t.Log("\n" + p.View().Data["text/plain"].(string))
 }
 
+// TestRoundTableFile: the round table as a file keeps every digit.
+func TestRoundTableFile(t *testing.T) {
+	p := copperPath(t, false)
+	r := p.RoundTable(100, 200, 298.15)
+	run, err := r.Data()
+	if err != nil {
+		t.Fatal(err)
+	}
+	var b strings.Builder
+	if err := run.Write(&b); err != nil {
+		t.Fatal(err)
+	}
+	again, err := data.Parse("again", []byte(b.String()))
+	if err != nil {
+		t.Fatalf("%v\n%s", err, b.String())
+	}
+	s, err := again.Column("S")
+	if err != nil || s.Values[2] != p.Entropy(298.15).Value() {
+		t.Errorf("S = %v, %v", s.Values, err)
+	}
+	u, err := again.Column("u(S)")
+	if err != nil || u.Values[2] != p.Entropy(298.15).StandardUncertainty() {
+		t.Errorf("u(S) = %v, %v", u.Values, err)
+	}
+	t.Log("\n" + r.View().Data["text/plain"].(string))
+}
+
 // TestCopperMonteCarlo draws the points and the fit below them together.
 func TestCopperMonteCarlo(t *testing.T) {
 	for _, common := range []bool{false, true} {

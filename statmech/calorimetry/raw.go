@@ -220,6 +220,9 @@ type ReferenceCheck struct {
 // CompareReference compares the points of a run with the certified table,
 // interpolated by a spline in ln T. Points outside its range are refused.
 func CompareReference(run, certified *data.Table) (*ReferenceCheck, error) {
+	if certified.U == nil || run.U == nil {
+		return nil, fmt.Errorf("calorimetry: CompareReference: both tables need u(Cp), or a deviation says nothing")
+	}
 	p, err := ThirdLaw(certified, nil)
 	if err != nil {
 		return nil, err

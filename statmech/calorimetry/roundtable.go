@@ -4,6 +4,7 @@ import (
 	"fmt"
 
 	"levelsum/display"
+	"levelsum/statmech/data"
 	"levelsum/statmech/uncertain"
 	"levelsum/statmech/unit"
 )
@@ -91,4 +92,50 @@ func (r *RoundTable) View() display.View {
 		Notes: r.notes,
 		Limit: 400,
 	}.View()
+}
+
+// Data returns the table as a data table at full precision, to be saved or
+// read again: T, Cp, S, H = H(T) - H(0) and the Gibbs function with their
+// standard uncertainties where there are any.
+func (r *RoundTable) Data() (*data.Table, error) {
+	ts := make([]float64, len(r.T))
+	for i, T := range r.T {
+		ts[i] = float64(T)
+	}
+	var columns []data.Column
+	add := func(symbol, unitText string, values []float64) error {
+		c, err := data.NewColumn(symbol, unitText, values)
+		columns = append(columns, c)
+		return err
+	}
+	if err := add("T", "K", ts); err != nil {
+		return nil, err
+	}
+	for _, c := range []struct {
+		symbol, unit string
+		qs           []uncertain.Quantity
+	}{{"Cp", "J K-1 mol-1", r.HeatCapacity}, {"S", "J K-1 mol-1", r.Entropy}, {"H", "J mol-1", r.Enthalpy}, {"-(G-H)/T", "J K-1 mol-1", r.GibbsFunction}} {
+		values, us, known := make([]float64, len(c.qs)), make([]float64, len(c.qs)), true
+		for i, q := range c.qs {
+			values[i] = q.Value()
+			if q.Withheld() != "" {
+				known = false
+				continue
+			}
+			us[i] = q.StandardUncertainty()
+		}
+		if err := add(c.symbol, c.unit, values); err != nil {
+			return nil, err
+		}
+		if known {
+			if err := add("u("+c.symbol+")", c.unit, us); err != nil {
+				return nil, err
+			}
+		}
+	}
+	notes := []data.Note{{Key: "title", Value: "thermodynamic functions, " + r.name}, {Key: "coverage of u", Value: "k=1"}}
+	for _, n := range r.notes {
+		notes = append(notes, data.Note{Key: "note", Value: n})
+	}
+	return data.New(r.name, notes, columns...)
 }

@@ -5,6 +5,7 @@ import (
 	"math"
 
 	"levelsum/statmech/data"
+	"levelsum/statmech/uncertain"
 )
 
 // mostKnots bounds the search of the number of knots.
@@ -100,14 +101,28 @@ func (pc *piece) smooth(run *data.Table, rows []int) error {
 			sum += d * d * weight[i]
 			relative += (d / pc.cp[i]) * (d / pc.cp[i])
 		}
-		n := float64(len(pc.x))
+		n, k := float64(len(pc.x)), float64(len(s.knots.x))
 		pc.note = fmt.Sprintf("%s: smoothed with %d knots, root-mean-square deviation %.2g %%", pc.name, len(s.knots.x), 100*math.Sqrt(relative/n))
-		if random != nil && n > float64(len(s.knots.x)) {
-			pc.note += fmt.Sprintf(", %.2g u", math.Sqrt(sum/(n-float64(len(s.knots.x)))))
+		if run.URandom == nil && (run.U == nil || run.UCommon != nil) {
+			pc.scatter(math.Sqrt(relative / (n - k)))
+			return nil
 		}
+		pc.note += fmt.Sprintf(", %.2g u", math.Sqrt(sum/(n-k)))
 		return nil
 	}
 	return nil
+}
+
+// scatter gives the points a random relative uncertainty found from their
+// deviations, where the table has none.
+func (pc *piece) scatter(relative float64) {
+	for i, c := range pc.c {
+		if c.Withheld() != "" {
+			c = uncertain.Exact(pc.cp[i])
+		}
+		pc.c[i] = c.Plus(uncertain.Measured(0, relative*pc.cp[i]).Named(fmt.Sprintf("Cp(%.6g K)", pc.t[i])))
+	}
+	pc.note += fmt.Sprintf("; the random uncertainty of a point, %.2g %%, was found from the deviations", 100*relative)
 }
 
 // knotsAt places k knots so that as many points lie in each interval.

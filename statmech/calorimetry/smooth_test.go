@@ -337,3 +337,36 @@ func TestSmoothedPeak(t *testing.T) {
 		t.Errorf("warnings\n%s", all)
 	}
 }
+
+// TestNoUncertainty: a table without uncertainties gives an entropy without one,
+// not one of 0; smoothing finds the scatter.
+func TestNoUncertainty(t *testing.T) {
+	m := synthetic()
+	random := rand.New(rand.NewPCG(1, 7))
+	var ts, cs []float64
+	for T := 5.0; T < 300; T *= 1.02 {
+		ts, cs = append(ts, T), append(cs, float64(m.HeatCapacity(unit.Temperature(T)))*(1+0.004*random.NormFloat64()))
+	}
+	run := table(t, ts, cs, nil)
+	p, err := ThirdLaw(run, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if s := p.Entropy(290); !strings.Contains(s.Withheld(), "no uncertainties") {
+		t.Errorf("S = %v", s)
+	}
+	p.RoundTable(50, 100).View()
+	if p, err = Smooth(run, nil); err != nil {
+		t.Fatal(err)
+	}
+	s := p.Entropy(290)
+	// 0.4 % at steps of 2 %: u² = Σ (Cp Δln T · 0.004)².
+	var u2 float64
+	for _, c := range cs {
+		u2 += math.Pow(0.004*c*math.Log(1.02), 2)
+	}
+	within(t, "u(S)", s.StandardUncertainty(), math.Sqrt(u2), 0.2*math.Sqrt(u2))
+	if all := strings.Join(p.RoundTable(100).notes, "\n"); !strings.Contains(all, "was found from the deviations") {
+		t.Errorf("notes %s", all)
+	}
+}

@@ -36,6 +36,14 @@ func (c ContributionTable) View() display.View {
 	if total.Withheld() == "" && total.StandardUncertainty() > 0 {
 		lines = append(lines, fmt.Sprintf("standard uncertainties (k = 1); u(S) random %.2g, common %.2g J/(mol K)", total.RandomPart(), total.CommonPart()))
 	}
+	if reason := total.Withheld(); reason != "" {
+		lines = append(lines, "no standard uncertainties: "+reason)
+	}
+	for _, pc := range c.path.pieces {
+		if pc.note != "" {
+			lines = append(lines, pc.note)
+		}
+	}
 	for _, n := range c.path.Notes(c.T) {
 		lines = append(lines, "warning: "+n)
 	}
