@@ -55,6 +55,7 @@ func init() {
 		"Schottky":          reflect.ValueOf((*solid.Schottky)(nil)),
 		"Stiffness":         reflect.ValueOf((*solid.Stiffness)(nil)),
 		"Sum":               reflect.ValueOf((*solid.Sum)(nil)),
+		"Superconductor":    reflect.ValueOf((*solid.Superconductor)(nil)),
 		"Tarasov":           reflect.ValueOf((*solid.Tarasov)(nil)),
 		"Term":              reflect.ValueOf((*solid.Term)(nil)),
 
