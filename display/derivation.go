@@ -44,7 +44,8 @@ type Step struct {
 	// Compute works the result out again from the numbers of the other symbols,
 	// in the units that they are shown in. A result that differs by more than a
 	// part in 1e9 is refused: a wrong unit, or a formula that is not the one
-	// that gave the number.
+	// that gave the number. It is also evaluated in other base units, and
+	// refused if its units do not fit.
 	Compute func(number map[string]float64) float64
 }
 
@@ -172,7 +173,11 @@ func (r *stepRead) recompute() (err error) {
 		return fmt.Errorf("the formula gives %s = %s %s from the numbers put in, but the result is %s %s",
 			r.Result, full(got), m.unit, full(m.v), m.unit)
 	}
-	return nil
+	units := map[string]string{}
+	for name, v := range r.vals {
+		units[name] = v.m.unit
+	}
+	return checkUnits(r.Compute, numbers, units, m.unit)
 }
 
 // symbols is the formula with its symbols, numbers the one with numbers.

@@ -151,6 +151,8 @@ func TestDerivation(t *testing.T) {
 		{func(s *Step) { s.Symbols[0].Value = kelvin(3) }, `said to be in "J/K", but its value is in "K"`},
 		{func(s *Step) { s.Symbols[0].Value = nil }, "the result S is no symbol with a number"},
 		{func(s *Step) { s.Symbols[0].Value = 3.83e-23 }, "but the result is 3.83e-23 J/K"},
+		{func(s *Step) { s.Symbols[1].Unit = "J" }, "the units do not fit"},
+		{func(s *Step) { s.Symbols[2].Unit = "mol" }, "the units do not fit"},
 		{func(s *Step) { s.Symbols[2].Value = nil }, "the formula gives S = -Inf J/K"},
 		{func(s *Step) { s.Compute = func(map[string]float64) float64 { panic("no") } }, "Compute panicked: no"},
 		{func(s *Step) { s.Symbols[1].Name = "S" }, "declared twice"},
@@ -161,5 +163,27 @@ func TestDerivation(t *testing.T) {
 		if err := d.Check(); err == nil || !strings.Contains(err.Error(), test.want) {
 			t.Errorf("%v, want %q", err, test.want)
 		}
+	}
+}
+
+// Dimensions by the definitions of the units in the SI brochure.
+func TestDimension(t *testing.T) {
+	for _, test := range []struct{ a, b string }{
+		{"J", "kg m2 s-2"}, {"Pa", "N/m2"}, {"W", "J/s"}, {"kJ/mol", "kg m2 s-2 mol-1"}, {"V", "J/C"}, {"T", "V s/m2"}, {"cm-1", "1/m"},
+		{"%", "1"}, {"mm", "km"}, {"GPa", "mbar"}, {"L", "m3"}, {"THz", "1/s"}, {"daN", "N"},
+	} {
+		a, oka := dimensionOf(test.a)
+		b, okb := dimensionOf(test.b)
+		if !oka || !okb || a != b {
+			t.Errorf("%s is %v (%v), %s is %v (%v)", test.a, a, oka, test.b, b, okb)
+		}
+	}
+	for _, unknown := range []string{"°C", "foo", "J/mol K", "kkg"} {
+		if d, ok := dimensionOf(unknown); ok {
+			t.Errorf("%s has the dimension %v", unknown, d)
+		}
+	}
+	if a, _ := dimensionOf("J"); a == (dimension{}) {
+		t.Error("a joule has no dimension")
 	}
 }

@@ -217,3 +217,16 @@ func OverPower(quantity, unit, text string, power int) []Run {
 	rs = append(rs, Run{Text: "(10"}, p, Run{Text: "\u00a0"})
 	return merge(append(append(rs, u...), Run{Text: ")"}))
 }
+
+// Factors lists the factors of a unit text with their powers; ok is false if
+// the text is not understood.
+func Factors(unit string) (symbols []string, powers []int, ok bool) {
+	if Dimensionless(unit) {
+		return nil, nil, true
+	}
+	fs, ok := factors(unit)
+	for _, f := range fs {
+		symbols, powers = append(symbols, f.sym), append(powers, f.exp)
+	}
+	return symbols, powers, ok
+}
