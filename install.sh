@@ -99,4 +99,6 @@ if [ "$(cat "$env/levelsum-packages" 2>/dev/null)" != "$lab_packages" ]; then
 fi
 "$bin/levelsum" install -prefix "$env" -source "$here" # an active environment may hold the kernel
 rm -rf "$work" # exec leaves no trap
-exec "$env/bin/jupyter-lab" "$notebook"
+root=()
+[ "$(id -u)" != 0 ] || root=(--allow-root) # JupyterLab asks for it
+exec "$env/bin/jupyter-lab" "${root[@]}" "$notebook"
