@@ -181,7 +181,13 @@ func TestElasticRefusals(t *testing.T) {
 			t.Errorf("%s: %v, want %q", name, err, test.want)
 		}
 	}
+	// Constants of 300 K (168.4, 121.4, 75.4 GPa, 8932 kg/m³, from memory) give
+	// 331 K, 13 K less: the warning's reason.
+	good.Stiffness, good.Density = CubicStiffness(168.4*unit.GPa, 121.4*unit.GPa, 75.4*unit.GPa), 8932
 	good.MeasuredAt = 300 * unit.K
+	if e, err := good.Evaluate(); err != nil || math.Abs(float64(e.Theta)-331) > 0.5 {
+		t.Errorf("constants of 300 K: %v, %v, want 331 K", e.Theta, err)
+	}
 	if e, err := good.Evaluate(); err != nil || len(e.Warnings) != 1 || !strings.Contains(e.Warnings[0], "300 K") {
 		t.Errorf("constants of 300 K: %v, %v", e.Warnings, err)
 	}
