@@ -64,7 +64,7 @@ func (p *Path) RoundTable(ts ...unit.Temperature) *RoundTable {
 		r.Enthalpy = append(r.Enthalpy, h)
 		r.GibbsFunction = append(r.GibbsFunction, s.Minus(h.Scale(1/float64(T))).WithUnit("J/(mol K)"))
 	}
-	r.notes = []string{zero(p), "standard uncertainties (k = 1) in the last digits"}
+	r.notes = []string{zero(p)}
 	for _, pc := range p.pieces {
 		if pc.note != "" {
 			r.notes = append(r.notes, pc.note)

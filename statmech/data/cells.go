@@ -185,6 +185,12 @@ func (t *Table) convert(p *problems, lines []int) {
 		}
 		byName[c.Symbol] = c
 	}
+	for _, c := range t.Columns {
+		if c.of != "" && c.part != 0 && byName["u("+c.of+")"] != nil {
+			p.add(0, 0, "u("+c.of+")", "stands beside %s: is it the random part or the whole? write u_r(%s) and u_c(%s)", c.Symbol, c.of, c.of)
+			return
+		}
+	}
 	// Quantities first, their uncertainties after them.
 	for k := range t.Columns {
 		c := &t.Columns[k]

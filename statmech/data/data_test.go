@@ -110,6 +110,7 @@ func TestRefusals(t *testing.T) {
 		{"per gram without M", "T / K, Cp / (J K-1 g-1)\n300, 24.5\n", `needs the molar mass`},
 		{"uncertainty of nothing", "T / K, u(Cp) / %\n300, 24.5\n", `column "u(Cp)": an uncertainty of "Cp", but there is no such column`},
 		{"uncertainty in another unit", "T / K, Cp / (J K-1 mol-1), u(Cp) / K\n300, 24.5, 1\n", `column "u(Cp)": "K" is a unit of temperature`},
+		{"whole and part", "T / K, Cp / (J K-1 mol-1), u(Cp) / %, u_c(Cp) / %\n300, 24.5, 1, 1\n", `column "u(Cp)": stands beside u_c(Cp)`},
 		{"per cent of Celsius", "T / °C, Cp / (J K-1 mol-1), u(T) / %\n20, 24.5, 1\n", `per cent of a temperature in °C has no meaning`},
 		{"coverage", "# coverage of u: two sigma\nT / K, Cp / (J K-1 mol-1), u(Cp) / %\n20, 24.5, 1\n", `coverage of u: "two sigma" is not understood`},
 		{"no rows", "T / K, Cp / (J K-1 mol-1)\n", `a header and no rows`},

@@ -111,15 +111,17 @@ func (f Notation) Format(value, u float64) string {
 		return strconv.FormatFloat(value, 'g', -1, 64)
 	}
 	power := 0
-	if size := max(math.Abs(value), u); size >= 1e7 || size < 1e-3 {
+	if size := max(math.Abs(value), u); size >= 1e7 || size < 1e-4 || u >= 1e3 && size >= 1e4 || u < 1e-9 {
 		_, power = scientific(size, 17)
-	} else if _, exp := f.Rule.digits(u); exp > 5 {
-		power = exp
+		// Rounding may carry 9.99 to 10.0.
+		if v, w := f.Rule.Round(shiftDecimal(value, -power), shiftDecimal(u, -power)); strings.HasPrefix(strings.TrimPrefix(v, "-"), "10") || strings.HasPrefix(w, "10") {
+			power++
+		}
 	}
 	suffix := ""
 	if power != 0 {
 		value, u = shiftDecimal(value, -power), shiftDecimal(u, -power)
-		suffix = "e" + strconv.Itoa(power)
+		suffix = "×10" + raised(power)
 	}
 	v, w := f.Rule.Round(value, u)
 	if f.PlusMinus {
@@ -132,6 +134,19 @@ func (f Notation) Format(value, u float64) string {
 		w = strings.TrimLeft(w[2:], "0")
 	}
 	return v + "(" + w + ")" + suffix
+}
+
+// raised writes an exponent with raised digits.
+func raised(n int) string {
+	var b strings.Builder
+	for _, r := range strconv.Itoa(n) {
+		if r == '-' {
+			b.WriteRune('⁻')
+			continue
+		}
+		b.WriteRune([]rune("⁰¹²³⁴⁵⁶⁷⁸⁹")[r-'0'])
+	}
+	return b.String()
 }
 
 // shiftDecimal returns x·10^n by its shortest decimal text, so that 962e-4
