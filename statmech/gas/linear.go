@@ -43,6 +43,9 @@ func (r LinearRotor) Reduced(T unit.Temperature) statmech.Reduced {
 		return r.classical(T)
 	}
 	kt := unit.Energy(unit.Boltzmann * float64(T))
+	if last := r.LastLevel(); kt/r.B > 1e6 && (last < 0 || last > 20000) {
+		return r.expanded(float64(r.B / kt))
+	}
 	var s levelSum
 	r.each(func(J int, E unit.Energy, g float64) bool {
 		x := float64(E / kt)
@@ -87,11 +90,8 @@ func (r LinearRotor) LastLevel() int {
 	if r.D <= 0 {
 		return -1
 	}
-	J := 0
-	for 2*float64(r.D)*float64(J+1)*float64(J+1) < float64(r.B) {
-		J++
-	}
-	return J
+	// The largest J with 2DJ² < B.
+	return int(math.Ceil(min(math.Sqrt(float64(r.B)/(2*float64(r.D))), 1e9))) - 1
 }
 
 func (r LinearRotor) check(fn string) error {
@@ -111,6 +111,14 @@ func (r LinearRotor) check(fn string) error {
 		return &statmech.DomainError{Func: fn, Arg: "Symmetry", Value: short(float64(r.Symmetry)), Want: "1 or 2 for a linear molecule"}
 	}
 	return nil
+}
+
+// expanded returns the first terms of Mulholland's expansion for x = B/kT below
+// 1e-6, where they are exact to rounding: q = (1 + x/3 + x²/15)/x.
+func (r LinearRotor) expanded(x float64) statmech.Reduced {
+	q := (1 + x/3 + x*x/15) / x * r.Spin.mean(nil) * r.Spin.factor(r.Symmetry)
+	z := float64(r.ZeroPointEnergy()/r.B) * x
+	return statmech.Reduced{LogQ: math.Log(q) + z, U: 1 - x/3 - x*x/45 - z, C: 1 + x*x/45}
 }
 
 func (r LinearRotor) classical(T unit.Temperature) statmech.Reduced {

@@ -293,3 +293,17 @@ func BenchmarkAsymmetricLevels(b *testing.B) {
 }
 
 func contains(s, part string) bool { return strings.Contains(s, part) }
+
+// Far above the constants: the expansion meets the sum, at kT/B = 1e6; what it has
+// beyond ln kT/B there is below 1e-6.
+func TestLinearRotorHot(t *testing.T) {
+	for _, r := range []LinearRotor{{B: unit.KelvinEnergy, Symmetry: 2}, {B: unit.KelvinEnergy, Spin: &SpinWeights{Weights: []float64{0, 3}, Total: 4}}} {
+		a, b := r.Reduced(0.999e6), r.expanded(1/0.999e6)
+		if math.Abs(a.LogQ-b.LogQ) > 1e-12 || math.Abs(a.U-b.U) > 1e-12 || math.Abs(a.C-b.C) > 1e-12 {
+			t.Errorf("sum %+v, expansion %+v", a, b)
+		}
+		if x := r.Reduced(1e15); rel(x.LogQ, b.LogQ+math.Log(1e15/0.999e6)) > 1e-7 {
+			t.Errorf("at 1e15 K: %+v", x)
+		}
+	}
+}

@@ -91,6 +91,10 @@ func NewTorsion(F unit.Energy, potential Fourier, sigma int, method TorsionMetho
 		return nil, &statmech.DomainError{Func: fn, Arg: "sigma", Value: fmt.Sprint(sigma), Want: fmt.Sprintf("a divisor of %d, the symmetry that the potential has", n)}
 	}
 	t := &Torsion{f: F, potential: potential, sigma: sigma, method: method}
+	if 2*math.Sqrt(t.height()/float64(F))+20 > largestBasis/2 || potential.order() > 100 {
+		return nil, &statmech.DomainError{Func: fn, Arg: "potential", Value: fmt.Sprintf("amplitudes of %.3g cm-1, order %d", unit.Energy(t.height()).In(unit.PerCm), potential.order()),
+			Want: "below a million times F, of order 100 at most: units may be mixed"}
+	}
 	t.phi, t.vMin = potential.minimum()
 	if _, _, v2 := potential.derivatives(t.phi); v2 > 0 {
 		t.quantum = math.Sqrt(2 * float64(F) * v2)
@@ -114,6 +118,13 @@ func (t *Torsion) Reduced(T unit.Temperature) statmech.Reduced {
 		}
 		return r
 	}
+	if t.need(T) > largestBasis {
+		// kT is a million times F: the classical integral is exact to 1e-7,
+		// counted from the ground level.
+		r := t.classical(T)
+		z := t.ZeroPointEnergy().OverKT(T)
+		return r.Add(statmech.Reduced{LogQ: z, U: -z})
+	}
 	r := t.levelsTo(T).Reduced(T)
 	r.LogQ -= math.Log(float64(t.sigma))
 	return r
@@ -127,7 +138,7 @@ func (t *Torsion) ReducedAt(ts []unit.Temperature) []statmech.Reduced {
 		statmech.CheckTemperature("gas.Torsion.ReducedAt", T)
 		hot = max(hot, T)
 	}
-	if t.method == Diagonalised && hot > 0 {
+	if t.method == Diagonalised && hot > 0 && t.need(hot) <= largestBasis {
 		t.levelsTo(hot) // one diagonalisation for all
 	}
 	for i, T := range ts {
@@ -159,7 +170,7 @@ func (t *Torsion) ZeroPointEnergy() unit.Energy {
 	case PitzerGwinn:
 		return unit.Energy(t.quantum / 2)
 	}
-	return t.levelsTo(300 * unit.K).ZeroPointEnergy()
+	return t.levelsTo(1 * unit.K).ZeroPointEnergy()
 }
 
 // Levels returns the levels above the minimum of the potential, enough of them
@@ -208,11 +219,8 @@ func (t *Torsion) classical(T unit.Temperature) statmech.Reduced {
 func (t *Torsion) levelsTo(T unit.Temperature) *statmech.Levels {
 	t.mu.Lock()
 	defer t.mu.Unlock()
-	need := int(math.Sqrt(40*unit.Boltzmann*float64(T)/float64(t.f))) + 2*t.potential.order() + 10
-	// The barrier too must be well inside the basis.
-	need = max(need, int(2*math.Sqrt((t.height()+1e-30)/float64(t.f)))+20)
 	m := 200
-	for m < need {
+	for m < min(t.need(T), largestBasis) {
 		m = m * 3 / 2
 	}
 	if t.levels == nil || m > t.mMax {
@@ -220,6 +228,16 @@ func (t *Torsion) levelsTo(T unit.Temperature) *statmech.Levels {
 		t.levels = t.diagonalise(m)
 	}
 	return t.levels
+}
+
+// largestBasis is the highest plane wave of a basis.
+const largestBasis = 4000
+
+// need returns the highest plane wave that T and the barrier ask for.
+func (t *Torsion) need(T unit.Temperature) int {
+	m := math.Sqrt(40*unit.Boltzmann*float64(T)/float64(t.f)) + float64(2*t.potential.order()+10)
+	m = math.Max(m, 2*math.Sqrt(t.height()/float64(t.f))+20)
+	return int(math.Min(m, 1e9))
 }
 
 // height returns a bound of V - V_min.

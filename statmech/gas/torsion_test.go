@@ -144,3 +144,20 @@ func BenchmarkTorsion(b *testing.B) {
 		x.Reduced(300 * unit.K)
 	}
 }
+
+// Beyond the largest basis the classical integral takes over.
+func TestTorsionHot(t *testing.T) {
+	x := newTorsion(t, 0.5*unit.PerCm, Barrier(300*unit.PerCm, 3), 3, Diagonalised)
+	edge := unit.Temperature(float64(x.f) * 3980 * 3980 / (40 * unit.Boltzmann)) // need is just below the limit
+	if n := x.need(edge); n > largestBasis {
+		t.Fatalf("need %d", n)
+	}
+	z := x.ZeroPointEnergy().OverKT(edge)
+	a, b := x.Reduced(edge), x.classical(edge).Add(statmech.Reduced{LogQ: z, U: -z})
+	if math.Abs(a.LogQ-b.LogQ) > 1e-7 || math.Abs(a.U-b.U) > 1e-7 || math.Abs(a.C-b.C) > 1e-7 {
+		t.Errorf("at %v: levels %+v, classical %+v", edge, a, b)
+	}
+	if r := x.Reduced(1e7 * unit.K); math.Abs(r.C-0.5) > 1e-6 {
+		t.Errorf("at 1e7 K: %+v", r)
+	}
+}
