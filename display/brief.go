@@ -183,6 +183,18 @@ func methodText(v reflect.Value) (s string, ok bool) {
 		return callText(v, "Error", x.Error), true
 	case fmt.Stringer:
 		return callText(v, "String", x.String), true
+	case Viewer:
+		return callText(v, "View", func() string {
+			t, _ := x.View().Data["text/plain"].(string)
+			line, _, more := strings.Cut(t, "\n")
+			switch {
+			case more:
+				line += " …"
+			case line == "":
+				line = fmt.Sprintf("(%T)", x)
+			}
+			return line
+		}), true
 	}
 	return "", false
 }

@@ -14,6 +14,7 @@ const (
 	textLimit   = 20000 // characters of a text
 	valueLimit  = 40    // values of a slice of numbers
 	columnLimit = 12    // columns of a matrix
+	viewerLimit = 20    // values that show themselves
 )
 
 // ViewOf returns how v looks: by its own View if it is a [Viewer], else in a
@@ -29,6 +30,9 @@ func ViewOf(v any) (view View) {
 	}()
 	if v == nil {
 		return Text("nil")
+	}
+	if w, ok := v.(View); ok {
+		return mended(w, "display.View")
 	}
 	rv := reflect.ValueOf(v)
 	if w, ok := v.(Viewer); ok {
@@ -78,9 +82,13 @@ func viewOfViewer(w Viewer) (view View) {
 			view = Text(fmt.Sprintf("(%T: its View panicked: %s)", w, panicText(r)))
 		}
 	}()
-	view = w.View()
+	return mended(w.View(), fmt.Sprintf("%T", w))
+}
+
+// mended adds plain text to a view that has none.
+func mended(view View, name string) View {
 	if _, ok := view.Data["text/plain"]; !ok {
-		data := map[string]any{"text/plain": fmt.Sprintf("(%T)", w)}
+		data := map[string]any{"text/plain": "(" + name + ")"}
 		for k, d := range view.Data {
 			data[k] = d
 		}
@@ -111,6 +119,9 @@ func viewOfSlice(v reflect.Value) View {
 	}
 	if et.Kind() == reflect.Pointer && et.Elem().Kind() == reflect.Struct {
 		et = et.Elem()
+	}
+	if n <= viewerLimit && v.Type().Elem().Implements(reflect.TypeFor[Viewer]()) {
+		return viewOfViewers(v)
 	}
 	if et.Kind() == reflect.Struct && et.NumField() > 0 && !hasText(et) {
 		if t, err := TableOf(v.Interface()); err == nil {
@@ -156,6 +167,22 @@ func viewOfSlice(v reflect.Value) View {
 		fmt.Fprintf(&b, " (%d values)", n)
 	}
 	return Text(b.String())
+}
+
+// viewOfViewers shows values that show themselves one under the other.
+func viewOfViewers(v reflect.Value) View {
+	var text, html []string
+	for i := range v.Len() {
+		one := ViewOf(v.Index(i).Interface())
+		t, _ := one.Data["text/plain"].(string)
+		text = append(text, t)
+		h, ok := one.Data["text/html"].(string)
+		if !ok {
+			h = "<pre>" + mark.Escape(t) + "</pre>"
+		}
+		html = append(html, "<div>"+h+"</div>")
+	}
+	return View{Data: map[string]any{"text/plain": strings.Join(text, "\n"), "text/html": strings.Join(html, "\n")}}
 }
 
 func numeric(t reflect.Type) bool {

@@ -55,6 +55,7 @@ func TestViewOf(t *testing.T) {
 		struct{}{}, r, nest, errors.New("boom"), func(T kelvin) molar { return 1 }, (func())(nil), ch, (chan int)(nil),
 		mat.NewDense(2, 3, []float64{1, 2, 3, 4.25, 5, 6}), [][]float64{{1, 2}, {3, 4.5}}, [][]float64{{1}, {2, 3}},
 		badText{}, []badText{{}}, badErr{}, badView{}, half{}, (*half)(nil),
+		Text("a view"), View{}, []Number{{Name: "a", Value: 1, Unit: "K"}, {Name: "b", Value: 2}}, []Viewer{half{}, badView{}}, map[string]any{"t": Table{}, "h": half{}},
 	} {
 		b.WriteString("--- ")
 		if v != nil {
@@ -63,6 +64,11 @@ func TestViewOf(t *testing.T) {
 		b.WriteString("\n" + text(v) + "\n")
 	}
 	golden(t, "viewof.txt", b.String())
+}
+
+func TestViewersInARow(t *testing.T) {
+	v := ViewOf([]Viewer{Number{Name: "<b>", Value: 1, Unit: "K"}, badView{}})
+	wellFormed(t, v.Data["text/html"].(string))
 }
 
 func TestViewOfWithoutAddresses(t *testing.T) {
