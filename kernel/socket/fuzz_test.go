@@ -55,10 +55,10 @@ func (tg *target) attack(t testing.TB, b []byte) {
 			}
 			defer c.Close()
 			c.SetDeadline(time.Now().Add(patience))
-			go func() {
+			wg.Go(func() {
 				c.Write(b)
 				c.(*net.UnixConn).CloseWrite()
-			}()
+			})
 			wantGone(t, c)
 		})
 	}
