@@ -3,6 +3,7 @@ package assist
 import (
 	"cmp"
 	"go/ast"
+	"go/parser"
 	"go/scanner"
 	"go/token"
 	"go/types"
@@ -18,9 +19,8 @@ type Completion struct {
 	Matches    []Match
 }
 
-// A Match is one way to complete. Kind is "function", "method", "instance" (a
-// variable), "constant", "class" (a type), "interface", "property" (a field),
-// "module" (a package) or "keyword".
+// A Match is one way to complete. Kind is "function", "method", "variable",
+// "constant", "type", "field", "module" (a package) or "keyword".
 type Match struct {
 	Text, Kind, Signature string
 	rank                  int // lower comes first
@@ -28,33 +28,31 @@ type Match struct {
 
 // The ranks of matches.
 const (
-	rankWanted  = iota // has just the type that is wanted here
+	rankWanted  = iota // a constant, or what else makes the type that is wanted here
+	rankFits           // a variable of the type that is wanted here
 	rankMember         // a field that a struct literal lacks, a member
 	rankLocal          // declared in this cell
 	rankSession        // declared in the session
 	rankPackage
 	rankBuiltin
+	rankKeyword
 )
 
 // Complete says how source can go on at the offset cursor.
 func Complete(scope Scope, source string, cursor int) Completion {
 	cursor = max(0, min(cursor, len(source)))
+	if start, end, ok := importAt(source, cursor); ok {
+		return Completion{start, end, importPaths(scope, source[start:cursor])}
+	}
 	start, end := wordAt(source, cursor)
 	prefix := source[start:cursor]
 	none := Completion{Start: cursor, End: cursor}
 	if inText(source, start) {
 		return none
 	}
-	text := source[:start] + placeholder + source[end:]
-	c := check(scope, text)
-	isCursor := func(id *ast.Ident) bool { return id.Name == placeholder }
-	path := c.pathTo(isCursor)
+	c, path := checkAt(scope, source, start, end)
 	if path == nil {
-		// What follows the cursor keeps the parser from seeing it.
-		c = check(scope, source[:start]+placeholder)
-		if path = c.pathTo(isCursor); path == nil {
-			return none
-		}
+		return none
 	}
 	out := Completion{Start: start, End: end}
 	for _, m := range c.candidates(scope, path) {
@@ -67,6 +65,48 @@ func Complete(scope Scope, source string, cursor int) Completion {
 	})
 	out.Matches = slices.CompactFunc(out.Matches, func(a, b Match) bool { return a.Text == b.Text })
 	return out
+}
+
+// checkAt checks the source with the placeholder from start to end and returns
+// the way to it, nil if the parser does not see it in any form.
+func checkAt(scope Scope, source string, start, end int) (*checked, []ast.Node) {
+	before, after := source[:start], source[end:]
+	for _, text := range []func() string{
+		func() string { return before + placeholder + after },
+		// What follows the cursor may keep the parser from seeing it.
+		func() string { return before + placeholder },
+		// After go and defer it sees only calls.
+		func() string { return before + placeholder + "()" + after },
+		// So may what is wrong before.
+		func() string { return withoutBroken(before) + placeholder },
+	} {
+		c := check(scope, text())
+		if path := c.pathTo(func(id *ast.Ident) bool { return id.Name == placeholder }); path != nil {
+			return c, path
+		}
+	}
+	return nil, nil
+}
+
+// withoutBroken blanks the statements and declarations that do not parse, but
+// for the last one.
+func withoutBroken(source string) string {
+	b := []byte(source)
+	chunks := tokenise(source).chunks
+	for i, k := range chunks {
+		if i == len(chunks)-1 {
+			break
+		}
+		text := source[k.start:k.end]
+		around := "package cell;func _(){\n" + text + "\n}"
+		if k.isDeclaration() {
+			around = "package cell;" + text
+		}
+		if _, err := parser.ParseFile(token.NewFileSet(), "", around, parser.SkipObjectResolution); err != nil {
+			copy(b[k.start:k.end], blanked(text))
+		}
+	}
+	return string(b)
 }
 
 // hasPrefix is strings.HasPrefix that does not care for case.
@@ -139,13 +179,17 @@ func (c *checked) candidates(scope Scope, path []ast.Node) []Match {
 			return all
 		}
 	}
-	all = append(all, c.wanted(scope, path)...)
-	all = append(all, c.visible(id.Pos())...)
+	want := c.wantedType(path)
+	all = append(all, c.wanted(scope, want)...)
+	if want == nil && c.scales(path) {
+		all = append(all, c.units(scope)...)
+	}
+	all = append(all, c.visible(id.Pos(), want)...)
 	for _, name := range scope.ImportNames() {
 		all = append(all, Match{Text: name, Kind: "module", Signature: scope.ImportPath(name), rank: rankPackage})
 	}
 	for tok := token.BREAK; tok <= token.VAR; tok++ {
-		all = append(all, Match{Text: tok.String(), Kind: "keyword", rank: rankBuiltin})
+		all = append(all, Match{Text: tok.String(), Kind: "keyword", rank: rankKeyword})
 	}
 	return all
 }
@@ -157,8 +201,9 @@ func parent(path []ast.Node, i int) ast.Node {
 	return nil
 }
 
-// visible lists what is declared where pos is.
-func (c *checked) visible(pos token.Pos) []Match {
+// visible lists what is declared where pos is. What has the type want comes
+// first.
+func (c *checked) visible(pos token.Pos, want types.Type) []Match {
 	var all []Match
 	inner := c.pkg.Scope().Innermost(pos)
 	if inner == nil {
@@ -177,7 +222,11 @@ func (c *checked) visible(pos token.Pos) []Match {
 				continue
 			}
 			if _, o := inner.LookupParent(name, pos); o != nil && o == s.Lookup(name) {
-				all = append(all, match(o, rank))
+				m := match(o, rank)
+				if _, isVar := o.(*types.Var); isVar && want != nil && types.Identical(o.Type(), want) {
+					m.rank = rankFits
+				}
+				all = append(all, m)
 			}
 		}
 	}
@@ -197,10 +246,7 @@ func kindOf(o types.Object) string {
 	case *types.PkgName:
 		return "module"
 	case *types.TypeName:
-		if types.IsInterface(o.Type()) {
-			return "interface"
-		}
-		return "class"
+		return "type"
 	case *types.Const, *types.Nil:
 		return "constant"
 	case *types.Builtin:
@@ -212,10 +258,10 @@ func kindOf(o types.Object) string {
 		return "function"
 	case *types.Var:
 		if o.IsField() {
-			return "property"
+			return "field"
 		}
 	}
-	return "instance"
+	return "variable"
 }
 
 // byName names packages in types by their names.

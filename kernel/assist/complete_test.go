@@ -24,11 +24,19 @@ func (s session) Names() []string                            { return s.pkg.Scop
 func (s session) Lookup(name string) types.Object            { return s.pkg.Scope().Lookup(name) }
 func (s session) ImportNames() []string                      { return slices.Sorted(maps.Keys(s.names)) }
 func (s session) ImportPath(name string) string              { return s.names[name] }
+func (s session) ImportPaths() []string                      { return importable }
 func (s session) Import(path string) (*types.Package, error) { return s.imp.Import(path) }
+
+var importable = []string{"levelsum/statmech/unit", "math", "math/bits", "math/cmplx", "math/rand", "time"}
 
 const declared = `package cell
 
-import "time"
+import (
+	"time"
+
+	"levelsum/statmech"
+	"levelsum/statmech/unit"
+)
 
 type Sample struct {
 	Mass, Temp float64
@@ -56,6 +64,15 @@ func heat(d time.Duration, more ...Sample) float64 { return 0 }
 func pair() (int, error)                            { return 0, nil }
 
 const steps = 12
+
+type option func(*Sample)
+
+var room, cold unit.Temperature
+var gap unit.Energy
+var temperatures []unit.Temperature
+
+func cv(T unit.Temperature, label string) unit.MolarEntropy { return 0 }
+func audit(o statmech.AuditOptions)                          {}
 `
 
 // oneSession is made once: the checker reads the source of all that it imports.
@@ -67,7 +84,8 @@ var oneSession = sync.OnceValues(func() (session, error) {
 	}
 	imp := importer.ForCompiler(fset, "source", nil)
 	pkg, err := (&types.Config{Importer: imp}).Check("cell", fset, []*ast.File{f}, nil)
-	return session{pkg, map[string]string{"time": "time", "math": "math", "strings": "strings"}, imp}, err
+	return session{pkg, map[string]string{"time": "time", "math": "math", "strings": "strings",
+		"unit": "levelsum/statmech/unit", "statmech": "levelsum/statmech"}, imp}, err
 })
 
 func newSession(t testing.TB) session {
@@ -87,9 +105,9 @@ func TestComplete(t *testing.T) {
 	for _, test := range []struct{ name, source, want, first, never string }{
 		{"package member", "math.Sq|", "Sqrt:function Sqrt2:constant", "Sqrt", "Abs"},
 		{"package member, nothing typed", "math.|", "Sqrt Pi:constant", "", "float64"},
-		{"session variable", "ru|", "run:instance rune:class", "run", "list"},
+		{"session variable", "ru|", "run:variable rune:type", "run", "list"},
 		{"session function", "he|", "heat:function", "heat", ""},
-		{"fields and methods", "run.|", "Mass:property Temp Inner Depth label SetMass:method Label Below", "", "heat"},
+		{"fields and methods", "run.|", "Mass:field Temp Inner Depth label SetMass:method Label Below", "", "heat"},
 		{"methods of a pointer", "pointer.|", "Mass SetMass Below", "", ""},
 		{"element of a list", "list[0].|", "Mass Label", "", ""},
 		{"element of a map", "byName[\"x\"].La|", "Label label", "", "Mass"},
@@ -99,15 +117,15 @@ func TestComplete(t *testing.T) {
 		{"case does not count", "math.sq|", "Sqrt", "Sqrt", ""},
 		{"value declared in the cell", "b := strings.Builder{}\nb.Wr|", "Write WriteString WriteByte WriteRune", "Write", "Len"},
 		{"value of a cell with an error", "x := nosuch\nb := strings.Builder{}\nb.Wr|\ny := nosuch + 1", "WriteString", "", ""},
-		{"variable of the cell", "alpha := 1\nbeta := alp|", "alpha:instance", "alpha", ""},
+		{"variable of the cell", "alpha := 1\nbeta := alp|", "alpha:variable", "alpha", ""},
 		{"not yet declared", "be| \nbeta := 1", "", "", "beta"},
 		{"inside an open function", "func f(width float64) {\n\tif width > 1 {\n\t\tx := wid|", "width", "width", ""},
 		{"inside an open call", "heat(time.Sec|", "Second:constant", "Second", ""},
 		{"open call, more after it", "heat(ru|\nz := 1", "run", "run", ""},
 		{"receiver in an open method", "func (s Sample) F() float64 {\n\treturn s.Ma|", "Mass", "Mass", ""},
-		{"type declared in the cell", "type Cell struct{ Wall int }\nvar c Cell\nc.|", "Wall:property", "Wall", ""},
+		{"type declared in the cell", "type Cell struct{ Wall int }\nvar c Cell\nc.|", "Wall:field", "Wall", ""},
 		{"method declared in the cell", "type Cell struct{}\nfunc (Cell) Open() {}\nCell{}.|", "Open:method", "Open", ""},
-		{"fields of a literal", "Sample{Ma|}", "Mass:property", "Mass", ""},
+		{"fields of a literal", "Sample{Ma|}", "Mass:field", "Mass", ""},
 		{"fields that are missing", "Sample{Mass: 1, |}", "Temp label Inner", "", "Mass run"},
 		{"open literal", "Sample{Mass: 1, Te|", "Temp", "Temp", ""},
 		{"wanted type first", "heat(|)", "time.Second:constant time.Hour run", "time.Hour", ""},
@@ -119,12 +137,12 @@ func TestComplete(t *testing.T) {
 		{"range variable", "for i, sample := range list {\n\tsam|", "sample", "sample", ""},
 		{"closure", "f := func(depth int) int { return dep| }", "depth", "depth", ""},
 		{"two results are no value", "pair().|", "", "", ""},
-		{"package name", "stri|", "strings:module string:class", "strings", ""},
+		{"package name", "stri|", "strings:module string:type", "strings", ""},
 		{"keyword and builtin", "ra|", "range:keyword", "", ""},
 		{"builtin", "appe|", "append:function", "append", ""},
-		{"type", "var x flo|", "float64:class float32", "", ""},
+		{"type", "var x flo|", "float64:type float32", "", ""},
 		{"after a name of several bytes", "θ + θ*math.Sq|", "Sqrt", "Sqrt", ""},
-		{"name of several bytes", "θ|", "θ:instance", "θ", ""},
+		{"name of several bytes", "θ|", "θ:variable", "θ", ""},
 		{"own import", "import \"math/bits\"\nbits.Len|", "Len:function Len64", "Len", ""},
 		{"import under another name", "import b \"math/bits\"\nb.Len6|", "Len64", "Len64", ""},
 		{"shadowed name", "run := 3.5\nrun.|", "", "", "Mass"},
@@ -136,6 +154,67 @@ func TestComplete(t *testing.T) {
 		{"unknown package", "nosuch.|", "", "", "run"},
 		{"constant", "st|", "steps:constant", "steps", ""},
 		{"empty cell", "|", "run heat math", "", ""},
+		{"keyword after all else", "ty|", "type:keyword", "", ""},
+
+		{"quantity as an argument", "cv(|", "unit.K:constant unit.MilliK room cv", "unit.K", "unit.Bar"},
+		{"quantity in a closed call", "cv(|, \"copper\")", "unit.K cold", "unit.K", "unit.J"},
+		{"the second argument is none", "cv(300*unit.K, |", "run", "", "unit.K"},
+		{"quantity right of a factor", "cv(343 * |", "unit.K unit.MilliK", "unit.K", "unit.Bar"},
+		{"quantity by its own name", "cv(343 * Mil|", "unit.MilliK", "unit.MilliK", "unit.K"},
+		{"variables of the kind before others", "cv(r|", "room run range", "room", ""},
+		{"any unit right of a number", "x := 343 * |", "unit.K unit.Bar unit.PerCm", "", ""},
+		{"any unit right of a negative number", "x := -2 * Bar|", "unit.Bar", "unit.Bar", ""},
+		{"no unit right of a variable", "x := θ * |", "run", "", "unit.K"},
+		{"quantity to an assigned variable", "room = 3 * |", "unit.K", "unit.K", "unit.Bar"},
+		{"quantity to a declared variable", "var e unit.Energy = 12 * |", "unit.PerCm gap", "unit.EV", "unit.K"},
+		{"quantity in a sum", "gap + 3*PerC|", "unit.PerCm", "unit.PerCm", "unit.K"},
+		{"quantity in a comparison", "if room < 3*|", "unit.K", "unit.K", "unit.Bar"},
+		{"what is compared is not the condition", "if room < 3*unit.K && |", "run", "", "unit.K"},
+		{"quantity in a slice", "ts := []unit.Temperature{1 * unit.K, 2 * |", "unit.K", "unit.K", "unit.Bar"},
+		{"quantity in a map", "m := map[string]unit.Pressure{\"a\": 2 * |}", "unit.Bar", "", "unit.K"},
+		{"quantity to return", "func f() unit.Temperature {\n\treturn 3 * |", "unit.K", "unit.K", "unit.Bar"},
+		{"second quantity to return", "func f() (a, b unit.Temperature, p unit.Pressure) {\n\treturn room, cold, 3 * |", "unit.Bar", "", "unit.K"},
+		{"quantity to return from a literal", "f := func() unit.Temperature { return | }", "unit.K", "unit.K", "unit.Bar"},
+		{"unit in which to read", "room.In(|", "unit.K unit.MilliK", "unit.K", "unit.Bar"},
+		{"unit for many", "unit.Temperatures([]float64{1}, |", "unit.K", "unit.K", "unit.Bar"},
+		{"conversion", "unit.Temperature(θ) * |", "unit.K", "unit.K", "unit.Bar"},
+		{"quantity in parentheses", "cv((300 * |", "unit.K", "unit.K", "unit.Bar"},
+		{"quantity on a channel", "c := make(chan unit.Temperature, 1)\nc <- 3 * |", "unit.K", "unit.K", "unit.Bar"},
+		{"package under another name", "import u \"levelsum/statmech/unit\"\ncv(3 * |", "u.K", "u.K", "unit.K"},
+		{"methods of a quantity", "room.|", "In:method AsEnergy:method String", "", ""},
+		{"methods of a product", "(300 * unit.K).As|", "AsEnergy", "AsEnergy", ""},
+		{"methods of a result", "cv(room, \"\").|", "In SI", "", ""},
+		{"element of quantities", "temperatures[0].I|", "In", "In", ""},
+		{"range over quantities", "for _, T := range temperatures {\n\tT.|", "In AsEnergy", "", ""},
+		{"options of a struct", "audit(|", "statmech.AuditOptions:type", "statmech.AuditOptions", ""},
+		{"first field of a struct of quantities", "type P struct{ T unit.Temperature }\nP{|", "T:field", "T", "unit.K"},
+		{"field of a struct of quantities", "type P struct{ T unit.Temperature }\nP{T: 3 * |", "unit.K", "unit.K", "unit.Bar"},
+
+		{"import path", "import \"math/|\"", "math/bits:module math/cmplx math/rand", "math/bits", "time math"},
+		{"open import path", "import \"math/b|", "math/bits", "math/bits", "math/cmplx"},
+		{"open import path, more after it", "import \"uni|\nx := 1", "levelsum/statmech/unit", "levelsum/statmech/unit", "time"},
+		{"import path by its last element", "import \"rand|\"", "math/rand", "math/rand", "math"},
+		{"import path in a group", "import (\n\t\"time\"\n\t\"mat|\n)", "math math/bits", "math", "time"},
+		{"named import path", "import b \"mat|\"", "math math/bits", "math", "time"},
+		{"import path in raw quotes", "import `ti|`", "time", "time", "math"},
+		{"empty import path", "import \"|\"", "time math", "levelsum/statmech/unit", ""},
+		{"string after an import", "import \"time\"\ns := \"ma|\"", "", "", ""},
+		{"string in a statement that names import", "importance := \"ma|\"", "", "", ""},
+		{"outside the quotes of an import", "import \"math\"\nmath.Sq|", "Sqrt", "Sqrt", "math/bits"},
+
+		{"after letters of four bytes", "s := \"𝛉𝛉\"; 𝜃 := room; 𝜃.I|", "In", "In", ""},
+		{"after a comment of several bytes", "/* ΔH°₂₉₈ */ run.Ma|", "Mass", "Mass", ""},
+		{"method value", "f := run.La|", "Label", "Label", ""},
+		{"result of a function of the session", "heat(3, Sample{}.|", "Mass", "", ""},
+		{"pointer made in the cell", "p := &Sample{}\np.Se|", "SetMass", "SetMass", ""},
+		{"value of a type assertion", "shape.(Shape).|", "Area", "Area", ""},
+		{"type switch", "switch s := any(run).(type) {\ncase Sample:\n\ts.Ma|", "Mass", "Mass", ""},
+		{"after an error on the line before", "x := = 3\nrun.Te|", "Temp", "Temp", ""},
+		{"deferred call", "func f() {\n\tdefer run.Se|", "SetMass", "SetMass", ""},
+		{"composite element", "list = append(list, Sample{Te|", "Temp", "Temp", ""},
+		{"pair assigned in the cell", "n, err := pair()\nerr.|", "Error:method", "Error", ""},
+		{"embedded in a cell's type", "type Wrap struct{ Sample }\nvar w Wrap\nw.|", "Mass Sample Below", "", ""},
+		{"generic function of the cell", "func first[T any](xs []T) T { return xs[0] }\nfirst(list).|", "Mass Label", "", ""},
 	} {
 		t.Run(test.name, func(t *testing.T) {
 			cursor := strings.IndexByte(test.source, '|')
@@ -164,7 +243,11 @@ func TestComplete(t *testing.T) {
 			if test.want == "" && test.never == "" && len(names) > 0 {
 				t.Errorf("matches %q, want none", names)
 			}
-			if start, _ := wordAt(source, cursor); got.Start > cursor || got.End < cursor || len(names) > 0 && got.Start != start {
+			start, _ := wordAt(source, cursor)
+			if at, _, ok := importAt(source, cursor); ok {
+				start = at
+			}
+			if got.Start > cursor || got.End < cursor || len(names) > 0 && got.Start != start {
 				t.Errorf("replaces %d to %d with the cursor at %d", got.Start, got.End, cursor)
 			}
 		})
@@ -212,6 +295,9 @@ func FuzzComplete(f *testing.F) {
 	f.Add("for i := range list { list[i].", 30)
 	f.Add("func (s Sample) f() { s.\n}\nx := `", 24)
 	f.Add("type T[P any] struct { x P }; T[int]{}.", 39)
+	f.Add("import (\n\tb \"math/", 18)
+	f.Add("cv((3 * -", 9)
+	f.Add("func f() (a, b int) { return func() int { return ", 49)
 	f.Fuzz(func(t *testing.T, source string, cursor int) {
 		got := Complete(s, source, cursor)
 		if got.Start < 0 || got.End > len(source) || got.Start > got.End {
@@ -221,6 +307,9 @@ func FuzzComplete(f *testing.F) {
 			if strings.Contains(m.Text, placeholder) {
 				t.Errorf("the placeholder is offered: %q", m.Text)
 			}
+		}
+		if d, ok := Inspect(s, nil, source, cursor, 0); ok && d.Text == "" {
+			t.Error("a description is empty")
 		}
 	})
 }

@@ -13,4 +13,6 @@ type Scope interface {
 	ImportPath(name string) string
 	// Import returns a package that a cell can import.
 	Import(path string) (*types.Package, error)
+	// ImportPaths lists what cells can import, sorted.
+	ImportPaths() []string
 }

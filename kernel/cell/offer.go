@@ -19,3 +19,11 @@ func (s *Scope) ImportPath(name string) string { return s.importPath(name) }
 
 // Import returns a package that cells can import.
 func (s *Scope) Import(path string) (*types.Package, error) { return s.importer.Import(path) }
+
+// ImportPaths lists what cells can import, sorted; none if it is not known.
+func (s *Scope) ImportPaths() []string {
+	if i, ok := s.importer.(interface{ Paths() []string }); ok {
+		return i.Paths()
+	}
+	return nil
+}

@@ -31,6 +31,8 @@ func TestHelpWhileTyping(t *testing.T) {
 		{"solid.Deb", "Debye"},
 		{"solid.Debye{The", "Theta"},
 		{"solid.Debye{Theta: 343 * K", "unit.K"},
+		{"import \"math/b", "math/bits math/big"},
+		{"x := 12 * KJ", "unit.KJPerMol"},
 		{"for _, x := range []sample{run} {\n\tx.", "mass heat"},
 	} {
 		got, err := e.Complete(t.Context(), test.source, len(test.source))
