@@ -34,7 +34,7 @@ func (p *Plan) Compile(statements bool) (*Unit, error) {
 			return nil, e.err
 		}
 		line, col := d.Source.place(p.scope.fset, d.node.Pos())
-		fmt.Fprintf(&body, "/*line %s:%d:%d*/%s\n", d.Source.Name(), line, col, text)
+		fmt.Fprintf(&body, "/*line %s:%d:%d*/%s\n", d.Source.Tag(), line, col, text)
 	}
 	if statements {
 		e.info, e.src = p.sinfo, p.Source
@@ -300,7 +300,7 @@ func (e *emitter) run() string {
 	un := p.findUnread()
 	for k, st := range p.stmts {
 		line, col := e.src.place(p.scope.fset, st.Pos())
-		fmt.Fprintf(&out, "%s = %d; /*line %s:%d:%d*/", at, k, e.src.Name(), line, col)
+		fmt.Fprintf(&out, "%s = %d; /*line %s:%d:%d*/", at, k, e.src.Tag(), line, col)
 		switch {
 		case k == len(p.stmts)-1 && p.result != nil:
 			out.WriteString(e.show(p.result))
@@ -357,7 +357,7 @@ func (e *emitter) inOrder(out *strings.Builder) {
 			continue
 		}
 		line, col := e.src.place(p.scope.fset, in.Rhs.Pos())
-		fmt.Fprintf(out, "%s = /*line %s:%d:%d*/%s\n", strings.Join(left, ", "), e.src.Name(), line, col, e.node(in.Rhs))
+		fmt.Fprintf(out, "%s = /*line %s:%d:%d*/%s\n", strings.Join(left, ", "), e.src.Tag(), line, col, e.node(in.Rhs))
 	}
 }
 

@@ -1,6 +1,7 @@
 package cell
 
 import (
+	"crypto/sha256"
 	"fmt"
 	"go/ast"
 	"go/parser"
@@ -18,6 +19,14 @@ type Source struct {
 
 // Name is the file name of the cell in positions: In[3].
 func (s *Source) Name() string { return fmt.Sprintf("In[%d]", s.N) }
+
+// Tag is the file name of the cell in compiled code: In[ and a hash of the
+// text. It does not hold the number, so that a cell that is run again as it was
+// is compiled once.
+func (s *Source) Tag() string {
+	sum := sha256.Sum256([]byte(s.Text))
+	return fmt.Sprintf("In[%x]", sum[:6])
+}
 
 // chunk is a piece of a cell between two semicolons at depth 0.
 type chunk struct {

@@ -17,7 +17,7 @@ import (
 
 // prepare makes what runs a checked cell, and says in which way it is run. A
 // cell without anything to run has no job.
-func (r *Runner) prepare(plan *cell.Plan) (job func(), how, why string, err error) {
+func (r *Runner) prepare(plan *cell.Plan, facts map[string]any) (job func(), how, why string, err error) {
 	why = "a directive"
 	if !plan.Force && !r.compileAll {
 		var script *cell.Script
@@ -38,6 +38,9 @@ func (r *Runner) prepare(plan *cell.Plan) (job func(), how, why string, err erro
 	}
 	if unit == nil {
 		return nil, "declared", why, nil
+	}
+	if _, loaded := r.plugins[unit.Path]; loaded {
+		facts["again"] = true // compiled before, and as it was
 	}
 	offers, err := r.load(unit)
 	if err != nil {

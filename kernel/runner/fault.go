@@ -7,6 +7,7 @@ import (
 	"runtime"
 	"strconv"
 	"strings"
+	"sync"
 
 	"levelsum/kernel/cell"
 	"levelsum/kernel/engine"
@@ -43,11 +44,33 @@ func framesOf(fs *runtime.Frames) []frame {
 	}
 }
 
+// tags says which cells the file names of compiled code stand for: the last
+// one that was run with the text.
+var tags struct {
+	sync.Mutex
+	names map[string]string
+}
+
+// nameTag notes that a cell is run.
+func nameTag(src *cell.Source) {
+	tags.Lock()
+	defer tags.Unlock()
+	if tags.names == nil {
+		tags.names = map[string]string{}
+	}
+	tags.names[src.Tag()] = src.Name()
+}
+
 // cellFile picks In[3] out of the file of a frame, "" if it is not of a cell.
 func cellFile(file string) string {
 	i := strings.LastIndex(file, "In[")
 	if i < 0 || !strings.HasSuffix(file, "]") {
 		return ""
+	}
+	tags.Lock()
+	defer tags.Unlock()
+	if name, ok := tags.names[file[i:]]; ok {
+		return name
 	}
 	return file[i:]
 }

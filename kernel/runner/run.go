@@ -30,7 +30,8 @@ func (r *Runner) run(c engine.Cell) engine.Outcome {
 	}
 	guard.Reset()
 	guard.SetCell(c.N)
-	job, how, why, err := r.prepare(plan)
+	nameTag(src)
+	job, how, why, err := r.prepare(plan, out.How)
 	out.How["tier"] = how
 	if why != "" {
 		out.How["why"] = why

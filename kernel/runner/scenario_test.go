@@ -59,6 +59,9 @@ func TestScenarios(t *testing.T) {
 					b.WriteString("(restarted)\n")
 				}
 				got := b.String()
+				if got != "" && !strings.HasSuffix(got, "\n") {
+					got += "\n" // as the archive has it
+				}
 				if i+1 < len(a.Files) && a.Files[i+1].Name == "=" {
 					want = string(a.Files[i+1].Data)
 				} else if !*update {

@@ -68,7 +68,7 @@ func blockedHint() (string, bool) {
 			file, rest, ok := strings.Cut(l, "]:")
 			if i := strings.LastIndex(file, "In["); ok && i >= 0 {
 				num, _, _ := strings.Cut(rest, " ")
-				where = file[i:] + "]:" + num
+				where = cellFile(file[i:]+"]") + ":" + num
 				break
 			}
 		}
