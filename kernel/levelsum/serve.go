@@ -3,6 +3,8 @@ package main
 import (
 	"context"
 	"errors"
+	"flag"
+	"fmt"
 	"io"
 	"log"
 	"os"
@@ -16,6 +18,19 @@ import (
 	"levelsum/kernel/session"
 	"levelsum/kernel/socket"
 )
+
+const serveUsage = `usage: levelsum serve [-memory SIZE] CONNECTION-FILE
+
+Answers the front end that wrote the connection file until it is told to stop,
+gets SIGTERM, or the process that started it is gone. Relative paths in cells
+mean the notebook's folder.
+
+  -memory SIZE
+        End a cell whose engine takes more (512MB, 4GB); by default three
+        quarters of what there is.
+
+The exit status is 0 on success, 1 if something failed, 2 on misuse.
+`
 
 // atLeastProcs keeps the heartbeat and interrupts in time while cells of this
 // process's child and the session compute: with fewer, the median heartbeat
@@ -37,24 +52,32 @@ func serve(args []string, _ io.Reader, _, stderr io.Writer) int {
 
 func serveWith(args []string, stderr io.Writer, start starter) int {
 	say := log.New(stderr, "levelsum: ", 0)
-	if len(args) != 1 || strings.HasPrefix(args[0], "-") {
-		say.Print("usage: levelsum serve CONNECTION-FILE")
-		return 2
+	fs := flag.NewFlagSet("serve", flag.ContinueOnError)
+	fs.SetOutput(stderr)
+	fs.Usage = func() { fmt.Fprint(stderr, serveUsage) }
+	o := engine.Options{Dir: notebookFolder()}
+	fs.Func("memory", "", func(s string) (err error) { o.MemoryLimit, err = parseSize(s); return err })
+	if err := fs.Parse(args); err != nil || fs.NArg() != 1 {
+		if err == nil {
+			fs.Usage()
+		}
+		return misuse(err)
 	}
-	connection, err := socket.ReadConnection(args[0])
+	file := fs.Arg(0)
+	connection, err := socket.ReadConnection(file)
 	if err != nil {
 		say.Printf("serve: %v", err)
 		return 2
 	}
 	runtime.GOMAXPROCS(max(runtime.NumCPU(), atLeastProcs))
-	if err := serveConnection(args[0], connection, say, start); err != nil {
+	if err := serveConnection(file, connection, say, func(ctx context.Context) (session.Engine, error) { return start(ctx, o) }); err != nil {
 		say.Printf("serve: %v", err)
 		return 1
 	}
 	return 0
 }
 
-func serveConnection(file string, connection socket.Connection, say *log.Logger, start starter) (err error) {
+func serveConnection(file string, connection socket.Connection, say *log.Logger, start func(context.Context) (session.Engine, error)) (err error) {
 	ctx, cancel := context.WithCancel(context.Background())
 	defer cancel()
 
@@ -67,12 +90,10 @@ func serveConnection(file string, connection socket.Connection, say *log.Logger,
 
 	s, err := session.Open(session.Options{
 		Connection: connection,
-		Start: func(ctx context.Context) (session.Engine, error) {
-			return start(ctx, engine.Options{Dir: notebookFolder()})
-		},
-		Version: version,
-		Journal: journal,
-		Log:     say,
+		Start:      start,
+		Version:    version,
+		Journal:    journal,
+		Log:        say,
 	})
 	if err != nil {
 		return err

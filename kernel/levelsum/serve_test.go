@@ -219,9 +219,10 @@ func TestServeMisuse(t *testing.T) {
 		args []string
 		want string
 	}{
-		{nil, "usage: levelsum serve CONNECTION-FILE"},
-		{[]string{"a", "b"}, "usage: levelsum serve CONNECTION-FILE"},
-		{[]string{"--help"}, "usage: levelsum serve CONNECTION-FILE"},
+		{nil, "usage: levelsum serve [-memory SIZE] CONNECTION-FILE"},
+		{[]string{"a", "b"}, "usage: levelsum serve [-memory SIZE] CONNECTION-FILE"},
+		{[]string{"--other"}, "usage: levelsum serve [-memory SIZE] CONNECTION-FILE"},
+		{[]string{"-memory", "much", "a"}, "-memory"},
 		{[]string{broken}, "levelsum: serve: " + broken + ": shell_port is missing\n"},
 		{[]string{broken + "x"}, broken + "x: no such file"},
 	} {
@@ -229,6 +230,18 @@ func TestServeMisuse(t *testing.T) {
 		if status := serveWith(test.args, &stderr, newStill().start); status != 2 || !strings.Contains(stderr.String(), test.want) {
 			t.Errorf("serve %q: exit status %d, %q, want 2 and %q", test.args, status, stderr.String(), test.want)
 		}
+	}
+}
+
+func TestServeWithLessMemory(t *testing.T) {
+	path, ports := connectionFile(t)
+	e := newStill()
+	status := make(chan int, 1)
+	var stderr strings.Builder
+	go func() { status <- serveWith([]string{"-memory", "512MB", path}, &stderr, e.start) }()
+	exchange(t, dial(t, ports["control_port"]), "shutdown_request", "{}")
+	if got := <-status; got != 0 || e.options.MemoryLimit != 512_000_000 && e.options.MemoryLimit != 512<<20 {
+		t.Errorf("exit status %d, limit %d, want 512 MB: %s", got, e.options.MemoryLimit, stderr.String())
 	}
 }
 

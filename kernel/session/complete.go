@@ -22,6 +22,9 @@ func (s *Session) complete(r *request) {
 		s.log.Printf("complete: %v", err)
 		c = engine.Completion{Start: at, End: at}
 	}
+	if own := completeOwn(q.Code[:at]); own.Matches != nil && len(c.Matches) == 0 {
+		c = own
+	}
 	answer := wire.CompleteReply{
 		Status:      wire.StatusOK,
 		Matches:     make([]string, len(c.Matches)),

@@ -96,7 +96,7 @@ func (s *Session) readShell() {
 			r.unread = m.Decode(&e)
 			r.execute = &e
 		}
-		if number, waits := s.queue.push(r); waits && r.unread == nil {
+		if number, waits := s.queue.push(r); waits && r.unread == nil && ownCell(r.execute.Code) == nil {
 			s.hints.push(r, number)
 		}
 	}

@@ -194,6 +194,16 @@ func TestReplayAfterAKilledProcess(t *testing.T) {
 	}
 }
 
+func TestCompleteOwnCalls(t *testing.T) {
+	c := connect(serveFake(t, &fake{}))
+	r := c.ask("complete_request", cell{"code": " kernel.Re", "cursor_pos": 10})
+	r.want(t, "matches", []string{"kernel.Replay()"})
+	r.want(t, "cursor_start", 1)
+	r.want(t, "cursor_end", 10)
+	c.ask("complete_request", cell{"code": "kernel.", "cursor_pos": 7}).want(t, "matches", []string{"kernel.Journal()", "kernel.Replay()"})
+	c.ask("complete_request", cell{"code": "x := kernel.", "cursor_pos": 12}).want(t, "matches", []string{})
+}
+
 func TestOwnCell(t *testing.T) {
 	for source, want := range map[string]bool{
 		"kernel.Replay()": true, "\n kernel.Journal() // list\n": true, "kernel.Replay();": true,

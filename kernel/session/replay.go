@@ -46,6 +46,20 @@ func ownCell(source string) func(*Session, *output) engine.Outcome {
 	return nil
 }
 
+// completeOwn completes a call to the session; code ends at the cursor.
+func completeOwn(code string) engine.Completion {
+	typed := strings.TrimLeft(code, " \t\n")
+	from := len(code) - len(typed)
+	var c engine.Completion
+	for _, call := range []string{journalCall, replayCall} {
+		if strings.HasPrefix(typed, "kernel.") && strings.HasPrefix(call, typed) {
+			c.Start, c.End = from, len(code)
+			c.Matches = append(c.Matches, engine.Match{Text: call, Kind: "function"})
+		}
+	}
+	return c
+}
+
 // replay runs the cells that had succeeded before the engine's values were
 // lost, in their order and without showing what they show. It stops at the
 // first that fails now.
