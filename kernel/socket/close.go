@@ -25,8 +25,8 @@ func (s *Socket) Close(linger time.Duration) error {
 // out of zmq4, everything out of the queues, zmq4, connections, goroutines.
 func (s *Socket) end(linger time.Duration) error {
 	s.l.stop()
-	//lint:ignore SA2001 having had the lock is all that is wanted: the calls of Send that were under way have returned
-	s.life.Lock()
+	s.life.Lock() // the calls of Send that were under way have returned
+	//lint:ignore SA2001 having had the lock is all that is wanted
 	s.life.Unlock()
 
 	if s.tap != nil {
