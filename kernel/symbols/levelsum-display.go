@@ -23,6 +23,7 @@ func init() {
 		"Render":           reflect.ValueOf(display.Render),
 		"Result":           reflect.ValueOf(display.Result),
 		"ResultMediaType":  reflect.ValueOf(constant.MakeFromLiteral("\"application/vnd.levelsum.result+json\"", token.STRING, 0)),
+		"Session":          reflect.ValueOf(display.Session),
 		"SetRenderer":      reflect.ValueOf(display.SetRenderer),
 		"SetSink":          reflect.ValueOf(display.SetSink),
 		"Show":             reflect.ValueOf(display.Show),
@@ -33,33 +34,35 @@ func init() {
 		"ViewOf":           reflect.ValueOf(display.ViewOf),
 
 		// type definitions
-		"Axis":       reflect.ValueOf((*display.Axis)(nil)),
-		"Checker":    reflect.ValueOf((*display.Checker)(nil)),
-		"Column":     reflect.ValueOf((*display.Column)(nil)),
-		"Curve":      reflect.ValueOf((*display.Curve)(nil)),
-		"Derivation": reflect.ValueOf((*display.Derivation)(nil)),
-		"Figure":     reflect.ValueOf((*display.Figure)(nil)),
-		"Histogram":  reflect.ValueOf((*display.Histogram)(nil)),
-		"Ladder":     reflect.ValueOf((*display.Ladder)(nil)),
-		"Map":        reflect.ValueOf((*display.Map)(nil)),
-		"Mark":       reflect.ValueOf((*display.Mark)(nil)),
-		"Number":     reflect.ValueOf((*display.Number)(nil)),
-		"Paragraph":  reflect.ValueOf((*display.Paragraph)(nil)),
-		"Progress":   reflect.ValueOf((*display.Progress)(nil)),
-		"Refusal":    reflect.ValueOf((*display.Refusal)(nil)),
-		"Series":     reflect.ValueOf((*display.Series)(nil)),
-		"Sink":       reflect.ValueOf((*display.Sink)(nil)),
-		"Step":       reflect.ValueOf((*display.Step)(nil)),
-		"Symbol":     reflect.ValueOf((*display.Symbol)(nil)),
-		"Table":      reflect.ValueOf((*display.Table)(nil)),
-		"Values":     reflect.ValueOf((*display.Values)(nil)),
-		"View":       reflect.ValueOf((*display.View)(nil)),
-		"Viewer":     reflect.ValueOf((*display.Viewer)(nil)),
+		"Axis":        reflect.ValueOf((*display.Axis)(nil)),
+		"Checker":     reflect.ValueOf((*display.Checker)(nil)),
+		"Column":      reflect.ValueOf((*display.Column)(nil)),
+		"Curve":       reflect.ValueOf((*display.Curve)(nil)),
+		"Derivation":  reflect.ValueOf((*display.Derivation)(nil)),
+		"Figure":      reflect.ValueOf((*display.Figure)(nil)),
+		"Histogram":   reflect.ValueOf((*display.Histogram)(nil)),
+		"Ladder":      reflect.ValueOf((*display.Ladder)(nil)),
+		"Map":         reflect.ValueOf((*display.Map)(nil)),
+		"Mark":        reflect.ValueOf((*display.Mark)(nil)),
+		"Number":      reflect.ValueOf((*display.Number)(nil)),
+		"Paragraph":   reflect.ValueOf((*display.Paragraph)(nil)),
+		"Progress":    reflect.ValueOf((*display.Progress)(nil)),
+		"Refusal":     reflect.ValueOf((*display.Refusal)(nil)),
+		"Series":      reflect.ValueOf((*display.Series)(nil)),
+		"SessionSink": reflect.ValueOf((*display.SessionSink)(nil)),
+		"Sink":        reflect.ValueOf((*display.Sink)(nil)),
+		"Step":        reflect.ValueOf((*display.Step)(nil)),
+		"Symbol":      reflect.ValueOf((*display.Symbol)(nil)),
+		"Table":       reflect.ValueOf((*display.Table)(nil)),
+		"Values":      reflect.ValueOf((*display.Values)(nil)),
+		"View":        reflect.ValueOf((*display.View)(nil)),
+		"Viewer":      reflect.ValueOf((*display.Viewer)(nil)),
 
 		// interface wrapper definitions
-		"_Checker": reflect.ValueOf((*_levelsum_display_Checker)(nil)),
-		"_Sink":    reflect.ValueOf((*_levelsum_display_Sink)(nil)),
-		"_Viewer":  reflect.ValueOf((*_levelsum_display_Viewer)(nil)),
+		"_Checker":     reflect.ValueOf((*_levelsum_display_Checker)(nil)),
+		"_SessionSink": reflect.ValueOf((*_levelsum_display_SessionSink)(nil)),
+		"_Sink":        reflect.ValueOf((*_levelsum_display_Sink)(nil)),
+		"_Viewer":      reflect.ValueOf((*_levelsum_display_Viewer)(nil)),
 	}
 }
 
@@ -71,6 +74,28 @@ type _levelsum_display_Checker struct {
 
 func (W _levelsum_display_Checker) Check() error {
 	return W.WCheck()
+}
+
+// _levelsum_display_SessionSink is an interface wrapper for SessionSink type
+type _levelsum_display_SessionSink struct {
+	IValue   interface{}
+	WAsk     func(prompt string, secret bool) (string, error)
+	WClear   func(wait bool)
+	WSession func() display.View
+	WShow    func(v display.View, id string, replace bool)
+}
+
+func (W _levelsum_display_SessionSink) Ask(prompt string, secret bool) (string, error) {
+	return W.WAsk(prompt, secret)
+}
+func (W _levelsum_display_SessionSink) Clear(wait bool) {
+	W.WClear(wait)
+}
+func (W _levelsum_display_SessionSink) Session() display.View {
+	return W.WSession()
+}
+func (W _levelsum_display_SessionSink) Show(v display.View, id string, replace bool) {
+	W.WShow(v, id, replace)
 }
 
 // _levelsum_display_Sink is an interface wrapper for Sink type
