@@ -20,6 +20,8 @@ func (r *Result) Function(f func() float64) uncertain.Quantity {
 		defer r.mu.Unlock()
 		defer r.reg.set(r.current())
 		r.reg.set(p)
+		r.trying.Store(true)
+		defer r.trying.Store(false)
 		return f()
 	}, r.quantity...)
 }
@@ -37,8 +39,12 @@ func (r *Result) At(x float64) uncertain.Quantity {
 	}).WithUnit(r.yUnit)
 }
 
-// Values returns the fitted curve at every x.
+// Values returns the fitted curve at every x. Inside a function given to
+// [Result.Function] it is the curve with the parameters being tried.
 func (r *Result) Values(x []float64) []float64 {
+	if r.trying.Load() {
+		return r.valuesWith(r.current(), x)
+	}
 	r.mu.Lock()
 	defer r.mu.Unlock()
 	defer r.reg.set(r.current())

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"sync"
+	"sync/atomic"
 
 	"gonum.org/v1/gonum/stat/distuv"
 
@@ -51,7 +52,8 @@ type Result struct {
 	random   [][]float64 // covariance of the parameters from random errors
 	common   [][]float64 // shifts of the parameters by each common error
 	quantity []uncertain.Quantity
-	mu       sync.Mutex // guards the model's fields while Function evaluates at other parameters
+	mu       sync.Mutex  // guards the model's fields while Function evaluates at other parameters
+	trying   atomic.Bool // a function given to Function runs, and holds mu
 }
 
 func newResult(reg *regression, best *minimum, tried []float64) *Result {

@@ -194,6 +194,8 @@ func TestStraightLine(t *testing.T) {
 		want := math.Sqrt(f * (sxx - 2*3*sx + 9*s) / d)
 		within(t, "u of the line at 3", res.At(3).StandardUncertainty(), want, 1e-8*want)
 		within(t, "u of the line at 3, slice", res.StandardUncertainties([]float64{3})[0], want, 1e-8*want)
+		inside := res.Function(func() float64 { return res.Curve().At(3) })
+		within(t, "u of the line at 3, from inside", inside.StandardUncertainty(), want, 1e-8*want)
 		var sum float64
 		for _, h := range res.Leverage {
 			sum += h
