@@ -5,6 +5,8 @@ import (
 	"math"
 	"sort"
 
+	"gonum.org/v1/gonum/stat/distuv"
+
 	"levelsum/display"
 	"levelsum/statmech/data"
 	"levelsum/statmech/fit"
@@ -96,7 +98,7 @@ type LowFit struct {
 // LowTemperature fits γT + βT³ + δT⁵ to the lowest points, which is the straight
 // line (or parabola) of Cp/T against T². Where no window is given, it is the
 // widest one from the first point on in which the next power of T is not seen
-// (F test, p > 0.3) and χ² does not object (p > 0.05 with absolute
+// (p > 0.3, by the fall of χ² with absolute uncertainties, else by an F test) and χ² does not object (p > 0.05 with absolute
 // uncertainties). A next power below what can be seen still shifts β by up to
 // about three of its standard uncertainties; a fit with Fifth does not have
 // that error.
@@ -197,6 +199,12 @@ func (f *LowFit) holds(run *data.Table, terms Terms, sigma fit.Sigma) (bool, err
 	larger, err := fit.HeatCapacity(&next, run, fit.Vary(vary...), fit.Window(f.From, f.To), sigma)
 	if err != nil {
 		return false, err
+	}
+	if sigma == fit.AbsoluteSigma {
+		// The uncertainties are known: the fall of χ² itself is the test.
+		added := float64(f.Result.Freedom - larger.Freedom)
+		fall := max(0, f.Result.ChiSquared-larger.ChiSquared)
+		return distuv.ChiSquared{K: added}.Survival(fall) > 0.3, nil
 	}
 	_, p, err := fit.FTest(f.Result, larger)
 	return p > 0.3, err

@@ -89,6 +89,26 @@ func TestLowTemperature(t *testing.T) {
 	within(t, "S(10 K)", float64(wide.Powers.Entropy(10)), q, 1e-12)
 }
 
+// TestLowTemperatureCopper: the window that is found for copper (White &
+// Collocott 1984, 1 %) gives the Debye temperature of calorimetry at the
+// lowest temperatures, 344.3 K (D. L. Martin, Phys. Rev. B 8, 5357 (1973)).
+func TestLowTemperatureCopper(t *testing.T) {
+	run, err := data.Read("../../testdata/white-collocott-1984/copper.csv")
+	if err != nil {
+		t.Fatal(err)
+	}
+	low, err := LowTemperature(run, Terms{Linear: true}, fit.AbsoluteSigma)
+	if err != nil {
+		t.Fatal(err)
+	}
+	theta := low.DebyeTemperature(1)
+	t.Logf("to %v: %v, %v", low.To, theta, low.Result.Parameter(&low.Powers.Gamma))
+	within(t, "θ", theta.Value(), 344.3, 2*theta.StandardUncertainty())
+	if low.To < 5 || low.To > 12 {
+		t.Errorf("window to %v", low.To)
+	}
+}
+
 // TestLowTemperatureCorrelation: a metal measured at 2 to 10 K with 1 % has
 // r(γ, β) near -0.70 (independent computation; the number of points there is
 // not recorded, and r hardly depends on it).

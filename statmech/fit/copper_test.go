@@ -31,6 +31,9 @@ func TestCopperLow(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
+		if all := strings.Join(res.Warnings, "\n"); !strings.Contains(all, "the data look smoothed") {
+			t.Errorf("no word about the small χ² of a smoothed table in\n%s", all)
+		}
 		theta, gamma := res.Parameter(&deb.Theta), res.Parameter(&el.Gamma)
 		t.Logf("%v, %v, χ²/ν %.3f, r %.3f, %d evaluations, %v", theta, gamma, res.Ratio(), res.Correlation()[0][1], res.Evaluations, res.Warnings)
 		if theta.Name() != "Debye.Theta" || theta.Unit() != "K" || gamma.Name() != "Electronic.Gamma" {

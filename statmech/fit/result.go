@@ -19,7 +19,7 @@ const (
 	hopelessRatio = 2
 	doubtfulP     = 1e-3 // below this a warning
 	tooGoodRatio  = 0.5  // χ² per degree of freedom below which, at tooGoodP, the data look smoothed
-	tooGoodP      = 1e-3
+	tooGoodP      = 0.01
 	highR         = 0.95
 	illCondition  = 1e8
 )

@@ -69,6 +69,14 @@ func check(name string, xs ...float64) {
 	}
 }
 
+// inDomain panics unless the value of the argument is where the function has
+// one.
+func inDomain(fn, arg string, x float64, ok bool, want string) {
+	if !ok {
+		panic(&statmech.DomainError{Func: "uncertain." + fn, Arg: arg, Value: fmt.Sprint(x), Want: want})
+	}
+}
+
 // Plus returns q + r.
 func (q Quantity) Plus(r Quantity) Quantity {
 	return binary(opAdd, "Quantity.Plus", q, r, q.Value()+r.Value(), 1, 1)
@@ -86,6 +94,7 @@ func (q Quantity) Times(r Quantity) Quantity {
 
 // Over returns q/r. It panics with a [*statmech.DomainError] if r is 0.
 func (q Quantity) Over(r Quantity) Quantity {
+	inDomain("Quantity.Over", "r", r.Value(), r.Value() != 0, "not 0")
 	ratio := q.Value() / r.Value()
 	return binary(opDiv, "Quantity.Over", q, r, ratio, 1/r.Value(), -ratio/r.Value())
 }
@@ -109,6 +118,7 @@ func (q Quantity) Power(k float64) Quantity {
 // Pow returns a^b of two quantities, a > 0.
 func Pow(a, b Quantity) Quantity {
 	x, y := a.Value(), b.Value()
+	inDomain("Pow", "a", x, x > 0, "positive")
 	v := math.Pow(x, y)
 	db := 0.0
 	if len(b.node().terms) > 0 {
@@ -155,6 +165,7 @@ func Exp(q Quantity) Quantity {
 
 // Log returns the natural logarithm of q > 0.
 func Log(q Quantity) Quantity {
+	inDomain("Log", "q", q.Value(), q.Value() > 0, "positive")
 	return unary(opLog, "Log", q, 0, math.Log(q.Value()), 1/q.Value())
 }
 
@@ -163,6 +174,7 @@ func Log10(q Quantity) Quantity { return Log(q).Scale(1 / math.Ln10) }
 
 // Sqrt returns the square root of q.
 func Sqrt(q Quantity) Quantity {
+	inDomain("Sqrt", "q", q.Value(), q.Value() > 0 || q.Value() == 0 && len(q.node().terms) == 0, "positive")
 	v := math.Sqrt(q.Value())
 	return unary(opSqrt, "Sqrt", q, 0, v, 0.5/v)
 }
@@ -188,12 +200,14 @@ func Tan(q Quantity) Quantity {
 // Asin returns the arc sine of q in radians.
 func Asin(q Quantity) Quantity {
 	x := q.Value()
+	inDomain("Asin", "q", x, math.Abs(x) < 1 || math.Abs(x) == 1 && len(q.node().terms) == 0, "between -1 and 1")
 	return unary(opAsin, "Asin", q, 0, math.Asin(x), 1/math.Sqrt((1-x)*(1+x)))
 }
 
 // Acos returns the arc cosine of q in radians.
 func Acos(q Quantity) Quantity {
 	x := q.Value()
+	inDomain("Acos", "q", x, math.Abs(x) < 1 || math.Abs(x) == 1 && len(q.node().terms) == 0, "between -1 and 1")
 	return unary(opAcos, "Acos", q, 0, math.Acos(x), -1/math.Sqrt((1-x)*(1+x)))
 }
 
