@@ -16,4 +16,9 @@ type Engine interface {
 	Close() error
 }
 
+var (
+	_ engine.Output = (*output)(nil)
+	_ engine.Hinter = (*output)(nil)
+)
+
 var _ Engine = (*engine.Engine)(nil)

@@ -20,7 +20,7 @@ const (
 
 // An output takes what one cell shows and publishes it with the header of the
 // cell's request as parent, also after the cell is over. It is an
-// engine.Output.
+// engine.Output and an engine.Hinter.
 type output struct {
 	s      *Session
 	r      *request
@@ -31,6 +31,7 @@ type output struct {
 	bytes   int        // of text in pending
 	timer   *time.Timer
 	limit   limit
+	shown   shownSoFar
 	broken  map[string]string // by stream: the start of a rune
 	stopped bool              // nothing is published any more
 }
@@ -217,12 +218,21 @@ func (o *output) flush() {
 	if o.stopped {
 		return
 	}
-	for _, e := range events {
-		kind, content := e.message()
-		m := wire.New(o.s.sender.Header(kind), o.r.msg.RawHeader, content)
-		o.s.flow.pass(o.s.ctx, len(m.Content))
-		o.s.publishMessage(m)
+	if len(events) > 0 {
+		o.unhint()
 	}
+	for _, e := range events {
+		o.shown.keep(e)
+		o.publish(e)
+	}
+}
+
+// publish tells the front ends of e now.
+func (o *output) publish(e event) {
+	kind, content := e.message()
+	m := wire.New(o.s.sender.Header(kind), o.r.msg.RawHeader, content)
+	o.s.flow.pass(o.s.ctx, len(m.Content))
+	o.s.publishMessage(m)
 }
 
 // message is what e is to the front ends.
@@ -258,6 +268,8 @@ func (o *output) finish() {
 	}
 	o.release()
 	o.flush()
+	o.unhint()
+	o.shown.over, o.shown.events = true, nil
 	o.limit.head = max(o.limit.head, tailBytes)
 }
 
