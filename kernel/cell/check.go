@@ -40,16 +40,27 @@ func (s *Scope) release(p *parsed) {
 // check checks a cell, its leading variables as a package's or, if that does
 // not compile, as statements.
 func (s *Scope) check(p *parsed) (*Plan, error) {
-	plan, err := s.checkParsed(p)
-	if err != nil && len(p.lead) > 0 {
-		// As in var x = x + 1, where the right side means an older x.
-		q := *p
-		q.lead, q.body = nil, &ast.BlockStmt{Lbrace: p.body.Lbrace, Rbrace: p.body.Rbrace}
-		for _, d := range p.lead {
-			q.body.List = append(q.body.List, &ast.DeclStmt{Decl: d})
+	if len(p.lead) == 0 {
+		return s.checkParsed(p)
+	}
+	// As statements: where a statement declares a leading variable again, which
+	// in one scope means the same variable, and as in var x = x + 1, where the
+	// right side means an older x.
+	q := *p
+	q.lead, q.body = nil, &ast.BlockStmt{Lbrace: p.body.Lbrace, Rbrace: p.body.Rbrace}
+	for _, d := range p.lead {
+		q.body.List = append(q.body.List, &ast.DeclStmt{Decl: d})
+	}
+	q.body.List = append(q.body.List, p.stmts...)
+	q.stmts = q.body.List
+	lead := outerNames(&parsed{lead: p.lead})
+	for _, n := range outerNames(&parsed{stmts: p.stmts}) {
+		if slices.Contains(lead, n) {
+			return s.checkParsed(&q)
 		}
-		q.body.List = append(q.body.List, p.stmts...)
-		q.stmts = q.body.List
+	}
+	plan, err := s.checkParsed(p)
+	if err != nil {
 		if plan, err := s.checkParsed(&q); err == nil {
 			return plan, nil
 		}

@@ -1,8 +1,12 @@
 package runner_test
 
 import (
+	"io/fs"
+	"path/filepath"
 	"strings"
 	"testing"
+
+	"levelsum/kernel/engine"
 )
 
 // TestCellAgain runs a compiled cell again as it was: nothing is compiled
@@ -26,4 +30,52 @@ func TestCellAgain(t *testing.T) {
 			t.Errorf("run %d: %v, want %s", k, out.Fault, want)
 		}
 	}
+}
+
+// TestBuildAhead announces a cell while another runs: when its turn comes its
+// build has been done.
+func TestBuildAhead(t *testing.T) {
+	e := start(t)
+	const first = "func double(x float64) float64 { return 2 * x }\nvar in string\nin, err := display.Current().Ask(\"\", false)\nif err != nil {\n\tpanic(err)\n}\nin"
+	const second = "s := 0.0\nfor i := range 5 {\n\ts += double(float64(i))\n}\ns"
+	e.Announce(engine.Cell{N: 2, Source: second})
+	// The first cell waits until the kit's cache holds one plugin more than at
+	// its start: that of the second cell.
+	var before int
+	c := &capture{}
+	c.answer = func(string) (string, error) {
+		before = plugins(t)
+		for plugins(t) == before {
+			if t.Context().Err() != nil {
+				return "", t.Context().Err()
+			}
+		}
+		return "built", nil
+	}
+	if out := e.Run(t.Context(), engine.Cell{N: 1, Source: first, CanAsk: true}, c); out.Fault != nil {
+		t.Fatal(out.Fault.Trace)
+	}
+	built := plugins(t)
+	out, _ := run(t, e, 2, second)
+	if out.Fault != nil || out.Value.Data["text/plain"] != "20" {
+		t.Fatalf("%v %v", out.Fault, out.Value)
+	}
+	if plugins(t) != built {
+		t.Error("the announced cell was built once more")
+	}
+}
+
+// plugins counts what has been built.
+func plugins(t *testing.T) int {
+	n := 0
+	err := filepath.WalkDir(filepath.Join(host.Cache, "built"), func(path string, d fs.DirEntry, err error) error {
+		if err == nil && strings.HasSuffix(path, ".so") {
+			n++
+		}
+		return nil
+	})
+	if err != nil {
+		t.Fatal(err)
+	}
+	return n
 }

@@ -150,9 +150,6 @@ func (b *builds) start(u *cell.Unit) *build {
 	return bu
 }
 
-// announce is told of a cell that will be run soon.
-func (b *builds) announce(engine.Cell) {}
-
 // bind gives a unit the places of the session variables that it reaches.
 func (r *Runner) bind(u *cell.Unit, offers map[string]any) error {
 	for _, l := range u.Slots {

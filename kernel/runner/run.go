@@ -40,6 +40,7 @@ func (r *Runner) run(c engine.Cell) engine.Outcome {
 		out.Fault = prepareFault(err)
 		return out
 	}
+	r.buildAhead(plan)
 	reached := -1
 	if job != nil {
 		reached, out.Fault = r.goroutine(job, src)

@@ -33,6 +33,7 @@ type Runner struct {
 	slots   slots
 	interp  interpreter
 	built   builds
+	ahead   ahead
 	docs    *assist.Docs              // nil until something is inspected
 	plugins map[string]map[string]any // by unit path: what the plugin offers
 
@@ -120,7 +121,7 @@ func (r *Runner) serve(requests io.Reader) int {
 			case "stop":
 				r.stop()
 			case "announce":
-				r.built.announce(*q.Cell)
+				r.ahead.announce(*q.Cell)
 			default:
 				if q.Op == "run" {
 					r.accept()

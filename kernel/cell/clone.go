@@ -1,0 +1,44 @@
+package cell
+
+import (
+	"maps"
+	"slices"
+)
+
+// Clone returns a scope on which can be tried what would come next. The two
+// share what never changes: objects, units and decls.
+func (s *Scope) Clone() *Scope {
+	c := *s
+	c.entities = maps.Clone(s.entities)
+	c.imports = maps.Clone(s.imports)
+	c.dots = slices.Clone(s.dots)
+	c.decls = maps.Clone(s.decls)
+	c.dropped = maps.Clone(s.dropped)
+	c.units = maps.Clone(s.units)
+	c.methods = map[string][]*Decl{}
+	for k, v := range s.methods {
+		c.methods[k] = slices.Clone(v)
+	}
+	c.slots = map[string][]*Slot{}
+	for k, v := range s.slots {
+		c.slots[k] = slices.Clone(v)
+	}
+	c.users = map[string]map[*Decl]bool{}
+	for k, v := range s.users {
+		c.users[k] = maps.Clone(v)
+	}
+	c.typed = map[string]map[string]bool{}
+	for k, v := range s.typed {
+		c.typed[k] = maps.Clone(v)
+	}
+	c.origins = origins{now: s.origins.now, at: maps.Clone(s.origins.at), made: maps.Clone(s.origins.made)}
+	return &c
+}
+
+// On returns the plan as one for a clone of the scope it was made for.
+func (p *Plan) On(clone *Scope) *Plan {
+	q := *p
+	q.scope = clone
+	q.parsed = nil // its positions are still wanted
+	return &q
+}
