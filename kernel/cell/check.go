@@ -82,6 +82,7 @@ type checking struct {
 	redo    []*Decl         // own decls that changed and older ones that depend on a change
 	drop    map[string]bool // variables whose type changed
 	broken  map[*Decl]Diagnostics
+	infos   []*types.Info // of the last attempt, for hints
 }
 
 func (s *Scope) checkParsed(p *parsed) (*Plan, error) {
@@ -461,6 +462,7 @@ func (c *checking) attempt() (plan *Plan, errs Diagnostics, again bool) {
 	// The statements.
 	body := &ast.FuncDecl{Name: ast.NewIdent("_"), Type: &ast.FuncType{Params: &ast.FieldList{}, Func: c.p.body.Pos()}, Body: c.p.body}
 	plan.sinfo = newInfo()
+	c.infos = []*types.Info{plan.info, plan.sinfo}
 	spkg := types.NewPackage(cellPath, "")
 	hide := map[string]bool{}
 	for _, n := range twins {
@@ -525,6 +527,7 @@ func (c *checking) attempt() (plan *Plan, errs Diagnostics, again bool) {
 		return nil, errs, false
 	}
 	plan.finishResult()
+	plan.Warnings = append(plan.Warnings, c.useless(plan)...)
 
 	// The variables.
 	for _, v := range c.vars {
@@ -813,7 +816,7 @@ func (c *checking) diagnose(e types.Error, src *Source) Diagnostic {
 	msg := strings.ReplaceAll(e.Msg, "\n\t", ", ")
 	msg = strings.ReplaceAll(msg, "\n", " ")
 	msg = strings.ReplaceAll(msg, `"cell".`, "")
-	return Diagnostic{Source: src, Line: line, Column: col, Msg: msg, Hint: c.hint(msg)}
+	return Diagnostic{Source: src, Line: line, Column: col, Msg: msg, Hint: c.hint(e.Pos, msg)}
 }
 
 // ignorable tells the errors that are none in a cell.

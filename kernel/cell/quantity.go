@@ -6,8 +6,6 @@ import (
 	"go/constant"
 	"go/token"
 	"go/types"
-	"regexp"
-	"strings"
 )
 
 // unitPath is the package whose types are quantities.
@@ -161,31 +159,4 @@ func exampleUnit(q string) string {
 		return "Angstrom"
 	}
 	return "X (a unit constant of that kind)"
-}
-
-var mismatch = regexp.MustCompile(`^invalid operation: (.+) \* (.+) \(mismatched types (\S+) and (\S+)\)`)
-
-// hint answers an error by the spelling that works.
-func (c *checking) hint(msg string) string {
-	if m := mismatch.FindStringSubmatch(msg); m != nil {
-		x, y, tx, ty := m[1], m[2], m[3], m[4]
-		if tx == "float64" && strings.HasPrefix(ty, "unit.") {
-			return fmt.Sprintf("write %s(%s) * %s", ty, x, y)
-		}
-		if ty == "float64" && strings.HasPrefix(tx, "unit.") {
-			return fmt.Sprintf("write %s * %s(%s)", x, tx, y)
-		}
-	}
-	if name, ok := strings.CutPrefix(msg, "undefined: "); ok {
-		if c.drop[name] {
-			return name + " was dropped, since its type changes in this cell"
-		}
-		if why := c.s.dropped[name]; why != "" {
-			return why
-		}
-		if d := c.s.decls[name]; d != nil && d.broken {
-			return fmt.Sprintf("%s from %s no longer compiles: see the warning of the cell that changed what it uses", name, d.Source.Name())
-		}
-	}
-	return ""
 }
