@@ -15,15 +15,30 @@ import (
 // f is evaluated with the free parameters at the values found and near them;
 // what they hold now is put back.
 func (r *Result) Function(f func() float64) uncertain.Quantity {
-	return uncertain.Function(func(p []float64) float64 {
-		r.mu.Lock()
-		defer r.mu.Unlock()
-		defer r.reg.set(r.current())
-		r.reg.set(p)
-		r.trying.Store(true)
-		defer r.trying.Store(false)
-		return f()
+	return uncertain.Function(func(p []float64) (y float64) {
+		r.with(p, func() { y = f() })
+		return y
 	}, r.quantity...)
+}
+
+// Functions is [Result.Function] for several numbers computed at once, such as
+// the entropies of a table.
+func (r *Result) Functions(f func() []float64) []uncertain.Quantity {
+	return uncertain.Functions(func(p []float64) (ys []float64) {
+		r.with(p, func() { ys = f() })
+		return ys
+	}, r.quantity...)
+}
+
+// with runs f with the free parameters at p and puts back what they hold now.
+func (r *Result) with(p []float64, f func()) {
+	r.mu.Lock()
+	defer r.mu.Unlock()
+	defer r.reg.set(r.current())
+	r.reg.set(p)
+	r.trying.Store(true)
+	defer r.trying.Store(false)
+	f()
 }
 
 // At returns the fitted curve at x with the standard uncertainty that follows

@@ -121,6 +121,8 @@ func TestDerivedEntropy(t *testing.T) {
 		alone += c.Part * c.Part
 	}
 	within(t, "ratio", math.Sqrt(alone)/s.StandardUncertainty(), 4.7, 0.1)
+	two := res.Functions(func() []float64 { return []float64{float64(m.deb.Entropy(298.15)), float64(m.ein.Entropy(298.15))} })
+	within(t, "u of the sum of two results", two[0].Plus(two[1]).StandardUncertainty(), s.StandardUncertainty(), 1e-6*s.StandardUncertainty())
 	// The same by drawing: the covariance goes into Monte Carlo too.
 	sim, err := uncertain.MonteCarlo(s, uncertain.Draws(4000))
 	if err != nil {

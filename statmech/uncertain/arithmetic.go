@@ -37,6 +37,8 @@ const (
 	opAbs
 	opSum
 	opFunction
+	opFunctions // several results at once
+	opResult    // one of them
 )
 
 // binary makes the node of an operation with value v and partial derivatives
@@ -280,6 +282,55 @@ func Function(f func(x []float64) float64, args ...Quantity) Quantity {
 		n.terms = combine(n.terms, 1, a.terms, c)
 	}
 	return Quantity{n}
+}
+
+// Functions is [Function] for several results of one computation, such as a
+// table of entropies from one model: f is called once for all of them, also in
+// every draw of a Monte Carlo simulation. f returns as many values every time.
+func Functions(f func(x []float64) []float64, args ...Quantity) []Quantity {
+	n := &node{op: opFunctions, fs: f, args: make([]*node, len(args))}
+	x := make([]float64, len(args))
+	for i, q := range args {
+		n.args[i], x[i] = q.node(), q.Value()
+	}
+	call := func() []float64 {
+		y := f(x)
+		inDomain("Functions", "number of results", float64(len(y)), n.count == 0 || len(y) == n.count, fmt.Sprintf("%d, as at first", n.count))
+		check("Functions", y...)
+		return append([]float64(nil), y...)
+	}
+	y := call()
+	n.count = len(y)
+	results := make([]*node, len(y))
+	for k, v := range y {
+		results[k] = &node{op: opResult, a: n, index: k, value: v}
+	}
+	for i, a := range n.args {
+		for _, r := range results {
+			if r.withheld == "" {
+				r.withheld = a.withheld
+			}
+		}
+		if len(a.terms) == 0 {
+			continue
+		}
+		h := math.Cbrt(0x1p-52) * max(math.Abs(x[i]), math.Sqrt(variance(a.terms, anyPart)))
+		centre := x[i]
+		high, low := centre+h, centre-h
+		x[i] = high
+		up := call()
+		x[i] = low
+		down := call()
+		x[i] = centre
+		for k, r := range results {
+			r.terms = combine(r.terms, 1, a.terms, (up[k]-down[k])/(high-low))
+		}
+	}
+	out := make([]Quantity, len(results))
+	for k, r := range results {
+		out[k] = Quantity{r}
+	}
+	return out
 }
 
 // Linear returns value + Σ cᵢ (argsᵢ - E(argsᵢ)): a quantity whose value and

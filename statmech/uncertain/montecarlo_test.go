@@ -158,6 +158,31 @@ func TestJoint(t *testing.T) {
 	within(t, "covariance", j.Covariance[0][1], Covariance(R, X), 4*R.StandardUncertainty()*X.StandardUncertainty()/math.Sqrt(200000))
 }
 
+// TestFunctions: several results of one computation keep their correlation, to
+// first order and in the draws, and cost one call each time.
+func TestFunctions(t *testing.T) {
+	a, b := Measured(5, 0.1), Measured(2, 0.05)
+	calls := 0
+	qs := Functions(func(x []float64) []float64 { calls++; return []float64{x[0] + x[1], x[0] * x[1], x[0]} }, a, b)
+	if len(qs) != 3 || calls != 5 {
+		t.Fatalf("%d results, %d calls", len(qs), calls)
+	}
+	within(t, "product", qs[1].Value(), 10, 0)
+	within(t, "u(product)", qs[1].StandardUncertainty(), a.Times(b).StandardUncertainty(), 1e-9)
+	within(t, "r(sum, product)", Correlation(qs[0], qs[1]), Correlation(a.Plus(b), a.Times(b)), 1e-9)
+	within(t, "third result less its input", qs[2].Minus(a).StandardUncertainty(), 0, 1e-10)
+	calls = 0
+	j, err := MonteCarloJoint(qs, Draws(50000))
+	if err != nil {
+		t.Fatal(err)
+	}
+	if calls != 50000 {
+		t.Errorf("%d calls for 50000 draws", calls)
+	}
+	within(t, "r(sum, product) in the draws", j.Correlation(0, 1), Correlation(qs[0], qs[1]), 0.006)
+	within(t, "u(product) in the draws", j.Simulations[1].U, qs[1].StandardUncertainty(), 0.01*qs[1].StandardUncertainty())
+}
+
 func TestNonFinite(t *testing.T) {
 	s := simulate(t, Log(Measured(1, 0.5)), Draws(100000))
 	share := float64(s.NonFinite) / 100000

@@ -19,8 +19,11 @@ type node struct {
 	a, b     *node
 	args     []*node                 // of opFunction
 	f        func([]float64) float64 // of opFunction
-	k        float64                 // constant operand
-	in       *input                  // of opInput
+	fs       func([]float64) []float64
+	count    int     // of opFunctions: number of results
+	index    int     // of opResult: which of them
+	k        float64 // constant operand
+	in       *input  // of opInput
 	value    float64
 	terms    []term // first-order dependence on the inputs, in order of their identity
 	withheld string // reason why no standard uncertainty is given

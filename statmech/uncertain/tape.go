@@ -53,7 +53,7 @@ func newTape(outputs []*node) *tape {
 				seen[n.in.src] = true
 				t.sources = append(t.sources, n.in.src)
 			}
-			t.hasFunc = t.hasFunc || n.op == opFunction
+			t.hasFunc = t.hasFunc || n.op == opFunction || n.op == opFunctions
 		}
 		t.outputs = append(t.outputs, t.slot[out])
 	}
@@ -77,11 +77,12 @@ func newTape(outputs []*node) *tape {
 type block struct {
 	values [][]float64             // of every step
 	draws  map[*source][][]float64 // of every value of every source
+	many   map[int][][]float64     // results of every opFunctions step
 	x      []float64
 }
 
 func (t *tape) newBlock(n int) *block {
-	b := &block{values: make([][]float64, len(t.steps)), draws: map[*source][][]float64{}}
+	b := &block{values: make([][]float64, len(t.steps)), draws: map[*source][][]float64{}, many: map[int][][]float64{}}
 	for _, s := range t.sources {
 		rows := make([][]float64, len(s.value))
 		for i := range rows {
@@ -94,7 +95,18 @@ func (t *tape) newBlock(n int) *block {
 			b.values[i] = b.draws[st.in.src][st.in.pos]
 			continue
 		}
+		if st.op == opResult {
+			b.values[i] = b.many[t.args[i][0]][st.index]
+			continue
+		}
 		b.values[i] = make([]float64, n)
+		if st.op == opFunctions {
+			rows := make([][]float64, st.count)
+			for k := range rows {
+				rows[k] = make([]float64, n)
+			}
+			b.many[i] = rows
+		}
 		if st.op == opConstant {
 			for k := range b.values[i] {
 				b.values[i][k] = st.k
@@ -116,7 +128,7 @@ func (t *tape) run(b *block, n int) {
 			y = b.values[t.args[i][1]][:n]
 		}
 		switch st.op {
-		case opConstant, opInput:
+		case opConstant, opInput, opResult:
 		case opAdd:
 			for k := range out {
 				out[k] = x[k] + y[k]
@@ -154,7 +166,7 @@ func (t *tape) run(b *block, n int) {
 					out[k] += v
 				}
 			}
-		case opFunction:
+		case opFunction, opFunctions:
 			if cap(b.x) < len(t.many[i]) {
 				b.x = make([]float64, len(t.many[i]))
 			}
@@ -163,7 +175,17 @@ func (t *tape) run(b *block, n int) {
 				for j, a := range t.many[i] {
 					args[j] = b.values[a][k]
 				}
-				out[k] = st.f(args)
+				if st.op == opFunction {
+					out[k] = st.f(args)
+					continue
+				}
+				ys := st.fs(args)
+				for j, row := range b.many[i] {
+					row[k] = math.NaN()
+					if len(ys) == st.count {
+						row[k] = ys[j]
+					}
+				}
 			}
 		default:
 			f := elementary[st.op]
