@@ -83,6 +83,33 @@ func TestSumOfFour(t *testing.T) {
 	}
 }
 
+// TestMassCalibration is JCGM 101:2008, 9.3 (model, inputs and results from
+// memory): calibration of a weight by one of another density in air. The first
+// order gives u = 0.0539 mg, with second-order terms 0.0750, the draws 0.0754.
+func TestMassCalibration(t *testing.T) {
+	mR, dR := Measured(100000, 0.050), Measured(1.234, 0.020)
+	air, rhoW, rhoR := Rectangular(1.20, 0.10), Rectangular(8000, 1000), Rectangular(8000, 50)
+	one := Exact(1)
+	buoyancy := air.Shift(-1.2).Times(one.Over(rhoW).Minus(one.Over(rhoR)))
+	dm := mR.Plus(dR).Times(buoyancy.Shift(1)).Shift(-100000)
+	within(t, "first order", dm.Value(), 1.2340, 5e-5)
+	within(t, "first order, u", dm.StandardUncertainty(), 0.0539, 5e-5)
+	l := dm.Linearity()
+	within(t, "with second order", math.Hypot(l.First, l.Second), 0.0750, 0.0005)
+	if l.Reason == "" {
+		t.Error("not flagged")
+	}
+	s := simulate(t, dm, Draws(1000000))
+	within(t, "draws", s.Mean, 1.2341, 0.0002)
+	within(t, "draws, u", s.U, 0.0754, 0.0002)
+	lo, hi := s.Shortest(0.95)
+	within(t, "shortest interval, low", lo, 1.0834, 0.004)
+	within(t, "shortest interval, high", hi, 1.3825, 0.004)
+	if all := strings.Join(s.Warnings, ""); !strings.Contains(all, "first order is not enough") {
+		t.Errorf("warnings %q", all)
+	}
+}
+
 func TestAdaptive(t *testing.T) {
 	q := Measured(10, 1).Plus(Rectangular(0, 1))
 	s := simulate(t, q)
