@@ -268,44 +268,6 @@ func (pc *piece) enthalpy(a, b float64) uncertain.Quantity {
 	return uncertain.Linear(dotted(w, pc.cp), w, pc.c)
 }
 
-// anomalies looks for points that depart from the line between their
-// neighbours in ln Cp against ln T far more than the others do, in itself and
-// as a curvature, so that a coarse part of the table is not taken for a peak.
-func (pc *piece) anomalies() []string {
-	n := len(pc.t)
-	if n < 8 {
-		return nil
-	}
-	d, curvature := make([]float64, n-2), make([]float64, n-2)
-	for i := range d {
-		x0, x1, x2 := pc.x[i], pc.x[i+1], pc.x[i+2]
-		f := (x1 - x0) / (x2 - x0)
-		d[i] = math.Log(pc.cp[i+1]) - (1-f)*math.Log(pc.cp[i]) - f*math.Log(pc.cp[i+2])
-		curvature[i] = d[i] / ((x1 - x0) * (x2 - x1))
-	}
-	usual, usualCurvature := medianSize(d), medianSize(curvature)
-	worst := -1
-	for i, v := range d {
-		if math.Abs(v) > anomaly && math.Abs(v) > anomalyScale*usual && math.Abs(curvature[i]) > anomalyScale*usualCurvature &&
-			(worst < 0 || math.Abs(v) > math.Abs(d[worst])) {
-			worst = i
-		}
-	}
-	if worst < 0 {
-		return nil
-	}
-	return []string{fmt.Sprintf("Cp at %.6g K departs by %.1f %% from its neighbours, the median point by %.2g %%: an outlier, or a transition hidden in %s?", pc.t[worst+1], 100*math.Expm1(d[worst]), 100*usual, pc.name)}
-}
-
-func medianSize(xs []float64) float64 {
-	size := make([]float64, len(xs))
-	for i, x := range xs {
-		size[i] = math.Abs(x)
-	}
-	sort.Float64s(size)
-	return size[len(size)/2]
-}
-
 // First and Last return the range of temperature that the points cover.
 func (p *Path) First() unit.Temperature { return unit.Temperature(p.pieces[0].t[0]) }
 

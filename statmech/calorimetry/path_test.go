@@ -68,6 +68,9 @@ func TestCopperEntropy(t *testing.T) {
 	if s.StandardUncertainty() > c.StandardUncertainty()/2 || len(p.Notes(298.15)) != 0 {
 		t.Errorf("notes %q; u = %g with independent errors, %g with a common one", p.Notes(298.15), s.StandardUncertainty(), c.StandardUncertainty())
 	}
+	if d := math.Abs(p.Interpolation(298.15)); d == 0 || d > 0.005 {
+		t.Errorf("another interpolation changes S by %g", d)
+	}
 	t.Logf("independent %v, common %v; H %v; %v", s, c, p.Enthalpy(298.15), p.Notes(298.15))
 	t.Log("\n" + p.View().Data["text/plain"].(string))
 }

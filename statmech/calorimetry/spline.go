@@ -97,6 +97,39 @@ func solveTransposed(lower, diag, upper, b []float64) []float64 {
 	return v
 }
 
+// moments returns the second derivatives for ordinates y.
+func (s *spline) moments(y []float64) []float64 {
+	n := len(s.x)
+	m := make([]float64, n)
+	switch n {
+	case 2:
+		return m
+	case 3:
+		v := 2 * ((y[2]-y[1])/s.h[1] - (y[1]-y[0])/s.h[0]) / (s.h[0] + s.h[1])
+		return []float64{v, v, v}
+	}
+	k := n - 2
+	d, v := append([]float64(nil), s.diag...), make([]float64, k)
+	for i := range v {
+		v[i] = 6 * ((y[i+2]-y[i+1])/s.h[i+1] - (y[i+1]-y[i])/s.h[i])
+	}
+	for i := 1; i < k; i++ {
+		f := s.lower[i] / d[i-1]
+		d[i] -= f * s.upper[i-1]
+		v[i] -= f * v[i-1]
+	}
+	for i := k - 1; i >= 0; i-- {
+		if i < k-1 {
+			v[i] -= s.upper[i] * v[i+1]
+		}
+		v[i] /= d[i]
+	}
+	copy(m[1:], v)
+	m[0] = m[1] + (m[1]-m[2])*s.h[0]/s.h[1]
+	m[n-1] = m[n-2] + (m[n-2]-m[n-3])*s.h[n-2]/s.h[n-3]
+	return m
+}
+
 // segment returns the interval whose cubic serves x; outside the points the
 // first and the last one.
 func (s *spline) segment(x float64) int {

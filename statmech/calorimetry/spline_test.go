@@ -45,6 +45,15 @@ func TestSplineCubic(t *testing.T) {
 			y[i] = f(x[i])
 		}
 		sp := newSpline(x[:n])
+		for i, m := range sp.moments(y) {
+			second := 0.0
+			for k := 2; k < len(c); k++ {
+				second += float64(k*(k-1)) * c[k] * math.Pow(x[i], float64(k-2))
+			}
+			if math.Abs(m-second) > 1e-11 {
+				t.Errorf("%d points: second derivative at %g = %.15g, want %.15g", n, x[i], m, second)
+			}
+		}
 		for _, v := range []float64{-0.2, 0.1, 0.4, 0.95, 1.8, 3.9} {
 			if got := weighted(sp.at(v), y); math.Abs(got-f(v)) > 1e-13*40 {
 				t.Errorf("%d points: value at %g = %.15g, want %.15g", n, v, got, f(v))

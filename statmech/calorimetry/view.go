@@ -36,6 +36,9 @@ func (c ContributionTable) View() display.View {
 	if total.Withheld() == "" && total.StandardUncertainty() > 0 {
 		lines = append(lines, fmt.Sprintf("standard uncertainties (k = 1); u(S) random %.2g, common %.2g J/(mol K)", total.RandomPart(), total.CommonPart()))
 	}
+	if d := c.path.Interpolation(c.T); d != 0 {
+		lines = append(lines, fmt.Sprintf("interpolating ln Cp in place of Cp changes S by %+.1g J/(mol K)", d))
+	}
 	if reason := total.Withheld(); reason != "" {
 		lines = append(lines, "no standard uncertainties: "+reason)
 	}
