@@ -34,6 +34,13 @@ func TestReadCopper(t *testing.T) {
 	if want := fmt.Sprintf("%x", sha256.Sum256(raw)); tab.SHA256 != want {
 		t.Errorf("SHA-256 %s, want %s", tab.SHA256, want)
 	}
+	if p := tab.Provenance(); p != "copper.csv, 35 rows, SHA-256 "+tab.SHA256 {
+		t.Errorf("provenance %q", p)
+	}
+	changed, err := tab.ReplaceHeatCapacity(make([]float64, tab.Len()))
+	if err != nil || strings.Contains(changed.Provenance(), "SHA-256") {
+		t.Errorf("provenance of changed numbers %q, %v", changed.Provenance(), err)
+	}
 	if M, _, err := tab.Number("M"); err != nil || math.Abs(M-0.063546) > 1e-17 {
 		t.Errorf("M = %g, %v", M, err)
 	}

@@ -101,6 +101,15 @@ func (c *Column) len() int {
 	return len(c.Values)
 }
 
+// Provenance returns what identifies the data in a report: the file's name, the
+// number of rows and the SHA-256 of the file.
+func (t *Table) Provenance() string {
+	if t.SHA256 == "" {
+		return fmt.Sprintf("%s, %d rows, not as read from a file", t.Name, t.Len())
+	}
+	return fmt.Sprintf("%s, %d rows, SHA-256 %s", t.Name, t.Len(), t.SHA256)
+}
+
 // Column returns the column of that symbol.
 func (t *Table) Column(symbol string) (Column, error) {
 	var have []string

@@ -166,6 +166,8 @@ func (s *sampler) draw(n int) {
 	var wg sync.WaitGroup
 	panics := make(chan any, workers)
 	done := make([]bool, blocks)
+	progress := display.NewProgress("Monte Carlo draws", n)
+	defer progress.Done()
 	for w := range workers {
 		wg.Go(func() {
 			defer func() {
@@ -189,6 +191,7 @@ func (s *sampler) draw(n int) {
 					copy(out[i][from:from+m], b.values[slot][:m])
 				}
 				done[k] = true
+				progress.Step(m)
 			}
 		})
 	}
