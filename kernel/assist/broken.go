@@ -18,6 +18,8 @@ type checked struct {
 	file *ast.File
 	pkg  *types.Package
 	info *types.Info
+	// source is the cell.
+	source string
 	// where maps an offset in the cell to a position in file.
 	where func(offset int) token.Pos
 }
@@ -54,8 +56,8 @@ func check(scope Scope, source string) *checked {
 	}
 	text := beforeDecls + string(decls) + declEnd + beforeStmts + string(stmts) + stmtEnd + "\n}"
 
-	c := &checked{fset: token.NewFileSet()}
-	c.file, _ = parser.ParseFile(c.fset, "", text, parser.AllErrors|parser.SkipObjectResolution)
+	c := &checked{fset: token.NewFileSet(), source: source}
+	c.file, _ = parser.ParseFile(c.fset, "", text, parser.AllErrors|parser.SkipObjectResolution|parser.ParseComments)
 	start := c.fset.File(c.file.FileStart)
 	c.where = func(offset int) token.Pos {
 		base := len(beforeDecls) + len(decls) + len(declEnd) + len(beforeStmts)

@@ -1,31 +1,33 @@
 package assist
 
 import (
-	"go/ast"
-	"go/build"
-	"go/doc"
-	"go/parser"
-	"go/token"
+	"encoding/json"
 	"go/types"
+	"os"
 	"path/filepath"
 	"strings"
 	"sync"
+
+	"levelsum/kernel/symbols/export"
 )
 
-// Docs finds the documentation of packages in their source. It reads a package
+// Docs finds the documentation of packages: what was stored when levelsum was
+// installed, which needs no source, or else in their source. It reads a package
 // once. A nil Docs knows nothing. It is safe for concurrent use.
 type Docs struct {
+	// Stored is the folder with the documentation that was stored, "" if none.
+	Stored string
 	// folder is where the source of a package is, "" if it is not known.
 	folder func(path string) string
 
 	mu   sync.Mutex // guards read
-	read map[string]map[string]string
+	read map[string]export.Docs
 }
 
 // NewDocs returns documentation from the source of Go's own packages below
 // goroot and that of a module below source. Either may be "".
 func NewDocs(goroot, module, source string) *Docs {
-	return &Docs{read: map[string]map[string]string{}, folder: func(path string) string {
+	return &Docs{read: map[string]export.Docs{}, folder: func(path string) string {
 		if path == module || strings.HasPrefix(path, module+"/") {
 			if source == "" {
 				return ""
@@ -40,29 +42,102 @@ func NewDocs(goroot, module, source string) *Docs {
 	}}
 }
 
-// of returns the documentation of o, "" if there is none.
-func (d *Docs) of(o types.Object) string {
+// load returns the documentation of a package.
+func (d *Docs) load(path string) export.Docs {
 	if d == nil {
-		return ""
+		return nil
 	}
-	p, key := o.Pkg(), o.Name()
+	d.mu.Lock()
+	defer d.mu.Unlock()
+	if m, ok := d.read[path]; ok {
+		return m
+	}
+	var m export.Docs
+	if d.Stored != "" {
+		if data, err := os.ReadFile(filepath.Join(d.Stored, filepath.FromSlash(path)+".json")); err == nil {
+			_ = json.Unmarshal(data, &m) // broken, it is as if it were not there
+		}
+	}
+	if len(m) == 0 {
+		if folder := d.folder(path); folder != "" {
+			m = export.ReadDocs(folder)
+		}
+	}
+	d.read[path] = m
+	return m
+}
+
+// Declared scopes know the comments with which cells have declared names, "T.m"
+// for a method or field, and the number of the cell.
+type Declared interface {
+	Documentation(name string) (text string, cell int, ok bool)
+}
+
+// docOf returns the documentation of an object: of a package, of the cell that
+// is being written or of an earlier one, whose number it tells too.
+func (c *checked) docOf(scope Scope, docs *Docs, o types.Object) (text string, cell int) {
+	if p, ok := o.(*types.PkgName); ok {
+		return docs.load(p.Imported().Path())[""], 0
+	}
+	if o.Pkg() == nil {
+		return "", 0
+	}
+	if o.Pkg().Path() != "cell" {
+		return docs.load(o.Pkg().Path())[keyOf(o, o.Pkg())], 0
+	}
+	if v, ok := o.(*types.Var); ok && !v.IsField() {
+		return "", 0
+	}
+	key := keyOf(o, c.pkg)
+	if text, ok := c.own(key); ok {
+		return text, 0
+	}
+	if d, ok := scope.(Declared); ok {
+		if text, cell, ok := d.Documentation(key); ok {
+			return text, cell
+		}
+	}
+	return "", 0
+}
+
+// own returns the comment of a name that the cell itself declares.
+func (c *checked) own(key string) (string, bool) {
+	for _, d := range c.file.Decls {
+		above := export.CommentAbove(c.source, int(d.Pos()-c.file.FileStart)-len(beforeDecls))
+		if text, ok := export.Documented(d, above)[key]; ok {
+			return text, true
+		}
+	}
+	return "", false
+}
+
+// keyOf is the name by which an object is documented. Of a field it looks for
+// the type in the package p.
+func keyOf(o types.Object, p *types.Package) string {
 	switch o := o.(type) {
-	case *types.PkgName:
-		p, key = o.Imported(), ""
 	case *types.Func:
-		o = o.Origin()
-		if r := o.Signature().Recv(); r != nil {
-			key = typeName(r.Type()) + "." + key
+		if r := o.Origin().Signature().Recv(); r != nil {
+			return typeName(r.Type()) + "." + o.Name()
 		}
 	case *types.Var:
-		if o.IsField() {
-			key = "." + key
+		if !o.IsField() {
+			break
+		}
+		for _, name := range p.Scope().Names() {
+			t, ok := p.Scope().Lookup(name).(*types.TypeName)
+			if !ok {
+				continue
+			}
+			if s, ok := t.Type().Underlying().(*types.Struct); ok {
+				for f := range s.Fields() {
+					if f == o.Origin() {
+						return name + "." + o.Name()
+					}
+				}
+			}
 		}
 	}
-	if p == nil || p.Path() == "cell" {
-		return ""
-	}
-	return d.load(p.Path())[key]
+	return o.Name()
 }
 
 // typeName is the name of the type that a method has as its receiver.
@@ -76,89 +151,11 @@ func typeName(t types.Type) string {
 	return ""
 }
 
-// load returns the documentation of a package by name: "" for the package
-// itself, "T.m" for a method, ".f" for a field whose name is used once.
-func (d *Docs) load(path string) map[string]string {
-	d.mu.Lock()
-	defer d.mu.Unlock()
-	if m, ok := d.read[path]; ok {
-		return m
+// definition is how a constant of a package is defined, if that is more than a
+// number.
+func (d *Docs) definition(o types.Object) string {
+	if _, ok := o.(*types.Const); !ok || o.Pkg() == nil || o.Pkg().Path() == "cell" {
+		return ""
 	}
-	m := map[string]string{}
-	d.read[path] = m
-	folder := d.folder(path)
-	if folder == "" {
-		return m
-	}
-	b, err := build.ImportDir(folder, 0)
-	if err != nil && b == nil {
-		return m
-	}
-	fset := token.NewFileSet()
-	var files []*ast.File
-	for _, name := range append(b.GoFiles, b.CgoFiles...) {
-		if f, err := parser.ParseFile(fset, filepath.Join(folder, name), nil, parser.ParseComments); err == nil {
-			files = append(files, f)
-		}
-	}
-	if len(files) == 0 {
-		return m
-	}
-	p, err := doc.NewFromFiles(fset, files, path)
-	if err != nil {
-		return m
-	}
-	m[""] = p.Doc
-	values := func(all []*doc.Value) {
-		for _, v := range all {
-			group := v.Doc
-			for _, s := range v.Decl.Specs {
-				s := s.(*ast.ValueSpec)
-				text := s.Doc.Text() + s.Comment.Text()
-				if text == "" {
-					text = group
-				}
-				for _, n := range s.Names {
-					m[n.Name] = text
-				}
-			}
-		}
-	}
-	funcs := func(all []*doc.Func, prefix string) {
-		for _, f := range all {
-			m[prefix+f.Name] = f.Doc
-		}
-	}
-	values(p.Consts)
-	values(p.Vars)
-	funcs(p.Funcs, "")
-	for _, t := range p.Types {
-		m[t.Name] = t.Doc
-		values(t.Consts)
-		values(t.Vars)
-		funcs(t.Funcs, "")
-		funcs(t.Methods, t.Name+".")
-		fieldDocs(t.Decl, m)
-	}
-	return m
-}
-
-// fieldDocs notes the documentation of the fields of a type. Types share the
-// names of fields, so a name with several documentations has none.
-func fieldDocs(decl *ast.GenDecl, m map[string]string) {
-	ast.Inspect(decl, func(n ast.Node) bool {
-		f, ok := n.(*ast.Field)
-		if !ok {
-			return true
-		}
-		text := f.Doc.Text() + f.Comment.Text()
-		for _, name := range f.Names {
-			key := "." + name.Name
-			if old, ok := m[key]; ok && old != text {
-				text = ""
-			}
-			m[key] = text
-		}
-		return true
-	})
+	return d.load(o.Pkg().Path())["="+o.Name()]
 }

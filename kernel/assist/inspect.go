@@ -113,16 +113,61 @@ func (c *checked) describe(scope Scope, docs *Docs, o types.Object, detail int) 
 			extra = append(extra, fmt.Sprintf("// %d names", len(members)))
 		}
 	}
+	if def := docs.definition(o); def != "" {
+		extra = append(extra, "// "+o.Name()+" = "+def)
+	}
+	text, cell := c.docOf(scope, docs, o)
+	if cell > 0 {
+		extra = append([]string{fmt.Sprintf("// declared in In[%d]", cell)}, extra...)
+	}
 	code := strings.Join(append([]string{head}, extra...), "\n")
 	d := Inspection{Text: code, Markdown: "```go\n" + code + "\n```"}
-	if text := docs.of(o); text != "" {
-		var p comment.Parser
-		parsed := p.Parse(text)
-		var pr comment.Printer
-		d.Text += "\n\n" + strings.TrimSpace(string(pr.Text(parsed)))
-		d.Markdown += "\n\n" + strings.TrimSpace(string(pr.Markdown(parsed)))
+	if text != "" {
+		plain, markdown := printed(text)
+		d.Text += "\n\n" + plain
+		d.Markdown += "\n\n" + markdown
 	}
 	return d
+}
+
+// printed is a documentation comment as plain text and as Markdown, formulas as
+// the code blocks that they are.
+func printed(text string) (plain, markdown string) {
+	p := comment.Parser{LookupSym: func(string, string) bool { return true }}
+	doc := p.Parse(text)
+	for _, b := range doc.Content {
+		withoutLinks(b)
+	}
+	pr := comment.Printer{HeadingLevel: 4, HeadingID: func(*comment.Heading) string { return "" }}
+	return strings.TrimSpace(string(pr.Text(doc))), strings.TrimSpace(string(pr.Markdown(doc)))
+}
+
+// withoutLinks makes code of the links to other names, which lead nowhere here.
+func withoutLinks(b comment.Block) {
+	switch b := b.(type) {
+	case *comment.Paragraph:
+		b.Text = plainLinks(b.Text)
+	case *comment.Heading:
+		b.Text = plainLinks(b.Text)
+	case *comment.List:
+		for _, item := range b.Items {
+			for _, c := range item.Content {
+				withoutLinks(c)
+			}
+		}
+	}
+}
+
+func plainLinks(all []comment.Text) []comment.Text {
+	var out []comment.Text
+	for _, t := range all {
+		if l, ok := t.(*comment.DocLink); ok {
+			out = append(out, l.Text...)
+			continue
+		}
+		out = append(out, t)
+	}
+	return out
 }
 
 // line is a member of a type or package on a line of its own.

@@ -2,6 +2,8 @@ package assist
 
 import (
 	"go/build"
+	"os"
+	"path/filepath"
 	"strings"
 	"testing"
 )
@@ -11,6 +13,11 @@ func (s session) ValueOf(name string) (string, int, bool) {
 		return "343", 7, true
 	}
 	return "", 0, false
+}
+
+func (s session) Documentation(name string) (string, int, bool) {
+	text, ok := map[string]string{"Inner": "An Inner is below.\n", "Inner.Depth": "how deep\n", "Inner.Below": ""}[name]
+	return text, 4, ok
 }
 
 // In the sources | is the cursor. Want are texts that the description has, in
@@ -40,6 +47,20 @@ func TestInspect(t *testing.T) {
 		{"builtin", "len|(list)", 0, []string{"func len"}},
 		{"variable of the cell", "alpha := 3.5\nalp|ha", 0, []string{"var alpha float64"}},
 		{"in a broken cell", "x := nosuch(\nmath.Sqr|t(2", 0, []string{"func math.Sqrt"}},
+		{"definition of a constant", "time.Min|ute", 0, []string{"const time.Minute time.Duration = 60000000000", "// Minute = 60 * Second"}},
+		{"unit", "3 * unit.PerC|m", 0, []string{"const unit.PerCm unit.Energy = 1.98645e-23", "// PerCm = Planck * SpeedOfLight * 100", "Energies per particle."}},
+		{"method of a quantity", "gap.PerM|ole()", 0, []string{"func (unit.Energy) PerMole() unit.MolarEnergy", "PerMole returns N"}},
+		{"field of a library", "var c unit.Constant\nc.Exa|ct", 0, []string{"field Exact bool", "exact by the definition of the SI"}},
+		{"formula", "statmech.Schot|tky{}", 0, []string{"type statmech.Schottky", "Schottky"}},
+		{"function declared in the cell", "// Width is the width\n// of a line.\nfunc width() float64 { return 1 }\nwid|th()", 0, []string{"func width() float64", "Width is the width of a line."}},
+		{"type declared in the cell", "x := 1\n\n// A Line is thin.\ntype Line struct {\n\tA int // first\n}\nvar l Li|ne", 0, []string{"type Line struct", "\tA int", "A Line is thin."}},
+		{"field declared in the cell", "type Line struct {\n\tA int // is the first\n}\nvar l Line\nl.|A", 0, []string{"field A int", "is the first"}},
+		{"method declared in the cell", "type Line struct{}\n// Len counts.\nfunc (l *Line) Len() int { return 0 }\nvar l Line\nl.L|en()", 0, []string{"func (*Line) Len() int", "Len counts."}},
+		{"constant declared in the cell", "const (\n\t// Low is low.\n\tLow = 1\n\tHigh = 2 // is high\n)\nHi|gh", 0, []string{"const High untyped int = 2", "is high"}},
+		{"type declared before", "Inn|er{}", 0, []string{"type Inner struct", "// declared in In[4]", "\tDepth int", "An Inner is below."}},
+		{"field declared before", "run.De|pth", 0, []string{"field Depth int", "// declared in In[4]", "how deep"}},
+		{"method declared before", "run.Bel|ow()", 0, []string{"func (Inner) Below() int", "// declared in In[4]"}},
+		{"after letters of several bytes", "θθ := \"日本語\"; math.Sq|rt(2)", 0, []string{"func math.Sqrt"}},
 		{"in a function", "func f(width float64) float64 { return wid|th }", 0, []string{"var width float64"}},
 	} {
 		t.Run(test.name, func(t *testing.T) {
@@ -95,5 +116,35 @@ func TestDocsOfOurOwn(t *testing.T) {
 		if got := d.load(path); len(got) != 0 {
 			t.Errorf("documentation of %s: %q", path, got)
 		}
+	}
+}
+
+// What was stored needs no source, and goes before it.
+func TestStoredDocs(t *testing.T) {
+	dir := t.TempDir()
+	if err := os.WriteFile(filepath.Join(dir, "math.json"), []byte(`{"": "Package math is stored.", "Sqrt": "Sqrt is stored."}`), 0o666); err != nil {
+		t.Fatal(err)
+	}
+	if err := os.WriteFile(filepath.Join(dir, "time.json"), []byte(`{"": `), 0o666); err != nil {
+		t.Fatal(err)
+	}
+	s := newSession(t)
+	d := NewDocs(build.Default.GOROOT, "", "")
+	d.Stored = dir
+	for source, want := range map[string]string{"math.Sqrt": "Sqrt is stored.", "math": "Package math is stored.", "strings.ToUpper": "ToUpper returns", "time.Now": "Now returns"} {
+		if got, ok := Inspect(s, d, source, len(source), 0); !ok || !strings.Contains(got.Markdown, want) {
+			t.Errorf("%s: %s, want %s", source, got.Markdown, want)
+		}
+	}
+}
+
+// Links between names are plain text, formulas code.
+func TestPrintedDocs(t *testing.T) {
+	plain, markdown := printed("F is like [Mode] and [time.Time].\n\n\tS = k ln W\n\n# More\n\n  - of [Levels]\n")
+	if want := "F is like Mode and time.Time.\n\n\tS = k ln W\n\n# More\n\n  - of Levels"; plain != want {
+		t.Errorf("plain %q, want %q", plain, want)
+	}
+	if want := "F is like Mode and time.Time.\n\n\tS = k ln W\n\n#### More\n\n  - of Levels"; markdown != want {
+		t.Errorf("markdown %q, want %q", markdown, want)
 	}
 }

@@ -31,6 +31,9 @@ type Options struct {
 	// Offer are import paths of further packages that cells may import; tests
 	// have some.
 	Offer []string
+	// Docs stores the documentation of what cells may import in the kit, so that
+	// it is there without the source.
+	Docs bool
 	// Log is told, a line at a time, what takes long. Nil means nobody.
 	Log io.Writer
 }
@@ -106,7 +109,7 @@ func Prepare(ctx context.Context, dir, source string, opt Options) (*Kit, error)
 	if err != nil {
 		return nil, err
 	}
-	if err := m.store(dir, pkgs, paths); err != nil {
+	if err := m.store(dir, pkgs, paths, opt.Docs); err != nil {
 		return nil, err
 	}
 	cache := opt.Cache
@@ -119,8 +122,9 @@ func Prepare(ctx context.Context, dir, source string, opt Options) (*Kit, error)
 }
 
 // store puts the packages' archives and the manifest, which it completes, into
-// the folder dir. Of the packages, cells may import those in paths.
-func (m *Manifest) store(dir string, pkgs []listed, paths []string) error {
+// the folder dir. Of the packages, cells may import those in paths; docs stores
+// their documentation too.
+func (m *Manifest) store(dir string, pkgs []listed, paths []string, docs bool) error {
 	if err := os.MkdirAll(filepath.Dir(dir), 0o777); err != nil {
 		return &CacheError{filepath.Dir(dir), err}
 	}
@@ -146,6 +150,11 @@ func (m *Manifest) store(dir string, pkgs []listed, paths []string) error {
 		m.Archives = append(m.Archives, &Archive{
 			Path: p.ImportPath, Name: p.Name, Hash: hash, Standard: p.Standard, Import: slices.Contains(paths, p.ImportPath),
 		})
+	}
+	if docs {
+		if err := storeDocs(filepath.Join(tmp, docsName), pkgs, paths); err != nil {
+			return &CacheError{dir, err}
+		}
 	}
 	slices.SortFunc(m.Archives, func(a, b *Archive) int { return strings.Compare(a.Path, b.Path) })
 	m.ID = m.identity()
@@ -227,7 +236,7 @@ func (t *toolchain) importable(ctx context.Context, source string) ([]string, er
 // export compiles packages and what they import, as a plugin's build does, or,
 // where there are no plugins, as any build does.
 func (t *toolchain) export(ctx context.Context, source string, race bool, paths []string) ([]listed, error) {
-	args := []string{"-trimpath", "-pgo=off", "-export", "-deps", "-json=ImportPath,Name,Export,Standard,Module,Error"}
+	args := []string{"-trimpath", "-pgo=off", "-export", "-deps", "-json=ImportPath,Name,Export,Dir,Standard,Module,Error"}
 	if t.plugins {
 		args = append(args, "-buildmode=plugin")
 		paths = append(slices.Clone(paths), "runtime/cgo") // the linker wants it

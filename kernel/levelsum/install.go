@@ -109,7 +109,7 @@ func prepare(ctx context.Context, exe, source string, stdout, stderr io.Writer) 
 		return err
 	}
 	start := time.Now()
-	k, err := compile.Prepare(ctx, dir, source, compile.Options{Race: compile.Race, Executable: exe, Log: stderr})
+	k, err := compile.Prepare(ctx, dir, source, compile.Options{Race: compile.Race, Executable: exe, Docs: true, Log: stderr})
 	if err != nil {
 		return err
 	}

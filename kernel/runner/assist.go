@@ -8,7 +8,9 @@ import (
 	"levelsum/display"
 	"levelsum/kernel/assist"
 	"levelsum/kernel/cell"
+	"levelsum/kernel/compile"
 	"levelsum/kernel/engine"
+	"levelsum/kernel/symbols/export"
 )
 
 // complete answers how a cell can go on.
@@ -23,18 +25,27 @@ func (r *Runner) complete(source string, cursor int) *engine.Completion {
 
 // inspect answers what stands at the cursor; nil if that is not known.
 func (r *Runner) inspect(source string, cursor, detail int) map[string]any {
-	if r.docs == nil {
-		goroot, folder := "", ""
-		if r.kit != nil {
-			goroot, folder = r.kit.Manifest.GOROOT, r.kit.Manifest.Source
-		}
-		r.docs = assist.NewDocs(goroot, "levelsum", folder)
-	}
 	d, ok := assist.Inspect(valued{r.scope, r}, r.docs, source, cursor, detail)
 	if !ok {
 		return nil
 	}
 	return map[string]any{"text/plain": cell.Unmark(d.Text), "text/markdown": cell.Unmark(d.Markdown)}
+}
+
+// newDocs finds documentation where the packages that cells import come from.
+func newDocs(source export.Source) *assist.Docs {
+	var t *compile.Types
+	switch s := source.(type) {
+	case *compile.Kit:
+		t = s.Types
+	case *compile.Types:
+		t = s
+	default:
+		return assist.NewDocs("", "", "")
+	}
+	d := assist.NewDocs(t.Manifest.GOROOT, "levelsum", t.Manifest.Source)
+	d.Stored = t.DocsDir()
+	return d
 }
 
 // valued is the session's scope with what its variables hold.

@@ -1,6 +1,7 @@
 package runner_test
 
 import (
+	"fmt"
 	"slices"
 	"strings"
 	"testing"
@@ -13,7 +14,7 @@ import (
 func TestHelpWhileTyping(t *testing.T) {
 	e := start(t)
 	for i, source := range []string{
-		"type sample struct { mass float64; Temp float64 }\nfunc (s sample) heat() float64 { return s.mass * s.Temp }",
+		"// A sample was weighed.\ntype sample struct {\n\tmass float64 // in kg\n\tTemp float64\n}\n\n// heat is mass times Temp.\nfunc (s sample) heat() float64 { return s.mass * s.Temp }",
 		"run := sample{mass: 2, Temp: 3}\nθ := 343.5",
 		"import \"math/bits\"\nwidth := bits.Len(8)",
 		"type slow int\nfunc (slow) String() string { for { } }\nvar z slow",
@@ -52,10 +53,13 @@ func TestHelpWhileTyping(t *testing.T) {
 	for _, test := range []struct{ source, want string }{
 		{"θ", "var θ float64\n// set by In[2]\nθ = 343.5"},
 		{"run", "var run sample\n// set by In[2]\nrun = "},
-		{"run.heat", "func (sample) heat() float64"},
-		{"sample", "type sample struct\n\tmass float64\n\tTemp float64\n\theat() float64"},
+		{"run.heat", "func (sample) heat() float64\n// declared in In[1]\n\nheat is mass times Temp."},
+		{"sample", "type sample struct\n// declared in In[1]\n\tmass float64\n\tTemp float64\n\theat() float64"},
 		{"math.Sqrt", "Sqrt returns the square root of x."},
 		{"solid.Debye", "type solid.Debye struct\n"},
+		{"sample", "A sample was weighed."},
+		{"run.mass", "in kg"},
+		{"unit.PerCm", "// PerCm = Planck * SpeedOfLight * 100"},
 		{"unit.K", "const unit.K unit.Temperature = 1"},
 		{"z", "z = (takes long to show)"},
 	} {
@@ -68,4 +72,30 @@ func TestHelpWhileTyping(t *testing.T) {
 	if got, ok, err := e.Inspect(t.Context(), "nosuch", 3, 0); ok || err != nil {
 		t.Errorf("an unknown name is described by %v, %v", got, err)
 	}
+}
+
+// Completion and inspection among what 300 cells have declared.
+func BenchmarkHelpWhileTyping(b *testing.B) {
+	e := start(b)
+	for i := range 300 {
+		source := fmt.Sprintf("x%d := %d.5\nT%d := %d * unit.K\nxs%d := []float64{x%d}", i, i, i, i+1, i, i)
+		if out := e.Run(b.Context(), engine.Cell{N: i + 1, Source: source}, &capture{}); out.Fault != nil {
+			b.Fatal(out.Fault)
+		}
+	}
+	const source = "for i := range xs7 {\n\ty := xs7[i] * math.Sqrt(x12)\n\tsolid.Debye{Theta: 343 * unit.K}.HeatCapacity(T"
+	b.Run("complete", func(b *testing.B) {
+		for b.Loop() {
+			if c, err := e.Complete(b.Context(), source, len(source)); err != nil || len(c.Matches) < 300 {
+				b.Fatal(len(c.Matches), err)
+			}
+		}
+	})
+	b.Run("inspect", func(b *testing.B) {
+		for b.Loop() {
+			if _, ok, err := e.Inspect(b.Context(), source, len(source)-3, 0); !ok || err != nil {
+				b.Fatal(ok, err)
+			}
+		}
+	})
 }

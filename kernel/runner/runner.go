@@ -34,7 +34,7 @@ type Runner struct {
 	interp  interpreter
 	built   builds
 	ahead   ahead
-	docs    *assist.Docs              // nil until something is inspected
+	docs    *assist.Docs
 	plugins map[string]map[string]any // by unit path: what the plugin offers
 
 	compileAll bool // no cell is interpreted
@@ -89,6 +89,7 @@ func New(w *engine.Writer) (*Runner, error) {
 	} else {
 		return nil, err
 	}
+	r.docs = newDocs(source)
 	r.scope = cell.NewScope(export.New(source), usual)
 	r.slots.init()
 	r.interp.init(r)
