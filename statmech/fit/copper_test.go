@@ -128,3 +128,32 @@ func TestFigure(t *testing.T) {
 		t.Errorf("u of the curve %g, %g by At", u[0], res.At(5).StandardUncertainty())
 	}
 }
+
+// TestCopperDilated: electrons, one Debye and one Einstein term and the heat of
+// thermal expansion do describe copper from 1 K to 300 K. The fitted Cp - C_V
+// at 298.15 K agrees with T V α² B_T = 0.6908 J/(mol K) from V = 7.11e-6 m³/mol,
+// α = 4.95e-5 /K and B_T = 133 GPa, which the fit does not know.
+func TestCopperDilated(t *testing.T) {
+	run := copper(t)
+	deb, ein, el := solid.Debye{Theta: 320, Modes: 2}, solid.Einstein{Theta: 220, Modes: 1}, solid.Electronic{Gamma: 6.92e-4}
+	lattice := solid.Dilated{Lattice: solid.Sum{&deb, &ein}, A: 1e-6}
+	res, err := HeatCapacity(solid.Sum{&el, &lattice}, run, Vary(&deb.Theta, &ein.Theta, &deb.Modes, &lattice.A),
+		Tie(&ein.Modes, func() float64 { return 3 - deb.Modes }), AbsoluteSigma)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if res.Withheld != "" || res.Ratio() > 1 {
+		t.Errorf("χ² per degree of freedom %g, %s", res.Ratio(), res.Withheld)
+	}
+	difference := res.Function(func() float64 {
+		return float64(lattice.HeatCapacity(298.15) - solid.Sum{&deb, &ein}.HeatCapacity(298.15))
+	})
+	t.Logf("Cp - C_V = %v; θ_D %v, θ_E %v", difference, res.Parameter(&deb.Theta), res.Parameter(&ein.Theta))
+	within(t, "Cp - C_V at 298.15 K", difference.Value(), 0.6908, 2*difference.StandardUncertainty())
+	if u := difference.StandardUncertainty(); u > 0.06 {
+		t.Errorf("u(Cp - C_V) = %g says nothing", u)
+	}
+	if all := strings.Join(res.Warnings, "\n"); strings.Contains(all, "the model gives C_V") {
+		t.Errorf("a model with expansion is warned of its lack\n%s", all)
+	}
+}

@@ -282,7 +282,7 @@ func (m *thermal) warn(r *Result) {
 		if p.unit != "K" || !isTheta(p.field) || theta <= 0 || highest <= theta/3 {
 			continue
 		}
-		r.Warnings = append(r.Warnings, fmt.Sprintf("points up to %.4g K, above a third of %s = %.4g K: the model gives C_V, the data are Cp; subtract Cp - C_V or add a term for it", highest, p.name, theta))
+		r.Warnings = append(r.Warnings, fmt.Sprintf("points up to %.4g K, above a third of %s = %.4g K: the model gives C_V, the data are Cp; subtract Cp - C_V, or put the lattice into solid.Dilated", highest, p.name, theta))
 	}
 }
 
