@@ -223,7 +223,7 @@ func (c *checked) visible(pos token.Pos, want types.Type) []Match {
 			}
 			if _, o := inner.LookupParent(name, pos); o != nil && o == s.Lookup(name) {
 				m := match(o, rank)
-				if _, isVar := o.(*types.Var); isVar && want != nil && types.Identical(o.Type(), want) {
+				if _, isVar := o.(*types.Var); isVar && want != nil && fits(o.Type(), want) {
 					m.rank = rankFits
 				}
 				all = append(all, m)
@@ -231,6 +231,16 @@ func (c *checked) visible(pos token.Pos, want types.Type) []Match {
 		}
 	}
 	return all
+}
+
+// fits reports whether a value of type t is what is wanted: of this very type,
+// or one that has the methods that are wanted.
+func fits(t, want types.Type) bool {
+	if types.Identical(t, want) {
+		return true
+	}
+	i, ok := want.Underlying().(*types.Interface)
+	return ok && !i.Empty() && types.AssignableTo(t, want)
 }
 
 // match is how an object completes.

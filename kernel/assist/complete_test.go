@@ -35,6 +35,7 @@ import (
 	"time"
 
 	"levelsum/statmech"
+	"levelsum/statmech/uncertain"
 	"levelsum/statmech/unit"
 )
 
@@ -72,6 +73,14 @@ var gap unit.Energy
 var temperatures []unit.Temperature
 
 func cv(T unit.Temperature, label string) unit.MolarEntropy { return 0 }
+type disc struct{}
+
+func (disc) Area() float64 { return 0 }
+
+var round disc
+var known uncertain.Quantity
+
+func area(s Shape) float64 { return 0 }
 func audit(o statmech.AuditOptions)                          {}
 `
 
@@ -85,7 +94,7 @@ var oneSession = sync.OnceValues(func() (session, error) {
 	imp := importer.ForCompiler(fset, "source", nil)
 	pkg, err := (&types.Config{Importer: imp}).Check("cell", fset, []*ast.File{f}, nil)
 	return session{pkg, map[string]string{"time": "time", "math": "math", "strings": "strings",
-		"unit": "levelsum/statmech/unit", "statmech": "levelsum/statmech"}, imp}, err
+		"unit": "levelsum/statmech/unit", "statmech": "levelsum/statmech", "uncertain": "levelsum/statmech/uncertain"}, imp}, err
 })
 
 func newSession(t testing.TB) session {
@@ -187,6 +196,10 @@ func TestComplete(t *testing.T) {
 		{"element of quantities", "temperatures[0].I|", "In", "In", ""},
 		{"range over quantities", "for _, T := range temperatures {\n\tT.|", "In AsEnergy", "", ""},
 		{"options of a struct", "audit(|", "statmech.AuditOptions:type", "statmech.AuditOptions", ""},
+		{"value with the wanted methods", "area(|", "round shape", "round", ""},
+		{"options that are functions", "uncertain.MonteCarlo(known, |", "uncertain.Draws:function uncertain.Seed uncertain.Coverage", "uncertain.Coverage", "uncertain.Exp"},
+		{"options by their own names", "uncertain.MonteCarlo(known, uncertain.Draws(9), Se|", "uncertain.Seed", "uncertain.Seed", "uncertain.Draws"},
+		{"a wanted value of another package", "uncertain.Exp(|", "known uncertain.Quantity", "", "unit.K"},
 		{"first field of a struct of quantities", "type P struct{ T unit.Temperature }\nP{|", "T:field", "T", "unit.K"},
 		{"field of a struct of quantities", "type P struct{ T unit.Temperature }\nP{T: 3 * |", "unit.K", "unit.K", "unit.Bar"},
 

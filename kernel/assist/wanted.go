@@ -8,8 +8,8 @@ import (
 
 // wanted lists what makes a value of the type t, written with its package: the
 // constants of the type, so that units come first where a quantity is wanted;
-// for a function type, as options have, the functions that return it; for a
-// struct, the type itself.
+// for a function or an interface, as options are, the functions that return it;
+// for a struct, the type itself.
 func (c *checked) wanted(scope Scope, want types.Type) []Match {
 	if p, ok := want.(*types.Pointer); ok {
 		want = p.Elem()
@@ -25,7 +25,7 @@ func (c *checked) wanted(scope Scope, want types.Type) []Match {
 		case *types.Func:
 			_, option := t.Underlying().(*types.Signature)
 			r := o.Signature().Results()
-			return option && r.Len() == 1 && types.Identical(r.At(0).Type(), t)
+			return (option || types.IsInterface(t)) && r.Len() == 1 && types.Identical(r.At(0).Type(), t)
 		case *types.TypeName:
 			return structOf(t) != nil && o == t.Obj()
 		}

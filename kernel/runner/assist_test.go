@@ -34,6 +34,11 @@ func TestHelpWhileTyping(t *testing.T) {
 		{"solid.Debye{Theta: 343 * K", "unit.K"},
 		{"import \"math/b", "math/bits math/big"},
 		{"x := 12 * KJ", "unit.KJPerMol"},
+		{"solid.Debye{Theta: 343 * unit.K}.HeatCapacity(", "unit.K"},
+		{"res, err := fit.HeatCapacity(&solid.Debye{}, nil, ", "fit.Vary fit.Window"},
+		{"statmech.Audit(solid.Debye{}, ", "statmech.AuditOptions"},
+		{"gas.FromLib", "FromLibrary"},
+		{"if sample := run.heat(); sample > wid", "width"},
 		{"for _, x := range []sample{run} {\n\tx.", "mass heat"},
 	} {
 		got, err := e.Complete(t.Context(), test.source, len(test.source))
@@ -71,6 +76,21 @@ func TestHelpWhileTyping(t *testing.T) {
 	}
 	if got, ok, err := e.Inspect(t.Context(), "nosuch", 3, 0); ok || err != nil {
 		t.Errorf("an unknown name is described by %v, %v", got, err)
+	}
+}
+
+// One call lists what there is.
+func TestCatalogue(t *testing.T) {
+	out, _ := run(t, start(t), 1, "catalogue.All()")
+	if out.Fault != nil || out.Value == nil {
+		t.Fatalf("%+v", out)
+	}
+	text, _ := out.Value.Data["text/plain"].(string)
+	html, _ := out.Value.Data["text/html"].(string)
+	for _, want := range []string{"solid.Debye", "unit.Energy", "PerCm", `gas.FromLibrary("H2O")`} {
+		if !strings.Contains(text, want) || !strings.Contains(html, strings.ReplaceAll(want, `"`, "&#34;")) {
+			t.Errorf("%s is not listed", want)
+		}
 	}
 }
 

@@ -6,6 +6,7 @@ var usual = map[string]string{
 	"bytes":       "bytes",
 	"calorimetry": "levelsum/statmech/calorimetry",
 	"derive":      "levelsum/statmech/derive",
+	"catalogue":   "levelsum/statmech/catalogue",
 	"cmp":         "cmp",
 	"context":     "context",
 	"data":        "levelsum/statmech/data",
