@@ -28,7 +28,7 @@ func TestNotebooks(t *testing.T) {
 		Setup: func(e *testscript.Env) error {
 			e.Setenv("LEVELSUM", host.Exe)
 			e.Setenv("LEVELSUM_CACHE", host.Cache)
-			for _, d := range []string{"notebooks", "testdata/white-collocott-1984"} {
+			for _, d := range []string{"notebooks", "testdata"} {
 				if err := os.CopyFS(filepath.Join(e.WorkDir, d), os.DirFS(filepath.Join(root, d))); err != nil {
 					return err
 				}
