@@ -56,13 +56,28 @@ func (e *emitter) receive(n *ast.UnaryExpr, parent ast.Node) {
 	e.after(n, ")")
 }
 
-// goStmt guards a goroutine: a panic in it must not end the process.
+// goStmt guards a goroutine: a panic in it must not end the process. The
+// goroutine is noted before it starts.
 func (e *emitter) goStmt(n *ast.GoStmt) {
-	guard := fmt.Sprintf(" defer %s(%s()); ", e.guard("Left"), e.guard("Enter"))
+	late := fmt.Sprintf(" defer %s(%s()); ", e.guard("Left"), e.guard("Enter"))
+	id := Inner + "id"
+	early := fmt.Sprintf(" defer %s(%s); ", e.guard("Left"), id)
 	if lit, ok := ast.Unparen(n.Call.Fun).(*ast.FuncLit); ok {
-		e.insert(lit.Body.Lbrace+1, guard)
+		params := lit.Type.Params
+		named := 0
+		for _, f := range params.List {
+			named += len(f.Names)
+		}
+		if named != params.NumFields() || len(n.Call.Args) < named-1 || len(n.Call.Args) == 1 && named > 1 {
+			e.insert(lit.Body.Lbrace+1, late)
+			return
+		}
+		e.insert(params.Opening+1, id+" int, ")
+		e.insert(lit.Body.Lbrace+1, early)
+		e.insert(n.Call.Lparen+1, e.guard("Enter")+"(), ")
 		return
 	}
+	guard := late
 	fun := e.info.Types[n.Call.Fun]
 	sig, ok := fun.Type.Underlying().(*types.Signature)
 	if fun.IsBuiltin() || fun.IsType() || !ok {
@@ -72,7 +87,7 @@ func (e *emitter) goStmt(n *ast.GoStmt) {
 	}
 	// go func(f F, a0 T0, ...) { guard; f(a0, ...) }(fun, args...)
 	var params, args strings.Builder
-	fmt.Fprintf(&params, "%sf %s", Inner, e.typ(sig))
+	fmt.Fprintf(&params, "%s int, %sf %s", id, Inner, e.typ(sig))
 	for i := range sig.Params().Len() {
 		t := sig.Params().At(i).Type()
 		text := e.typ(t)
@@ -91,7 +106,7 @@ func (e *emitter) goStmt(n *ast.GoStmt) {
 		e.after(n.Call, "}()")
 		return
 	}
-	e.insert(n.Call.Pos(), fmt.Sprintf("func(%s) {%s%sf(%s) }(", params.String(), guard, Inner, args.String()))
+	e.insert(n.Call.Pos(), fmt.Sprintf("func(%s) {%s%sf(%s) }(%s(), ", params.String(), early, Inner, args.String(), e.guard("Enter")))
 	// f(args) becomes f, args): the parenthesis goes, and the instance is named.
 	if id := funcIdent(n.Call.Fun); id != nil {
 		if inst, ok := e.info.Instances[id]; ok && !explicit(n.Call.Fun) {

@@ -20,7 +20,11 @@ func (r *Runner) state() map[string]any {
 func goroutines() []string {
 	var out []string
 	for _, g := range guard.Goroutines() {
-		out = append(out, fmt.Sprintf("one of In[%d], for %s", g.Cell, time.Since(g.Since).Round(time.Second)))
+		line := fmt.Sprintf("one of In[%d]", g.Cell)
+		if d := time.Since(g.Since); d >= time.Minute {
+			line += fmt.Sprintf(", for %s", d.Round(time.Minute))
+		}
+		out = append(out, line)
 	}
 	return out
 }
