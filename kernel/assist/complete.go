@@ -57,6 +57,7 @@ func Complete(scope Scope, source string, cursor int) Completion {
 	out := Completion{Start: start, End: end}
 	for _, m := range c.candidates(scope, path) {
 		if m.rank == rankWanted && hasPrefix(m.Text[strings.IndexByte(m.Text, '.')+1:], prefix) || hasPrefix(m.Text, prefix) {
+			m.Signature = strings.ReplaceAll(m.Signature, placeholder, source[start:end])
 			out.Matches = append(out.Matches, m)
 		}
 	}

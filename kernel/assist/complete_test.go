@@ -310,6 +310,7 @@ func FuzzComplete(f *testing.F) {
 	f.Add("type T[P any] struct { x P }; T[int]{}.", 39)
 	f.Add("import (\n\tb \"math/", 18)
 	f.Add("cv((3 * -", 9)
+	f.Add("x := struct{ a, bc int }{}\nf := func() { x. }", 18)
 	f.Add("func f() (a, b int) { return func() int { return ", 49)
 	f.Fuzz(func(t *testing.T, source string, cursor int) {
 		got := Complete(s, source, cursor)
@@ -317,7 +318,7 @@ func FuzzComplete(f *testing.F) {
 			t.Errorf("replaces %d to %d of %d bytes", got.Start, got.End, len(source))
 		}
 		for _, m := range got.Matches {
-			if strings.Contains(m.Text, placeholder) {
+			if strings.Contains(m.Text+m.Signature, placeholder) {
 				t.Errorf("the placeholder is offered: %q", m.Text)
 			}
 		}

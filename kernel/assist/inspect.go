@@ -133,7 +133,10 @@ func (c *checked) describe(scope Scope, docs *Docs, o types.Object, detail int) 
 // printed is a documentation comment as plain text and as Markdown, formulas as
 // the code blocks that they are.
 func printed(text string) (plain, markdown string) {
-	p := comment.Parser{LookupSym: func(string, string) bool { return true }}
+	p := comment.Parser{
+		LookupSym:     func(string, string) bool { return true },
+		LookupPackage: func(name string) (string, bool) { return name, true },
+	}
 	doc := p.Parse(text)
 	for _, b := range doc.Content {
 		withoutLinks(b)

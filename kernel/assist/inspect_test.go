@@ -140,11 +140,11 @@ func TestStoredDocs(t *testing.T) {
 
 // Links between names are plain text, formulas code.
 func TestPrintedDocs(t *testing.T) {
-	plain, markdown := printed("F is like [Mode] and [time.Time].\n\n\tS = k ln W\n\n# More\n\n  - of [Levels]\n")
-	if want := "F is like Mode and time.Time.\n\n\tS = k ln W\n\n# More\n\n  - of Levels"; plain != want {
+	plain, markdown := printed("F is like [Mode], [*Mode] and [*statmech.Levels].\n\n\tS = k ln W\n\n# More\n\n  - of [Levels]\n")
+	if want := "F is like Mode, *Mode and *statmech.Levels.\n\n\tS = k ln W\n\n# More\n\n  - of Levels"; plain != want {
 		t.Errorf("plain %q, want %q", plain, want)
 	}
-	if want := "F is like Mode and time.Time.\n\n\tS = k ln W\n\n#### More\n\n  - of Levels"; markdown != want {
+	if want := "F is like Mode, \\*Mode and \\*statmech.Levels.\n\n\tS = k ln W\n\n#### More\n\n  - of Levels"; markdown != want {
 		t.Errorf("markdown %q, want %q", markdown, want)
 	}
 }

@@ -66,6 +66,9 @@ func (c *checking) unknown(pos token.Pos, name string) string {
 	if len(out) == 0 {
 		out = c.membersNamed(func(m string) bool { return strings.EqualFold(m, name) })
 	}
+	if len(out) == 0 && len([]rune(name)) > 4 { // short names are like too many
+		out = c.membersNamed(func(m string) bool { return slips(strings.ToLower(m), strings.ToLower(name), 1) <= 1 })
+	}
 	return didYouMean(out)
 }
 

@@ -53,6 +53,8 @@ func TestHints(t *testing.T) {
 		{"maht.Sqrt(2)", "did you mean math?"},
 		{"Sqrt(2)", "did you mean math.Sqrt?"},
 		{"sqrt(2)", "did you mean math.Sqrt?"},
+		{"Sqrtt(2)", "did you mean math.Sqrt or math.Sqrt2?"},
+		{"Einstien{}", "did you mean solid.Einstein?"},
 		{"Debye{}", "did you mean solid.Debye?"},
 		{"3 * K", "did you mean unit.K?"},
 		{"numberz", "did you mean number or numbers?"},

@@ -30,6 +30,7 @@ func init() {
 		"Exact":            reflect.ValueOf(uncertain.Exact),
 		"Exp":              reflect.ValueOf(uncertain.Exp),
 		"Function":         reflect.ValueOf(uncertain.Function),
+		"Functions":        reflect.ValueOf(uncertain.Functions),
 		"Linear":           reflect.ValueOf(uncertain.Linear),
 		"Log":              reflect.ValueOf(uncertain.Log),
 		"Log10":            reflect.ValueOf(uncertain.Log10),
