@@ -13,9 +13,11 @@ import (
 	"os/exec"
 	"path/filepath"
 	"regexp"
+	"runtime"
 	"slices"
 	"sort"
 	"strings"
+	"sync"
 	"testing"
 	"time"
 
@@ -91,18 +93,33 @@ func TestGoPrograms(t *testing.T) {
 	}
 	verdicts := map[string]goVerdict{}
 	count := map[string]int{}
-	for _, f := range files {
-		name, _ := filepath.Rel(filepath.Join(goroot(t), "test"), f)
-		v := runGoProgram(t, f)
-		if slices.Contains(ownPackage, name) && v.Verdict != "refused" {
-			v = goVerdict{"right", "but for the name of its package"}
-		}
-		verdicts[name] = v
-		count[v.Verdict]++
-		if v.Verdict == "wrong" {
-			t.Errorf("%s: silently wrong: %s", name, v.Why)
-		}
+	var mu sync.Mutex // guards verdicts and count
+	var wg sync.WaitGroup
+	root := filepath.Join(goroot(t), "test")
+	next := make(chan string)
+	for range runtime.NumCPU() {
+		wg.Go(func() {
+			for f := range next {
+				name, _ := filepath.Rel(root, f)
+				v := runGoProgram(t, f)
+				if slices.Contains(ownPackage, name) && v.Verdict != "refused" {
+					v = goVerdict{"right", "but for the name of its package"}
+				}
+				if v.Verdict == "wrong" {
+					t.Errorf("%s: silently wrong: %s", name, v.Why)
+				}
+				mu.Lock()
+				verdicts[name] = v
+				count[v.Verdict]++
+				mu.Unlock()
+			}
+		})
 	}
+	for _, f := range files {
+		next <- f
+	}
+	close(next)
+	wg.Wait()
 	var names []string
 	for n := range verdicts {
 		names = append(names, n)
