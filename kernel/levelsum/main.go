@@ -24,6 +24,7 @@ var commands = map[string]command{
 	"engine":  runEngine,
 	"install": install,
 	"remove":  remove,
+	"report":  makeReport,
 	"run":     run,
 	"serve":   serve,
 	"version": showVersion,

@@ -31,6 +31,11 @@ func (s state) fraction() state {
 // row reads atoms up to the end of the text or a token that end accepts, which
 // is read too and returned. before is the class of what stands before the row.
 func (p *parser) row(at state, before class, end func(token) bool) ([]*node, token, error) {
+	p.depth++
+	defer func() { p.depth-- }()
+	if p.depth > maxDepth {
+		return nil, token{}, p.fail(p.peek(), "too many groups in each other")
+	}
 	var row []*node
 	for {
 		t := p.next()

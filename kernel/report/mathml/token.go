@@ -29,7 +29,7 @@ type parser struct {
 	depth int
 }
 
-// maxDepth bounds how deep groups may stand in each other.
+// maxDepth bounds how deep groups may stand in each other; each counts twice.
 const maxDepth = 200
 
 func (p *parser) fail(t token, reason string) error {

@@ -1,0 +1,134 @@
+package report
+
+import (
+	"crypto/sha256"
+	"encoding/json"
+	"fmt"
+	"maps"
+	"slices"
+	"strings"
+
+	"levelsum/kernel/notebook"
+)
+
+// resultList repeats the named results at the end, each with the way to the
+// cell that shows it.
+func (p *page) resultList(d *notebook.Document) {
+	if len(p.results) == 0 {
+		return
+	}
+	p.line(`<section class="results"><h2 id="results">Results</h2>`)
+	p.line("<ul>")
+	for _, r := range p.results {
+		where := fmt.Sprintf("cell %d", r.cell)
+		if n := d.Cells()[r.cell-1].ExecutionCount(); n > 0 {
+			where = fmt.Sprintf("code %d", n)
+		}
+		p.line("<li>", r.html, fmt.Sprintf(` <a class="from" href="#cell-%d">%s</a></li>`, r.cell, where))
+	}
+	p.line("</ul></section>")
+	p.contents = append(p.contents, heading{2, "results", "Results"})
+}
+
+// provenance says where the page came from.
+func (p *page) provenance(d *notebook.Document) {
+	p.line(`<footer class="provenance"><h2 id="provenance">Provenance</h2>`)
+	p.contents = append(p.contents, heading{2, "provenance", "Provenance"})
+	p.line("<dl>")
+	entry := func(name string, value any) {
+		p.line("<dt>", escape(name), "</dt><dd>", nested(value), "</dd>")
+	}
+	if p.o.Name != "" {
+		entry("notebook", p.o.Name)
+	}
+	entry("SHA-256 of the notebook", fmt.Sprintf("%x", sha256.Sum256(d.Bytes())))
+	entry("order of the runs", order(d))
+	if k, ok := d.Metadata("kernelspec", "display_name").(string); ok {
+		entry("kernel", k)
+	}
+	if l, ok := d.Metadata("language_info", "name").(string); ok {
+		if v, ok := d.Metadata("language_info", "version").(string); ok && v != "" {
+			l += " " + v
+		}
+		entry("language", l)
+	}
+	if p.o.Version != "" {
+		entry("report made by", "levelsum "+p.o.Version)
+	}
+	own, _ := d.Metadata("levelsum").(map[string]any)
+	for _, k := range slices.Sorted(maps.Keys(own)) {
+		if k != "data" {
+			entry(k, own[k])
+		}
+	}
+	p.line("</dl>")
+	if list, ok := own["data"].([]any); ok && len(list) > 0 {
+		p.dataFiles(list)
+	}
+	p.line("</footer>")
+}
+
+func (p *page) dataFiles(list []any) {
+	p.line(`<table><caption>Data files that were read</caption>`)
+	p.line(`<thead><tr><th scope="col">file</th><th scope="col">rows</th><th scope="col">SHA-256</th></tr></thead><tbody>`)
+	for _, x := range list {
+		m, _ := x.(map[string]any)
+		p.line("<tr><td>", nested(m["file"]), `</td><td>`, nested(m["rows"]), `</td><td class="hash">`, nested(m["sha256"]), "</td></tr>")
+	}
+	p.line("</tbody></table>")
+}
+
+// nested returns a value of JSON as text and lists.
+func nested(x any) string {
+	switch x := x.(type) {
+	case nil:
+		return ""
+	case string:
+		return escape(x)
+	case json.Number:
+		return escape(x.String())
+	case []any:
+		var b strings.Builder
+		for _, y := range x {
+			b.WriteString("<li>" + nested(y) + "</li>")
+		}
+		return "<ul>" + b.String() + "</ul>"
+	case map[string]any:
+		var b strings.Builder
+		for _, k := range slices.Sorted(maps.Keys(x)) {
+			b.WriteString("<li>" + escape(k) + ": " + nested(x[k]) + "</li>")
+		}
+		return "<ul>" + b.String() + "</ul>"
+	}
+	return escape(fmt.Sprint(x))
+}
+
+// order says what the numbers of the runs tell: whether the cells were run
+// once each, from the first to the last.
+func order(d *notebook.Document) string {
+	var counts []string
+	next, inOrder, notRun := 1, true, 0
+	for _, c := range d.Cells() {
+		if c.Kind() != notebook.Code || strings.TrimSpace(c.Source()) == "" {
+			continue
+		}
+		n := c.ExecutionCount()
+		if n == 0 {
+			notRun++
+			counts = append(counts, "–")
+			continue
+		}
+		inOrder = inOrder && n == next
+		next = n + 1
+		counts = append(counts, fmt.Sprint(n))
+	}
+	switch {
+	case len(counts) == 0:
+		return "the notebook has no code"
+	case notRun == len(counts):
+		return "no cell has been run"
+	case inOrder && notRun == 0:
+		return fmt.Sprintf("all %d code cells once each, in order, in a fresh session", len(counts))
+	}
+	return "NOT once each and in order, so that a value may be older than its cell: runs " + strings.Join(counts, ", ")
+}
