@@ -7,6 +7,7 @@ import (
 	"go/token"
 	"sort"
 	"strings"
+	"unicode/utf8"
 )
 
 // A Diagnostic is one error or warning about a cell: the compiler's words and
@@ -29,24 +30,37 @@ func (d Diagnostic) Lines() []string {
 	out := []string{d.String()}
 	lines := strings.Split(d.Source.Text, "\n")
 	if d.Line >= 1 && d.Line <= len(lines) {
-		text := strings.TrimRight(lines[d.Line-1], "\r")
-		var pad strings.Builder
-		for i, r := range text {
-			if i >= d.Column-1 {
-				break
-			}
-			if r == '\t' {
-				pad.WriteByte('\t')
-			} else {
-				pad.WriteByte(' ')
-			}
-		}
-		out = append(out, "    "+text, "    "+pad.String()+"^")
+		text, before := excerpt(strings.TrimRight(lines[d.Line-1], "\r"), d.Column)
+		out = append(out, "    "+text, "    "+strings.Repeat(" ", before)+"^")
 	}
 	if d.Hint != "" {
 		out = append(out, "    "+d.Hint)
 	}
 	return out
+}
+
+// excerptWidth is how much of a long line is shown: a front end would wrap more
+// of it, and the caret would stand under nothing.
+const excerptWidth = 72
+
+// excerpt returns the part of a line to show for a column (1-based, in bytes),
+// without indentation and tabs, and how many characters stand before the column.
+func excerpt(line string, column int) (text string, before int) {
+	before = utf8.RuneCountInString(line[:min(max(column-1, 0), len(line))])
+	rs := []rune(strings.ReplaceAll(line, "\t", " "))
+	indent := 0
+	for indent < before && rs[indent] == ' ' {
+		indent++
+	}
+	rs, before = rs[indent:], before-indent
+	if len(rs) > excerptWidth && before > excerptWidth*2/3 {
+		cut := min(before-excerptWidth/2, len(rs)-excerptWidth)
+		rs, before = append([]rune("… "), rs[cut:]...), before-cut+2
+	}
+	if len(rs) > excerptWidth+2 {
+		rs = append(rs[:excerptWidth:excerptWidth], []rune(" …")...)
+	}
+	return string(rs), before
 }
 
 // Diagnostics are all errors of a cell, in the order of the source.
@@ -130,6 +144,7 @@ func syntaxErrors(src *Source, errs ...error) Diagnostics {
 	if strings.HasPrefix(msg, "expected declaration") && strings.HasSuffix(msg, "found '}'") {
 		return diagnosticAt(src, max(len(text)-1, 0), "syntax error: unexpected }")
 	}
+	msg = strings.TrimSuffix(strings.TrimSuffix(msg, ", found '}'"), ", found 'EOF'") // which the reader has not written
 	return diagnosticAt(src, len(text), "syntax error: the cell ends too early: "+msg)
 }
 
