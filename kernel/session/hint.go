@@ -1,6 +1,11 @@
 package session
 
-import "levelsum/kernel/wire"
+import (
+	"slices"
+
+	"levelsum/display"
+	"levelsum/kernel/wire"
+)
 
 // keptBytes is how much of what a cell has shown is kept, to show it again
 // without the hints between.
@@ -24,7 +29,10 @@ func (k *shownSoFar) keep(e event) {
 		if e.wait {
 			k.events = []event{e}
 		}
-	case !k.over:
+	case k.over:
+	case e.replace && e.passing() && k.put(e):
+		return // takes the room of the one before
+	default:
 		k.events = append(k.events, e)
 	}
 	k.bytes += e.size()
@@ -32,6 +40,20 @@ func (k *shownSoFar) keep(e event) {
 		k.events, k.over = nil, true
 	}
 }
+
+// put shows e in the place of the view with its name, if that is kept.
+func (k *shownSoFar) put(e event) bool {
+	for i := range k.events {
+		if was := &k.events[i]; was.kind == viewEvent && was.name == e.name {
+			was.view = e.view
+			return true
+		}
+	}
+	return false
+}
+
+// passing says that e is seen only while its cell runs: a progress line.
+func (e event) passing() bool { return e.kind == viewEvent && display.Transient(e.view) }
 
 // size is about how many bytes e takes.
 func (e event) size() int {
@@ -75,6 +97,21 @@ func (o *output) unhint() {
 	}
 	o.shown.hinted = false
 	o.publish(event{kind: clearEvent})
+	for _, e := range o.shown.events {
+		o.publish(e)
+	}
+}
+
+// settle clears away what is seen only while the cell runs, in the same
+// manner: an empty line would stay where a progress line has been.
+func (o *output) settle() {
+	o.unhint()
+	before := len(o.shown.events)
+	o.shown.events = slices.DeleteFunc(o.shown.events, event.passing)
+	if len(o.shown.events) == before || o.stopped {
+		return
+	}
+	o.publish(event{kind: clearEvent, wait: len(o.shown.events) > 0})
 	for _, e := range o.shown.events {
 		o.publish(e)
 	}

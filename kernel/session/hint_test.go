@@ -75,6 +75,50 @@ func TestHintsAreSeenAndNotStored(t *testing.T) {
 	}
 }
 
+// A progress line is seen while the cell runs, and nothing of it is stored.
+func TestProgressIsSeenAndNotStored(t *testing.T) {
+	line := func(s string) display.View {
+		v := display.Text(s)
+		v.Metadata = map[string]any{"levelsum": map[string]any{"transient": true}}
+		return v
+	}
+	for _, test := range []struct {
+		name   string
+		run    func(*running)
+		stored string
+	}{
+		{"alone", func(r *running) {
+			r.Show(line("1 of 2"), "p", false)
+			r.Ask("", false) // publishes
+			r.Show(line(""), "p", true)
+		}, ""},
+		{"not ended", func(r *running) { r.Show(line("1 of 2"), "p", false) }, ""},
+		{"between", func(r *running) {
+			r.Stream("stdout", "a")
+			r.Show(line("1 of 2"), "p", false)
+			r.Show(display.Text("v"), "id", false)
+			r.Show(line("2 of 2"), "p", true)
+			r.Stream("stdout", "b")
+		}, "stdout:a|display_data(id):v|stdout:b"},
+		{"with a hint", func(r *running) {
+			r.Show(line("1 of 2"), "p", false)
+			r.Output.(engine.Hinter).Hint("waits\n")
+			r.Show(line("2 of 2"), "p", true)
+			r.Stream("stdout", "b")
+		}, "stdout:b"},
+	} {
+		t.Run(test.name, func(t *testing.T) {
+			got := shownBy(t, test.run)
+			if s := stored(got); s != test.stored {
+				t.Errorf("stored %.300s\nwant %.300s", s, test.stored)
+			}
+			if s := summary(got); !strings.Contains(s, "display_data(p):1 of 2") && !strings.Contains(s, "display_data(p):2 of 2") {
+				t.Errorf("the line is not seen: %s", s)
+			}
+		})
+	}
+}
+
 // The error of an interrupted cell stays, the hint before it does not.
 func TestHintBeforeAnError(t *testing.T) {
 	f := &fake{cells: cellMap{"x": func(r *running) engine.Outcome {

@@ -23,8 +23,14 @@ func (s *Session) kernelInfo(r *request) {
 			PygmentsLexer:  "go",
 			CodeMirrorMode: "go",
 		},
-		Banner:            "Levelsum " + s.version + ": statistical thermodynamics in Go " + goVersion,
-		HelpLinks:         []wire.HelpLink{{Text: "The Go language", URL: "https://go.dev/ref/spec"}},
+		Banner: "Levelsum " + s.version + ": statistical thermodynamics in Go " + goVersion,
+		HelpLinks: []wire.HelpLink{
+			{Text: "The Go language", URL: "https://go.dev/ref/spec"},
+			{Text: "Go's standard library", URL: "https://pkg.go.dev/std"},
+			{Text: "Gonum: numbers, matrices, statistics", URL: "https://pkg.go.dev/gonum.org/v1/gonum"},
+			{Text: "Fundamental constants (CODATA)", URL: "https://physics.nist.gov/cuu/Constants/"},
+			{Text: "Uncertainty of measurement (JCGM guides)", URL: "https://www.bipm.org/en/committees/jc/jcgm/publications"},
+		},
 		SupportedFeatures: []string{},
 	})
 }

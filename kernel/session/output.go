@@ -268,7 +268,7 @@ func (o *output) finish() {
 	}
 	o.release()
 	o.flush()
-	o.unhint()
+	o.settle()
 	o.shown.over, o.shown.events = true, nil
 	o.limit.head = max(o.limit.head, tailBytes)
 }
