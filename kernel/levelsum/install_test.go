@@ -3,6 +3,9 @@ package main
 import (
 	"bytes"
 	"encoding/json"
+	"encoding/xml"
+	"image"
+	"image/png"
 	"os"
 	"os/exec"
 	"path/filepath"
@@ -120,6 +123,19 @@ func TestInstallVersionRemove(t *testing.T) {
 	}
 	if got["language"] != "go" || got["interrupt_mode"] != "message" || got["display_name"] != "Levelsum (Go)" {
 		t.Errorf("the kernelspec says %v", got)
+	}
+	for name, width := range map[string]int{"logo-32x32.png": 32, "logo-64x64.png": 64} {
+		data, err := os.ReadFile(filepath.Join(filepath.Dir(spec), name))
+		if err != nil {
+			t.Fatal(err)
+		}
+		img, err := png.Decode(bytes.NewReader(data))
+		if err != nil || img.Bounds() != image.Rect(0, 0, width, width) {
+			t.Errorf("%s is no PNG picture of %d × %d: %v", name, width, width, err)
+		}
+	}
+	if data, err := os.ReadFile(filepath.Join(filepath.Dir(spec), "logo-svg.svg")); err != nil || xml.Unmarshal(data, new(any)) != nil {
+		t.Errorf("logo-svg.svg is not well-formed: %v", err)
 	}
 	stdout, _, _ = u.levelsum(nil, "version")
 	wants("version after", stdout, "compiled cells: work ("+runtime.Version()+" in ")

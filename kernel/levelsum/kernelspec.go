@@ -2,6 +2,7 @@ package main
 
 import (
 	"bytes"
+	"embed"
 	"encoding/json"
 	"errors"
 	"fmt"
@@ -63,21 +64,47 @@ func specFolder(prefix string) (string, error) {
 	return filepath.Join(dir, "kernels", "levelsum"), err
 }
 
-// register writes the kernelspec; changed is false if it was there already.
+//go:generate go run logo/generate.go
+//go:embed logo/logo-svg.svg logo/logo-32x32.png logo/logo-64x64.png
+var logos embed.FS
+
+// register writes the kernelspec and its logos; changed is false if they were
+// there already.
 func register(dir, executable string) (changed bool, err error) {
+	if err := os.MkdirAll(dir, 0o777); err != nil {
+		return false, err
+	}
+	entries, err := logos.ReadDir("logo")
+	if err != nil {
+		return false, err
+	}
+	for _, e := range entries {
+		data, err := logos.ReadFile("logo/" + e.Name())
+		if err != nil {
+			return false, err
+		}
+		wrote, err := replace(filepath.Join(dir, e.Name()), data)
+		if err != nil {
+			return false, err
+		}
+		changed = changed || wrote
+	}
 	data, err := json.MarshalIndent(specFor(executable), "", "  ")
 	if err != nil {
 		return false, err
 	}
-	data = append(data, '\n')
-	file := filepath.Join(dir, "kernel.json")
+	// Last, as it makes the folder a kernelspec.
+	wrote, err := replace(filepath.Join(dir, "kernel.json"), append(data, '\n'))
+	return changed || wrote, err
+}
+
+// replace writes a file, whole or not at all; changed is false if it held data
+// already.
+func replace(file string, data []byte) (changed bool, err error) {
 	if old, err := os.ReadFile(file); err == nil && bytes.Equal(old, data) {
 		return false, nil
 	}
-	if err := os.MkdirAll(dir, 0o777); err != nil {
-		return false, err
-	}
-	tmp, err := os.CreateTemp(dir, ".kernel-*")
+	tmp, err := os.CreateTemp(filepath.Dir(file), ".new-*")
 	if err != nil {
 		return false, err
 	}
