@@ -193,9 +193,33 @@ func (r *stepRead) symbols() string {
 	return b.String()
 }
 
+// follows reports whether slot i multiplies what stands before it without a
+// sign, so that its number would be read with the one before: 3 and 0.5 as 30.5.
+func (r *stepRead) follows(i int) bool {
+	for i--; i >= 0; i-- {
+		p := r.pieces[i]
+		if p.slot != "" {
+			return true
+		}
+		t := p.text
+		for cut := true; cut; {
+			cut = false
+			for _, space := range []string{" ", "~", `\,`, `\;`, `\:`, `\!`, `\ `} {
+				if strings.HasSuffix(t, space) {
+					t, cut = strings.TrimSuffix(t, space), true
+				}
+			}
+		}
+		if t != "" {
+			return strings.ContainsAny(t[len(t)-1:], "0123456789.})")
+		}
+	}
+	return false
+}
+
 func (r *stepRead) numbers() string {
 	var b strings.Builder
-	for _, p := range r.pieces {
+	for i, p := range r.pieces {
 		v, ok := r.vals[p.slot]
 		switch {
 		case p.slot == "":
@@ -204,7 +228,7 @@ func (r *stepRead) numbers() string {
 			b.WriteString("{" + r.latex[p.slot] + "}")
 		default:
 			s := v.math("")
-			if strings.ContainsAny(s, `-\(`) {
+			if strings.ContainsAny(s, `-\(`) || r.follows(i) {
 				s = `\left(` + s + `\right)`
 			}
 			b.WriteString("{" + s + "}")
