@@ -3,6 +3,7 @@ package gas
 import (
 	"fmt"
 	"math"
+	"slices"
 	"sync"
 
 	"levelsum/statmech"
@@ -173,8 +174,8 @@ func (t *Torsion) ZeroPointEnergy() unit.Energy {
 	return t.levelsTo(1 * unit.K).ZeroPointEnergy()
 }
 
-// Levels returns the levels above the minimum of the potential, enough of them
-// for temperatures up to T.
+// Levels returns the levels above the minimum of the potential in ascending
+// order, degenerate ones one by one, enough of them for temperatures up to T.
 func (t *Torsion) Levels(T unit.Temperature) []unit.Energy {
 	statmech.CheckTemperature("gas.Torsion.Levels", T)
 	l := t.levelsTo(T)
@@ -182,6 +183,7 @@ func (t *Torsion) Levels(T unit.Temperature) []unit.Energy {
 	for i := range es {
 		es[i], _ = l.Level(i)
 	}
+	slices.Sort(es) // the blocks of the matrix come one after the other
 	return es
 }
 
