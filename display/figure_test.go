@@ -205,3 +205,19 @@ func TestHistogram(t *testing.T) {
 		t.Errorf("the area of a density is %v", area)
 	}
 }
+
+// A deviation from a quotient has brackets, so that its two strokes are not
+// taken for one another.
+func TestFigureResidualLabel(t *testing.T) {
+	for quantity, want := range map[string]string{"C_p": "ΔC_p/C_p", "C_p/T": "Δ(C_p/T)/(C_p/T)"} {
+		y := cAxis
+		y.Quantity = quantity
+		out, _, err := Figure{X: someT, Y: someC, Curve: line, RelativeResiduals: true, XAxis: tAxis, YAxis: y}.read()
+		if err != nil {
+			t.Fatal(err)
+		}
+		if got := out.Panels[1].Y.Quantity; got != want {
+			t.Errorf("residuals of %s are called %s, want %s", quantity, got, want)
+		}
+	}
+}

@@ -6,6 +6,7 @@ import (
 	"reflect"
 	"slices"
 	"sort"
+	"strings"
 
 	"levelsum/display/internal/scene"
 )
@@ -364,9 +365,13 @@ func (r *figureReader) residualPanel() scene.Panel {
 	a.cover([]float64{0})
 	a.quantity = "r"
 	y, _ := a.settle(false) // has a quantity, so it cannot fail
-	y.Quantity, y.Unit = "Δ"+r.y.quantity, r.y.unit
+	q := r.y.quantity
+	if strings.Contains(q, "/") { // a quotient needs brackets: Δ(C_p/T)/(C_p/T)
+		q = "(" + q + ")"
+	}
+	y.Quantity, y.Unit = "Δ"+q, r.y.unit
 	if r.f.RelativeResiduals {
-		y.Quantity, y.Unit = "Δ"+r.y.quantity+"/"+r.y.quantity, "%"
+		y.Quantity, y.Unit = "Δ"+q+"/"+q, "%"
 	}
 	m := math.Max(math.Abs(y.Min), math.Abs(y.Max))
 	y.Min, y.Max = -m, m

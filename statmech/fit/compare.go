@@ -5,7 +5,7 @@ import (
 	"math"
 	"strconv"
 
-	"gonum.org/v1/gonum/stat/distuv"
+	"gonum.org/v1/gonum/mathext"
 
 	"levelsum/display"
 )
@@ -141,5 +141,11 @@ func FTest(small, large *Result) (f, p float64, err error) {
 		return 0, 0, fmt.Errorf("fit: FTest: the larger model has the larger χ²: it does not contain the smaller one, or its fit is not at the minimum")
 	}
 	f = (small.ChiSquared - large.ChiSquared) / float64(added) / (large.ChiSquared / float64(large.Freedom))
-	return f, distuv.F{D1: float64(added), D2: float64(large.Freedom)}.Survival(f), nil
+	return f, fTail(f, float64(added), float64(large.Freedom)), nil
+}
+
+// fTail returns the probability of an F above f for d1 and d2 degrees of
+// freedom. It is not 1 less the distribution function, which ends at 1e-16.
+func fTail(f, d1, d2 float64) float64 {
+	return mathext.RegIncBeta(d2/2, d1/2, d2/(d2+d1*f))
 }

@@ -407,3 +407,19 @@ func BenchmarkFit(b *testing.B) {
 }
 
 var sink *Result
+
+// TestFTail compares the upper tail of the F distribution for two added
+// parameters with its closed form (1 + 2f/d)^(-d/2), far below the 1e-16 at
+// which 1 less the distribution function ends.
+func TestFTail(t *testing.T) {
+	for _, c := range []struct{ f, d, want float64 }{
+		{1, 4, 4. / 9},
+		{100, 50, 3.3554432e-18}, // 5^-25
+		{24, 48, 1. / (1 << 24)}, // 2^-24
+		{450, 100, 1e-50},        // 10^-50
+	} {
+		if p := fTail(c.f, 2, c.d); math.Abs(p/c.want-1) > 1e-12 {
+			t.Errorf("fTail(%g, 2, %g) = %g, want %g", c.f, c.d, p, c.want)
+		}
+	}
+}
