@@ -289,7 +289,7 @@ func (c *checking) conclude(plan *Plan) {
 		}
 		if e := c.s.entities[v]; e != nil && e.slot != nil {
 			plan.drop = append(plan.drop, v)
-			plan.Dropped = append(plan.Dropped, fmt.Sprintf("%s is dropped: its type %s has changed; run In[%d] again to have it back", v, typeString(e.slot.Type), e.slot.Cell))
+			plan.Dropped = append(plan.Dropped, fmt.Sprintf("%s is dropped: its type %s has changed; run In[%d] again to have it back", v, typeString(e.slot.Type), c.s.madeBy(e.slot)))
 		}
 	}
 	slices.Sort(plan.drop)

@@ -9,6 +9,7 @@ import (
 // share what never changes: objects, units and decls.
 func (s *Scope) Clone() *Scope {
 	c := *s
+	c.clone = true
 	c.entities = maps.Clone(s.entities)
 	c.imports = maps.Clone(s.imports)
 	c.dots = slices.Clone(s.dots)
@@ -41,4 +42,14 @@ func (p *Plan) On(clone *Scope) *Plan {
 	q.scope = clone
 	q.parsed = nil // its positions are still wanted
 	return &q
+}
+
+// madeBy returns the number of the cell that set a slot last. Slots belong to
+// the session; a clone, which looks ahead while the session runs, leaves their
+// numbers alone.
+func (s *Scope) madeBy(slot *Slot) int {
+	if s.clone {
+		return 0
+	}
+	return slot.Cell
 }

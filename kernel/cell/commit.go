@@ -39,7 +39,9 @@ func (s *Scope) Commit(p *Plan, reached func(name string) bool) (lost []string) 
 			lost = append(lost, s.orphan(v.Name())...)
 			continue
 		}
-		slot.Cell = p.Source.N
+		if !s.clone {
+			slot.Cell = p.Source.N
+		}
 		obj := v
 		if v.Parent() == nil || v.Parent().Parent() != types.Universe {
 			obj = types.NewVar(v.Pos(), p.pkg, v.Name(), v.Type())

@@ -45,6 +45,8 @@ type entity struct {
 // A Scope is what the cells of a session have declared. It is not safe for
 // concurrent use.
 type Scope struct {
+	clone bool // made by Clone, to look ahead
+
 	fset     *token.FileSet
 	importer types.Importer
 	usual    map[string]string // import names offered without an import: name -> path
