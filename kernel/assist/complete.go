@@ -170,7 +170,7 @@ func inText(source string, offset int) bool {
 func (c *checked) candidates(scope Scope, path []ast.Node) []Match {
 	id := path[0].(*ast.Ident)
 	if sel, ok := parent(path, 0).(*ast.SelectorExpr); ok && sel.Sel == id {
-		return c.membersOf(sel.X)
+		return c.wantedFirst(scope, sel, path[1:], c.membersOf(sel.X))
 	}
 	var all []Match
 	if lit, keyed := literalAround(path); lit != nil {

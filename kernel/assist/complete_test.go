@@ -202,6 +202,9 @@ func TestComplete(t *testing.T) {
 		{"a wanted value of another package", "uncertain.Exp(|", "known uncertain.Quantity", "", "unit.K"},
 		{"first field of a struct of quantities", "type P struct{ T unit.Temperature }\nP{|", "T:field", "T", "unit.K"},
 		{"field of a struct of quantities", "type P struct{ T unit.Temperature }\nP{T: 3 * |", "unit.K", "unit.K", "unit.Bar"},
+		{"quantity among the units", "cv(300*unit.|", "K Bar Temperature:type", "K", ""},
+		{"quantity among the units, begun", "cv(unit.k|", "K", "K", "Bar"},
+		{"option among the members", "uncertain.MonteCarlo(known, uncertain.|", "Seed Exp", "Coverage", ""},
 
 		{"import path", "import \"math/|\"", "math/bits:module math/cmplx math/rand", "math/bits", "time math"},
 		{"open import path", "import \"math/b|", "math/bits", "math/bits", "math/cmplx"},

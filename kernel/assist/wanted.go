@@ -51,6 +51,30 @@ func (c *checked) units(scope Scope) []Match {
 	})
 }
 
+// wantedFirst ranks the members of a package that make a value of the type that
+// is wanted of sel, at the start of path, before the others.
+func (c *checked) wantedFirst(scope Scope, sel *ast.SelectorExpr, path []ast.Node, members []Match) []Match {
+	x, ok := sel.X.(*ast.Ident)
+	if !ok {
+		return members
+	}
+	want := c.wantedType(path)
+	first := c.wanted(scope, want)
+	if want == nil && c.scales(path) {
+		first = c.units(scope)
+	}
+	is := make(map[string]bool, len(first))
+	for _, m := range first {
+		is[m.Text] = true
+	}
+	for i := range members {
+		if is[x.Name+"."+members[i].Text] {
+			members[i].rank = rankWanted
+		}
+	}
+	return members
+}
+
 // constantsOf lists the exported objects of a package that are wanted.
 func (c *checked) constantsOf(scope Scope, p *types.Package, want func(types.Object) bool) []Match {
 	// A package that is known only because another one mentions it may lack
