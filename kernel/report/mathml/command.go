@@ -100,7 +100,13 @@ func (p *parser) command(t token, name string, at state, inRow bool) (*node, err
 		if err != nil {
 			return nil, err
 		}
-		return elem("munder", n, leaf("mo", "_", ord, "stretchy", "true")).set("accentunder", "true"), nil
+		return ruled(n, "bottom"), nil
+	case "overline":
+		n, err := p.arg(t, at)
+		if err != nil {
+			return nil, err
+		}
+		return ruled(n, "top"), nil
 	case "overbrace", "underbrace":
 		n, err := p.arg(t, at)
 		if err != nil {
@@ -415,8 +421,17 @@ func (p *parser) longArrow(t token, name string, at state) (*node, error) {
 	return n, nil
 }
 
+// padded makes an arrow longer than what stands on it. Browsers stretch to the
+// width of what is drawn, not to that of an mpadded.
 func padded(n *node) *node {
-	return elem("mpadded", n).set("width", "+0.6em").set("lspace", "0.3em")
+	gap := func() *node { return leaf("mspace", "", space, "width", "0.8em") }
+	return elem("mrow", gap(), n, gap())
+}
+
+// ruled draws a line over or under a formula. It is a border: few fonts have a
+// bar that stretches.
+func ruled(n *node, side string) *node {
+	return elem("mrow", n).set("style", "border-"+side+":0.05em solid;padding-"+side+":0.1em")
 }
 
 func (p *parser) box(t token, name string, at state) (*node, error) {

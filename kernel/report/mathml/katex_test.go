@@ -67,6 +67,12 @@ var sameSign = strings.NewReplacer("∣", "|", "ˉ", "¯", "⃗", "→", "‾", 
 // so are spaces, styles and the sign of function application; upright words
 // are letters of which the last one carries the scripts.
 func normal(n *shape) []*shape {
+	for side, tag := range map[string]string{"border-top:0.05em": "mover", "border-bottom:0.05em": "munder"} {
+		if n.tag == "mrow" && strings.HasPrefix(n.attrs["style"], side) { // a line is a border
+			bar := &shape{tag: "row", kids: []*shape{{tag: "sign", text: "¯"}}}
+			return []*shape{{tag: tag, kids: []*shape{{tag: "row", kids: row(n.kids)}, bar}}}
+		}
+	}
 	switch n.tag {
 	case "annotation", "mspace":
 		return nil

@@ -118,7 +118,7 @@ var accents = map[string]struct {
 	"hat": {"^", false}, "widehat": {"^", true}, "tilde": {"~", false}, "widetilde": {"~", true},
 	"bar": {"¯", false}, "vec": {"→", false}, "dot": {"˙", false}, "ddot": {"¨", false}, "dddot": {"⃛", false},
 	"check": {"ˇ", false}, "breve": {"˘", false}, "acute": {"´", false}, "grave": {"`", false},
-	"mathring": {"˚", false}, "overline": {"‾", true}, "overrightarrow": {"→", true}, "overleftarrow": {"←", true},
+	"mathring": {"˚", false}, "overrightarrow": {"→", true}, "overleftarrow": {"←", true},
 	"overleftrightarrow": {"↔", true},
 }
 

@@ -111,7 +111,7 @@ func (p *parser) environment(t token, at state) (*node, error) {
 		last := len(in) == 0 && len(row.kids) == 0 && end.is(`\end`)
 		if last && ruled > 0 && len(table.kids) > 0 {
 			for _, c := range table.kids[len(table.kids)-1].kids {
-				c.set("style", styleOf(c)+";border-bottom:1px solid")
+				c.addStyle("border-bottom:1px solid")
 			}
 		}
 		if !last {
@@ -180,30 +180,46 @@ func (l layout) cell(n *node, column int, bars []int, ruled bool) *node {
 	}
 	c := cell(n, map[byte]string{'l': "left", 'c': "center", 'r': "right"}[where], l.aligned)
 	if l.aligned && column > 0 && column%2 == 0 {
-		c.set("style", styleOf(c)+";padding-left:2em")
+		c.addStyle("padding-left:2em")
 	}
 	for _, b := range bars {
 		if b == column {
-			c.set("style", styleOf(c)+";border-left:1px solid")
+			c.addStyle("border-left:1px solid")
 		}
 		if b == column+1 && b == len(l.columns) {
-			c.set("style", styleOf(c)+";border-right:1px solid")
+			c.addStyle("border-right:1px solid")
 		}
 	}
 	if ruled {
-		c.set("style", styleOf(c)+";border-top:1px solid")
+		c.addStyle("border-top:1px solid")
 	}
 	return c
 }
 
 // cell makes a cell. Browsers take its place from the style, not from the
-// attributes that older versions of MathML had.
+// attributes that older versions of MathML had. What is in a cell is a block,
+// which some of them place only by a value of their own; to centre it is usual.
 func cell(n *node, where string, close bool) *node {
-	style := "text-align:" + where
-	if close {
-		style += ";padding-left:0;padding-right:0"
+	var style string
+	if where != "center" {
+		style = "text-align:" + where + ";text-align:-webkit-" + where
 	}
-	return elem("mtd", n).set("style", style)
+	if close {
+		style = strings.TrimPrefix(style+";padding-left:0;padding-right:0", ";")
+	}
+	c := elem("mtd", n)
+	if style != "" {
+		c.set("style", style)
+	}
+	return c
+}
+
+// addStyle adds a declaration to the style.
+func (n *node) addStyle(s string) {
+	if old := styleOf(n); old != "" {
+		s = old + ";" + s
+	}
+	n.set("style", s)
 }
 
 func styleOf(n *node) string {
