@@ -28,8 +28,9 @@ written to the notebook.
         Print the comparison as JSON.
   -junit
         Print the comparison as JUnit XML.
-  -keep-going, -limit DURATION, -memory SIZE
-        As for levelsum run.
+  -keep-going, -limit DURATION, -memory SIZE, -native
+        As for levelsum run. With -native the numbers of compiled cells are
+        compared with stored ones that were partly interpreted.
 
   identical       the same
   rounding-level  relative 1e-9, or absolute below 1e-12 of the scale

@@ -37,6 +37,8 @@ cells mean the notebook's folder.
         End the run of a notebook that takes longer (90s, 10m, 2h).
   -memory SIZE
         End a cell whose engine takes more (512MB, 4GB).
+  -native
+        Have the Go toolchain compile every cell and interpret none.
 
 The exit status is 0 on success, 1 if a cell failed, 2 on misuse.
 `
@@ -52,12 +54,14 @@ func startRunner(ctx context.Context, o engine.Options) (rerun.Session, error) {
 type runFlags struct {
 	set       []rerun.Setting
 	keepGoing bool
+	native    bool
 	limit     time.Duration
 	memory    int64
 }
 
 func (f *runFlags) define(fs *flag.FlagSet) {
 	fs.BoolVar(&f.keepGoing, "keep-going", false, "")
+	fs.BoolVar(&f.native, "native", false, "")
 	fs.DurationVar(&f.limit, "limit", 0, "")
 	fs.Func("memory", "", func(s string) (err error) { f.memory, err = parseSize(s); return err })
 }
@@ -174,7 +178,7 @@ func execute(ctx context.Context, file string, f runFlags, start runner, stderr 
 	}
 	r, err := rerun.Run(ctx, d, rerun.Options{
 		Start: func(ctx context.Context) (rerun.Session, error) {
-			return start(ctx, engine.Options{Dir: dir, MemoryLimit: f.memory})
+			return start(ctx, engine.Options{Dir: dir, MemoryLimit: f.memory, Compiled: f.native})
 		},
 		Dir:       dir,
 		KeepGoing: f.keepGoing,

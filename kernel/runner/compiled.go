@@ -55,6 +55,10 @@ func (r *Runner) prepare(plan *cell.Plan, facts map[string]any) (job func(), how
 	return run, "compiled", why, nil
 }
 
+// manyPlugins is after how many compiled cells the reader is told what they
+// take: 300 were measured at 820 MB resident, with 30 ms to open one more.
+const manyPlugins = 300
+
 // load builds and opens the plugin of a unit, once in a session.
 func (r *Runner) load(u *cell.Unit) (map[string]any, error) {
 	if o, ok := r.plugins[u.Path]; ok {
@@ -74,6 +78,9 @@ func (r *Runner) load(u *cell.Unit) (map[string]any, error) {
 	}
 	offers := *sym.(*map[string]any)
 	r.plugins[u.Path] = offers
+	if n := len(r.plugins); n%manyPlugins == 0 {
+		r.send(engine.Event{Op: "warn", Text: fmt.Sprintf("note: this session has compiled %d cells, which cannot be unloaded and take about %d MB; restart the kernel and run kernel.Replay() to have your values in a fresh one\n", n, n*27/10)})
+	}
 	return offers, nil
 }
 
