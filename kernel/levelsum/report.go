@@ -56,12 +56,17 @@ func makeReport(args []string, _ io.Reader, stdout, stderr io.Writer) int {
 		return fail(2, "-code %s: want folded, shown or hidden", *code)
 	}
 	file := fs.Arg(0)
-	d, err := notebook.Read(file)
+	data, err := os.ReadFile(file)
+	if err != nil {
+		return fail(statusOf(err), "%v", err)
+	}
+	d, err := notebook.Parse(file, data)
 	if err != nil {
 		return fail(statusOf(err), "%v", err)
 	}
 	page, warnings, err := report.Page(d, report.Options{
 		Name:    filepath.Base(file),
+		File:    data,
 		Folder:  filepath.Dir(file),
 		Version: version,
 		Code:    report.CodeView(*code),

@@ -24,6 +24,8 @@ const (
 type Options struct {
 	// Name is the notebook's file name, for the provenance.
 	Name string
+	// File is what the notebook's file holds; its hash goes to the provenance.
+	File []byte
 	// Folder is where the notebook lies: pictures that its text refers to are
 	// taken from there. Without it they are left out.
 	Folder string

@@ -41,7 +41,9 @@ func (p *page) provenance(d *notebook.Document) {
 	if p.o.Name != "" {
 		entry("notebook", p.o.Name)
 	}
-	entry("SHA-256 of the notebook", fmt.Sprintf("%x", sha256.Sum256(d.Bytes())))
+	if p.o.File != nil {
+		entry("SHA-256 of the notebook", fmt.Sprintf("%x", sha256.Sum256(p.o.File)))
+	}
 	entry("order of the runs", order(d))
 	if k, ok := d.Metadata("kernelspec", "display_name").(string); ok {
 		entry("kernel", k)

@@ -163,7 +163,7 @@ func TestCopperOutline(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	page, _, err := Page(d, Options{Name: "copper-heat-capacity.ipynb"})
+	page, _, err := Page(d, Options{Name: "copper-heat-capacity.ipynb", File: d.Bytes()})
 	if err != nil {
 		t.Fatal(err)
 	}
