@@ -84,7 +84,7 @@ const fewMembers = 12
 // describe says what o is.
 func (c *checked) describe(scope Scope, docs *Docs, o types.Object, detail int) Inspection {
 	head := headOf(o)
-	var extra []string
+	var extra, methods []string // methods come last: they hide the text in a small window
 	switch o := o.(type) {
 	case *types.Var:
 		v, ok := scope.(Valued)
@@ -95,14 +95,8 @@ func (c *checked) describe(scope Scope, docs *Docs, o types.Object, detail int) 
 			extra = append(extra, fmt.Sprintf("// set by In[%d]", cell), o.Name()+" = "+text)
 		}
 	case *types.TypeName:
-		members := append(c.fields(o.Type()), c.methods(o.Type(), true)...)
-		for i, m := range members {
-			if detail == 0 && i == fewMembers {
-				extra = append(extra, fmt.Sprintf("// and %d more", len(members)-i))
-				break
-			}
-			extra = append(extra, strings.TrimRight("\t"+m.line(), " "))
-		}
+		extra = listed(c.fields(o.Type()), detail)
+		methods = listed(c.methods(o.Type(), true), detail)
 	case *types.PkgName:
 		members := packageMembers(o.Imported())
 		if detail > 0 {
@@ -127,7 +121,23 @@ func (c *checked) describe(scope Scope, docs *Docs, o types.Object, detail int) 
 		d.Text += "\n\n" + plain
 		d.Markdown += "\n\n" + markdown
 	}
+	if len(methods) > 0 {
+		code := "// methods\n" + strings.Join(methods, "\n")
+		d.Text += "\n\n" + code
+		d.Markdown += "\n\n```go\n" + code + "\n```"
+	}
 	return d
+}
+
+// listed is a line for each member, for a few of them without detail.
+func listed(members []Match, detail int) (lines []string) {
+	for i, m := range members {
+		if detail == 0 && i == fewMembers {
+			return append(lines, fmt.Sprintf("// and %d more", len(members)-i))
+		}
+		lines = append(lines, strings.TrimRight("\t"+m.line(), " "))
+	}
+	return lines
 }
 
 // printed is a documentation comment as plain text and as Markdown, formulas as

@@ -37,7 +37,7 @@ func TestInspect(t *testing.T) {
 		{"inner of two calls", "math.Pow(math.Sqrt(|), 2)", 0, []string{"func math.Sqrt"}},
 		{"method", "time.Now().Ad|d(3)", 0, []string{"func (time.Time) Add(d time.Duration) time.Time", "Add returns the time t+d."}},
 		{"constant", "time.Sec|ond", 0, []string{"const time.Second time.Duration = 1000000000"}},
-		{"type", "var d time.Dura|tion", 0, []string{"type time.Duration int64", "Hours() float64", "A Duration represents the elapsed time"}},
+		{"type", "var d time.Dura|tion", 0, []string{"type time.Duration int64", "A Duration represents the elapsed time", "Hours() float64"}},
 		{"type of the session", "Sam|ple{}", 0, []string{"type Sample struct", "\tMass float64", "\tlabel string", "\tSetMass(m float64)"}},
 		{"session variable", "θ| * 2", 0, []string{"var θ float64", "// set by In[7]", "θ = 343"}},
 		{"session function", "hea|t(0)", 0, []string{"func heat(d time.Duration, more ...Sample) float64"}},
