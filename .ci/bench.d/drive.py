@@ -5,6 +5,7 @@ usage: drive.py FOLDER ROUNDS JSON
 FOLDER holds the programs ours, peer and levelsum. One round asks every side for
 every workload once, so that a change of the machine's load meets all of them."""
 import json
+import math
 import os
 import platform
 import re
@@ -27,6 +28,9 @@ TITLES = {
 # What the sides' results may differ by, relatively: rounding where nothing is
 # said, drawn numbers, other quadratures of the same table.
 AGREE = {"a": 1e-10, "c": 1e-9, "cb": None, "d": 1e-8, "e": 1e-8, "g": 1e-6, "h": 0.02, "j": None}
+
+# Workloads that are measured at 1/4 and 1/16 of their size too.
+GROW = ["a", "b", "c", "g", "h", "i1", "i2", "i3", "j"]
 
 # OpenBLAS chooses its kernel for this processor, one thread.
 plain = {k: v for k, v in os.environ.items() if not k.startswith("OPENBLAS_")}
@@ -120,17 +124,27 @@ def main():
                 if name.split(" ", 1)[0] != w or got and got[0]["wall"] > 60:
                     continue  # what takes so long is measured once
                 note(w, name.split(" ", 1)[1], side.ask(name))
+        for w in GROW:
+            for part in 4, 16:
+                note(f"{w}/{part}", "growth", one.ask(f"{w}/{part}"))
         for sample in run_cells():
             note(sample["name"], "cell", sample)
         print(f"round {n + 1} of {rounds} done", file=sys.stderr)
     started = kernels()
     load.append(os.getloadavg())
 
-    rows, wrong = [], []
+    rows, wrong, growth = [], [], {}
+    for w in GROW:
+        t = [statistics.median(s["cpu"] for s in samples[k]) for k in ((w, "Go, 1 processor"), (w + "/4", "growth"), (w + "/16", "growth"))]
+        # The least-squares slope of ln t over ln n: three points, evenly spaced.
+        growth[w] = math.log(t[0] / t[2]) / math.log(16)
     for (w, side), list_ in samples.items():
+        if side == "growth":
+            continue
         base = samples[w, "Go, 1 processor"]
         mid = lambda l, k: statistics.median(s[k] for s in l)
-        row = {"workload": w, "side": side, "samples": list_, "wall": mid(list_, "wall"), "cpu": mid(list_, "cpu"),
+        size = f"{mid(list_, 'bytes') / 1e6:.3g}" if "bytes" in list_[0] else ""
+        row = {"bytes": size, "workload": w, "side": side, "samples": list_, "wall": mid(list_, "wall"), "cpu": mid(list_, "cpu"),
                "wall_over_ours": mid(list_, "wall") / mid(base, "wall"), "cpu_over_ours": mid(list_, "cpu") / mid(base, "cpu")}
         rows.append(row)
         tol, want = AGREE.get(w, 1e-9), base[0]["value"]
@@ -138,21 +152,22 @@ def main():
             wrong.append(f"{w}: {side} gives {list_[0]['value']!r}, Go {want!r}")
     with open(out, "w") as f:
         json.dump({"machine": machine, "load_before": load[0], "load_after": load[1], "rounds": rounds, "rows": rows,
-                   "kernels": started, "disagreements": wrong}, f, indent=1)
+                   "growth": growth, "kernels": started, "disagreements": wrong}, f, indent=1)
 
     m = machine
     print(f"{m['processor']}, {m['cores']} cores; {m['go']}; Python {m['python']}, {m['peers']}; {rounds} rounds in turn, medians.")
     print(f"Load average {load[0][0]:.1f} before, {load[1][0]:.1f} after.", end=" ")
     if max(load[0][0], load[1][0]) > 0.5 * m["cores"]:
         print("**Under load**: other programs shared the processors, times of the clock say little, compare the processor's.")
-    print("\n\n| workload | side | clock / ms | processor / ms | clock, ratio | processor, ratio |\n|---|---|---:|---:|---:|---:|")
+    print("\n\n| workload | side | clock / ms | processor / ms | clock, ratio | processor, ratio | allocated / MB |\n|---|---|---:|---:|---:|---:|---:|")
     rows.sort(key=lambda r: list(TITLES).index(r["workload"]))
     last = None
     for r in rows:
         title = f"{r['workload']}. {TITLES[r['workload']]}" if r["workload"] != last else ""
         last = r["workload"]
-        print(f"| {title} | {r['side']} | {1e3 * r['wall']:.3g} | {1e3 * r['cpu']:.3g} | {r['wall_over_ours']:.2f} | {r['cpu_over_ours']:.2f} |")
+        print(f"| {title} | {r['side']} | {1e3 * r['wall']:.3g} | {1e3 * r['cpu']:.3g} | {r['wall_over_ours']:.2f} | {r['cpu_over_ours']:.2f} | {r['bytes']} |")
     print("\nRatios are to ours in Go on one processor: above 1, ours is faster. f: not measured, there is no lattice package.\n")
+    print("Time grows with the size to the power (from the size, a quarter and a sixteenth of it): " + ", ".join(f"{w} {g:.2f}" for w, g in growth.items()) + ".\n")
     print("| kernel | what | clock / ms |\n|---|---|---:|")
     for k in started:
         print(f"| {k['kernel']} | {k['what']} | {1e3 * k['wall']:.3g} |")

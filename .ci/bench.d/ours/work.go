@@ -6,6 +6,7 @@ import (
 	"os"
 	"path/filepath"
 	"runtime"
+	"strings"
 	"time"
 
 	"levelsum/display"
@@ -34,18 +35,18 @@ var ready = map[string]func() func() float64{
 	"g":  phonons,
 	"h":  propagation,
 	"i1": func() func() float64 {
-		eta := ramp(100_000, -10, 50)
+		eta := ramp(size(100_000), -10, 50)
 		return func() float64 { return total(special.FermiDiracs(nil, 0.5, eta)) }
 	},
 	"i2": func() func() float64 {
-		F := ramp(100_000, -8, 6)
+		F := ramp(size(100_000), -8, 6)
 		for i := range F {
 			F[i] = math.Exp(F[i])
 		}
 		return func() float64 { return total(special.FermiDiracHalfInverses(nil, F)) }
 	},
 	"i3": func() func() float64 {
-		z := ramp(100_000, 0, 1)
+		z := ramp(size(100_000), 0, 1)
 		return func() float64 { return total(special.Boses(nil, 1.5, z)) }
 	},
 	"j":  figure,
@@ -93,13 +94,13 @@ func check(err error) {
 }
 
 func debye() func() float64 {
-	ts := kelvins(1_000_000, 1, 999e-6)
+	ts := kelvins(size(1_000_000), 1, 999e-6*float64(divisor))
 	d := solid.Debye{Theta: 343 * unit.K}
 	return func() float64 { return totalMolar(d.HeatCapacities(ts)) }
 }
 
 func levels() func() float64 {
-	const n = 10_000_000
+	n := size(10_000_000)
 	e, g := make([]unit.Energy, n), make([]float64, n)
 	for i := range e {
 		_, f := math.Modf(float64(i) * 0.6180339887498949)
@@ -121,9 +122,10 @@ func levels() func() float64 {
 
 func fitted(refits int) func() float64 {
 	m := solid.Sum{&solid.Electronic{Gamma: 0.7 * unit.MilliJPerMolK2}, &solid.Debye{Theta: 250 * unit.K, Modes: 3}, &solid.Einstein{Theta: 550 * unit.K, Modes: 3}}
-	ts, cs, us := make([]float64, 500), make([]float64, 500), make([]float64, 500)
+	n := size(500)
+	ts, cs, us := make([]float64, n), make([]float64, n), make([]float64, n)
 	for i := range ts {
-		ts[i] = 2 + 0.6*float64(i)
+		ts[i] = 2 + 0.6*float64(divisor*i)
 		c := float64(m.HeatCapacity(unit.Temperature(ts[i])))
 		us[i] = 0.005 * c
 		cs[i] = c + us[i]*math.Sqrt2*math.Sin(12.9898*float64(i))
@@ -170,11 +172,11 @@ func torsion() func() float64 {
 }
 
 func phonons() func() float64 {
-	const n = 20_000
+	n := size(20_000)
 	table := solid.PhononTable{Per: unit.THzEnergy, Integral: solid.IntegralOne, AtomsPerCell: 1, AtomsPerFormula: 1}
 	end := float64(unit.Temperature(400).AsEnergy() / unit.THzEnergy)
 	for i := range n {
-		w := end * float64(i) / (n - 1)
+		w := end * float64(i) / float64(n-1)
 		table.Energies = append(table.Energies, unit.Energy(w)*unit.THzEnergy)
 		table.States = append(table.States, 3*w*w/(end*end*end))
 	}
@@ -199,8 +201,9 @@ func propagation() func() float64 {
 	for _, x := range in[6:] {
 		q = q.Plus(x.Over(uncertain.Exp(x).Shift(-1)))
 	}
+	draws := size(1_000_000)
 	return func() float64 {
-		s, err := uncertain.MonteCarlo(q, uncertain.Draws(1_000_000))
+		s, err := uncertain.MonteCarlo(q, uncertain.Draws(draws))
 		check(err)
 		lo, hi := s.Interval(0.95)
 		return hi - lo
@@ -213,7 +216,7 @@ func figure() func() float64 {
 		e := math.Exp(-x)
 		return unit.MolarEntropy(3 * 8.314462618 * x * x * e / ((1 - e) * (1 - e)))
 	}
-	ts := kelvins(2000, 2, 0.149)
+	ts := kelvins(size(2000), 2, 0.149*float64(divisor))
 	c, u := make([]unit.MolarEntropy, len(ts)), make([]unit.MolarEntropy, len(ts))
 	for i, T := range ts {
 		u[i] = 0.02 * model(T)
@@ -279,14 +282,23 @@ var cpu = func() float64 {
 	return ns / 1e9
 }
 
+// divisor makes the sizes of the workloads smaller, to see how time grows.
+var divisor = 1
+
+func size(n int) int { return n / divisor }
+
 // prepared keeps what ready made.
 var prepared = map[string]func() float64{}
 
 // timed runs a workload until 50 ms have passed and returns seconds of the
-// clock, seconds of the processor and bytes allocated for one call, as JSON.
+// clock, seconds of the processor and bytes allocated for one call, as JSON. A
+// name such as "a/4" is the workload at a quarter of its size.
 func timed(name string) string {
 	if prepared[name] == nil {
-		prepared[name] = ready[name]()
+		workload, part, _ := strings.Cut(name, "/")
+		divisor = 1
+		fmt.Sscan(part, &divisor)
+		prepared[name] = ready[workload]()
 		prepared[name]() // warm
 	}
 	f := prepared[name]
@@ -300,7 +312,7 @@ func timed(name string) string {
 	}
 	wall, used := time.Since(start).Seconds(), cpu()-c
 	runtime.ReadMemStats(&after)
-	if name == "b" {
+	if strings.HasPrefix(name, "b") {
 		delete(prepared, name) // 160 MB
 	}
 	k := float64(n)
