@@ -51,7 +51,16 @@ func NewLevels(energies []unit.Energy, degeneracies []float64) (*Levels, error) 
 		if e-e != 0 {
 			return nil, &DomainError{fn, fmt.Sprintf("energies[%d]", i), e.String(), "finite"}
 		}
-		l.min, l.max = min(l.min, e), max(l.max, e)
+		// Comparisons, not min and max: those also order zeros and look for NaN.
+		switch {
+		case e < l.min:
+			l.min, l.gMin = e, l.weight(i)
+		case e == l.min:
+			l.gMin += l.weight(i)
+		}
+		if e > l.max {
+			l.max = e
+		}
 	}
 	if degeneracies == nil {
 		l.gSum = float64(len(energies))
@@ -68,11 +77,6 @@ func NewLevels(energies []unit.Energy, degeneracies []float64) (*Levels, error) 
 	}
 	if fractions > 0 {
 		l.warnings = append(l.warnings, fmt.Sprintf("%d of %d degeneracies are not integers", fractions, len(degeneracies)))
-	}
-	for i, e := range energies {
-		if e == l.min {
-			l.gMin += l.weight(i)
-		}
 	}
 	return l, nil
 }

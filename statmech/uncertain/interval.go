@@ -14,11 +14,13 @@ func (s *Simulation) Values() []float64 { return append([]float64(nil), s.values
 // interval for probability p (JCGM 101:2008, 7.7).
 func (s *Simulation) Interval(p float64) (lo, hi float64) {
 	checkProbability("Interval", p)
-	v := s.inOrder()
-	m := len(v)
-	q := int(p*float64(m) + 0.5)
-	r := (m - q) / 2
-	return v[max(0, r-1)], v[min(m-1, r+q-1)]
+	s.mu.Lock()
+	defer s.mu.Unlock()
+	if s.sorted != nil { // others may be reading it
+		a, b := ranks(len(s.sorted), p)
+		return s.sorted[a], s.sorted[b]
+	}
+	return interval(s.Values(), p)
 }
 
 // Shortest returns the ends of the shortest coverage interval for probability
@@ -53,12 +55,16 @@ func (s *Simulation) inOrder() []float64 {
 	return s.sorted
 }
 
-// interval returns the symmetric interval of values that it may reorder.
-func interval(v []float64, p float64) (lo, hi float64) {
-	m := len(v)
+// ranks returns where the ends of the symmetric interval of m values are.
+func ranks(m int, p float64) (a, b int) {
 	q := int(p*float64(m) + 0.5)
 	r := (m - q) / 2
-	a, b := max(0, r-1), min(m-1, r+q-1)
+	return max(0, r-1), min(m-1, r+q-1)
+}
+
+// interval returns the symmetric interval of values that it may reorder.
+func interval(v []float64, p float64) (lo, hi float64) {
+	a, b := ranks(len(v), p)
 	selectRank(v, a)
 	lo = v[a]
 	selectRank(v[a:], b-a)
