@@ -294,11 +294,6 @@ func (c *checking) conclude(plan *Plan) {
 	}
 	slices.Sort(plan.drop)
 	slices.Sort(plan.Dropped)
-	for _, d := range plan.decls {
-		if f, ok := d.node.(*ast.FuncDecl); ok && f.Recv == nil && f.Name.Name == "init" {
-			plan.inits = append(plan.inits, d.key())
-		}
-	}
 }
 
 // varObject finds the object of a variable declared at depth 0.

@@ -25,7 +25,7 @@ func (p *Plan) Compile(statements bool) (*Unit, error) {
 	if len(p.decls) == 0 && (!statements || len(p.stmts) == 0 && len(p.lead) == 0) {
 		return nil, nil
 	}
-	e := &emitter{plan: p, unit: &Unit{pkg: p.pkg, info: p.info, Run: statements, Decls: p.decls}, alias: map[string]string{}}
+	e := &emitter{plan: p, unit: &Unit{pkg: p.pkg, Run: statements, Decls: p.decls}, alias: map[string]string{}}
 	var body strings.Builder
 	for _, d := range p.decls {
 		e.info, e.src = p.info, d.Source
@@ -44,35 +44,23 @@ func (p *Plan) Compile(statements bool) (*Unit, error) {
 		}
 		body.WriteString(run)
 	}
-	var head strings.Builder
-	head.WriteString("package cell\n\n")
-	e.use(GuardPath)
-	for _, path := range e.unit.Paths {
-		fmt.Fprintf(&head, "import %s %q\n", e.alias[path], path)
-	}
-	for _, u := range e.unit.Uses {
-		fmt.Fprintf(&head, "import %s %q\n", e.alias[u.Path], u.Path)
-	}
+	// The types of slots may bring imports in, so they are written first.
+	var slots strings.Builder
 	for _, l := range e.unit.Slots {
-		fmt.Fprintf(&head, "var %s *%s\n", l.Var(), e.typ(l.Type))
+		fmt.Fprintf(&slots, "var %s *%s\n", l.Var(), e.typ(l.Type))
 	}
+	fmt.Fprintf(&slots, "var _ = %s\n", e.guard("Stop")) // always used
 	if e.err != nil {
 		return nil, e.err
 	}
-	// Types of slots may have brought imports in: the head is written again.
-	var imports strings.Builder
-	imports.WriteString("package cell\n\n")
+	head := "package cell\n\n"
 	for _, path := range e.unit.Paths {
-		fmt.Fprintf(&imports, "import %s %q\n", e.alias[path], path)
+		head += fmt.Sprintf("import %s %q\n", e.alias[path], path)
 	}
 	for _, u := range e.unit.Uses {
-		fmt.Fprintf(&imports, "import %s %q\n", e.alias[u.Path], u.Path)
+		head += fmt.Sprintf("import %s %q\n", e.alias[u.Path], u.Path)
 	}
-	for _, l := range e.unit.Slots {
-		fmt.Fprintf(&imports, "var %s *%s\n", l.Var(), e.typ(l.Type))
-	}
-	fmt.Fprintf(&imports, "var _ = %s.Stop\n", e.alias[GuardPath])
-	e.unit.Text = imports.String() + body.String()
+	e.unit.Text = head + slots.String() + body.String()
 	sum := sha256.Sum256([]byte(e.unit.Text))
 	e.unit.Path = "cell/k" + hex.EncodeToString(sum[:8])
 	return e.unit, nil

@@ -37,7 +37,7 @@ func (e *emitter) markComm(st ast.Stmt) {
 }
 
 // receive lets a receive notice that it is to stop.
-func (e *emitter) receive(n *ast.UnaryExpr, parent ast.Node) {
+func (e *emitter) receive(n *ast.UnaryExpr) {
 	t := e.info.Types[n.X].Type
 	if t == nil {
 		return
@@ -51,7 +51,6 @@ func (e *emitter) receive(n *ast.UnaryExpr, parent ast.Node) {
 			name = "Recv2"
 		}
 	}
-	_ = parent
 	e.replace(n.OpPos, n.OpPos+2, e.guard(name)+"(")
 	e.after(n, ")")
 }

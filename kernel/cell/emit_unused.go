@@ -8,7 +8,7 @@ import (
 
 // unusedIn makes variables count as used that the checker has only warned of:
 // the Go compiler refuses them.
-func (e *emitter) unusedIn(n ast.Node, parent ast.Node, stack []ast.Node) {
+func (e *emitter) unusedIn(n, parent ast.Node) {
 	var names string
 	switch n := n.(type) {
 	case *ast.AssignStmt:

@@ -75,7 +75,7 @@ func (e *emitter) visit(n ast.Node, stack []ast.Node) bool {
 		}
 	case *ast.UnaryExpr:
 		if n.Op == token.ARROW && !e.comm[n] {
-			e.receive(n, parent)
+			e.receive(n)
 		}
 	case *ast.GoStmt:
 		e.goStmt(n)
@@ -92,14 +92,14 @@ func (e *emitter) visit(n ast.Node, stack []ast.Node) bool {
 		if n.Tok == token.DEFINE && e.definesOuter(n) {
 			e.replace(n.TokPos, n.TokPos+2, "=")
 		} else if n.Tok == token.DEFINE {
-			e.unusedIn(n, parent, stack)
+			e.unusedIn(n, parent)
 		}
 	case *ast.DeclStmt:
 		if g, ok := n.Decl.(*ast.GenDecl); ok && g.Tok == token.VAR && e.declaresOuter(g) {
 			e.outerVar(g)
 			return false
 		}
-		e.unusedIn(n, parent, stack)
+		e.unusedIn(n, parent)
 	case *ast.SelectorExpr:
 		return e.selector(n)
 	case *ast.Ident:

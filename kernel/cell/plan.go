@@ -16,8 +16,7 @@ type Unit struct {
 	Run   bool     // it has a function that runs the cell's statements
 	Decls []*Decl  // decls whose current version is in it
 
-	pkg  *types.Package
-	info *types.Info
+	pkg *types.Package
 }
 
 // A Plan is a checked cell and what it would change.
@@ -26,7 +25,6 @@ type Plan struct {
 	Warnings Diagnostics // older decls that no longer compile, unused variables
 	Dropped  []string    // variables whose type changed, one line each
 	Force    bool        // a directive asks for compiling
-	Reached  int         // the statement that a run came to, set by who runs it
 
 	parsed  *parsed
 	imports map[string]string
@@ -44,7 +42,6 @@ type Plan struct {
 	stmts []ast.Stmt
 	lead  []ast.Decl           // variables declared before the first statement
 	order []*types.Initializer // their initialisation, in Go's order
-	inits []string             // func init, renamed, in order
 	scope *Scope
 
 	unused map[token.Pos]bool // variables inside functions and blocks that nothing reads

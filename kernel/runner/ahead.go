@@ -25,6 +25,13 @@ func (a *ahead) announce(c engine.Cell) {
 	a.queue = append(a.queue, c)
 }
 
+// forget drops what was announced.
+func (a *ahead) forget() {
+	a.mu.Lock()
+	defer a.mu.Unlock()
+	a.queue = nil
+}
+
 // take returns the cells behind the one that is about to run, and ends the
 // work that an earlier cell has started.
 func (a *ahead) take(running string) ([]engine.Cell, chan struct{}) {

@@ -45,7 +45,6 @@ func (r *Runner) run(c engine.Cell) engine.Outcome {
 	if job != nil {
 		reached, out.Fault = r.goroutine(job, src)
 	}
-	plan.Reached = reached
 	if lost := r.scope.Commit(plan, func(name string) bool { return out.Fault == nil || plan.Sets(name, reached) }); len(lost) > 0 {
 		n := strings.Join(lost, ", ") + " cannot be used: what it needs was not set, since the cell failed"
 		out.Notes = append(out.Notes, n)

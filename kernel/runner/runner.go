@@ -98,7 +98,6 @@ func New(w *engine.Writer) (*Runner, error) {
 	guard.Hooks.Fatal = logFatal
 	draw.Register()
 	display.SetSink(sink{r})
-	draw.Register()
 	return r, nil
 }
 
@@ -150,6 +149,9 @@ func (r *Runner) answer(q engine.Request) {
 	switch q.Op {
 	case "run":
 		out := r.run(*q.Cell)
+		if out.Fault != nil {
+			r.ahead.forget() // what was queued behind it may be aborted
+		}
 		r.over()
 		ev = engine.Event{Op: "done", ID: q.ID, Sync: true, Outcome: &out}
 	case "complete":
