@@ -78,8 +78,8 @@ const (
 // nothing is squared. λ follows the gain ratio.
 //
 // References: K. Levenberg, Q. Appl. Math. 2, 164 (1944); D. W. Marquardt, J.
-// SIAM 11, 431 (1963); J. J. Moré, in Numerical Analysis, ed. G. A. Watson, Springer, p. 105
-// (1978); H. B. Nielsen, report IMM-REP-1999-05 (1999), equation 2.20, for λ.
+// SIAM 11, 431 (1963); J. J. Moré in Numerical Analysis, ed. G. A. Watson,
+// Springer (1978), p. 105; H. B. Nielsen, report IMM-REP-1999-05 (1999), equation 2.20, for λ.
 func marquardt(pr *problem, start []float64, d damping, lambda float64) *minimum {
 	n, m := pr.n, pr.m
 	out := &minimum{p: clone(start), r: make([]float64, m), jac: make([]float64, m*n), atBound: make([]bool, n), stop: TooManySteps, cosine: math.Inf(1)}
