@@ -59,7 +59,7 @@ func TestHelpWhileTyping(t *testing.T) {
 		{"θ", "var θ float64\n// set by In[2]\nθ = 343.5"},
 		{"run", "var run sample\n// set by In[2]\nrun = "},
 		{"run.heat", "func (sample) heat() float64\n// declared in In[1]\n\nheat is mass times Temp."},
-		{"sample", "type sample struct\n// declared in In[1]\n\tmass float64\n\tTemp float64\n\theat() float64"},
+		{"sample", "type sample struct\n// declared in In[1]\n\tmass float64\n\tTemp float64\n\nA sample was weighed.\n\n// methods\n\theat() float64"},
 		{"math.Sqrt", "Sqrt returns the square root of x."},
 		{"solid.Debye", "type solid.Debye struct\n"},
 		{"sample", "A sample was weighed."},
