@@ -302,8 +302,9 @@ func (e *emitter) run() string {
 			fmt.Fprintf(&out, "%s(%q, %s)\n", e.guard("Unread"), v.Name(), e.slot(p.slotOf(v, p.sinfo)))
 		}
 	}
-	for _, v := range un.end {
-		fmt.Fprintf(&out, "%s(%q, %s)\n", e.guard("Unread"), v.Name(), e.slot(p.slotOf(v, p.sinfo)))
+	for _, end := range un.end {
+		line, col := e.src.place(p.scope.fset, end.last)
+		fmt.Fprintf(&out, "/*line %s:%d:%d*/%s(%q, %s)\n", e.src.Tag(), line, col, e.guard("Unread"), end.v.Name(), e.slot(p.slotOf(end.v, p.sinfo)))
 	}
 	fmt.Fprintf(&out, "%s = %d\n}\n", at, len(p.stmts))
 	return out.String()

@@ -31,7 +31,13 @@ type Script struct {
 	Imports map[string]string // alias -> path
 	Slots   []*Slot
 	Units   []*Unit // units whose functions or types it names
-	End     []*Slot // error variables to look at when all is done
+	End     []Look  // what to look at when all is done
+}
+
+// A Look is an error variable that nobody looks at after it is written.
+type Look struct {
+	Slot *Slot
+	Line int // where it was written last
 }
 
 // Session is the package under which scripts reach the session.
@@ -63,7 +69,8 @@ func (p *Plan) Interpret(t Table) (*Script, string) {
 		w.s.Steps = append(w.s.Steps, step)
 	}
 	for _, v := range un.end {
-		w.s.End = append(w.s.End, p.slotOf(v, p.sinfo))
+		line, _ := p.Source.place(p.scope.fset, v.last)
+		w.s.End = append(w.s.End, Look{p.slotOf(v.v, p.sinfo), line})
 	}
 	if w.why != "" {
 		return nil, w.why

@@ -11,7 +11,13 @@ import (
 type unread struct {
 	drops map[int]bool         // statement k is a call whose last result is an error
 	after map[int][]*types.Var // after statement k, variables that are written again unread
-	end   []*types.Var         // at the end of the cell
+	end   []ending             // at the end of the cell
+}
+
+// An ending is an error variable whose last value nobody looks at.
+type ending struct {
+	v    *types.Var
+	last token.Pos // where it was written last
 }
 
 var errorType = types.Universe.Lookup("error").Type()
@@ -23,6 +29,7 @@ func (p *Plan) findUnread() unread {
 	u := unread{drops: map[int]bool{}, after: map[int][]*types.Var{}}
 	type event struct {
 		pos   token.Pos
+		name  token.Pos
 		write bool
 		stmt  int
 		outer bool // the write is the statement itself
@@ -59,7 +66,7 @@ func (p *Plan) findUnread() unread {
 					return true
 				}
 				if at, ok := left[n]; ok {
-					events[v] = append(events[v], event{pos: at, write: true, stmt: k, outer: at == st.End()})
+					events[v] = append(events[v], event{pos: at, name: n.Pos(), write: true, stmt: k, outer: at == st.End()})
 				} else if p.sinfo.Uses[n] != nil {
 					events[v] = append(events[v], event{pos: n.Pos(), stmt: k})
 				}
@@ -95,7 +102,7 @@ func (p *Plan) findUnread() unread {
 				switch {
 				case !e.write:
 				case i == len(es)-1:
-					u.end = append(u.end, v)
+					u.end = append(u.end, ending{v, e.name})
 				case es[i+1].write && e.outer:
 					u.after[e.stmt] = append(u.after[e.stmt], v)
 				}

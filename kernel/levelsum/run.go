@@ -211,7 +211,10 @@ func printStep(w io.Writer, s rerun.Step) {
 	if s.Fault == nil || s.Allowed {
 		return
 	}
-	fmt.Fprintf(w, "      %s: %s\n", s.Fault.Name, s.Fault.Message)
+	head := s.Fault.Name + ": " + s.Fault.Message
+	if len(s.Fault.Trace) == 0 || !strings.HasSuffix(s.Fault.Trace[0], head) {
+		fmt.Fprintf(w, "      %s\n", head) // else the trace begins with it, and with the place
+	}
 	for _, l := range s.Fault.Trace {
 		if l != s.Fault.Message {
 			fmt.Fprintf(w, "      %s\n", l)

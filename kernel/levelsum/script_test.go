@@ -25,12 +25,42 @@ func TestMain(m *testing.M) {
 				"check": func(a []string, _ io.Reader, stdout, stderr io.Writer) int {
 					return checkWith(a, stdout, stderr, startScripted)
 				},
-				"clear":  clearNotebooks,
-				"report": makeReport,
-			}[os.Args[1]]
+				"clear":   clearNotebooks,
+				"report":  makeReport,
+				"version": showVersion,
+			}[first(os.Args[1:])]
+			if c == nil {
+				os.Exit(help(os.Args[1:], os.Stdout, os.Stderr))
+			}
 			os.Exit(c(os.Args[2:], os.Stdin, os.Stdout, os.Stderr))
 		},
 	})
+}
+
+func first(args []string) string {
+	if len(args) == 0 {
+		return ""
+	}
+	return args[0]
+}
+
+// TestUsage: the help and the package comment list each command that a user
+// calls, and no other.
+func TestUsage(t *testing.T) {
+	source, err := os.ReadFile("main.go")
+	if err != nil {
+		t.Fatal(err)
+	}
+	comment, _, _ := strings.Cut(string(source), "package main")
+	for name := range commands {
+		want := name != "engine" // serve, run and check call it
+		if got := strings.Contains(usage, "\n  "+name+" "); got != want {
+			t.Errorf("usage lists %s: %t, want %t", name, got, want)
+		}
+		if got := strings.Contains(comment, "\n\tlevelsum "+name+" "); got != want {
+			t.Errorf("the package comment lists %s: %t, want %t", name, got, want)
+		}
+	}
 }
 
 // TestScripts runs the scripts of testdata/script: the commands with real

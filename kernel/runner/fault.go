@@ -103,7 +103,7 @@ func faultOf(v any, frames []frame, src *cell.Source) *engine.Fault {
 	case isErr && errors.As(err, &exit):
 		f.Name, f.Message = "exit", fmt.Sprintf("the cell called os.Exit(%d); the session goes on", exit.Code)
 	case isErr && errors.As(err, &unread):
-		f.Name, f.Message = "error not looked at", oneLine(unread.Err.Error())
+		f.Name, f.Message = "error not looked at", strings.ReplaceAll(strings.TrimSpace(unread.Err.Error()), "\n", "; ")
 		if unread.Name != "" {
 			f.Message = unread.Name + ": " + f.Message
 		}

@@ -168,11 +168,11 @@ func (i *interpreter) prepare(src *cell.Source, s *cell.Script) (func(), error) 
 				i.step(in, progs[k], st, src)
 			}
 			for _, l := range st.Check {
-				i.look(l)
+				i.look(cell.Look{Slot: l, Line: st.Line}, src)
 			}
 		}
 		for _, l := range s.End {
-			i.look(l)
+			i.look(l, src)
 		}
 	}, nil
 }
@@ -199,8 +199,11 @@ func (i *interpreter) step(in *interp.Interpreter, p *interp.Program, st cell.St
 }
 
 // look fails the cell if an error variable holds an error.
-func (i *interpreter) look(l *cell.Slot) {
-	if err, ok := i.r.slots.value(l.ID).(error); ok && err != nil {
-		guard.Unread(l.Name, err)
+func (i *interpreter) look(l cell.Look, src *cell.Source) {
+	if err, ok := i.r.slots.value(l.Slot.ID).(error); ok && err != nil {
+		panic(stepPanic{
+			guard.UnreadError{Name: l.Slot.Name, At: guard.At, Err: err},
+			[]frame{{file: src.Name(), line: l.Line}},
+		})
 	}
 }
