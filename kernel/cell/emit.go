@@ -80,9 +80,9 @@ func (s *Scope) UnitOf(o *types.TypeName) *Unit { return s.units[o.Pkg()] }
 
 // Symbol is a name that the plugin offers to interpreted code.
 type Symbol struct {
-	Name string // the user's name
-	Expr string // in a package that imports the unit as Ɒu
-	Type bool   // a type; its Expr is a nil pointer to it
+	Name    string // the user's name
+	Emitted string // its name in the unit
+	Type    bool
 }
 
 // Symbols lists the unit's functions and types, generic ones left out.
@@ -93,7 +93,7 @@ func (u *Unit) Symbols() []Symbol {
 			switch o := u.pkg.Scope().Lookup(n).(type) {
 			case *types.Func:
 				if d.recv == "" && o.Signature().TypeParams() == nil {
-					out = append(out, Symbol{Name: n, Expr: Inner + "u." + mark(n)})
+					out = append(out, Symbol{Name: n, Emitted: mark(n)})
 				}
 			case *types.TypeName:
 				if _, alias := o.Type().(*types.Alias); alias || generic(o.Type()) {
@@ -102,7 +102,7 @@ func (u *Unit) Symbols() []Symbol {
 				if i, ok := o.Type().Underlying().(*types.Interface); ok && !i.IsMethodSet() {
 					continue
 				}
-				out = append(out, Symbol{Name: n, Expr: "(*" + Inner + "u." + mark(n) + ")(nil)", Type: true})
+				out = append(out, Symbol{Name: n, Emitted: mark(n), Type: true})
 			}
 		}
 	}

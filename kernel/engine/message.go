@@ -21,9 +21,10 @@ const (
 
 // A Request is a message from the parent to the child.
 type Request struct {
-	Op     string // "run", "announce", "complete", "inspect", "state", "stop", "ack", "answer"
+	Op     string // "run", "announce", "program", "complete", "inspect", "state", "stop", "ack", "answer"
 	ID     int    `json:",omitempty"` // of the request that an event answers
 	Cell   *Cell  `json:",omitempty"`
+	Cells  []Cell `json:",omitempty"` // of a program
 	Source string `json:",omitempty"`
 	Cursor int    `json:",omitempty"`
 	Detail int    `json:",omitempty"`
@@ -45,6 +46,7 @@ type Event struct {
 	Secret     bool           `json:",omitempty"`
 	Text       string         `json:",omitempty"` // the prompt of "ask"; text of "warn"
 	Outcome    *Outcome       `json:",omitempty"`
+	Program    *Program       `json:",omitempty"`
 	Completion *Completion    `json:",omitempty"`
 	Found      map[string]any `json:",omitempty"`
 	Facts      map[string]any `json:",omitempty"`

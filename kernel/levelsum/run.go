@@ -38,7 +38,10 @@ cells mean the notebook's folder.
   -memory SIZE
         End a cell whose engine takes more (512MB, 4GB).
   -native
-        Have the Go toolchain compile every cell and interpret none.
+        Have the Go toolchain compile every cell and interpret none: all cells
+        as one program, which is then run cell by cell. What a cell is made of
+        may turn out otherwise when an earlier one fails (-keep-going); it is
+        then compiled by itself, and that is said.
 
 The exit status is 0 on success, 1 if a cell failed, 2 on misuse.
 `
@@ -184,6 +187,8 @@ func execute(ctx context.Context, file string, f runFlags, start runner, stderr 
 		KeepGoing: f.keepGoing,
 		Limit:     f.limit,
 		Set:       f.set,
+		Whole:     f.native,
+		Compiled:  func(p engine.Program) { printProgram(stderr, p) },
 		Step:      func(s rerun.Step) { printStep(stderr, s) },
 		Hint:      func(text string) { fmt.Fprintf(stderr, "  %s\n", strings.TrimRight(text, "\n")) },
 	})
@@ -199,6 +204,27 @@ func execute(ctx context.Context, file string, f runFlags, start runner, stderr 
 	return d, r, nil
 }
 
+// printProgram says what the compiler made of the cells.
+func printProgram(w io.Writer, p engine.Program) {
+	switch {
+	case p.Alone != "":
+		fmt.Fprintf(w, "  each cell is compiled by itself: %s\n", p.Alone)
+	case p.Cells > 0:
+		how := fmt.Sprintf("linked once in %.2f s", p.Took.Seconds())
+		if !p.Linked {
+			how = "as it was built before"
+		}
+		fmt.Fprintf(w, "  one program of %s, %s\n", count(p.Cells, "cell"), how)
+	}
+}
+
+func count(n int, what string) string {
+	if n == 1 {
+		return "1 " + what
+	}
+	return fmt.Sprintf("%d %ss", n, what)
+}
+
 func printStep(w io.Writer, s rerun.Step) {
 	word := "ok"
 	switch {
@@ -208,6 +234,9 @@ func printStep(w io.Writer, s rerun.Step) {
 		word = "failed"
 	}
 	fmt.Fprintf(w, "  [%d] %-6s %6.2f s  %s\n", s.Count, word, s.Took.Seconds(), s.First)
+	if s.Alone != "" {
+		fmt.Fprintf(w, "      compiled by itself: %s\n", s.Alone)
+	}
 	if s.Fault == nil || s.Allowed {
 		return
 	}

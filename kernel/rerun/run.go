@@ -33,6 +33,12 @@ type Options struct {
 	Limit time.Duration
 	// Set gives values to inputs, see [Setting].
 	Set []Setting
+	// Whole has the compiler do what it has to do for all cells before the
+	// first runs, as one program, if the session can; see
+	// [engine.Engine.Program].
+	Whole bool
+	// Compiled, if not nil, is called with what came of Whole.
+	Compiled func(engine.Program)
 	// Step, if not nil, is called when a cell is over.
 	Step func(Step)
 	// Hint, if not nil, gets hints for the reader of the moment, see
@@ -47,6 +53,7 @@ type Step struct {
 	First   string
 	Took    time.Duration
 	How     string // "interpreted", "compiled", ...
+	Alone   string // why it was not in the program of Options.Whole, though compiled
 	Fault   *engine.Fault
 	Allowed bool // the cell is tagged raises-exception: its fault is wanted
 }
@@ -54,6 +61,7 @@ type Step struct {
 // A Report says how a run went.
 type Report struct {
 	Steps   []Step
+	Program *engine.Program // of Options.Whole, nil without
 	Inputs  []Input
 	Results []Result
 	// Failed counts the cells that failed and were not allowed to.
@@ -107,6 +115,12 @@ func Run(ctx context.Context, d *notebook.Document, o Options) (*Report, error) 
 	}
 	defer session.Close()
 	rec := &recorder{places: map[string][]place{}, hint: o.Hint}
+	if o.Whole {
+		r.Program = compileWhole(ctx, session, rec, code)
+		if r.Program != nil && o.Compiled != nil {
+			o.Compiled(*r.Program)
+		}
+	}
 	for i, c := range code {
 		if i+1 < len(code) {
 			announce(session, i+2, code[i+1])
@@ -166,6 +180,25 @@ func stopReason(ctx context.Context, limit time.Duration) string {
 	return "the run was interrupted"
 }
 
+// compileWhole has a session that can do it compile all cells as one program.
+func compileWhole(ctx context.Context, s Session, rec *recorder, code []*notebook.Cell) *engine.Program {
+	w, ok := s.(interface {
+		Program(context.Context, []engine.Cell, engine.Output) (engine.Program, error)
+	})
+	if !ok {
+		return nil
+	}
+	cells := make([]engine.Cell, len(code))
+	for i, c := range code {
+		cells[i] = engineCell(i+1, c)
+	}
+	p, err := w.Program(ctx, cells, rec.cell(0)) // what it hints at is shown, and nothing stored
+	if err != nil {
+		p.Alone = err.Error()
+	}
+	return &p
+}
+
 // announce tells a session that cares of the cell that comes next.
 func announce(s Session, n int, c *notebook.Cell) {
 	if a, ok := s.(interface{ Announce(engine.Cell) }); ok {
@@ -213,6 +246,7 @@ func runCell(ctx context.Context, s Session, rec *recorder, n int, c *notebook.C
 	if how, ok := o.How["tier"].(string); ok {
 		step.How = how
 	}
+	step.Alone, _ = o.How["alone"].(string)
 	if o.Value != nil {
 		rec.add(c.N, notebook.Output{Kind: notebook.ExecuteResult, Count: n, Data: o.Value.Data, Metadata: o.Value.Metadata})
 	}

@@ -346,3 +346,52 @@ func TestResults(t *testing.T) {
 		t.Errorf("got %+v", r.Results)
 	}
 }
+
+// A whole is a fake session that compiles cells as one program.
+type whole struct {
+	*fake
+	cells []engine.Cell
+}
+
+func (w *whole) Program(_ context.Context, cells []engine.Cell, out engine.Output) (engine.Program, error) {
+	w.cells = cells
+	out.(engine.Hinter).Hint("compiling")
+	out.Stream("stderr", "not stored")
+	return engine.Program{Cells: len(cells), Linked: true}, nil
+}
+
+// TestRunWhole has the cells compiled before the first runs, with the sources
+// as they are run, and only when it is asked for.
+func TestRunWhole(t *testing.T) {
+	var hints []string
+	var told engine.Program
+	d := doc(t, "# prose", "//levelsum:input\nx := 1", "", "value 7")
+	w := &whole{fake: newFake()}
+	o := Options{
+		Whole: true, Start: func(context.Context) (Session, error) { return w, nil },
+		Set: []Setting{{"x", "2"}}, Hint: func(s string) { hints = append(hints, s) },
+		Compiled: func(p engine.Program) { told = p },
+	}
+	r, _ := run(t, d, o)
+	if !r.OK() || r.Program == nil || r.Program.Cells != 2 || told.Cells != 2 || !reflect.DeepEqual(hints, []string{"compiling"}) {
+		t.Errorf("report %+v, told %+v, hints %q", r, told, hints)
+	}
+	var sources []string
+	for i, c := range w.cells {
+		if sources = append(sources, c.Source); c.N != i+1 {
+			t.Errorf("cell %d has the number %d", i+1, c.N)
+		}
+	}
+	if !reflect.DeepEqual(sources, w.ran) || !strings.Contains(sources[0], "x = 2") {
+		t.Errorf("compiled %q, run %q", sources, w.ran)
+	}
+	for _, c := range d.Cells() {
+		if strings.Contains(outline(c), "not stored") {
+			t.Errorf("cell %d: %s", c.N, outline(c))
+		}
+	}
+	w.cells, o.Whole = nil, false
+	if r, _ := run(t, d, o); r.Program != nil || w.cells != nil {
+		t.Error("a program though none was asked for")
+	}
+}

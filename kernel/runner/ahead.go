@@ -75,13 +75,13 @@ func (r *Runner) buildAhead(plan *cell.Plan) {
 			if err != nil {
 				return // it may be right when its turn comes
 			}
-			if script, _ := p.Interpret(likely{}); script == nil || p.Force || r.compileAll {
+			if !r.interprets(p) {
 				u, err := p.Compile(true)
 				if err != nil {
 					return
 				}
 				if u != nil {
-					<-r.built.start(u).done
+					r.built.ahead(u)
 					scope.Adopt(p, u)
 				}
 			}

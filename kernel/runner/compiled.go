@@ -19,7 +19,9 @@ import (
 // cell without anything to run has no job.
 func (r *Runner) prepare(plan *cell.Plan, facts map[string]any) (job func(), how, why string, err error) {
 	why = "a directive"
-	if !plan.Force && !r.compileAll {
+	if r.compileAll {
+		why = "every cell is"
+	} else if !plan.Force {
 		var script *cell.Script
 		if script, why = plan.Interpret(&r.interp); script != nil {
 			if job, err = r.interp.prepare(plan.Source, script); err == nil {
@@ -39,67 +41,108 @@ func (r *Runner) prepare(plan *cell.Plan, facts map[string]any) (job func(), how
 	if unit == nil {
 		return nil, "declared", why, nil
 	}
-	if _, loaded := r.plugins[unit.Path]; loaded {
-		facts["again"] = true // compiled before, and as it was
-	}
-	offers, err := r.load(unit)
+	l, err := r.load(unit)
 	if err != nil {
 		return nil, "refused", why, err
 	}
-	if err := r.bind(unit, offers); err != nil {
+	if err := r.bind(unit, l.offers); err != nil {
 		return nil, "refused", why, err
 	}
+	switch {
+	case l.used:
+		facts["again"] = true // compiled before, and as it was
+	case l.cells > 1:
+		facts["program"] = l.cells
+	default:
+		if alone := r.alone(plan.Source.N); alone != "" {
+			facts["alone"] = alone
+		}
+	}
+	l.used = true
 	r.scope.Adopt(plan, unit)
-	r.interp.add(unit, offers)
-	run, _ := offers["run"].(func())
+	r.interp.add(unit, l.offers)
+	run, _ := l.offers["run"].(func())
 	return run, "compiled", why, nil
 }
 
-// manyPlugins is after how many compiled cells the reader is told what they
-// take: 300 were measured at 820 MB resident, with 30 ms to open one more.
+// A loaded is a unit whose plugin has been opened.
+type loaded struct {
+	offers map[string]any // what the plugin offers of it, see pluginMain
+	cells  int            // how many units the plugin holds
+	used   bool           // a cell has run it
+}
+
+// manyPlugins is after how many opened plugins the reader is told what they
+// take.
 const manyPlugins = 300
 
 // load builds and opens the plugin of a unit, once in a session.
-func (r *Runner) load(u *cell.Unit) (map[string]any, error) {
-	if o, ok := r.plugins[u.Path]; ok {
-		return o, nil
+func (r *Runner) load(u *cell.Unit) (*loaded, error) {
+	if l, ok := r.plugins[u.Path]; ok {
+		return l, nil
 	}
 	built, err := r.built.get(u)
 	if err != nil {
 		return nil, err
 	}
+	if err := r.open(built, u); err != nil {
+		return nil, err
+	}
+	return r.plugins[u.Path], nil
+}
+
+// open opens a plugin that holds units.
+func (r *Runner) open(built *compile.Plugin, units ...*cell.Unit) error {
 	p, err := plugin.Open(built.File)
 	if err != nil {
-		return nil, compile.Explain(err)
+		return compile.Explain(err)
 	}
 	sym, err := p.Lookup("Offers")
 	if err != nil {
-		return nil, err
+		return err
 	}
-	offers := *sym.(*map[string]any)
-	r.plugins[u.Path] = offers
-	if n := len(r.plugins); n%manyPlugins == 0 {
+	offers := *sym.(*map[string]map[string]any)
+	for _, u := range units {
+		r.plugins[u.Path] = &loaded{offers: offers[u.Path], cells: len(units)}
+		r.built.loaded(u)
+	}
+	r.opened++
+	if n := r.opened; n%manyPlugins == 0 {
 		r.send(engine.Event{Op: "warn", Text: fmt.Sprintf("note: this session has compiled %d cells, which cannot be unloaded and take about %d MB; restart the kernel and run kernel.Replay() to have your values in a fresh one\n", n, n*27/10)})
 	}
-	return offers, nil
+	return nil
 }
 
-// pluginMain is the main package of a unit's plugin: what it offers.
-func pluginMain(u *cell.Unit) compile.Package {
+// unitPackage is the package of a unit.
+func unitPackage(u *cell.Unit) compile.Package {
+	return compile.Package{Path: u.Path, Files: map[string][]byte{"cell.go": []byte(u.Text)}}
+}
+
+// pluginMain is the main package of a plugin: what it offers, by unit.
+func pluginMain(units ...*cell.Unit) compile.Package {
 	var b strings.Builder
-	fmt.Fprintf(&b, "package main\n\nimport Ɒu %q\n\nvar Offers = map[string]any{\n", u.Path)
-	if u.Run {
-		b.WriteString("\t\"run\": Ɒu.Ɒrun,\n")
+	b.WriteString("package main\n\nimport (\n")
+	for i, u := range units {
+		fmt.Fprintf(&b, "\tⱰu%d %q\n", i, u.Path)
 	}
-	for _, l := range u.Slots {
-		fmt.Fprintf(&b, "\t\"slot %s\": &Ɒu.%s,\n", l.ID, l.Var())
-	}
-	for _, s := range u.Symbols() {
-		kind := "func"
-		if s.Type {
-			kind = "type"
+	b.WriteString(")\n\nvar Offers = map[string]map[string]any{\n")
+	for i, u := range units {
+		name := fmt.Sprintf("Ɒu%d.", i)
+		fmt.Fprintf(&b, "%q: {\n", u.Path)
+		if u.Run {
+			fmt.Fprintf(&b, "\t\"run\": %sⱰrun,\n", name)
 		}
-		fmt.Fprintf(&b, "\t\"%s %s\": %s,\n", kind, s.Name, s.Expr)
+		for _, l := range u.Slots {
+			fmt.Fprintf(&b, "\t\"slot %s\": &%s%s,\n", l.ID, name, l.Var())
+		}
+		for _, s := range u.Symbols() {
+			kind, expr := "func", name+s.Emitted
+			if s.Type {
+				kind, expr = "type", "(*"+expr+")(nil)"
+			}
+			fmt.Fprintf(&b, "\t\"%s %s\": %s,\n", kind, s.Name, expr)
+		}
+		b.WriteString("},\n")
 	}
 	b.WriteString("}\n\nfunc main() {}\n")
 	return compile.Package{Files: map[string][]byte{"main.go": []byte(b.String())}}
@@ -107,9 +150,10 @@ func pluginMain(u *cell.Unit) compile.Package {
 
 // builds keeps the builds that were started ahead.
 type builds struct {
-	r  *Runner
-	mu sync.Mutex // guards m
-	m  map[string]*build
+	r    *Runner
+	mu   sync.Mutex // guards what follows
+	m    map[string]*build
+	here map[string]bool // units that have been loaded, by path
 }
 
 type build struct {
@@ -118,13 +162,30 @@ type build struct {
 	err    error
 }
 
-func (b *builds) init(r *Runner) { b.r, b.m = r, map[string]*build{} }
+func (b *builds) init(r *Runner) {
+	b.r, b.m, b.here = r, map[string]*build{}, map[string]bool{}
+}
+
+// ahead builds a unit unless it has been loaded.
+func (b *builds) ahead(u *cell.Unit) {
+	b.mu.Lock()
+	here := b.here[u.Path]
+	b.mu.Unlock()
+	if !here {
+		<-b.start(u).done
+	}
+}
+
+// loaded says that a unit need not be built again.
+func (b *builds) loaded(u *cell.Unit) {
+	b.mu.Lock()
+	defer b.mu.Unlock()
+	b.here[u.Path] = true
+}
 
 // get builds a unit, or waits for the build that is under way.
 func (b *builds) get(u *cell.Unit) (*compile.Plugin, error) {
-	t := time.AfterFunc(2*time.Second, func() {
-		_ = b.r.w.Send(engine.Event{Op: "hint", Name: "build", Text: "the cell is being compiled ...\n"})
-	})
+	t := b.hint("the cell is being compiled ...\n")
 	defer t.Stop()
 	bu := b.start(u)
 	select {
@@ -135,6 +196,14 @@ func (b *builds) get(u *cell.Unit) (*compile.Plugin, error) {
 	}
 }
 
+// hint tells the reader in two seconds that something is being compiled,
+// unless the timer is stopped before.
+func (b *builds) hint(text string) *time.Timer {
+	return time.AfterFunc(2*time.Second, func() {
+		_ = b.r.w.Send(engine.Event{Op: "hint", Name: "build", Text: text})
+	})
+}
+
 func (b *builds) start(u *cell.Unit) *build {
 	b.mu.Lock()
 	defer b.mu.Unlock()
@@ -143,8 +212,7 @@ func (b *builds) start(u *cell.Unit) *build {
 	}
 	bu := &build{done: make(chan struct{})}
 	b.m[u.Path] = bu
-	pkg := compile.Package{Path: u.Path, Files: map[string][]byte{"cell.go": []byte(u.Text)}}
-	main := pluginMain(u)
+	pkg, main := unitPackage(u), pluginMain(u)
 	go func() {
 		defer close(bu.done)
 		bu.plugin, bu.err = b.r.kit.Build(context.Background(), []compile.Package{pkg}, main)

@@ -35,7 +35,10 @@ type Runner struct {
 	built   builds
 	ahead   ahead
 	docs    *assist.Docs
-	plugins map[string]map[string]any // by unit path: what the plugin offers
+	plugins map[string]*loaded // by unit path
+	opened  int                // plugins
+	whole   *engine.Program    // the last one that was asked for, or nil
+	failed  []string           // cells that have failed since, though it was foreseen otherwise
 
 	compileAll bool // no cell is interpreted
 
@@ -78,7 +81,7 @@ func New(w *engine.Writer) (*Runner, error) {
 		w:       w,
 		acks:    make(chan struct{}, 1),
 		answers: make(chan engine.Request, 1),
-		plugins: map[string]map[string]any{},
+		plugins: map[string]*loaded{},
 	}
 	var source export.Source
 	r.kit, r.noKit = compile.Here()
@@ -123,7 +126,7 @@ func (r *Runner) serve(requests io.Reader) int {
 			case "announce":
 				r.ahead.announce(*q.Cell)
 			default:
-				if q.Op == "run" {
+				if q.Op == "run" || q.Op == "program" {
 					r.accept()
 				}
 				queue <- q
@@ -151,9 +154,14 @@ func (r *Runner) answer(q engine.Request) {
 		out := r.run(*q.Cell)
 		if out.Fault != nil {
 			r.ahead.forget() // what was queued behind it may be aborted
+			r.noteFailed(q.Cell.N)
 		}
 		r.over()
 		ev = engine.Event{Op: "done", ID: q.ID, Sync: true, Outcome: &out}
+	case "program":
+		r.whole, r.failed = r.program(q.Cells), nil
+		r.over()
+		ev.Program = r.whole
 	case "complete":
 		ev.Completion = r.complete(q.Source, q.Cursor)
 	case "inspect":
