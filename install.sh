@@ -2,19 +2,25 @@
 # Installs Levelsum for the user who runs it; no root is needed, and running it
 # again changes nothing.
 #
-#   ./install.sh        build, install, register the kernel, run a notebook
-#   ./install.sh --lab  the same, and JupyterLab in an environment of its own
+#   ./install.sh           build, install, register the kernel, run a notebook
+#   ./install.sh --lab     the same, and JupyterLab in an environment of its own
+#   ./install.sh --remove  take away all that the other two have made
 #
-# What it writes: the program in $GOBIN or ~/.local/bin, and what
-# "levelsum install" says. "levelsum remove" takes the latter away again.
+# What it writes: the program in $GOBIN or ~/.local/bin, what "levelsum install"
+# says, and with --lab a folder below ~/.local/share. Go's own caches are Go's.
 set -euo pipefail
 
-lab=no
-case "${1-}" in
-"") ;;
---lab) lab=yes ;;
+lab=no remove=no
+case "$#${1-}" in
+0) ;;
+1--lab) lab=yes ;;
+1--remove) remove=yes ;;
+1-h | 1--help)
+	sed -n '2,/^[^#]/s/^# \{0,1\}//p' "$0"
+	exit 0
+	;;
 *)
-	echo "usage: ./install.sh [--lab]" >&2
+	echo "usage: ./install.sh [--lab | --remove]" >&2
 	exit 2
 	;;
 esac
@@ -33,6 +39,27 @@ stop() {
 	for line in "$@"; do printf '  %s\n' "$line" >&2; done
 	exit 1
 }
+
+lab_env=${XDG_DATA_HOME:-${HOME:?HOME is not set}/.local/share}/levelsum/lab
+
+# Removing works without Go too, unless "go env -w" chose the folder.
+if [ "$remove" = yes ]; then
+	bin=${GOBIN:-$(go env GOBIN 2>/dev/null || true)}
+	program=${bin:-$HOME/.local/bin}/levelsum
+	if [ -x "$program" ]; then
+		"$program" remove
+		rm -f "$program"
+		say "removed $program"
+	else
+		say "there is no $program"
+	fi
+	if [ -e "$lab_env" ]; then
+		rm -rf "$lab_env"
+		rmdir "$(dirname "$lab_env")" 2>/dev/null || true
+		say "removed the environment with JupyterLab: $lab_env"
+	fi
+	exit 0
+fi
 
 # Go. With 1.21 or newer "go" fetches the version that go.mod asks for.
 command -v go >/dev/null || stop "Go 1.26 or newer is needed and not found." \
@@ -58,13 +85,17 @@ if ! command -v "${cc%% *}" >/dev/null; then
 fi
 
 bin=$(go env GOBIN)
-[ -n "$bin" ] || bin=${HOME:?HOME is not set}/.local/bin
-mkdir -p "$bin"
+[ -n "$bin" ] || bin=$HOME/.local/bin
+mkdir -p "$bin" && [ -w "$bin" ] || stop "$bin cannot be written; set GOBIN to a folder that can."
 
 say "building levelsum ($have)"
 work=$(mktemp -d)
 trap 'rm -rf "$work"' EXIT
-CGO_ENABLED=1 go build -trimpath -buildvcs=false -o "$work/levelsum" ./kernel/levelsum
+CGO_ENABLED=1 go build -trimpath -buildvcs=false -o "$work/levelsum" ./kernel/levelsum ||
+	stop "levelsum could not be built; Go has said why above." \
+		"If packages could not be fetched: the first build needs a network (or a proxy, see" \
+		"'go help goproxy'). Later ones take them from $(go env GOMODCACHE)." \
+		"If a folder is read-only: GOCACHE and GOMODCACHE name others."
 if cmp -s "$work/levelsum" "$bin/levelsum"; then
 	say "$bin/levelsum is up to date"
 else
@@ -88,7 +119,7 @@ esac
 [ "$lab" = yes ] || exit 0
 
 command -v python3 >/dev/null || stop "--lab needs Python 3.10 or newer, which is not found."
-env=${XDG_DATA_HOME:-$HOME/.local/share}/levelsum/lab
+env=$lab_env
 if [ "$(cat "$env/levelsum-packages" 2>/dev/null)" != "$lab_packages" ]; then
 	say "making an environment with JupyterLab in $env"
 	python3 -m venv "$env" || stop "python3 cannot make a virtual environment." \
