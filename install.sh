@@ -40,7 +40,8 @@ stop() {
 	exit 1
 }
 
-lab_env=${XDG_DATA_HOME:-${HOME:?HOME is not set}/.local/share}/levelsum/lab
+[ -n "${HOME-}" ] || stop "HOME is not set; it is where the kernel is registered."
+lab_env=${XDG_DATA_HOME:-$HOME/.local/share}/levelsum/lab
 
 # Removing works without Go too, unless "go env -w" chose the folder.
 if [ "$remove" = yes ]; then
@@ -88,14 +89,16 @@ bin=$(go env GOBIN)
 [ -n "$bin" ] || bin=$HOME/.local/bin
 mkdir -p "$bin" && [ -w "$bin" ] || stop "$bin cannot be written; set GOBIN to a folder that can."
 
-say "building levelsum ($have)"
+say "building levelsum ($have); the first time Go fetches the packages that it needs"
 work=$(mktemp -d)
 trap 'rm -rf "$work"' EXIT
-CGO_ENABLED=1 go build -trimpath -buildvcs=false -o "$work/levelsum" ./kernel/levelsum ||
-	stop "levelsum could not be built; Go has said why above." \
+CGO_ENABLED=1 go build -trimpath -buildvcs=false -o "$work/levelsum" ./kernel/levelsum 2>"$work/said" || {
+	grep -v '^go: downloading' "$work/said" | head -n 5 >&2
+	stop "levelsum could not be built; the first lines of what Go said are above." \
 		"If packages could not be fetched: the first build needs a network (or a proxy, see" \
 		"'go help goproxy'). Later ones take them from $(go env GOMODCACHE)." \
-		"If a folder is read-only: GOCACHE and GOMODCACHE name others."
+		"If a folder cannot be written: GOCACHE and GOMODCACHE name others."
+}
 if cmp -s "$work/levelsum" "$bin/levelsum"; then
 	say "$bin/levelsum is up to date"
 else
