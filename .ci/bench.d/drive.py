@@ -19,7 +19,7 @@ here = os.path.dirname(os.path.abspath(__file__))
 
 TITLES = {
     "a": "Debye C_V at 1e6 temperatures", "b": "1e7 levels at 100 temperatures", "c": "fit, 500 points, 5 parameters",
-    "cb": "1000 bootstrap refits", "d": "asymmetric top, J to 120", "e": "internal rotation, 401 plane waves",
+    "cb": "1000 bootstrap refits", "d": "asymmetric top, J to 60", "e": "internal rotation, 401 plane waves",
     "g": "20,000-point density of states at 500 temperatures", "h": "Monte Carlo, 1e6 draws of 11 inputs",
     "i1": "F_1/2, 1e5 values", "i2": "inverse of F_1/2, 1e5 values", "i3": "Li_3/2, 1e5 values",
     "j": "SVG of 2,000 points with bars and a line", "k1": "fib(27)", "k2": "loop over 401 J and 500 T",

@@ -149,7 +149,7 @@ def wang(A, B, C, J):
 def top(eigenvalues):
     def run():
         q = 0.0
-        for J in range(121):
+        for J in range(61):
             for d, o in wang(27.88, 14.52, 9.28, J):
                 q += (2 * J + 1) * np.exp(-1.438776877 * eigenvalues(d, o) / 300).sum()
         return math.log(q)

@@ -229,6 +229,25 @@ func TestTopContinuation(t *testing.T) {
 	}
 }
 
+// Up to the temperature that half the J suffice for, the other half adds
+// nothing; below and above it the functions are those of all levels.
+func TestTopNearLevels(t *testing.T) {
+	for _, c := range [][3]float64{{27.8806, 14.5216, 9.2778}, {8, 0.43, 0.41}, {9.7, 9.7, 6.3}, {5.24, 5.24, 5.24}} {
+		r := top(t)(NewTop(unit.Energy(c[0])*unit.PerCm, unit.Energy(c[1])*unit.PerCm, unit.Energy(c[2])*unit.PerCm, 1, nil))
+		for _, f := range []float64{0.01, 0.1, 0.2499, 0.25, 0.2501, 1} {
+			T := unit.Temperature(r.reach * f)
+			x, y := r.Reduced(T), r.Levels().Reduced(T)
+			worst := math.Max(math.Abs(x.LogQ-y.LogQ), math.Max(math.Abs(x.U-y.U), math.Abs(x.C-y.C)))
+			if worst > 4e-15*math.Max(1, y.LogQ) {
+				t.Errorf("%v cm-1 at %v: %v, all levels give %v", c, T, x, y)
+			}
+			if at := r.ReducedAt([]unit.Temperature{T})[0]; at != x {
+				t.Errorf("%v cm-1 at %v: the slice form gives %v, not %v", c, T, at, x)
+			}
+		}
+	}
+}
+
 // Spin weights at high temperature: CH4 tends to 16/12 of q without spin, NH3
 // type tops to Total/σ, water to 4/2.
 func TestSpinWeightLimits(t *testing.T) {

@@ -3,8 +3,10 @@ package gas
 import (
 	"fmt"
 	"math"
+	"runtime"
 	"slices"
 	"sync"
+	"sync/atomic"
 
 	"gonum.org/v1/gonum/lapack/gonum"
 
@@ -26,8 +28,9 @@ const (
 // eigenvalues of the Wang blocks for an asymmetric one. Make it with
 // [NewSphericalTop], [NewSymmetricTop], [NewAsymmetricTop] or [NewTop].
 //
-// Levels up to J = 120 or more are found once, at the first evaluation. Above
-// the temperature that they suffice for, ln q is continued as
+// Levels up to J = 60 or more are found once, at the first evaluation, twice as
+// many J at the first one above the temperature that these suffice for. Above
+// the temperature that those suffice for, ln q is continued as
 //
 //	ln q = ln[√π (kT)^(3/2)/(σ √(ABC))] + c₁/T + c₂/T² + c₃/T³,
 //	c₁ = [2(A+B+C) - BC/A - CA/B - AB/C]/12k,
@@ -48,10 +51,16 @@ type Top struct {
 	spin      *SpinWeights
 	classical bool
 	jMax      int
-	once      sync.Once
-	levels    *statmech.Levels
-	reach     float64 // highest temperature of the sum, K
-	c2, c3    float64 // K², K³
+	near, all levelsOnce // up to jMax/2, up to jMax
+	reach     float64    // highest temperature of the sum over all, K
+	series    sync.Once  // guards c2, c3
+	c2, c3    float64    // K², K³
+}
+
+// levelsOnce are levels that are found when they are first needed.
+type levelsOnce struct {
+	once   sync.Once
+	levels *statmech.Levels
 }
 
 // NewSphericalTop returns the rotation of a molecule with three equal
@@ -184,7 +193,10 @@ func (t *Top) Reduced(T unit.Temperature) statmech.Reduced {
 	if t.classical {
 		return t.classicalAt(float64(T))
 	}
-	t.once.Do(t.build)
+	return t.quantum(T)
+}
+
+func (t *Top) quantum(T unit.Temperature) statmech.Reduced {
 	if float64(T) <= t.reach {
 		return t.exact(T)
 	}
@@ -205,9 +217,8 @@ func (t *Top) ReducedAt(ts []unit.Temperature) []statmech.Reduced {
 		}
 	}
 	if len(low) > 0 {
-		t.once.Do(t.build)
 		f := math.Log(t.spin.factor(t.sigma))
-		for j, r := range t.levels.ReducedAt(low) {
+		for j, r := range t.levelsFor(slices.Max(low)).ReducedAt(low) {
 			r.LogQ += f
 			rs[at[j]] = r
 		}
@@ -216,7 +227,7 @@ func (t *Top) ReducedAt(ts []unit.Temperature) []statmech.Reduced {
 }
 
 func (t *Top) exact(T unit.Temperature) statmech.Reduced {
-	r := t.levels.Reduced(T)
+	r := t.levelsFor(T).Reduced(T)
 	r.LogQ += math.Log(t.spin.factor(t.sigma))
 	return r
 }
@@ -237,10 +248,11 @@ func (t *Top) c1() float64 {
 }
 
 func (t *Top) continued(T float64) statmech.Reduced {
+	t.series.Do(t.continuation)
 	r := t.classicalAt(T)
 	// Energies are counted from the lowest level with a weight; the series
 	// counts from J = 0.
-	z := float64(t.levels.ZeroPointEnergy()) / (unit.Boltzmann * T)
+	z := float64(t.lowest().ZeroPointEnergy()) / (unit.Boltzmann * T)
 	c1 := t.c1()
 	r.LogQ += c1/T + t.c2/(T*T) + t.c3/(T*T*T) + z
 	r.U += -c1/T - 2*t.c2/(T*T) - 3*t.c3/(T*T*T) - z
@@ -251,12 +263,7 @@ func (t *Top) continued(T float64) statmech.Reduced {
 // ClassicalDifference returns the exact functions minus the classical ones.
 func (t *Top) ClassicalDifference(T unit.Temperature) statmech.Reduced {
 	statmech.CheckTemperature("gas.Top.ClassicalDifference", T)
-	t.once.Do(t.build)
-	exact := t.continued(float64(T))
-	if float64(T) <= t.reach {
-		exact = t.exact(T)
-	}
-	return exact.Add(t.classicalAt(float64(T)).Scale(-1))
+	return t.quantum(T).Add(t.classicalAt(float64(T)).Scale(-1))
 }
 
 // ZeroPointEnergy returns the energy of the lowest level with a weight above J = 0.
@@ -264,8 +271,7 @@ func (t *Top) ZeroPointEnergy() unit.Energy {
 	if t.classical {
 		return 0
 	}
-	t.once.Do(t.build)
-	return t.levels.ZeroPointEnergy()
+	return t.lowest().ZeroPointEnergy()
 }
 
 // HighTemperatureHeatCapacity returns the classical limit of C/k, 3/2.
@@ -274,12 +280,27 @@ func (t *Top) HighTemperatureHeatCapacity() float64 { return 1.5 }
 // Levels returns the levels that are summed, up to J = jMax, with degeneracies
 // that hold the spin weights but not the symmetry number.
 func (t *Top) Levels() *statmech.Levels {
-	t.once.Do(t.build)
-	return t.levels
+	return t.all.to(t, t.jMax)
 }
 
-// build finds the levels and the constants of the continuation.
-func (t *Top) build() {
+// lowest returns levels of which the lowest are needed.
+func (t *Top) lowest() *statmech.Levels { return t.near.to(t, t.jMax/2) }
+
+// levelsFor returns levels that suffice up to T.
+func (t *Top) levelsFor(T unit.Temperature) *statmech.Levels {
+	if near := float64(t.jMax/2) / float64(t.jMax); float64(T) <= t.reach*near*near {
+		return t.lowest()
+	}
+	return t.Levels()
+}
+
+func (l *levelsOnce) to(t *Top, jMax int) *statmech.Levels {
+	l.once.Do(func() { l.levels = t.build(jMax) })
+	return l.levels
+}
+
+// build finds the levels up to J = jMax.
+func (t *Top) build(jMax int) *statmech.Levels {
 	var es []unit.Energy
 	var gs []float64
 	add := func(E, g float64) {
@@ -289,11 +310,11 @@ func (t *Top) build() {
 	}
 	switch t.kind {
 	case spherical:
-		for J := 0; J <= t.jMax; J++ {
+		for J := 0; J <= jMax; J++ {
 			add(t.b*float64(J)*float64(J+1), float64(2*J+1)*t.sphericalWeight(J))
 		}
 	case symmetric:
-		for J := 0; J <= t.jMax; J++ {
+		for J := 0; J <= jMax; J++ {
 			for K := 0; K <= J; K++ {
 				g := float64(2*J + 1)
 				if K > 0 {
@@ -306,8 +327,8 @@ func (t *Top) build() {
 			}
 		}
 	case asymmetric:
-		for J := 0; J <= t.jMax; J++ {
-			for n, E := range asymmetricLevels(t.a, t.b, t.c, J) {
+		for J, energies := range t.asymmetricLevels(jMax) {
+			for n, E := range energies {
 				g := float64(2*J + 1)
 				if t.spin != nil {
 					ka, kc := (n+1)/2, J-n/2
@@ -321,10 +342,14 @@ func (t *Top) build() {
 	if err != nil {
 		panic(fmt.Sprintf("gas: levels of a top: %v", err)) // constants were checked
 	}
-	t.levels = l
-	// δ(T) = ln q - classical - c₁/T at two temperatures gives c₂ and c₃.
+	return l
+}
+
+// continuation finds c₂ and c₃ from δ(T) = ln q - classical - c₁/T at two
+// temperatures.
+func (t *Top) continuation() {
 	delta := func(T float64) float64 {
-		z := float64(l.ZeroPointEnergy()) / (unit.Boltzmann * T)
+		z := float64(t.lowest().ZeroPointEnergy()) / (unit.Boltzmann * T)
 		return (t.exact(unit.Temperature(T)).LogQ - z - t.classicalAt(T).LogQ - t.c1()/T) * T * T
 	}
 	d1, d2 := delta(t.reach), delta(t.reach/2)
@@ -350,9 +375,36 @@ func (t *Top) sphericalWeight(J int) float64 {
 	return float64(nA)*w[0] + float64(nE)*w[1] + float64(nF)*w[2]
 }
 
+// asymmetricLevels returns the energies of every J up to jMax. The J are shared
+// among the processors.
+func (t *Top) asymmetricLevels(jMax int) [][]float64 {
+	out := make([][]float64, jMax+1)
+	var next atomic.Int64
+	var wait sync.WaitGroup
+	for range runtime.GOMAXPROCS(0) {
+		wait.Go(func() {
+			for {
+				J := jMax - int(next.Add(1)) + 1 // the long ones first
+				if J < 0 {
+					return
+				}
+				out[J] = asymmetricLevels(t.a, t.b, t.c, J)
+			}
+		})
+	}
+	wait.Wait()
+	for _, energies := range out {
+		if energies == nil {
+			panic("gas: eigenvalues of a Wang block did not converge")
+		}
+	}
+	return out
+}
+
 // asymmetricLevels returns the 2J+1 eigenvalues of the rigid asymmetric rotor
 // of one J in ascending order, from the four Wang blocks in the basis of a
 // prolate top. The n-th has Ka = (n+1)/2 and Kc = J - n/2 (integer divisions).
+// It returns nil if an iteration did not converge.
 func asymmetricLevels(a, b, c float64, J int) []float64 {
 	j := float64(J) * float64(J+1)
 	mean, quarter := (b+c)/2, (b-c)/4
@@ -362,11 +414,12 @@ func asymmetricLevels(a, b, c float64, J int) []float64 {
 		return quarter * math.Sqrt((j-k*(k+1))*(j-(k+1)*(k+2)))
 	}
 	out := make([]float64, 0, 2*J+1)
+	converged := true
 	block := func(first int, shift, root float64) {
-		n := (J-first)/2 + 1
 		if first > J {
 			return
 		}
+		n := (J-first)/2 + 1
 		d, e := make([]float64, n), make([]float64, max(n-1, 0))
 		for i := range d {
 			d[i] = diagonal(first + 2*i)
@@ -378,21 +431,21 @@ func asymmetricLevels(a, b, c float64, J int) []float64 {
 		if len(e) > 0 {
 			e[0] *= root
 		}
-		if !(gonum.Implementation{}).Dsterf(n, d, e) {
-			panic("gas: eigenvalues of a Wang block did not converge")
-		}
+		converged = (gonum.Implementation{}).Dsterf(n, d, e) && converged
 		out = append(out, d...)
 	}
 	block(0, 0, math.Sqrt2) // E⁺
 	block(2, 0, 1)          // E⁻
 	block(1, quarter*j, 1)  // O⁺
 	block(1, -quarter*j, 1) // O⁻
+	if !converged {
+		return nil
+	}
 	slices.Sort(out)
 	return out
 }
 
 // GroundDegeneracy returns the weight of the lowest level in q.
 func (t *Top) GroundDegeneracy() float64 {
-	t.once.Do(t.build)
-	return t.levels.GroundDegeneracy() * t.spin.factor(t.sigma)
+	return t.lowest().GroundDegeneracy() * t.spin.factor(t.sigma)
 }

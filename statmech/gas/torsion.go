@@ -263,14 +263,8 @@ func (t *Torsion) diagonalise(top int) *statmech.Levels {
 	if t.potential.order() == 0 {
 		n = 1
 	}
-	var es []unit.Energy
-	add := func(list []float64, times int) {
-		for _, e := range list {
-			for range times {
-				es = append(es, unit.Energy(e-t.vMin))
-			}
-		}
-	}
+	var blocks []*band
+	var times []int // every level of a block counts
 	for r := 0; 2*r <= n; r++ {
 		var waves, cosines, sines []wave
 		for m := 0; m <= top; m++ {
@@ -286,12 +280,28 @@ func (t *Torsion) diagonalise(top int) *statmech.Levels {
 		}
 		switch {
 		case !t.potential.even():
-			add(t.block(waves), 1)
+			blocks, times = append(blocks, t.block(waves)), append(times, 1)
 		case r == 0 || 2*r == n:
-			add(t.block(cosines), 1)
-			add(t.block(sines), 1)
-		default:
-			add(t.block(cosines), 2) // cosines and sines have the same levels
+			blocks, times = append(blocks, t.block(cosines), t.block(sines)), append(times, 1, 1)
+		default: // cosines and sines have the same levels
+			blocks, times = append(blocks, t.block(cosines)), append(times, 2)
+		}
+	}
+	levels := make([][]float64, len(blocks))
+	var wait sync.WaitGroup
+	for i, b := range blocks {
+		wait.Go(func() { levels[i] = b.eigenvalues() })
+	}
+	wait.Wait()
+	var es []unit.Energy
+	for i, list := range levels {
+		if list == nil {
+			panic("gas: eigenvalues of a torsion did not converge")
+		}
+		for _, e := range list {
+			for range times[i] {
+				es = append(es, unit.Energy(e-t.vMin))
+			}
 		}
 	}
 	l, err := statmech.NewLevels(es, nil)
@@ -307,7 +317,8 @@ type wave struct {
 	sine bool
 }
 
-func (t *Torsion) block(ws []wave) []float64 {
+// block returns the matrix of H in the basis ws.
+func (t *Torsion) block(ws []wave) *band {
 	order := t.potential.order()
 	width := 1
 	for i := range ws { // waves are sorted by m: a term of order k reaches m+k
@@ -327,7 +338,7 @@ func (t *Torsion) block(ws []wave) []float64 {
 			b.set(j, i, x)
 		}
 	}
-	return b.eigenvalues()
+	return b
 }
 
 // element returns the matrix element of V between two basis functions.

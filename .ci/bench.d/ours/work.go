@@ -151,8 +151,8 @@ func fitted(refits int) func() float64 {
 	}
 }
 
-// top sums the levels of an asymmetric top to J = 120, which is where the
-// library stops for this molecule.
+// top sums the levels of an asymmetric top to J = 60, which is where the library
+// stops for this molecule at this temperature.
 func top() func() float64 {
 	return func() float64 {
 		t, err := gas.NewAsymmetricTop(27.88*unit.PerCm, 14.52*unit.PerCm, 9.28*unit.PerCm, 1, nil)
