@@ -2,6 +2,7 @@ package solid
 
 import (
 	"levelsum/statmech"
+	"levelsum/statmech/internal/heats"
 	"levelsum/statmech/special"
 	"levelsum/statmech/unit"
 )
@@ -77,6 +78,14 @@ func debyeHeat(dim int, theta unit.Temperature, n, T float64) float64 {
 func (d Debye) heats(dst, ts []float64)   { debyeHeats(dst, ts, 3, d.Theta, d.Modes) }
 func (d Debye2D) heats(dst, ts []float64) { debyeHeats(dst, ts, 2, d.Theta, d.Modes) }
 func (d Debye1D) heats(dst, ts []float64) { debyeHeats(dst, ts, 1, d.Theta, d.Modes) }
+
+func (d Debye) heatTable() heatTable   { return debyeTable(3, d.Theta, d.Modes) }
+func (d Debye2D) heatTable() heatTable { return debyeTable(2, d.Theta, d.Modes) }
+func (d Debye1D) heatTable() heatTable { return debyeTable(1, d.Theta, d.Modes) }
+
+func debyeTable(dim int, theta unit.Temperature, n float64) heatTable {
+	return heatTable{&heats.Debye[dim-1], float64(theta), modes(n), func(x float64) float64 { return special.DebyeC(dim, x) }}
+}
 
 func debyeHeats(dst, ts []float64, dim int, theta unit.Temperature, n float64) {
 	for i, t := range ts {

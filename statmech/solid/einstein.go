@@ -2,6 +2,7 @@ package solid
 
 import (
 	"levelsum/statmech"
+	"levelsum/statmech/internal/heats"
 	"levelsum/statmech/special"
 	"levelsum/statmech/unit"
 )
@@ -47,6 +48,10 @@ func (e Einstein) reduced(T float64) statmech.Reduced {
 
 func (e Einstein) heat(T float64) float64 {
 	return modes(e.Modes) * special.EinsteinC(float64(e.Theta)/T)
+}
+
+func (e Einstein) heatTable() heatTable {
+	return heatTable{&heats.Einstein, float64(e.Theta), modes(e.Modes), special.EinsteinC}
 }
 
 func (e Einstein) heats(dst, ts []float64) {

@@ -99,6 +99,10 @@ func heatCapacities(m model, fn string, ts []unit.Temperature) []unit.MolarEntro
 		panic(err)
 	}
 	c := make([]unit.MolarEntropy, len(ts))
+	if t, ok := m.(tabledModel); ok {
+		tabledHeats(c, fn, ts, t.heatTable())
+		return c
+	}
 	size := min(len(ts), chunk)
 	if _, ok := m.(wholeModel); ok {
 		size = len(ts)

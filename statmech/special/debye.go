@@ -1,13 +1,17 @@
 package special
 
-import "math"
+import (
+	"math"
+
+	"levelsum/statmech/internal/heats"
+	"levelsum/statmech/internal/lanes"
+)
 
 // debyeSeries is Dₙ or the heat capacity of a Debye spectrum: polynomials of
 // degree 8 on segments of width 1/4 from x = 0, and tail/xⁿ beyond the last.
 // The part left out of the tail is below 2⁻⁵⁴ of it.
 type debyeSeries struct {
-	rows  [][9]float64
-	end   float64 // len(rows)/4
+	lanes.Table8
 	power int
 	tail  float64
 }
@@ -25,23 +29,28 @@ const (
 
 var (
 	debyeFunctions = [...]debyeSeries{
-		{debyeD1[:], float64(len(debyeD1)) / 4, 1, tailD1},
-		{debyeD2[:], float64(len(debyeD2)) / 4, 2, tailD2},
-		{debyeD3[:], float64(len(debyeD3)) / 4, 3, tailD3},
-		{debyeD4[:], float64(len(debyeD4)) / 4, 4, tailD4},
-		{debyeD5[:], float64(len(debyeD5)) / 4, 5, tailD5},
-		{debyeD6[:], float64(len(debyeD6)) / 4, 6, tailD6},
+		{widthQuarter(debyeD1[:]), 1, tailD1},
+		{widthQuarter(debyeD2[:]), 2, tailD2},
+		{widthQuarter(debyeD3[:]), 3, tailD3},
+		{widthQuarter(debyeD4[:]), 4, tailD4},
+		{widthQuarter(debyeD5[:]), 5, tailD5},
+		{widthQuarter(debyeD6[:]), 6, tailD6},
 	}
 	debyeHeats = [...]debyeSeries{
-		{debyeC1[:], float64(len(debyeC1)) / 4, 1, 2 * tailD1},
-		{debyeC2[:], float64(len(debyeC2)) / 4, 2, 3 * tailD2},
-		{debyeC3[:], float64(len(debyeC3)) / 4, 3, 4 * tailD3},
+		{heats.Debye[0], 1, 2 * tailD1},
+		{heats.Debye[1], 2, 3 * tailD2},
+		{heats.Debye[2], 3, 4 * tailD3},
 	}
 )
 
+// widthQuarter is a table from its rows.
+func widthQuarter(rows [][9]float64) lanes.Table8 {
+	return lanes.Table8{Rows: rows, End: float64(len(rows)) / 4}
+}
+
 // at returns the value for any x; x < 0 and NaN give NaN.
 func (s *debyeSeries) at(x float64) float64 {
-	if x >= 0 && x < s.end {
+	if x >= 0 && x < s.End {
 		return s.inside(x)
 	}
 	return s.outside(x)
@@ -51,7 +60,7 @@ func (s *debyeSeries) at(x float64) float64 {
 func (s *debyeSeries) inside(x float64) float64 {
 	y := 4 * x
 	i := int(y)
-	c := &s.rows[i]
+	c := &s.Rows[i]
 	t := y - (float64(i) + 0.5)
 	return poly8(c, t)
 }
@@ -93,34 +102,17 @@ func (s *debyeSeries) outside(x float64) float64 {
 
 // slope returns the derivative in x.
 func (s *debyeSeries) slope(x float64) float64 {
-	if x >= 0 && x < s.end {
+	if x >= 0 && x < s.End {
 		y := 4 * x
 		i := int(y)
-		return 4 * slope8(&s.rows[i], y-(float64(i)+0.5))
+		return 4 * slope8(&s.Rows[i], y-(float64(i)+0.5))
 	}
 	return -float64(s.power) * s.outside(x) / x
 }
 
 // fill is at for a slice.
 func (s *debyeSeries) fill(dst, x []float64) {
-	rows, end := s.rows, s.end
-	dst = dst[:len(x)]
-	for k, v := range x {
-		if v >= 0 && v < end {
-			y := 4 * v
-			i := int(y)
-			t := y - (float64(i) + 0.5)
-			c := &rows[i]
-			t2 := float64(t * t)
-			t4 := float64(t2 * t2)
-			q := float64(c[3]*t) + c[2]
-			q += float64(t2 * (float64(c[5]*t) + c[4]))
-			q += float64(t4 * (float64(t2*c[8]) + float64(c[7]*t) + c[6]))
-			dst[k] = float64((float64(q*t)+c[1])*t) + c[0]
-			continue
-		}
-		dst[k] = s.outside(v)
-	}
+	s.Fill(dst, x, func(k int) float64 { return s.at(x[k]) })
 }
 
 // Debye returns the Debye function

@@ -149,11 +149,11 @@ func DebyeCSlopes(c, slope []float64, d int, x []float64) (cs, slopes []float64)
 	}
 	s := &debyeHeats[d-1]
 	for k, v := range x {
-		if v >= 0 && v < s.end {
+		if v >= 0 && v < s.End {
 			y := 4 * v
 			i := int(y)
 			t := y - (float64(i) + 0.5)
-			row := &s.rows[i]
+			row := &s.Rows[i]
 			c[k], slope[k] = poly8(row, t), 4*slope8(row, t)
 			continue
 		}

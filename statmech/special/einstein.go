@@ -1,13 +1,17 @@
 package special
 
-import "math"
+import (
+	"math"
+
+	"levelsum/statmech/internal/heats"
+)
 
 // This file holds the thermal functions of one harmonic mode (Einstein's
 // solid), x = hν/kT = θ/T, energies counted from the ground level.
 
-// expm1Above is the end of einsteinTable; beyond, eˣ-1 and eˣ are equal to the
-// last bit.
-const expm1Above = float64(len(einsteinTable)) / 4
+// expm1Above is the end of the table; beyond, eˣ-1 and eˣ are equal to the last
+// bit.
+const expm1Above = heats.EinsteinEnd
 
 // EinsteinC returns the heat capacity C_V/k of one harmonic mode at
 // x = hν/kT = θ/T,
@@ -32,7 +36,7 @@ func EinsteinC(x float64) float64 {
 		}
 		y := 4 * x
 		i := int(y)
-		return poly8(&einsteinTable[i], y-(float64(i)+0.5))
+		return poly8(&heats.Einstein.Rows[i], y-(float64(i)+0.5))
 	}
 	return einsteinTail(x)
 }
@@ -129,7 +133,7 @@ func EinsteinCSlope(x float64) float64 {
 	if x > 0 && x < expm1Above {
 		y := 4 * x
 		i := int(y)
-		return 4 * slope8(&einsteinTable[i], y-(float64(i)+0.5))
+		return 4 * slope8(&heats.Einstein.Rows[i], y-(float64(i)+0.5))
 	}
 	if x == 0 || math.IsInf(x, 1) {
 		return 0
@@ -140,15 +144,7 @@ func EinsteinCSlope(x float64) float64 {
 // EinsteinCs is [EinsteinC] for every element of x.
 func EinsteinCs(dst, x []float64) []float64 {
 	dst = destination("EinsteinCs", dst, x)
-	for k, v := range x {
-		if v > 0 && v < expm1Above {
-			y := 4 * v
-			i := int(y)
-			dst[k] = poly8(&einsteinTable[i], y-(float64(i)+0.5))
-			continue
-		}
-		dst[k] = EinsteinC(v)
-	}
+	heats.Einstein.Fill(dst, x, func(k int) float64 { return EinsteinC(x[k]) })
 	return dst
 }
 
@@ -188,7 +184,7 @@ func EinsteinCSlopes(c, slope, x []float64) (cs, slopes []float64) {
 			y := 4 * v
 			i := int(y)
 			t := y - (float64(i) + 0.5)
-			row := &einsteinTable[i]
+			row := &heats.Einstein.Rows[i]
 			c[k], slope[k] = poly8(row, t), 4*slope8(row, t)
 			continue
 		}

@@ -67,7 +67,7 @@ func einsteinHeatCapacity(x *big.Float) *big.Float {
 }
 
 func einsteinTable() {
-	write("table_einstein.go", table{
+	writeTo("heats", "../internal/heats/table_einstein.go", table{
 		name: "einsteinTable",
 		doc:  "holds x^2 exp(x)/(exp(x)-1)^2 on segments of width 1/4 from 0, in t = 4x-(i+1/2)",
 		rows: segments(einsteinHeatCapacity, 0, 0.25, 180, 8),
@@ -88,7 +88,7 @@ func debyeTables() {
 		})
 	}
 	for d := 1; d <= 3; d++ {
-		write(fmt.Sprintf("table_debyec%d.go", d), table{
+		writeTo("heats", fmt.Sprintf("../internal/heats/table_debyec%d.go", d), table{
 			name: fmt.Sprintf("debyeC%d", d),
 			doc:  fmt.Sprintf("holds C/R per mode in %d dimensions on segments of width 1/4 from 0, in t = 4x-(i+1/2)", d),
 			rows: segments(func(x *big.Float) *big.Float { return debyeHeatCapacity(d, x) }, 0, 0.25, 200, degree),

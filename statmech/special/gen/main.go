@@ -1,4 +1,4 @@
-// Gen writes the coefficient tables of package special. It is run by
+// Gen writes the coefficient tables of package special and of internal/heats. It is run by
 // go generate in that package's folder; its output depends on nothing but this
 // source, so that a second run leaves no difference.
 //

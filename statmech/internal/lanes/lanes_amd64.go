@@ -1,0 +1,22 @@
+package lanes
+
+import "golang.org/x/sys/cpu"
+
+// vector says that the loops in assembly may be used. Tests switch it.
+var vector = hasVector()
+
+func hasVector() bool {
+	return cpu.X86.HasAVX512F && cpu.X86.HasAVX512DQ && cpu.X86.HasAVX512VL
+}
+
+// fill8 is the loop of Table8.run for groups of 8 numbers. It writes the lanes
+// that are inside, says in inside which they are, and returns whether any was
+// not.
+//
+//go:noescape
+func fill8(dst, v *float64, inside *uint8, groups int, num, f1, f2 float64, rows *[9]float64, end float64, divide bool) bool
+
+// products8 is the loop of Table8.AddProducts.
+//
+//go:noescape
+func products8(sum, y *[Width]float64, w, weight *float64, n int, rows *[9]float64, end float64) int

@@ -1,0 +1,3 @@
+package lanes
+
+func useVector(use bool) { vector = use }
