@@ -1,12 +1,3 @@
-// Package statmech is the core of a statistical-thermodynamics library: modes
-// and their reduced functions, discrete levels, distributions and their
-// entropy, composition of independent modes into molar functions.
-//
-// Everything with a canonical partition function q(T) is a [Mode]: a
-// translation, a rotor, an oscillator, a list of levels, a Debye solid, a type
-// of the user's own. A Mode gives three dimensionless numbers at one
-// temperature, [Reduced]; independent modes add; molar functions, tables,
-// audits and fits are written once on top.
 package statmech
 
 import "levelsum/statmech/unit"
