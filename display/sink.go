@@ -1,9 +1,10 @@
 package display
 
 import (
-	"bufio"
 	"fmt"
+	"io"
 	"os"
+	"strings"
 	"sync"
 )
 
@@ -73,12 +74,19 @@ func (terminal) Clear(bool) {}
 
 func (terminal) Ask(prompt string, _ bool) (string, error) {
 	fmt.Print(prompt)
-	s := bufio.NewScanner(os.Stdin)
-	if !s.Scan() {
-		if err := s.Err(); err != nil {
+	// Byte by byte: what stands behind the line is for who reads next.
+	var line []byte
+	for b := make([]byte, 1); ; {
+		n, err := os.Stdin.Read(b)
+		switch {
+		case n == 1 && b[0] != '\n':
+			line = append(line, b[0])
+		case n == 1 || err == io.EOF && len(line) > 0:
+			return strings.TrimSuffix(string(line), "\r"), nil
+		case err == io.EOF:
+			return "", fmt.Errorf("display: Ask: standard input is closed")
+		case err != nil:
 			return "", err
 		}
-		return "", fmt.Errorf("display: Ask: standard input is closed")
 	}
-	return s.Text(), nil
 }

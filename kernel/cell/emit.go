@@ -346,7 +346,8 @@ func (e *emitter) inOrder(out *strings.Builder) {
 			continue
 		}
 		line, col := e.src.place(p.scope.fset, in.Rhs.Pos())
-		fmt.Fprintf(out, "%s = /*line %s:%d:%d*/%s\n", strings.Join(left, ", "), e.src.Tag(), line, col, e.node(in.Rhs))
+		right := e.value(in.Rhs, in.Lhs[0].Type())
+		fmt.Fprintf(out, "%s = /*line %s:%d:%d*/%s\n", strings.Join(left, ", "), e.src.Tag(), line, col, right)
 	}
 }
 

@@ -8,25 +8,35 @@ import (
 )
 
 // selector handles a selected name: of a package, a field or a method.
-func (e *emitter) selector(n *ast.SelectorExpr) bool {
-	if f, ok := e.info.Uses[n.Sel].(*types.Func); ok && f.Pkg() != nil && f.Signature().Recv() == nil {
-		switch f.Pkg().Path() + "." + f.Name() {
-		case "time.Sleep":
-			e.replace(n.Pos(), n.End(), e.guard("Sleep"))
-			return false
-		case "os.Exit":
-			e.replace(n.Pos(), n.End(), e.guard("Exit"))
-			return false
-		case "log.Fatal", "log.Fatalf", "log.Fatalln":
-			e.replace(n.Pos(), n.End(), e.guard(f.Name()))
-			return false
-		}
+func (e *emitter) selector(n *ast.SelectorExpr, stack []ast.Node) bool {
+	if e.isStdin(n) && e.readsStdin(n, stack) {
+		e.replace(n.Pos(), n.End(), e.guard("Stdin"))
+		return false
+	}
+	if with := replaced(e.info.Uses[n.Sel]); with != "" {
+		e.replace(n.Pos(), n.End(), e.guard(with))
+		return false
 	}
 	return true
 }
 
+// replaced is what stands in package guard for a library's function that would
+// wait without end, end the process, or read a standard input that is none; ""
+// for others.
+func replaced(o types.Object) string {
+	f, ok := o.(*types.Func)
+	if !ok || f.Pkg() == nil || f.Signature().Recv() != nil {
+		return ""
+	}
+	switch f.Pkg().Path() + "." + f.Name() {
+	case "time.Sleep", "os.Exit", "log.Fatal", "log.Fatalf", "log.Fatalln", "fmt.Scan", "fmt.Scanf", "fmt.Scanln":
+		return f.Name()
+	}
+	return ""
+}
+
 // ident renames one identifier.
-func (e *emitter) ident(id *ast.Ident) {
+func (e *emitter) ident(id *ast.Ident, stack []ast.Node) {
 	if id.Obj == written {
 		if o := e.info.Uses[id]; o != nil {
 			e.insert(id.Pos(), mark(o.Name())+": ")
@@ -87,6 +97,14 @@ func (e *emitter) ident(id *ast.Ident) {
 	}
 	// A name of another package that a dot import brings in.
 	if !isCell(o.Pkg()) && o.Parent() == o.Pkg().Scope() && e.info.Uses[id] != nil && !e.qualified(id) {
+		if with := replaced(o); with != "" {
+			e.replace(id.Pos(), id.End(), e.guard(with))
+			return
+		}
+		if isStdin(o) && e.readsStdin(id, stack) {
+			e.replace(id.Pos(), id.End(), e.guard("Stdin"))
+			return
+		}
 		e.replace(id.Pos(), id.End(), e.use(o.Pkg().Path())+"."+o.Name())
 	}
 }

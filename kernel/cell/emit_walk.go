@@ -101,9 +101,9 @@ func (e *emitter) visit(n ast.Node, stack []ast.Node) bool {
 		}
 		e.unusedIn(n, parent)
 	case *ast.SelectorExpr:
-		return e.selector(n)
+		return e.selector(n, stack)
 	case *ast.Ident:
-		e.ident(n)
+		e.ident(n, stack)
 	}
 	return true
 }
@@ -191,7 +191,11 @@ func (e *emitter) outerVar(g *ast.GenDecl) {
 		if len(v.Values) > 0 {
 			right = right[:0]
 			for i, x := range v.Values {
-				text := e.node(x)
+				var to types.Type
+				if len(v.Values) == len(v.Names) {
+					to = e.info.TypeOf(v.Names[i])
+				}
+				text := e.value(x, to)
 				if left[i] == "_" && v.Type != nil && len(v.Values) == len(left) {
 					text = "(" + e.node(v.Type) + ")(" + text + ")"
 				}

@@ -113,6 +113,9 @@ func (w *scripter) selector(e *ast.SelectorExpr) string {
 	if o == nil || o.Pkg() == nil || !w.t.Has(o.Pkg().Path(), o.Name()) {
 		return w.refuse("the name " + e.Sel.Name + ", which the interpreter does not have")
 	}
+	if isStdin(o) {
+		return w.refuse("standard input, which is the reader")
+	}
 	if _, ok := o.(*types.Var); !ok {
 		if _, ok := o.(*types.Func); !ok {
 			return w.refuse("the name " + e.Sel.Name)
@@ -120,10 +123,6 @@ func (w *scripter) selector(e *ast.SelectorExpr) string {
 	}
 	return w.pkg(o.Pkg().Path()) + "." + o.Name()
 }
-
-// slow are library calls that compiled cells replace, so that they can be
-// stopped or do not end the session.
-var slow = map[string]bool{"time.Sleep": true, "os.Exit": true, "log.Fatal": true, "log.Fatalf": true, "log.Fatalln": true}
 
 func (w *scripter) call(e *ast.CallExpr) string {
 	tv := w.info.Types[e]
@@ -159,7 +158,7 @@ func (w *scripter) call(e *ast.CallExpr) string {
 		switch {
 		case sel == nil:
 			o, _ := w.info.Uses[x.Sel].(*types.Func)
-			if o == nil || o.Pkg() == nil || o.Signature().TypeParams() != nil || slow[o.Pkg().Path()+"."+o.Name()] || !w.t.Has(o.Pkg().Path(), o.Name()) {
+			if o == nil || o.Pkg() == nil || o.Signature().TypeParams() != nil || replaced(o) != "" || !w.t.Has(o.Pkg().Path(), o.Name()) {
 				return w.refuse("a call of " + x.Sel.Name + ", which the interpreter does not have")
 			}
 			f = w.pkg(o.Pkg().Path()) + "." + o.Name()

@@ -137,7 +137,7 @@ func (e *Engine) handle(c *child, ev *Event, stream, text string) {
 		}
 	case "ask":
 		go func() {
-			r := Request{Op: "answer"}
+			r := Request{Op: "answer", ID: ev.ID}
 			if out == nil {
 				r.Err = "no reader is there to answer"
 			} else if text, err := out.Ask(ev.Text, ev.Secret); err != nil {

@@ -5,7 +5,6 @@ import (
 	"fmt"
 	"go/types"
 	"io"
-	"os"
 	"reflect"
 	"runtime"
 	"strings"
@@ -78,7 +77,7 @@ func (i *interpreter) fresh() error {
 		i.used++
 		return nil
 	}
-	i.in = interp.New(interp.Options{Stdin: strings.NewReader(""), Stdout: os.Stdout, Stderr: io.Discard})
+	i.in = interp.New(interp.Options{Stdin: strings.NewReader(""), Stdout: standardOut{}, Stderr: io.Discard})
 	i.used, i.imports, i.offered = 1, map[string]bool{}, map[string]bool{}
 	if err := i.in.Use(symbols.Table()); err != nil {
 		return err

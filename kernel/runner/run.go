@@ -30,6 +30,8 @@ func (r *Runner) run(c engine.Cell) engine.Outcome {
 	}
 	guard.Reset()
 	guard.SetCell(c.N)
+	r.typed.forget()
+	standardFiles(false)
 	nameTag(src)
 	job, how, why, err := r.prepare(plan, out.How)
 	out.How["tier"] = how

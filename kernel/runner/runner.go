@@ -26,9 +26,9 @@ type Runner struct {
 	kit   *compile.Kit // nil without the compiled tier
 	noKit error        // why
 
-	acks    chan struct{}
-	answers chan engine.Request
-	asking  sync.Mutex // one question at a time
+	acks   chan struct{}
+	asking sync.Mutex // one question at a time
+	typed  typed
 
 	slots   slots
 	interp  interpreter
@@ -45,6 +45,7 @@ type Runner struct {
 	mu       sync.Mutex // guards what follows
 	running  bool
 	stopped  chan struct{} // closed by an interrupt of the request to run; nil if there is none
+	asked    question      // the last one
 	async    []string      // panics in goroutines of the running cell
 	syncDone sync.Mutex
 }
@@ -60,12 +61,7 @@ func Main(compileAll bool) int {
 		fmt.Fprintln(os.Stderr, "levelsum engine: is started by levelsum itself, not by hand")
 		return 2
 	}
-	if f := os.NewFile(engine.FdStdout, "stdout"); f != nil {
-		os.Stdout = f
-	}
-	if f := os.NewFile(engine.FdStderr, "stderr"); f != nil {
-		os.Stderr = f
-	}
+	standardFiles(true)
 	r, err := New(engine.NewWriter(events))
 	if err != nil {
 		fmt.Fprintln(os.NewFile(2, "crash"), "fatal error:", err)
@@ -80,7 +76,6 @@ func New(w *engine.Writer) (*Runner, error) {
 	r := &Runner{
 		w:       w,
 		acks:    make(chan struct{}, 1),
-		answers: make(chan engine.Request, 1),
 		plugins: map[string]*loaded{},
 	}
 	var source export.Source
@@ -99,6 +94,8 @@ func New(w *engine.Writer) (*Runner, error) {
 	r.built.init(r)
 	guard.Hooks.Panic = r.goroutinePanic
 	guard.Hooks.Fatal = logFatal
+	r.typed.r = r
+	guard.Hooks.Read, guard.Hooks.Scan = r.typed.read, r.typed.scan
 	draw.Register()
 	display.SetSink(sink{r})
 	return r, nil
@@ -117,10 +114,7 @@ func (r *Runner) serve(requests io.Reader) int {
 				default:
 				}
 			case "answer":
-				select {
-				case r.answers <- q:
-				default:
-				}
+				r.answered(q)
 			case "stop":
 				r.stop()
 			case "announce":

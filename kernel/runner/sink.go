@@ -28,18 +28,16 @@ func (s sink) Interrupted() bool { return atomic.LoadUint32(&guard.Stop) != 0 }
 func (s sink) Ask(prompt string, secret bool) (string, error) {
 	s.r.asking.Lock()
 	defer s.r.asking.Unlock()
+	stop := guard.Done()
+	q := s.r.question()
+	s.r.send(engine.Event{Op: "ask", ID: q.id, Sync: true, Text: prompt, Secret: secret})
 	select {
-	case <-s.r.answers: // one that nobody waits for any more
-	default:
-	}
-	s.r.send(engine.Event{Op: "ask", Sync: true, Text: prompt, Secret: secret})
-	select {
-	case a := <-s.r.answers:
+	case a := <-q.answer:
 		if a.Err != "" {
 			return "", errors.New(a.Err)
 		}
 		return a.Text, nil
-	case <-guard.Done():
+	case <-stop:
 		panic(guard.Halted)
 	}
 }

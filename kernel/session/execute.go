@@ -23,6 +23,7 @@ func (s *Session) begin() {
 func (s *Session) end() {
 	s.mu.Lock()
 	s.executing = false
+	s.question.answer(reply{err: errNoCell}) // of a goroutine that the cell has left behind
 	s.mu.Unlock()
 }
 

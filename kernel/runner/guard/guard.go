@@ -51,6 +51,11 @@ var Hooks struct {
 	// (with "\n" for a format) was given. It is here because this package is
 	// linked into every plugin and is kept small.
 	Fatal func(format string, v []any)
+	// Read asks the reader for a line where none is left of the one before.
+	Read func(b []byte) (int, error)
+	// Scan is fmt.Scan, fmt.Scanln (with "\n" for a format) or fmt.Scanf on
+	// what Read gives.
+	Scan func(format string, a []any) (int, error)
 }
 
 var done atomic.Pointer[chan struct{}]
