@@ -128,7 +128,7 @@ func (r *Result) redraw(reg *regression, random *rand.Rand) {
 // shallow returns a regression with data of its own on the same model.
 func (r *regression) shallow() *regression {
 	c := *r
-	c.y, c.weight, c.scale = clone(r.y), clone(r.weight), clone(r.scale)
+	c.y, c.weight, c.scale, c.last = clone(r.y), clone(r.weight), clone(r.scale), nil
 	return &c
 }
 

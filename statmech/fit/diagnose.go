@@ -1,11 +1,10 @@
 package fit
 
 import (
+	"cmp"
 	"fmt"
 	"math"
-	"sort"
-
-	"gonum.org/v1/gonum/stat/distuv"
+	"slices"
 )
 
 // Diagnostics say whether the residuals look like independent normal errors.
@@ -27,7 +26,9 @@ func diagnose(r *Result) Diagnostics {
 	for i := range order {
 		order[i] = i
 	}
-	sort.SliceStable(order, func(a, b int) bool { return r.X[order[a]] < r.X[order[b]] })
+	if !slices.IsSorted(r.X) {
+		slices.SortStableFunc(order, func(a, b int) int { return cmp.Compare(r.X[a], r.X[b]) })
+	}
 	z := make([]float64, len(order))
 	d := Diagnostics{RunsP: 1, NormalityP: 1}
 	for k, i := range order {
@@ -112,12 +113,11 @@ func andersonDarling(z []float64) (a2, p float64) {
 		return 0, 1
 	}
 	x := clone(z)
-	sort.Float64s(x)
-	normal := distuv.UnitNormal
-	for i := range x {
-		lo := math.Log(max(normal.CDF((x[i]-mean)/s), 1e-300))
-		hi := math.Log(max(normal.Survival((x[n-1-i]-mean)/s), 1e-300))
-		a2 += float64(2*i+1) * (lo + hi)
+	slices.Sort(x)
+	for i, v := range x {
+		// The i-th smallest counts 2i+1 times below and 2(n-1-i)+1 times above.
+		below, above := logNormal((v - mean) / s)
+		a2 += float64(2*i+1)*below + float64(2*(n-i)-1)*above
 	}
 	a2 = -float64(n) - a2/float64(n)
 	a2 *= 1 + 0.75/float64(n) + 2.25/float64(n*n)
@@ -132,6 +132,17 @@ func andersonDarling(z []float64) (a2, p float64) {
 		p = math.Exp(1.2937 - 5.709*a2 + 0.0186*a2*a2)
 	}
 	return a2, p
+}
+
+// logNormal returns the logarithms of the standard normal distribution function
+// and of its complement.
+func logNormal(z float64) (below, above float64) {
+	tail := max(0.5*math.Erfc(math.Abs(z)/math.Sqrt2), 1e-300)
+	below, above = math.Log1p(-tail), math.Log(tail)
+	if z < 0 {
+		below, above = above, below
+	}
+	return below, above
 }
 
 func (d Diagnostics) warnings(r *Result) []string {

@@ -16,6 +16,45 @@ type problem struct {
 	jacobian func(p, r, jac []float64) bool
 	stop     func() bool // asked at every step; nil means never
 	size     float64     // norm of the weighted data, which rounding is relative to
+	work     *work
+}
+
+// work are the arrays of the steps, kept from one run to the next.
+type work struct {
+	a, qtr, rTrial                []float64 // m×n, m, m
+	small                         []float64 // 2n×n
+	rhs, delta                    []float64 // 2n, n
+	scale, trial, gradient, norms []float64 // n
+	normal                        normal
+}
+
+func (pr *problem) arrays() *work {
+	if w := pr.work; w != nil {
+		return w
+	}
+	n, m := pr.n, pr.m
+	w := &work{a: make([]float64, m*n), qtr: make([]float64, m), rTrial: make([]float64, m),
+		small: make([]float64, 2*n*n), rhs: make([]float64, 2*n), delta: make([]float64, n),
+		scale: make([]float64, n), trial: make([]float64, n), gradient: make([]float64, n), norms: make([]float64, n)}
+	w.normal.reserve(n)
+	pr.work = w
+	return w
+}
+
+// dampedStep puts the smallest |(R; √λ D) δ + (Qᵀr; 0)| into delta.
+func (w *work) dampedStep(m int, lambda float64, free []int) {
+	k := len(free)
+	small, rhs := w.small[:2*k*k], w.rhs[:2*k]
+	clear(small)
+	clear(rhs)
+	root := math.Sqrt(lambda)
+	for i, j := range free {
+		copy(small[i*2*k:i*2*k+i+1], w.a[i*m:i*m+i+1])
+		small[i*2*k+k+i] = root * w.scale[j]
+		rhs[i] = -w.qtr[i]
+	}
+	householder(small, 2*k, k, rhs)
+	backSolve(small, 2*k, k, rhs, w.delta)
 }
 
 // Stop says why a fit ended.
@@ -65,6 +104,8 @@ type minimum struct {
 	evaluations int
 	cosine      float64 // largest |cos| between r and a free column of jac
 	atBound     []bool
+	regular     bool    // jac is known to have full rank
+	qr          *factor // of jac, once it was asked for
 }
 
 const (
@@ -73,9 +114,10 @@ const (
 	stepEnough   = 1e-11
 )
 
-// marquardt minimises by damped Gauss-Newton steps from start. Each step is a
-// QR factorisation of the Jacobian and one of a small matrix for every λ, so
-// nothing is squared. λ follows the gain ratio.
+// marquardt minimises by damped Gauss-Newton steps from start. A step comes from
+// the normal equations where these lose no more than half of the digits; else
+// from a QR factorisation of the Jacobian and one of a small matrix for every λ,
+// so that nothing is squared. λ follows the gain ratio.
 //
 // References: K. Levenberg, Q. Appl. Math. 2, 164 (1944); D. W. Marquardt, J.
 // SIAM 11, 431 (1963); J. J. Moré in Numerical Analysis, ed. G. A. Watson,
@@ -92,18 +134,18 @@ func marquardt(pr *problem, start []float64, d damping, lambda float64) *minimum
 	}
 	out.chi2 = sumOfSquares(out.r)
 	var (
-		scale  = make([]float64, n)
-		a      = make([]float64, m*n)
-		qtr    = make([]float64, m)
-		small  = make([]float64, 2*n*n)
-		rhs    = make([]float64, 2*n)
-		delta  = make([]float64, n)
-		trial  = make([]float64, n)
-		rTrial = make([]float64, m)
-		free   = make([]int, 0, n)
-		nu     = 2.0
-		failed = 0
+		w        = pr.arrays()
+		scale    = w.scale
+		free     = make([]int, 0, n)
+		nu       = 2.0
+		failed   = 0
+		rTrial   = w.rTrial
+		trial    = w.trial
+		delta    = w.delta
+		gradient = w.gradient
+		norms    = w.norms
 	)
+	clear(scale)
 	if d == constant {
 		for j, p := range start {
 			scale[j] = 1 / max(math.Abs(p), 1e-8)
@@ -127,6 +169,7 @@ func marquardt(pr *problem, start []float64, d damping, lambda float64) *minimum
 			g := dot(col, out.r)
 			out.atBound[j] = out.p[j] <= pr.lo[j] && g > 0 || out.p[j] >= pr.hi[j] && g < 0
 			norm := norm2(col)
+			gradient[j], norms[j] = g, norm
 			if d != constant {
 				if d == current {
 					scale[j] = norm
@@ -145,51 +188,53 @@ func marquardt(pr *problem, start []float64, d damping, lambda float64) *minimum
 				out.cosine = max(out.cosine, math.Abs(g)/(norm*rNorm))
 			}
 		}
+		out.regular = w.normal.form(out.jac, m, free, gradient, norms)
 		if len(free) == 0 || out.chi2 == 0 || out.cosine <= cosineEnough {
 			out.stop = Converged
 			return out
 		}
 		k := len(free)
-		for i, j := range free {
-			copy(a[i*m:(i+1)*m], out.jac[j*m:(j+1)*m])
+		if !out.regular {
+			for i, j := range free {
+				copy(w.a[i*m:(i+1)*m], out.jac[j*m:(j+1)*m])
+			}
+			copy(w.qtr, out.r)
+			householder(w.a[:k*m], m, k, w.qtr)
 		}
-		copy(qtr, out.r)
-		householder(a[:k*m], m, k, qtr)
 		accepted := false
 		for !accepted {
-			// Smallest |(R; √λ D) δ + (Qᵀr; 0)|.
-			clear(small[:2*k*k])
-			clear(rhs[:2*k])
-			root := math.Sqrt(lambda)
-			for i, j := range free {
-				copy(small[i*2*k:i*2*k+i+1], a[i*m:i*m+i+1])
-				small[i*2*k+k+i] = root * scale[j]
-				rhs[i] = -qtr[i]
+			if !out.regular || !w.normal.step(lambda, scale, free, w.rhs, delta) {
+				w.dampedStep(m, lambda, free)
 			}
-			householder(small[:2*k*k], 2*k, k, rhs[:2*k])
-			backSolve(small, 2*k, k, rhs, delta)
 			copy(trial, out.p)
 			for i, j := range free {
 				trial[j] += delta[i]
 			}
 			clip(trial, pr)
-			relative, predicted := 0.0, 0.0
-			for _, j := range free {
-				step := trial[j] - out.p[j]
-				if step != 0 {
-					relative = max(relative, math.Abs(step)/max(math.Abs(out.p[j]), math.Abs(trial[j])))
+			relative := 0.0
+			for i, j := range free {
+				delta[i] = trial[j] - out.p[j]
+				if delta[i] != 0 {
+					relative = max(relative, math.Abs(delta[i])/max(math.Abs(out.p[j]), math.Abs(trial[j])))
 				}
 			}
 			// Reduction that the linear model promises for the clipped step.
-			for i := range m {
-				rTrial[i] = out.r[i]
+			var predicted float64
+			if out.regular {
+				predicted = w.normal.reduction(delta)
+			} else {
+				copy(rTrial, out.r)
+				for i, j := range free {
+					axpy(delta[i], out.jac[j*m:(j+1)*m], rTrial)
+				}
+				predicted = out.chi2 - sumOfSquares(rTrial)
 			}
-			for _, j := range free {
-				axpy(trial[j]-out.p[j], out.jac[j*m:(j+1)*m], rTrial)
-			}
-			predicted = out.chi2 - sumOfSquares(rTrial)
-			if relative <= stepEnough*1e-4 || relative <= stepEnough && failed > 3 || predicted <= 1e-16*out.chi2 && lambda < 1e-6 {
+			last := predicted <= 1e-16*out.chi2 && lambda < 1.5e-5
+			if relative <= stepEnough*1e-4 || relative <= stepEnough && failed > 3 || last {
 				out.stop = pr.endReason(out, predicted)
+				if last && out.regular && out.stop == Converged {
+					pr.polish(out, trial, rTrial)
+				}
 				return out
 			}
 			out.evaluations++
@@ -201,7 +246,7 @@ func marquardt(pr *problem, start []float64, d damping, lambda float64) *minimum
 			gain := (out.chi2 - chi2) / max(predicted, 1e-300)
 			if ok && chi2 < out.chi2 && gain > 1e-4 {
 				copy(out.p, trial)
-				out.r, rTrial = rTrial, out.r
+				copy(out.r, rTrial)
 				out.chi2 = chi2
 				g := 2*gain - 1
 				lambda = max(lambda*max(0.1, 1-g*g*g), 1e-18)
@@ -224,6 +269,25 @@ func marquardt(pr *problem, start []float64, d damping, lambda float64) *minimum
 		}
 	}
 	return out
+}
+
+// polish takes a last step, which is too small to be seen in χ² but doubles the
+// digits of the parameters, unless χ² rises with it.
+func (pr *problem) polish(out *minimum, trial, rTrial []float64) {
+	out.evaluations++
+	if !pr.residuals(trial, rTrial) {
+		return
+	}
+	chi2 := sumOfSquares(rTrial)
+	if chi2 > out.chi2+pr.resolution(out.chi2) {
+		return
+	}
+	copy(out.p, trial)
+	copy(out.r, rTrial)
+	out.chi2 = chi2
+	if !pr.derivatives(out) {
+		out.stop = NotFinite
+	}
 }
 
 // resolution is how finely χ² can be told apart: every residual is known to
@@ -332,7 +396,7 @@ func minimise(pr *problem, start []float64) *minimum {
 		if best == nil || run.chi2 < best.chi2*(1-1e-12) || best.stop != Converged && run.stop == Converged && run.chi2 <= best.chi2*(1+1e-12) {
 			best = run
 		}
-		if run.stop == Converged && run.fullRank(pr) || run.stop == NotFinite || run.stop == Interrupted {
+		if run.stop == Converged && run.fullRank() || run.stop == NotFinite || run.stop == Interrupted {
 			break
 		}
 	}
@@ -342,38 +406,7 @@ func minimise(pr *problem, start []float64) *minimum {
 
 // fullRank reports whether the derivatives at the minimum determine every free
 // parameter. A run that ended where they do not has drifted onto a plateau.
-func (out *minimum) fullRank(pr *problem) bool {
-	c := out.condition(pr)
-	return c < 1e14
-}
-
-// condition returns the condition number of the Jacobian with columns of unit
-// length, over the parameters not at a bound.
-func (out *minimum) condition(pr *problem) float64 {
-	m := pr.m
-	var a []float64
-	k := 0
-	for j := range pr.n {
-		if out.atBound[j] {
-			continue
-		}
-		col := clone(out.jac[j*m : (j+1)*m])
-		norm := norm2(col)
-		if norm == 0 {
-			return math.Inf(1)
-		}
-		for i := range col {
-			col[i] /= norm
-		}
-		a = append(a, col...)
-		k++
-	}
-	if k == 0 {
-		return 1
-	}
-	householder(a, m, k, nil)
-	return conditionNumber(a, m, k)
-}
+func (out *minimum) fullRank() bool { return out.regular || out.factorised().condition < 1e14 }
 
 func clip(p []float64, pr *problem) {
 	for j := range p {
@@ -383,12 +416,21 @@ func clip(p []float64, pr *problem) {
 
 func clone(x []float64) []float64 { return append([]float64(nil), x...) }
 
+// dot returns Σ xᵢyᵢ in four sums.
 func dot(x, y []float64) float64 {
-	var s float64
-	for i, v := range x {
-		s += float64(v * y[i])
+	var a, b, c, d float64
+	y = y[:len(x)]
+	for len(x) >= 4 && len(y) >= 4 {
+		a += float64(x[0] * y[0])
+		b += float64(x[1] * y[1])
+		c += float64(x[2] * y[2])
+		d += float64(x[3] * y[3])
+		x, y = x[4:], y[4:]
 	}
-	return s
+	for i, v := range x {
+		a += float64(v * y[i])
+	}
+	return (a + b) + (c + d)
 }
 
 func sumOfSquares(x []float64) float64 { return dot(x, x) }

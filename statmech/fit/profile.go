@@ -74,7 +74,7 @@ func (r *Result) Profile(ptr any, rise float64) (*Profile, error) {
 			}
 			return s, nil
 		}
-		m := minimise(reg.problem(reg.y), start)
+		m := minimise(reg.problem(), start)
 		return m.chi2, m.p
 	}
 	end := func(sign float64) float64 {

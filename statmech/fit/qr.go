@@ -47,10 +47,7 @@ func mirror(v []float64, v0, beta float64, x []float64) {
 
 // norm2 is the Euclidean norm without overflow.
 func norm2(x []float64) float64 {
-	var s float64
-	for _, v := range x {
-		s += float64(v * v)
-	}
+	s := dot(x, x)
 	if s > 1e-280 && s < 1e280 {
 		return math.Sqrt(s)
 	}
@@ -149,4 +146,50 @@ func conditionNumber(r []float64, m, n int) float64 {
 		return math.Inf(1)
 	}
 	return hi / lo
+}
+
+// factor is the QR factorisation of the Jacobian of a minimum over the
+// parameters not at a bound, with columns of unit length.
+type factor struct {
+	m, k      int
+	free      []int
+	norms     []float64
+	unit      []float64 // columns of unit length
+	r         []float64 // R in the upper triangle of m rows
+	condition float64
+}
+
+func (out *minimum) factorised() *factor {
+	if out.qr != nil {
+		return out.qr
+	}
+	m := len(out.r)
+	f := &factor{m: m, condition: 1, unit: make([]float64, 0, len(out.jac))}
+	vanishes := false
+	for j, bound := range out.atBound {
+		if bound {
+			continue
+		}
+		col := out.jac[j*m : (j+1)*m]
+		norm := norm2(col)
+		if norm == 0 {
+			vanishes = true
+			continue
+		}
+		for _, v := range col {
+			f.unit = append(f.unit, v/norm)
+		}
+		f.free, f.norms = append(f.free, j), append(f.norms, norm)
+	}
+	f.k = len(f.free)
+	f.r = clone(f.unit)
+	householder(f.r, m, f.k, nil)
+	if f.k > 0 {
+		f.condition = conditionNumber(f.r, m, f.k)
+	}
+	if vanishes {
+		f.condition = math.Inf(1)
+	}
+	out.qr = f
+	return f
 }

@@ -20,6 +20,7 @@ type regression struct {
 	weight  []float64 // robust weights, all 1 without a loss
 	scale   []float64 // 1/u of each point in force, robust weight included
 	data    uint64    // fingerprint of x, y, u
+	last    *problem  // the one for y, with its arrays
 }
 
 // model evaluates what is fitted at the present values of the parameters.
@@ -147,18 +148,23 @@ func allFinite(x []float64) bool {
 	return true
 }
 
-// problem returns the least squares problem for the data y with the weights in
+// problem returns the least squares problem for the data and the weights in
 // force.
-func (r *regression) problem(y []float64) *problem {
-	pr := &problem{n: len(r.free), m: len(r.x), stop: r.stop}
-	for _, f := range r.free {
-		pr.lo, pr.hi = append(pr.lo, f.lo), append(pr.hi, f.hi)
-	}
+func (r *regression) problem() *problem {
+	y := r.y
 	var size float64
 	for i, v := range y {
 		size += (v * r.scale[i]) * (v * r.scale[i])
 	}
-	pr.size = math.Sqrt(size)
+	if r.last != nil {
+		r.last.size = math.Sqrt(size)
+		return r.last
+	}
+	pr := &problem{n: len(r.free), m: len(r.x), stop: r.stop, size: math.Sqrt(size)}
+	r.last = pr
+	for _, f := range r.free {
+		pr.lo, pr.hi = append(pr.lo, f.lo), append(pr.hi, f.hi)
+	}
 	pr.residuals = func(p, out []float64) bool {
 		if !r.values(p, out) {
 			return false
@@ -213,7 +219,7 @@ func (r *regression) solve(start []float64) *minimum {
 		return &minimum{p: clone(start), stop: NotFinite, chi2: math.Inf(1), cosine: math.Inf(1),
 			r: make([]float64, len(r.x)), jac: make([]float64, len(r.x)*len(r.free)), atBound: make([]bool, len(r.free))}
 	}
-	pr := r.problem(r.y)
+	pr := r.problem()
 	best := minimise(pr, start)
 	if r.ux == nil && r.loss.weight == nil || best.stop == NotFinite {
 		return best
@@ -323,17 +329,21 @@ func medianAbsolute(z []float64) float64 {
 	return (a[n/2-1] + a[n/2]) / 2
 }
 
-// fingerprint tells data sets apart (FNV-1a over the bits).
+// fingerprint tells data sets apart.
 func fingerprint(columns ...[]float64) uint64 {
 	h := uint64(14695981039346656037)
 	for _, c := range columns {
-		for _, v := range append([]float64{float64(len(c))}, c...) {
-			b := math.Float64bits(v)
-			for range 8 {
-				h = (h ^ b&0xff) * 1099511628211
-				b >>= 8
-			}
+		h = mix(h, uint64(len(c)))
+		for _, v := range c {
+			h = mix(h, math.Float64bits(v))
 		}
 	}
 	return h
+}
+
+// mix is a step of FNV-1a over a word, with the high bits brought down, which a
+// product never does.
+func mix(h, word uint64) uint64 {
+	h = (h ^ word) * 1099511628211
+	return h ^ h>>32
 }

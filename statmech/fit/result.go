@@ -58,7 +58,7 @@ type Result struct {
 
 func newResult(reg *regression, best *minimum, tried []float64) *Result {
 	n, m := len(reg.free), len(reg.x)
-	res := &Result{Sigma: reg.sigma, Freedom: m - n, Stop: best.stop, Evaluations: best.evaluations, Condition: best.condition(&problem{n: n, m: m}),
+	res := &Result{Sigma: reg.sigma, Freedom: m - n, Stop: best.stop, Evaluations: best.evaluations, Condition: best.factorised().condition,
 		X: reg.x, Y: reg.y, Minima: tried, reg: reg, p: best.p, atBound: best.atBound, P: 1}
 	res.Fitted, res.U, res.Residual = make([]float64, m), make([]float64, m), make([]float64, m)
 	reg.values(best.p, res.Fitted)
@@ -77,6 +77,7 @@ func newResult(reg *regression, best *minimum, tried []float64) *Result {
 	res.Diagnostics = diagnose(res)
 	res.judge()
 	res.makeQuantities()
+	reg.last = nil
 	return res
 }
 
@@ -99,25 +100,10 @@ func (r *Result) covariances(best *minimum) {
 	for k := range r.common {
 		r.common[k] = make([]float64, n)
 	}
-	var free []int
-	var a, norms []float64
-	for j := range n {
-		col := clone(best.jac[j*m : (j+1)*m])
-		norm := norm2(col)
-		if best.atBound[j] || norm == 0 {
-			continue
-		}
-		for i := range col {
-			col[i] /= norm
-		}
-		free, norms, a = append(free, j), append(norms, norm), append(a, col...)
-	}
-	k := len(free)
-	unit := clone(a)
+	f := best.factorised()
+	free, norms, unit, k := f.free, f.norms, f.unit, f.k
 	rhs := make([][]float64, len(r.common))
-	qr := clone(a)
-	householder(qr, m, k, nil)
-	inv, ok := invertUpper(qr, m, k)
+	inv, ok := invertUpper(f.r, m, k)
 	if !ok || r.Condition > 1e15 {
 		r.Condition = max(r.Condition, 1e15)
 		return
@@ -149,7 +135,7 @@ func (r *Result) covariances(best *minimum) {
 		for i, u := range shift.u {
 			rhs[c][i] = u * r.reg.scale[i]
 		}
-		ab := clone(a)
+		ab := clone(unit)
 		householder(ab, m, k, rhs[c])
 		delta := make([]float64, k)
 		backSolve(ab, m, k, rhs[c], delta)

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"strings"
+	"sync"
 
 	"levelsum/statmech"
 	"levelsum/statmech/unit"
@@ -249,6 +250,9 @@ func owns(fields []parameter, p *float64) (string, bool) {
 // scratch space is on the stack.
 const chunk = 128
 
+// blocks keeps the arrays of accumulate: a fit calls it for every step.
+var blocks sync.Pool
+
 // accumulate is Accumulate for a model whose values and derivatives block
 // writes for at most chunk good temperatures: C/k into c and ∂(C/k)/∂fieldⱼ
 // into slopes[j] for each field j.
@@ -271,7 +275,14 @@ func accumulate(m model, name string, fields []parameter, ts []unit.Temperature,
 			wanted = append(wanted, [2]int{j, row})
 		}
 	}
-	scratch := make([]float64, (2+len(fields))*chunk)
+	need := (2 + len(fields)) * chunk
+	kept, _ := blocks.Get().(*[]float64)
+	if kept == nil || len(*kept) < need {
+		fresh := make([]float64, need)
+		kept = &fresh
+	}
+	defer blocks.Put(kept)
+	scratch := *kept
 	t, values := scratch[:chunk], scratch[chunk:2*chunk]
 	slopes := make([][]float64, len(fields))
 	for from := 0; from < len(ts); from += chunk {
