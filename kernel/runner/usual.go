@@ -18,6 +18,7 @@ var usual = map[string]string{
 	"gas":         "levelsum/statmech/gas",
 	"io":          "io",
 	"json":        "encoding/json",
+	"lattice":     "levelsum/statmech/lattice",
 	"maps":        "maps",
 	"mat":         "gonum.org/v1/gonum/mat",
 	"math":        "math",

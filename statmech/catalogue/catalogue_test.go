@@ -82,7 +82,7 @@ func TestEntriesExist(t *testing.T) {
 		}
 	}
 	for _, want := range []string{"solid.Debye", "solid.Einstein", "statmech.Levels", "gas.Molecule", "gas.Torsion", "gas.Anharmonic", "gas.Diatomic", "fit.HeatCapacity",
-		"calorimetry.ThirdLaw", "reaction.New", "unit.Temperature", "unit.Energy", "data.Read"} {
+		"calorimetry.ThirdLaw", "reaction.New", "lattice.Onsager", "lattice.Torus", "lattice.NewSimulation", "unit.Temperature", "unit.Energy", "data.Read"} {
 		if !seen[want] {
 			t.Errorf("%s is not listed", want)
 		}

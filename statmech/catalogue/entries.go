@@ -37,6 +37,8 @@ var models = []Entry{
 	{"gas.Top", "the rotation of a non-linear rigid molecule by exact summation over its levels: J(J+1) for a spherical top"},
 	{"gas.Torsion", "a one-dimensional internal rotation"},
 	{"gas.Translation", "the motion of the molecules of an ideal gas as a whole, with the 1/N! of identical particles shared out"},
+	{"lattice.Onsager", "the Ising model on the infinite square lattice, without a field"},
+	{"lattice.Torus", "the Ising model on a square lattice of Rows × Columns spins with periodic boundaries, without a field"},
 }
 
 var calculations = []Entry{
@@ -119,6 +121,9 @@ var calculations = []Entry{
 	{"reaction.CovarianceOfLogK", "the covariance of ln K of two reactions at T: inputs that both use (the same *gas.Molecule) are correlated"},
 	{"reaction.New", "reads an equation, \"I2 = 2 I\" or \"CO + 1/2 O2 = CO2\", and takes each species from the molecules given, by name"},
 	{"reaction.Of", "makes a reaction of terms"},
+	{"lattice.Blocks", "the standard uncertainty of the mean of a series from blocks of 1, 2, 4, … values"},
+	{"lattice.MeanOf", "the mean of a series of values in the order in which they came, as one from a simulation or an instrument"},
+	{"lattice.NewSimulation", "a simulation of a lattice at temperature T with a seed"},
 	{"derive.Debye", "derives the heat capacity of a Debye lattice at T"},
 	{"derive.EqualStates", "derives the entropy of W states of equal probability, S = k ln W, as the case pᵢ = 1/W of the Gibbs entropy"},
 	{"derive.EquilibriumConstant", "derives K of a gas reaction at T from its enthalpy and entropy, ln K = -ΔrG°/RT"},

@@ -24,10 +24,10 @@ func main() {
 	log.SetFlags(0)
 	log.SetPrefix("generate: ")
 	var models, calculations, units []entry
-	for _, name := range []string{"statmech", "solid", "gas", "calorimetry", "fit", "reaction", "derive", "data", "uncertain"} {
+	for _, name := range []string{"statmech", "solid", "gas", "calorimetry", "fit", "reaction", "lattice", "derive", "data", "uncertain"} {
 		p := read(name)
 		for _, t := range p.Types {
-			if slices.Contains([]string{"statmech", "solid", "gas"}, name) && isModel(t) {
+			if slices.Contains([]string{"statmech", "solid", "gas", "lattice"}, name) && isModel(t) {
 				models = append(models, entry{name + "." + t.Name, p.Synopsis(t.Doc)})
 			}
 			for _, f := range t.Funcs {
