@@ -3,6 +3,7 @@ package cell
 import (
 	"fmt"
 	"go/ast"
+	"go/token"
 	"go/types"
 	"maps"
 	"slices"
@@ -192,4 +193,71 @@ func (s *Scope) Stale() []Stale {
 		}
 	}
 	return out
+}
+
+// StaleIn lists the stale variables that a checked cell reads before it gives
+// them a new value itself, directly or in functions that it calls.
+func (s *Scope) StaleIn(p *Plan) []Stale {
+	all := s.Stale()
+	if len(all) == 0 {
+		return nil
+	}
+	read, written, seen := map[string]bool{}, map[string]bool{}, map[string]bool{}
+	var use func(name string)
+	use = func(name string) {
+		if seen[name] || written[name] {
+			return
+		}
+		seen[name], read[name] = true, true
+		if d := s.decls[name]; d != nil {
+			for n := range d.uses {
+				use(n)
+			}
+		}
+	}
+	for _, d := range p.decls {
+		for n := range d.uses {
+			use(n)
+		}
+	}
+	for _, d := range p.lead {
+		uses, _ := dependencies(d, p.info)
+		for n := range uses {
+			use(n)
+		}
+	}
+	for _, st := range p.stmts {
+		uses, _ := dependencies(st, p.sinfo)
+		writes := p.assigned(st)
+		for n := range uses {
+			if _, plain := st.(*ast.AssignStmt); !plain || !writes[n] || p.readsItself(st, n) {
+				use(n)
+			}
+		}
+		if _, ok := st.(*ast.AssignStmt); ok { // others may not come to the assignment
+			for n := range writes {
+				written[n] = true
+			}
+		}
+	}
+	return slices.DeleteFunc(all, func(v Stale) bool { return !read[v.Name] })
+}
+
+// readsItself tells whether an assignment uses the old value of a name: on its
+// right side, with an operator, or for a part of it.
+func (p *Plan) readsItself(st ast.Stmt, name string) bool {
+	a := st.(*ast.AssignStmt)
+	if a.Tok != token.ASSIGN && a.Tok != token.DEFINE {
+		return true
+	}
+	mentions := func(e ast.Expr) bool {
+		uses, _ := dependencies(e, p.sinfo)
+		return uses[name]
+	}
+	for _, e := range a.Lhs {
+		if _, whole := ast.Unparen(e).(*ast.Ident); !whole && mentions(e) {
+			return true
+		}
+	}
+	return slices.ContainsFunc(a.Rhs, mentions)
 }

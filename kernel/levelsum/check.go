@@ -21,8 +21,10 @@ const checkUsage = `usage: levelsum check [flags] NOTEBOOK...
 
 Runs each notebook in a fresh engine and compares what it gives with what is
 stored in it: named results by value and uncertainty, tables cell by cell,
-figures and texts by their numbers, data files by their content. Nothing is
-written to the notebook.
+figures and texts by their numbers, data files by their content, seeds. It is
+noted, and no difference by itself, when versions, platform, constants or
+conventions are others than those stored, and when the stored notebook was not
+run from top to bottom. Nothing is written to the notebook.
 
   -json
         Print the comparison as JSON.
@@ -35,10 +37,11 @@ written to the notebook.
   identical       the same
   rounding-level  relative 1e-9, or absolute below 1e-12 of the scale
   inside u        within one standard uncertainty of the stored result
+  noted           see above
   moved, new, missing
 
-The exit status is 0 if everything is identical, rounding-level or inside u,
-1 if not or if a cell failed, 2 on misuse.
+The exit status is 0 if everything is identical, rounding-level, inside u or
+noted, 1 if not or if a cell failed, 2 on misuse.
 `
 
 // A checked notebook.
@@ -179,6 +182,14 @@ func where(f rerun.Finding) string {
 		return f.Name
 	case f.Kind == "data":
 		return "data " + f.Name
+	case f.Kind == "seed":
+		return "seed of " + f.Name
+	case f.Kind == "provenance" && f.Name == "state" && f.Cell > 0:
+		return fmt.Sprintf("cell %d", f.Cell)
+	case f.Kind == "provenance" && f.Name == "state":
+		return "stored state"
+	case f.Kind == "provenance" && f.Cell == 0:
+		return f.Name
 	}
 	return fmt.Sprintf("%s, cell %d, %s", f.Kind, f.Cell, f.Name)
 }

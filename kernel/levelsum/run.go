@@ -2,6 +2,7 @@ package main
 
 import (
 	"context"
+	"encoding/json"
 	"errors"
 	"flag"
 	"fmt"
@@ -18,6 +19,7 @@ import (
 	"levelsum/kernel/engine"
 	"levelsum/kernel/notebook"
 	"levelsum/kernel/rerun"
+	child "levelsum/kernel/runner"
 )
 
 const runUsage = `usage: levelsum run [flags] NOTEBOOK...
@@ -67,6 +69,27 @@ func (f *runFlags) define(fs *flag.FlagSet) {
 	fs.BoolVar(&f.native, "native", false, "")
 	fs.DurationVar(&f.limit, "limit", 0, "")
 	fs.Func("memory", "", func(s string) (err error) { f.memory, err = parseSize(s); return err })
+}
+
+// words are the options that were given, as the command line spells them.
+func (f *runFlags) words() []string {
+	var out []string
+	if f.native {
+		out = append(out, "-native")
+	}
+	if f.keepGoing {
+		out = append(out, "-keep-going")
+	}
+	if f.limit > 0 {
+		out = append(out, "-limit "+f.limit.String())
+	}
+	if f.memory > 0 {
+		out = append(out, fmt.Sprintf("-memory %gMB", float64(f.memory)/1e6))
+	}
+	for _, s := range f.set {
+		out = append(out, "-set "+s.Name+"="+s.Value)
+	}
+	return out
 }
 
 // parseSize reads a number of bytes with a unit: 512MB, 4GB, 1.5GiB.
@@ -175,14 +198,23 @@ func execute(ctx context.Context, file string, f runFlags, start runner, stderr 
 		return nil, nil, err
 	}
 	dir := filepath.Dir(file)
+	var env []string
+	if words := f.words(); len(words) > 0 {
+		b, err := json.Marshal(words)
+		if err != nil {
+			return nil, nil, err
+		}
+		env = []string{child.OptionsEnv + "=" + string(b)}
+	}
 	fmt.Fprintln(stderr, file)
 	for _, m := range d.Mended {
 		fmt.Fprintf(stderr, "  %s\n", m)
 	}
 	r, err := rerun.Run(ctx, d, rerun.Options{
 		Start: func(ctx context.Context) (rerun.Session, error) {
-			return start(ctx, engine.Options{Dir: dir, MemoryLimit: f.memory, Compiled: f.native})
+			return start(ctx, engine.Options{Dir: dir, MemoryLimit: f.memory, Compiled: f.native, Env: env})
 		},
+		Words:     f.words(),
 		Dir:       dir,
 		KeepGoing: f.keepGoing,
 		Limit:     f.limit,

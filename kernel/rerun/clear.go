@@ -3,7 +3,7 @@ package rerun
 import "levelsum/kernel/notebook"
 
 // Clear takes out of a document what running it has put there: outputs,
-// numbers of runs and the list of data files.
+// numbers of runs and the provenance.
 func Clear(d *notebook.Document) error {
 	for _, c := range d.Cells() {
 		if c.Kind() != notebook.Code {
@@ -14,6 +14,6 @@ func Clear(d *notebook.Document) error {
 			return err
 		}
 	}
-	d.RemoveMetadata(dataKey...)
+	removeProvenance(d)
 	return nil
 }

@@ -11,7 +11,8 @@ import (
 
 // A Finding is one thing compared.
 type Finding struct {
-	// Kind is "result", "table", "figure", "value", "text", "fault", "data".
+	// Kind is "result", "table", "figure", "value", "text", "fault", "data",
+	// "seed", "provenance".
 	Kind string `json:"kind"`
 	Cell int    `json:"cell,omitempty"`
 	// Name is the name of a result or a data file; of an output its place in
@@ -42,7 +43,7 @@ func Compare(stored, now *notebook.Document) ([]Finding, error) {
 	if err != nil {
 		return nil, err
 	}
-	data, err := compareData(stored, now)
+	origins, err := compareProvenance(stored, now)
 	if err != nil {
 		return nil, err
 	}
@@ -51,7 +52,7 @@ func Compare(stored, now *notebook.Document) ([]Finding, error) {
 			all = append(all, compareCell(a[i], b[i])...)
 		}
 	}
-	return append(all, data...), nil
+	return append(all, origins...), nil
 }
 
 // reached says whether a cell was run, if it is one to be run.
@@ -168,6 +169,9 @@ func kindOf(o notebook.Output) string {
 	case notebook.ErrorOutput:
 		return "fault"
 	}
+	if _, ok := o.Data[provenanceType]; ok {
+		return "provenance"
+	}
 	if _, ok := o.Data["image/svg+xml"]; ok {
 		return "figure"
 	}
@@ -215,6 +219,7 @@ func compareOutput(f *Finding, old, cur notebook.Output) {
 	}
 	text := func(o notebook.Output, media string) string { s, _ := o.Data[media].(string); return s }
 	switch f.Kind {
+	case "provenance": // what it tells is compared with the document's own
 	case "figure":
 		if m := ownJSON(cur); m != "" && old.Data[m] != nil {
 			f.take(compareJSON(old.Data[m], cur.Data[m]))

@@ -203,10 +203,10 @@ func TestDataFiles(t *testing.T) {
 	a := doc(t, source...)
 	run(t, a, Options{Dir: dir})
 	// sha256sum of the file.
-	want := []DataFile{{File: "run.csv", Rows: 2, SHA256: "72ae35ffe63aee5b116646419be0bba6a137717e2d7d39c213aaec6c2b1d760c"}}
-	got, err := storedData(a)
-	if err != nil || len(got) != 1 || got[0] != want[0] {
-		t.Errorf("stored %+v, %v", got, err)
+	want := []DataFile{{File: "run.csv", Rows: 2, Named: true, SHA256: "72ae35ffe63aee5b116646419be0bba6a137717e2d7d39c213aaec6c2b1d760c"}}
+	p, err := ReadProvenance(a)
+	if err != nil || len(p.Data) != 1 || p.Data[0] != want[0] {
+		t.Errorf("stored %+v, %v", p, err)
 	}
 	write("# source: invented\nT / K, Cp / (J/(mol K))\n1, 2.02\n\n3, 4")
 	b := doc(t, source...)

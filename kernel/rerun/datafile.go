@@ -4,7 +4,6 @@ import (
 	"bufio"
 	"crypto/sha256"
 	"encoding/hex"
-	"encoding/json"
 	"fmt"
 	"go/scanner"
 	"go/token"
@@ -18,13 +17,19 @@ import (
 	"levelsum/kernel/notebook"
 )
 
-// A DataFile is a file that a notebook names: the name as the cell spells it,
-// what it holds and how much of it. Rows counts the lines that are neither
-// empty nor comments, in a .csv or .tsv file without the header.
+// A DataFile is a file that the numbers of a notebook come from: its name
+// relative to the notebook's folder, what it holds and how much of it.
+//
+// Files that statmech/data has read are known for certain, by whatever name the
+// cell opened them, and Rows is the number of rows of their tables. Others are
+// known only by a string literal that names a file (Named); Rows then counts
+// the lines that are neither empty nor comments, in a .csv or .tsv file without
+// the header.
 type DataFile struct {
 	File   string `json:"file"`
 	SHA256 string `json:"sha256"`
 	Rows   int    `json:"rows"`
+	Named  bool   `json:"named,omitempty"`
 }
 
 // findData returns the files that string literals of the code cells name,
@@ -74,6 +79,7 @@ func literals(src string) []string {
 
 func describe(dir, name string) (f DataFile, ok bool, err error) {
 	path := filepath.FromSlash(name)
+	spelled := path
 	if filepath.IsAbs(path) {
 		return f, false, nil // would put this machine's folders into the document
 	}
@@ -88,7 +94,7 @@ func describe(dir, name string) (f DataFile, ok bool, err error) {
 	defer r.Close()
 	h := sha256.New()
 	lines := bufio.NewReader(io.TeeReader(r, h))
-	f.File = name
+	f.File, f.Named = filepath.ToSlash(filepath.Clean(spelled)), true
 	for start, blank, comment := true, true, false; ; {
 		part, more, err := lines.ReadLine()
 		if err == io.EOF {
@@ -113,48 +119,16 @@ func describe(dir, name string) (f DataFile, ok bool, err error) {
 	return f, true, nil
 }
 
-// dataKey is where a document keeps the list of its data files.
-var dataKey = []string{"levelsum", "data"}
-
-func storeData(d *notebook.Document, files []DataFile) error {
-	if len(files) == 0 && d.Metadata(dataKey...) == nil {
-		return nil
-	}
-	return d.SetMetadata(files, dataKey...)
-}
-
-func storedData(d *notebook.Document) ([]DataFile, error) {
-	x := d.Metadata(dataKey...)
-	if x == nil {
-		return nil, nil
-	}
-	b, err := json.Marshal(x)
-	if err != nil {
-		return nil, err
-	}
-	var files []DataFile
-	if err := json.Unmarshal(b, &files); err != nil {
-		return nil, fmt.Errorf("metadata.levelsum.data: %w", err)
-	}
-	return files, nil
-}
-
-func compareData(stored, now *notebook.Document) ([]Finding, error) {
-	old, err := storedData(stored)
-	if err != nil {
-		return nil, err
-	}
-	cur, err := storedData(now)
-	if err != nil {
-		return nil, err
-	}
+// compareData compares the files by name and content; how it is known that a
+// file was used does not count.
+func compareData(old, cur []DataFile) []Finding {
 	text := func(f DataFile) string { return fmt.Sprintf("%d rows, sha256 %.12s", f.Rows, f.SHA256) }
 	var all []Finding
 	for _, n := range cur {
 		f := Finding{Kind: "data", Name: n.File, Verdict: New, Now: text(n)}
 		if i := slices.IndexFunc(old, func(o DataFile) bool { return o.File == n.File }); i >= 0 {
 			f.Old, f.Verdict = text(old[i]), Identical
-			if old[i] != n {
+			if old[i].SHA256 != n.SHA256 {
 				f.Verdict = Moved
 			}
 		}
@@ -165,5 +139,5 @@ func compareData(stored, now *notebook.Document) ([]Finding, error) {
 			all = append(all, Finding{Kind: "data", Name: o.File, Verdict: Missing, Old: text(o)})
 		}
 	}
-	return all, nil
+	return all
 }

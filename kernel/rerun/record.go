@@ -87,7 +87,7 @@ func (c cellOutput) Show(v display.View, id string, replace bool) {
 	}
 	c.r.mu.Lock()
 	defer c.r.mu.Unlock()
-	o := notebook.Output{Kind: notebook.DisplayData, Data: v.Data, Metadata: v.Metadata}
+	o := notebook.Output{Kind: notebook.DisplayData, Data: v.Data, Metadata: unmarked(v.Metadata)}
 	if replace && id != "" {
 		for _, p := range c.r.places[id] {
 			old := c.r.outputs[p.cell][p.at]

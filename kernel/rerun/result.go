@@ -11,6 +11,9 @@ import (
 // resultType is the media type of a named result.
 const resultType = "application/vnd.levelsum.result+json"
 
+// provenanceType is the media type of the table of provenance.
+const provenanceType = "application/vnd.levelsum.provenance+json"
+
 // A Result is a named result as it is stored in an output.
 type Result struct {
 	Cell int

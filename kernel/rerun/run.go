@@ -39,6 +39,9 @@ type Options struct {
 	Whole bool
 	// Compiled, if not nil, is called with what came of Whole.
 	Compiled func(engine.Program)
+	// Words are the options of the run as the command line spells them; they
+	// are stored.
+	Words []string
 	// Step, if not nil, is called when a cell is over.
 	Step func(Step)
 	// Hint, if not nil, gets hints for the reader of the moment, see
@@ -114,6 +117,8 @@ func Run(ctx context.Context, d *notebook.Document, o Options) (*Report, error) 
 		return nil, err
 	}
 	defer session.Close()
+	from := &Provenance{Options: o.Words}
+	var interpreted, compiled []int
 	rec := &recorder{places: map[string][]place{}, hint: o.Hint}
 	if o.Whole {
 		r.Program = compileWhole(ctx, session, rec, code)
@@ -139,6 +144,13 @@ func Run(ctx context.Context, d *notebook.Document, o Options) (*Report, error) 
 				ErrorValue: step.Fault.Message, Traceback: step.Fault.Trace})
 		}
 		c.SetExecutionCount(i + 1)
+		from.takeOrigins(step.origins)
+		switch step.How {
+		case "interpreted":
+			interpreted = append(interpreted, i+1)
+		case "compiled":
+			compiled = append(compiled, i+1)
+		}
 		r.Steps = append(r.Steps, step.Step)
 		if o.Step != nil {
 			o.Step(step.Step)
@@ -154,17 +166,18 @@ func Run(ctx context.Context, d *notebook.Document, o Options) (*Report, error) 
 			break
 		}
 	}
+	from.takeState(context.WithoutCancel(ctx), session)
+	from.Interpreted, from.Compiled = cellNumbers(interpreted), cellNumbers(compiled)
 	outputs := rec.finish()
 	for _, c := range code {
 		if err := c.SetOutputs(outputs[c.N]); err != nil {
 			return nil, fmt.Errorf("cell %d: %w", c.N, err)
 		}
 	}
-	files, err := findData(d, o.Dir)
-	if err == nil {
-		err = storeData(d, files)
+	if err := from.finish(d, o.Dir); err != nil {
+		return nil, err
 	}
-	if err != nil {
+	if err := from.store(d); err != nil {
 		return nil, err
 	}
 	if r.Results, err = Results(d); err != nil {
@@ -213,6 +226,7 @@ func engineCell(n int, c *notebook.Cell) engine.Cell {
 type cellStep struct {
 	Step
 	restarted bool
+	origins   any
 }
 
 func runCell(ctx context.Context, s Session, rec *recorder, n int, c *notebook.Cell) cellStep {
@@ -242,13 +256,13 @@ func runCell(ctx context.Context, s Session, rec *recorder, n int, c *notebook.C
 	step.Took = time.Since(start)
 	close(done)
 	wait.Wait()
-	step.Fault, step.restarted = o.Fault, o.Restarted
+	step.Fault, step.restarted, step.origins = o.Fault, o.Restarted, o.How["origins"]
 	if how, ok := o.How["tier"].(string); ok {
 		step.How = how
 	}
 	step.Alone, _ = o.How["alone"].(string)
 	if o.Value != nil {
-		rec.add(c.N, notebook.Output{Kind: notebook.ExecuteResult, Count: n, Data: o.Value.Data, Metadata: o.Value.Metadata})
+		rec.add(c.N, notebook.Output{Kind: notebook.ExecuteResult, Count: n, Data: o.Value.Data, Metadata: unmarked(o.Value.Metadata)})
 	}
 	return step
 }

@@ -20,6 +20,7 @@ import (
 //	print TEXT | warn TEXT | show TEXT | show@ID TEXT | replace@ID TEXT | clear | clearlater
 //	value TEXT | fail TEXT | die | ask | loop
 //	result NAME VALUE U UNIT | table TEXT
+//	read FILE SHA256 ROWS | seed NUMBER USE | stale TEXT
 //
 // "x := 1; x = 2" and comments do nothing.
 type fake struct {
@@ -29,6 +30,12 @@ type fake struct {
 	closed    bool
 	deaf      bool // the first Interrupt has no effect
 	calls     int
+	about     [][2]string
+	stale     []string
+}
+
+func (f *fake) State(context.Context) (map[string]any, error) {
+	return map[string]any{"about": f.about, "stale": f.stale}, nil
 }
 
 func newFake() *fake { return &fake{stop: make(chan struct{})} }
@@ -76,6 +83,25 @@ func (f *fake) Run(ctx context.Context, c engine.Cell, out engine.Output) (o eng
 			}
 			out.Show(display.View{Data: map[string]any{"text/plain": arg,
 				resultType: map[string]any{"name": r.Name, "value": r.Value, "u": r.U, "unit": r.Unit}}}, "", false)
+		case "read", "seed":
+			var n uint64
+			o1 := display.Origin{Use: arg}
+			if cmd == "read" {
+				o1.Use = ""
+				_, err := fmt.Sscan(arg, &o1.File, &o1.SHA256, &o1.Rows)
+				if err != nil {
+					panic(err)
+				}
+			} else if _, err := fmt.Sscan(arg, &n, &o1.Use); err != nil {
+				panic(err)
+			}
+			o1.Seed = n
+			list, _ := o.How["origins"].([]display.Origin)
+			o.How["origins"] = append(list, o1)
+		case "stale":
+			v := display.Text(arg)
+			v.Metadata = map[string]any{"levelsum": map[string]any{"stale": []string{arg}}}
+			out.Show(v, "", false)
 		case "fail", "die":
 			o.Fault = &engine.Fault{Name: "panic", Message: arg, Trace: []string{arg, "In[1]:2"}}
 			o.Restarted = cmd == "die"

@@ -19,6 +19,9 @@ const (
 	// InsideU: a difference of at most one standard uncertainty of the stored
 	// result, whose uncertainty itself has not changed by more than a tenth.
 	InsideU
+	// Noted: something else than a number differs that may explain a difference
+	// and is none by itself, such as the version of Go.
+	Noted
 	// Moved: anything else.
 	Moved
 	// New: there is nothing stored to compare with.
@@ -27,7 +30,7 @@ const (
 	Missing
 )
 
-var verdictWords = [...]string{"identical", "rounding-level", "inside u", "moved", "new", "missing"}
+var verdictWords = [...]string{"identical", "rounding-level", "inside u", "noted", "moved", "new", "missing"}
 
 func (v Verdict) String() string { return verdictWords[v] }
 

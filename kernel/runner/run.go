@@ -28,6 +28,7 @@ func (r *Runner) run(c engine.Cell) engine.Outcome {
 	for _, n := range out.Notes {
 		r.send(engine.Event{Op: "warn", Text: "warning: " + n + "\n"})
 	}
+	r.origin.setStale(staleLines(r.scope.StaleIn(plan)))
 	guard.Reset()
 	guard.SetCell(c.N)
 	r.typed.forget()
@@ -35,6 +36,7 @@ func (r *Runner) run(c engine.Cell) engine.Outcome {
 	nameTag(src)
 	job, how, why, err := r.prepare(plan, out.How)
 	out.How["tier"] = how
+	r.origin.ran(c.N, how)
 	if why != "" {
 		out.How["why"] = why
 	}
@@ -46,6 +48,9 @@ func (r *Runner) run(c engine.Cell) engine.Outcome {
 	reached := -1
 	if job != nil {
 		reached, out.Fault = r.goroutine(job, src)
+	}
+	if o := r.origin.fresh(); len(o) > 0 {
+		out.How["origins"] = o
 	}
 	if lost := r.scope.Commit(plan, func(name string) bool { return out.Fault == nil || plan.Sets(name, reached) }); len(lost) > 0 {
 		n := strings.Join(lost, ", ") + " cannot be used: what it needs was not set, since the cell failed"
@@ -68,7 +73,7 @@ func (r *Runner) run(c engine.Cell) engine.Outcome {
 			return out
 		}
 		if v, ok := viewOf(plan.Types(), values); ok {
-			w := wireView(v)
+			w := r.origin.marked(wireView(v))
 			out.Value = &w
 		}
 	}

@@ -41,6 +41,7 @@ type Runner struct {
 	failed  []string           // cells that have failed since, though it was foreseen otherwise
 
 	compileAll bool // no cell is interpreted
+	origin     provenance
 
 	mu       sync.Mutex // guards what follows
 	running  bool
@@ -52,7 +53,7 @@ type Runner struct {
 
 // Main runs the child until the parent closes its end. With compileAll no
 // cell is interpreted. It returns the exit status.
-func Main(compileAll bool) int {
+func Main(about About, compileAll bool) int {
 	os.Args = os.Args[:1]        // a cell has no arguments
 	debug.SetMaxStack(256 << 20) // endless recursion ends in seconds, not in swap
 	requests := os.NewFile(engine.FdRequests, "requests")
@@ -68,6 +69,7 @@ func Main(compileAll bool) int {
 		return 1
 	}
 	r.compileAll = compileAll
+	r.origin.init(about)
 	return r.serve(requests)
 }
 

@@ -16,7 +16,7 @@ import (
 type sink struct{ r *Runner }
 
 func (s sink) Show(v display.View, id string, replace bool) {
-	w := wireView(v)
+	w := s.r.origin.marked(wireView(v))
 	s.r.send(engine.Event{Op: "show", Sync: true, View: &w, Name: id, Replace: replace})
 }
 

@@ -5,12 +5,13 @@ import (
 	"time"
 
 	"levelsum/display"
+	"levelsum/kernel/cell"
 	"levelsum/kernel/runner/guard"
 )
 
 // state lists facts about the session for the parent.
 func (r *Runner) state() map[string]any {
-	facts := map[string]any{"names": r.scope.Names(), "goroutines": goroutines(), "stale": r.stale()}
+	facts := map[string]any{"names": r.scope.Names(), "goroutines": goroutines(), "stale": r.stale(), "about": r.origin.facts()}
 	if r.noKit != nil {
 		facts["compiled"] = r.noKit.Error()
 	}
@@ -29,9 +30,11 @@ func goroutines() []string {
 	return out
 }
 
-func (r *Runner) stale() []string {
+func (r *Runner) stale() []string { return staleLines(r.scope.Stale()) }
+
+func staleLines(list []cell.Stale) []string {
 	var out []string
-	for _, s := range r.scope.Stale() {
+	for _, s := range list {
 		out = append(out, fmt.Sprintf("%s of In[%d]: %s", s.Name, s.Cell, s.Why))
 	}
 	return out

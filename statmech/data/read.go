@@ -14,6 +14,7 @@ import (
 	"unicode"
 	"unicode/utf8"
 
+	"levelsum/display"
 	"levelsum/statmech/unit"
 )
 
@@ -34,7 +35,20 @@ func Read(name string) (*Table, error) {
 	if err != nil {
 		return nil, fmt.Errorf("data: %w", err)
 	}
-	return Parse(filepath.Base(name), raw)
+	return recorded(name, filepath.Base(name), raw)
+}
+
+// recorded parses what was read from a file and tells the notebook session of
+// it, also when it is not understood.
+func recorded(path, name string, raw []byte) (*Table, error) {
+	t, err := Parse(name, raw)
+	if err != nil {
+		sum := sha256.Sum256(raw)
+		display.FileRead(path, hex.EncodeToString(sum[:]), 0)
+		return nil, err
+	}
+	display.FileRead(path, t.SHA256, t.Len())
+	return t, nil
 }
 
 // ReadFrom reads a table from r; name stands for the file in messages.
@@ -43,7 +57,7 @@ func ReadFrom(name string, r io.Reader) (*Table, error) {
 	if err != nil {
 		return nil, fmt.Errorf("data: %s: %w", name, err)
 	}
-	return Parse(name, raw)
+	return recorded(name, name, raw)
 }
 
 // Parse reads a table from the bytes of a file.

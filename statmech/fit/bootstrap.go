@@ -40,6 +40,7 @@ func (r *Result) Bootstrap(n int, seed uint64) (*Bootstrap, error) {
 	if r.Withheld != "" {
 		return nil, fmt.Errorf("fit: Bootstrap: the fit has no standard uncertainties: %s", r.Withheld)
 	}
+	display.SeedUsed(fmt.Sprintf("fit.Bootstrap, %d refits", n), seed)
 	b := &Bootstrap{Seed: seed, original: clone(r.p)}
 	for _, p := range r.reg.free {
 		b.names = append(b.names, p.name)

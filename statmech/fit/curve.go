@@ -5,6 +5,7 @@ import (
 	"math"
 	"math/rand/v2"
 
+	"levelsum/display"
 	"levelsum/statmech"
 )
 
@@ -99,6 +100,7 @@ func fitModel(m model, x, y, u []float64, opts []Option) (*Result, error) {
 	best := reg.solve(reg.startValues())
 	tried := []float64{best.chi2}
 	if reg.starts > 1 {
+		display.SeedUsed(fmt.Sprintf("fit.Starts, %d starts", reg.starts), reg.seed)
 		random := rand.New(rand.NewPCG(reg.seed, 0x5f17))
 		for range reg.starts - 1 {
 			next := reg.solve(reg.randomStart(random))

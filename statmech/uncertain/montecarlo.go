@@ -118,6 +118,11 @@ func MonteCarloJoint(qs []Quantity, opts ...Option) (*Joint, error) {
 		}
 		outputs[i] = q.node()
 	}
+	use := "uncertain.MonteCarlo, adaptive"
+	if d.draws > 0 {
+		use = fmt.Sprintf("uncertain.MonteCarlo, %d draws", d.draws)
+	}
+	display.SeedUsed(use, d.seed)
 	s := newSampler(newTape(outputs), d)
 	batch := max(int(math.Ceil(100/(1-d.coverage))), 10000)
 	tolerance := make([]float64, len(qs))
