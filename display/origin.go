@@ -22,15 +22,15 @@ type Origin struct {
 // FileRead tells the notebook session that a file was read. Elsewhere it does
 // nothing.
 func FileRead(name, sha256 string, rows int) {
-	record(Origin{File: name, SHA256: sha256, Rows: rows})
+	tell(Origin{File: name, SHA256: sha256, Rows: rows})
 }
 
 // SeedUsed tells the notebook session that random numbers were made from a
 // seed, and what for: "uncertain.MonteCarlo, 100000 draws". Elsewhere it does
 // nothing.
-func SeedUsed(use string, seed uint64) { record(Origin{Use: use, Seed: seed}) }
+func SeedUsed(use string, seed uint64) { tell(Origin{Use: use, Seed: seed}) }
 
-func record(o Origin) {
+func tell(o Origin) {
 	if s, ok := Current().(interface{ Record(Origin) }); ok {
 		s.Record(o)
 	}

@@ -47,9 +47,6 @@ func (s *Scope) note(p *Plan, id string) {
 					continue
 				}
 				made[w].reads[r] = o.at[r]
-				if made[r] != nil { // set by this cell
-					made[w].reads[r] = o.now
-				}
 			}
 		}
 	}
@@ -64,15 +61,21 @@ func (s *Scope) note(p *Plan, id string) {
 		record(reads, writes)
 	}
 	for _, st := range p.stmts {
-		reads, _ := dependencies(st, p.sinfo)
-		for n := range p.readInside(st) {
-			reads[n] = true
-		}
-		record(reads, p.assigned(st))
+		record(p.reads(st), p.assigned(st))
 	}
+	declared := map[string]bool{}
 	for _, d := range p.decls {
 		for _, n := range d.names {
-			o.at[n] = o.now
+			o.at[n], declared[n] = o.now, true
+		}
+	}
+	// A cell is run whole: what it sets or declares itself, before or after,
+	// is no change since.
+	for _, m := range made {
+		for r := range m.reads {
+			if made[r] != nil || declared[r] {
+				m.reads[r] = o.now
+			}
 		}
 	}
 	// A cell that is run again with another text no longer makes what it made.
@@ -90,17 +93,50 @@ func (s *Scope) note(p *Plan, id string) {
 	}
 }
 
-// readInside lists the variables of this very cell that a statement mentions.
-func (p *Plan) readInside(st ast.Stmt) map[string]bool {
-	out := map[string]bool{}
+// reads lists the names whose values a statement may use. A variable that is
+// only given a value, as err in x, err = f(), is not among them.
+func (p *Plan) reads(st ast.Stmt) map[string]bool {
+	out, _ := dependencies(st, p.sinfo)
+	target := map[*ast.Ident]bool{}
+	mark := func(es ...ast.Expr) {
+		for _, e := range es {
+			if e == nil {
+				continue
+			}
+			if id, ok := ast.Unparen(e).(*ast.Ident); ok {
+				target[id] = true
+			}
+		}
+	}
+	read, written := map[string]bool{}, map[string]bool{}
 	ast.Inspect(st, func(n ast.Node) bool {
-		if id, ok := n.(*ast.Ident); ok && p.sinfo.Uses[id] != nil {
-			if v, ok := p.sinfo.Uses[id].(*types.Var); ok && p.slots[v] != nil {
-				out[id.Name] = true
+		switch n := n.(type) {
+		case *ast.AssignStmt:
+			if n.Tok == token.ASSIGN || n.Tok == token.DEFINE {
+				mark(n.Lhs...)
+			}
+		case *ast.RangeStmt:
+			mark(n.Key, n.Value)
+		case *ast.Ident:
+			if p.sinfo.Uses[n] == nil {
+				break
+			}
+			if target[n] {
+				written[n.Name] = true
+				break
+			}
+			read[n.Name] = true
+			if v, ok := p.sinfo.Uses[n].(*types.Var); ok && p.slots[v] != nil { // of this very cell
+				out[n.Name] = true
 			}
 		}
 		return true
 	})
+	for n := range written {
+		if !read[n] {
+			delete(out, n)
+		}
+	}
 	return out
 }
 
@@ -227,37 +263,16 @@ func (s *Scope) StaleIn(p *Plan) []Stale {
 		}
 	}
 	for _, st := range p.stmts {
-		uses, _ := dependencies(st, p.sinfo)
-		writes := p.assigned(st)
-		for n := range uses {
-			if _, plain := st.(*ast.AssignStmt); !plain || !writes[n] || p.readsItself(st, n) {
-				use(n)
-			}
+		for n := range p.reads(st) {
+			use(n)
 		}
-		if _, ok := st.(*ast.AssignStmt); ok { // others may not come to the assignment
-			for n := range writes {
-				written[n] = true
+		if a, ok := st.(*ast.AssignStmt); ok { // other statements may not come to the assignment
+			for _, e := range a.Lhs {
+				if id, ok := ast.Unparen(e).(*ast.Ident); ok {
+					written[id.Name] = true
+				}
 			}
 		}
 	}
 	return slices.DeleteFunc(all, func(v Stale) bool { return !read[v.Name] })
-}
-
-// readsItself tells whether an assignment uses the old value of a name: on its
-// right side, with an operator, or for a part of it.
-func (p *Plan) readsItself(st ast.Stmt, name string) bool {
-	a := st.(*ast.AssignStmt)
-	if a.Tok != token.ASSIGN && a.Tok != token.DEFINE {
-		return true
-	}
-	mentions := func(e ast.Expr) bool {
-		uses, _ := dependencies(e, p.sinfo)
-		return uses[name]
-	}
-	for _, e := range a.Lhs {
-		if _, whole := ast.Unparen(e).(*ast.Ident); !whole && mentions(e) {
-			return true
-		}
-	}
-	return slices.ContainsFunc(a.Rhs, mentions)
 }

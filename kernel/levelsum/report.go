@@ -10,6 +10,7 @@ import (
 
 	"levelsum/kernel/notebook"
 	"levelsum/kernel/report"
+	"levelsum/kernel/rerun"
 )
 
 const reportUsage = `usage: levelsum report [flags] NOTEBOOK -o FILE.html
@@ -64,17 +65,22 @@ func makeReport(args []string, _ io.Reader, stdout, stderr io.Writer) int {
 	if err != nil {
 		return fail(statusOf(err), "%v", err)
 	}
+	var state []string
+	for _, r := range append(rerun.History(d), rerun.ChangedData(d, filepath.Dir(file))...) {
+		state = append(state, r.String())
+	}
 	page, warnings, err := report.Page(d, report.Options{
 		Name:    filepath.Base(file),
 		File:    data,
 		Folder:  filepath.Dir(file),
+		State:   state,
 		Version: version,
 		Code:    report.CodeView(*code),
 	})
 	if err != nil {
 		return fail(1, "%s: %v", file, err)
 	}
-	for _, w := range warnings {
+	for _, w := range append(state, warnings...) {
 		fmt.Fprintf(stderr, "%s: %s\n", file, w)
 	}
 	if err := writeWhole(*out, page); err != nil {

@@ -29,6 +29,9 @@ type Options struct {
 	// Folder is where the notebook lies: pictures that its text refers to are
 	// taken from there. Without it they are left out.
 	Folder string
+	// State is what speaks against the stored numbers being those of a run from
+	// the first cell to the last one, one line each; empty if nothing does.
+	State []string
 	// Version is the version of the program that makes the page.
 	Version string
 	Code    CodeView

@@ -57,17 +57,59 @@ func (p *page) provenance(d *notebook.Document) {
 	if p.o.Version != "" {
 		entry("report made by", "levelsum "+p.o.Version)
 	}
-	own, _ := d.Metadata("levelsum").(map[string]any)
-	for _, k := range slices.Sorted(maps.Keys(own)) {
-		if k != "data" {
-			entry(k, own[k])
+	if len(p.o.State) > 0 {
+		var list []any
+		for _, s := range p.o.State {
+			list = append(list, s)
 		}
+		p.line(`<dt>what a reader must know</dt><dd class="state">`, nested(list), "</dd>")
 	}
 	p.line("</dl>")
+	own, _ := d.Metadata("levelsum").(map[string]any)
+	if len(own) > 0 {
+		p.line("<h3>Recorded by the last headless run</h3>\n<dl>")
+		p.recorded(own, entry)
+		p.line("</dl>")
+	}
 	if list, ok := own["data"].([]any); ok && len(list) > 0 {
 		p.dataFiles(list)
 	}
 	p.line("</footer>")
+}
+
+// fields are what a run records, in the order in which a reader wants it.
+var fields = []struct{ key, label string }{
+	{"levelsum", "Levelsum"}, {"go", "Go"}, {"interpreter", "interpreter"}, {"platform", "platform"},
+	{"constants", "physical constants"}, {"conventions", "conventions where a cell does not say otherwise"},
+	{"options", "options of the run"}, {"interpreted", "cells interpreted"}, {"compiled", "cells compiled"},
+	{"stale", "values older at the end than what they were made of"}, {"seeds", "seeds of random numbers"},
+	{"code", "SHA-256 of the code"},
+}
+
+// recorded writes what a run has recorded, and what others have put there.
+func (p *page) recorded(own map[string]any, entry func(string, any)) {
+	known := map[string]bool{"data": true}
+	for _, f := range fields {
+		known[f.key] = true
+		x, ok := own[f.key]
+		if !ok {
+			continue
+		}
+		if list, ok := x.([]any); ok && f.key == "seeds" {
+			var lines []any
+			for _, y := range list {
+				m, _ := y.(map[string]any)
+				lines = append(lines, fmt.Sprintf("%v (%v)", m["seed"], m["use"]))
+			}
+			x = lines
+		}
+		entry(f.label, x)
+	}
+	for _, k := range slices.Sorted(maps.Keys(own)) {
+		if !known[k] {
+			entry(k, own[k])
+		}
+	}
 }
 
 func (p *page) dataFiles(list []any) {
