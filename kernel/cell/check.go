@@ -6,6 +6,7 @@ import (
 	"go/ast"
 	"go/token"
 	"go/types"
+	"regexp"
 	"slices"
 	"strings"
 )
@@ -16,15 +17,38 @@ func (s *Scope) Check(src *Source) (*Plan, error) {
 	p, err := split(s.fset, src)
 	if err != nil {
 		s.release(p)
+		s.noteFailed(src)
+		var ds Diagnostics
+		if errors.As(err, &ds) {
+			return nil, s.withHabits(src, ds)
+		}
 		return nil, err
 	}
 	plan, err := s.check(p)
 	if err != nil {
 		s.release(p)
+		s.noteFailed(src)
 		return nil, err
 	}
 	plan.parsed = p
 	return plan, nil
+}
+
+var declares = regexp.MustCompile(`(?m)^(?:(?:var|const|type|func)[ \t]+([\pL_][\pL\pN_]*)|([\pL_][\pL\pN_]*(?:[ \t]*,[ \t]*[\pL_][\pL\pN_]*)*)[ \t]*:=)`)
+
+// noteFailed notes the names that a cell with an error would have declared, for
+// the hints of later cells.
+func (s *Scope) noteFailed(src *Source) {
+	if s.clone {
+		return
+	}
+	for _, m := range declares.FindAllStringSubmatch(src.Text, -1) {
+		for n := range strings.SplitSeq(m[1]+m[2], ",") {
+			if n = strings.TrimSpace(n); n != "_" {
+				s.failed[n] = src.Name()
+			}
+		}
+	}
 }
 
 // release gives back what the positions of a cell take that nothing of lasts.
@@ -233,6 +257,7 @@ func (c *checking) attempt() (plan *Plan, errs Diagnostics, again bool) {
 	}
 	plan.finishResult()
 	plan.Warnings = append(plan.Warnings, c.useless(plan)...)
+	plan.Warnings = append(plan.Warnings, c.doubtful(plan)...)
 
 	// The variables.
 	for _, v := range c.vars {

@@ -15,6 +15,7 @@ func (s *Scope) Clone() *Scope {
 	c.dots = slices.Clone(s.dots)
 	c.decls = maps.Clone(s.decls)
 	c.dropped = maps.Clone(s.dropped)
+	c.failed = maps.Clone(s.failed)
 	c.units = maps.Clone(s.units)
 	c.methods = map[string][]*Decl{}
 	for k, v := range s.methods {

@@ -22,11 +22,14 @@ var (
 
 // hint answers an error at pos by the spelling that works, "" if it knows none.
 func (c *checking) hint(pos token.Pos, msg string) string {
-	if h := c.quantityHint(msg); h != "" {
+	if h := c.quantityHint(pos, msg); h != "" {
 		return h
 	}
 	if noMember.MatchString(msg) {
 		if sel, _ := c.selectorAt(pos); sel != nil {
+			if h := c.foreignMember(sel); h != "" {
+				return h
+			}
 			return didYouMean(nearest(sel.Sel.Name, c.membersOf(sel.X)))
 		}
 		return ""
@@ -36,10 +39,10 @@ func (c *checking) hint(pos token.Pos, msg string) string {
 	}
 	name, ok := strings.CutPrefix(msg, "undefined: ")
 	if !ok {
-		return ""
+		return c.advise(pos, msg)
 	}
 	if pkg, member, ok := strings.Cut(name, "."); ok {
-		return didYouMean(prefixed(pkg+".", nearest(member, c.exported(c.pathOf(pkg)))))
+		return c.unknownMember(pos, pkg, member)
 	}
 	if c.drop[name] {
 		return name + " was dropped, since its type changes in this cell"
@@ -53,21 +56,63 @@ func (c *checking) hint(pos token.Pos, msg string) string {
 	return c.unknown(pos, name)
 }
 
+// unknownMember says what a name that its package does not have may stand for:
+// another case, a unit's other name, a package of the same name that has it, a
+// name like it.
+func (c *checking) unknownMember(pos token.Pos, pkg, member string) string {
+	if name, other, ok := strings.Cut(member, " (but have "); ok {
+		if h := c.unitHint(pkg, name); h != "" {
+			return h
+		}
+		return "write " + pkg + "." + strings.TrimSuffix(other, ")")
+	}
+	if h := c.unitHint(pkg, member); h != "" {
+		return h
+	}
+	if paths := slices.DeleteFunc(c.packagesWith(pkg, member), func(p string) bool { return p == c.pathOf(pkg) }); len(paths) > 0 {
+		return `write import "` + strings.Join(paths, `" or import "`) + `" to use this package ` + pkg
+	}
+	if h := foreignCall(pkg, member, nil); h != "" {
+		return h
+	}
+	return didYouMean(prefixed(pkg+".", nearest(member, c.exported(c.pathOf(pkg)))))
+}
+
 // unknown says what a name that nothing declares may stand for: a package that
 // is not imported, a member of one of the usual packages, a name like it.
 func (c *checking) unknown(pos token.Pos, name string) string {
-	if sel, isPackage := c.selectorAt(pos); isPackage {
+	sel, isPackage := c.selectorAt(pos)
+	if isPackage {
 		if paths := c.packagesWith(name, sel.Sel.Name); len(paths) > 0 {
 			return `write import "` + strings.Join(paths, `" or import "`) + `" to use the package ` + name
 		}
+		if h := foreignCall(name, sel.Sel.Name, c.exported("math")); h != "" {
+			return h
+		}
 	}
-	out := c.membersNamed(func(m string) bool { return m == name })
-	out = append(out, nearest(name, c.names())...)
-	if len(out) == 0 {
-		out = c.membersNamed(func(m string) bool { return strings.EqualFold(m, name) })
+	path := c.pathAt(pos)
+	if h := c.foreignName(path, name); h != "" {
+		return h
 	}
+	fits := c.fitting(path)
+	if where := c.s.failed[name]; where != "" && !slices.Contains(c.vars, name) {
+		return name + " stands in " + where + ", which had an error and so declared nothing: mend it and run it again"
+	}
+	out := c.membersNamed(func(m string) bool { return m == name }, fits)
+	near := nearest(name, c.names())
+	fold := slices.ContainsFunc(near, func(n string) bool { return strings.EqualFold(n, name) })
+	if len(out) == 0 && !fold {
+		out = c.membersNamed(func(m string) bool { return strings.EqualFold(m, name) }, fits)
+	}
+	if isPackage {
+		out = nil // a member has no package's members
+	}
+	out = append(out, near...)
 	if len(out) == 0 && len([]rune(name)) > 4 { // short names are like too many
-		out = c.membersNamed(func(m string) bool { return slips(strings.ToLower(m), strings.ToLower(name), 1) <= 1 })
+		out = c.membersNamed(func(m string) bool { return slips(strings.ToLower(m), strings.ToLower(name), 1) <= 1 }, fits)
+	}
+	if as, ok := assigned(path); ok && len(out) == 0 {
+		return "write " + as + " to declare " + name
 	}
 	return didYouMean(out)
 }
@@ -220,18 +265,45 @@ func rankOfPath(path string) int {
 }
 
 // membersNamed lists members of the packages that the cell can use without an
-// import, with the package's name.
-func (c *checking) membersNamed(match func(string) bool) []string {
+// import, with the package's name: math's before others of Go's own.
+func (c *checking) membersNamed(match func(string) bool, fits func(types.Object) bool) []string {
 	names := c.s.ImportNames()
-	slices.SortStableFunc(names, func(a, b string) int {
-		return cmp.Compare(rankOfPath(c.pathOf(a)), rankOfPath(c.pathOf(b)))
-	})
+	rank := func(name string) int {
+		switch path := c.pathOf(name); path {
+		case "math":
+			return -1
+		case "levelsum/statmech/derive", "levelsum/statmech/uncertain", "levelsum/statmech/special":
+			return 1 // the same names as those of math and of the models
+		default:
+			return rankOfPath(path)
+		}
+	}
+	slices.SortStableFunc(names, func(a, b string) int { return cmp.Compare(rank(a), rank(b)) })
 	var out []string
 	for _, n := range names {
-		for _, m := range c.exported(c.pathOf(n)) {
-			if match(m) {
+		p, err := c.s.importer.Import(c.pathOf(n))
+		if err != nil {
+			continue
+		}
+		for _, m := range p.Scope().Names() {
+			if o := p.Scope().Lookup(m); o.Exported() && match(m) && fits(o) {
 				out = append(out, n+"."+m)
 			}
+		}
+		if n == "math" && len(out) > 0 { // Go's other packages mean something else by it
+			return append(out, c.uncertain(match, fits)...)
+		}
+	}
+	return out
+}
+
+// uncertain lists members of the package whose functions are those of math for
+// values with an uncertainty.
+func (c *checking) uncertain(match func(string) bool, fits func(types.Object) bool) (out []string) {
+	const name = "uncertain"
+	for _, m := range c.exported(c.s.usual[name]) {
+		if p, err := c.s.importer.Import(c.s.usual[name]); err == nil && match(m) && fits(p.Scope().Lookup(m)) {
+			out = append(out, name+"."+m)
 		}
 	}
 	return out

@@ -6,6 +6,7 @@ import (
 	"go/constant"
 	"go/token"
 	"go/types"
+	"strings"
 )
 
 // unitPath is the package whose types are quantities.
@@ -51,9 +52,34 @@ func (c *checking) quantities(plan *Plan) Diagnostics {
 			if q == "" {
 				return true
 			}
+			if b, ok := e.(*ast.BinaryExpr); ok && b.Op == token.MUL {
+				for _, x := range []ast.Expr{b.X, b.Y} {
+					if call, ok := ast.Unparen(x).(*ast.CallExpr); ok && types.ExprString(call.Fun) == "unit.Celsius" {
+						say(b.OpPos, "product with a temperature in °C, whose zero is not 0 K", "write unit.Celsius(25) for 25 °C")
+						return true
+					}
+				}
+			}
 			if b, ok := e.(*ast.BinaryExpr); ok && b.Op == token.MUL && !untyped(b.X, info) && !untyped(b.Y, info) && !(scaled(b.X, info) || scaled(b.Y, info)) {
 				say(b.OpPos, fmt.Sprintf("product of two quantities of the kind unit.%s", q),
 					fmt.Sprintf("the product is not a unit.%s: write float64(x) * y to scale y by a plain number, or use a named method for a product of physics", q))
+			}
+			if call, ok := e.(*ast.CallExpr); ok && len(call.Args) == 1 && info.Types[call.Fun].IsType() {
+				x := call.Args[0]
+				from := quantity(info.Types[x].Type)
+				if b := binary(x); from != "" && from != q && (b == nil || b.Op != token.QUO) {
+					if to := c.convert(c.text(x), "unit."+from, "unit."+q); strings.HasSuffix(to, "()") {
+						say(call.Pos(), fmt.Sprintf("unit.%s(%s) keeps the number in SI of a unit.%s, which is not the same as a unit.%s", q, types.ExprString(x), from, q), "write "+to)
+					}
+				}
+			}
+			if b, ok := e.(*ast.BinaryExpr); ok && b.Op == token.QUO && !untyped(b.X, info) && !untyped(b.Y, info) && !scaled(b.Y, info) && !asNumber(stack, info) {
+				x, y := typeString(info.Types[b.X].Type), types.ExprString(b.Y)
+				hint := "write float64(" + types.ExprString(b) + ")"
+				if _, ok := constantOf(b.Y, info); ok {
+					hint = "write " + operand(types.ExprString(b.X)) + ".In(" + y + ")"
+				}
+				say(b.OpPos, "the ratio of two quantities of the kind "+x+" is a plain number, which Go would take for a "+x, hint)
 			}
 			if tv.Value == nil || !untyped(e, info) || zero(tv.Value) {
 				return true
@@ -71,8 +97,11 @@ func (c *checking) quantities(plan *Plan) Diagnostics {
 			case *ast.UnaryExpr, *ast.ParenExpr:
 				return true // looked at as a whole
 			}
-			say(e.Pos(), fmt.Sprintf("bare constant %s used as a quantity (unit.%s)", tv.Value, q),
-				fmt.Sprintf("give it a unit: %s * unit.%s", tv.Value, exampleUnit(q)))
+			hint := fmt.Sprintf("give it a unit: %s * unit.%s", tv.Value, c.unitFor(q, tv.Value))
+			if q == "Temperature" && tv.Value.String() == "273.15" {
+				hint = "write unit.Celsius(25) for a temperature in °C, or 273.15 * unit.K"
+			}
+			say(e.Pos(), fmt.Sprintf("bare constant %s used as a quantity (unit.%s)", tv.Value, q), hint)
 			return true
 		})
 	}
@@ -88,6 +117,35 @@ func (c *checking) quantities(plan *Plan) Diagnostics {
 		check(st, plan.sinfo)
 	}
 	return out
+}
+
+// asNumber reports whether the last of stack, a ratio, becomes a plain number:
+// it is converted to one, or it scales another quantity of its kind.
+func asNumber(stack []ast.Node, info *types.Info) bool {
+	for i := len(stack) - 2; i >= 0; i-- {
+		switch p := stack[i].(type) {
+		case *ast.ParenExpr, *ast.UnaryExpr:
+		case *ast.CallExpr:
+			return info.Types[p.Fun].IsType() // unit.Energy(a/b) * e too says what it is
+		case *ast.BinaryExpr:
+			if p.Op != token.ADD && p.Op != token.SUB {
+				return false
+			}
+		default:
+			return false
+		}
+	}
+	return false
+}
+
+// constantOf is the unit constant that an expression names.
+func constantOf(e ast.Expr, info *types.Info) (*types.Const, bool) {
+	sel, ok := ast.Unparen(e).(*ast.SelectorExpr)
+	if !ok {
+		return nil, false
+	}
+	k, ok := info.Uses[sel.Sel].(*types.Const)
+	return k, ok
 }
 
 // enclosing is the node around the last of stack, parentheses left out.
@@ -142,6 +200,18 @@ func zero(v constant.Value) bool {
 		return constant.Sign(v) == 0
 	}
 	return true
+}
+
+// unitFor is the unit that a bare number of a kind of quantity has most likely:
+// no pressure in bar is as large as one in Pa.
+func (c *checking) unitFor(q string, v constant.Value) string {
+	if x, _ := constant.Float64Val(v); q == "Pressure" && x >= 1000 {
+		return "Pa"
+	}
+	if p, err := c.s.importer.Import(unitPath); err == nil {
+		return unitOf(p, q)
+	}
+	return exampleUnit(q)
 }
 
 // exampleUnit is a unit constant for a kind of quantity.

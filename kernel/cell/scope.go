@@ -59,6 +59,7 @@ type Scope struct {
 	users    map[string]map[*Decl]bool  // session name -> decls that depend on it
 	typed    map[string]map[string]bool // type name -> variables whose type mentions it
 	dropped  map[string]string          // variables that were dropped, and why
+	failed   map[string]string          // names that a cell would have declared that had an error: the cell
 	slots    map[string][]*Slot         // all slots a name has had
 	units    map[*types.Package]*Unit
 	origins  origins
@@ -79,6 +80,7 @@ func NewScope(importer types.Importer, usual map[string]string) *Scope {
 		users:    map[string]map[*Decl]bool{},
 		typed:    map[string]map[string]bool{},
 		dropped:  map[string]string{},
+		failed:   map[string]string{},
 		slots:    map[string][]*Slot{},
 		units:    map[*types.Package]*Unit{},
 		origins:  origins{at: map[string]int{}, made: map[string]*origin{}},

@@ -136,3 +136,57 @@ func (p *Plan) dropsError(e ast.Expr) bool {
 		return !tv.IsVoid() && types.Identical(t, errorType)
 	}
 }
+
+// ErrorLine is the line on which the error came up that the cell left in the
+// variable name, "" for one that a statement dropped, seen in statement at; 0 if
+// it is not known.
+func (p *Plan) ErrorLine(name string, at int) int {
+	line := func(n ast.Node) int {
+		l, _ := p.Source.place(p.scope.fset, n.Pos())
+		return l
+	}
+	if name == "" {
+		if at >= 0 && at < len(p.stmts) {
+			return line(p.stmts[at])
+		}
+		return 0
+	}
+	last := 0
+	look := func(n ast.Node) {
+		ast.Inspect(n, func(n ast.Node) bool {
+			switch n := n.(type) {
+			case *ast.AssignStmt:
+				for _, e := range n.Lhs {
+					if id, ok := ast.Unparen(e).(*ast.Ident); ok && id.Name == name {
+						last = line(n)
+					}
+				}
+			case *ast.ValueSpec:
+				for _, id := range n.Names {
+					if id.Name == name && len(n.Values) > 0 {
+						last = line(n)
+					}
+				}
+			}
+			return true
+		})
+	}
+	for _, d := range p.lead {
+		look(d)
+	}
+	for k, st := range p.stmts {
+		if k <= at {
+			look(st)
+		}
+	}
+	return last
+}
+
+// ResultLine is the line of the last expression, 0 if none is shown.
+func (p *Plan) ResultLine() int {
+	if p.result == nil {
+		return 0
+	}
+	l, _ := p.Source.place(p.scope.fset, p.result.Pos())
+	return l
+}

@@ -30,6 +30,14 @@ func userFrames(skip int) []frame {
 	return framesOf(runtime.CallersFrames(pcs[:n]))
 }
 
+// lineOf is a line of the cell itself as a frame, none if it is not known.
+func lineOf(src *cell.Source, line int) []frame {
+	if line == 0 {
+		return nil
+	}
+	return []frame{{file: src.Name(), line: line}}
+}
+
 // framesOf picks the frames of cells.
 func framesOf(fs *runtime.Frames) []frame {
 	var out []frame

@@ -45,9 +45,9 @@ func (r *Runner) run(c engine.Cell) engine.Outcome {
 		return out
 	}
 	r.buildAhead(plan)
-	reached := -1
+	reached, resultLine := -1, plan.ResultLine()
 	if job != nil {
-		reached, out.Fault = r.goroutine(job, src)
+		reached, out.Fault = r.goroutine(job, src, plan)
 	}
 	if o := r.origin.fresh(); len(o) > 0 {
 		out.How["origins"] = o
@@ -66,7 +66,7 @@ func (r *Runner) run(c engine.Cell) engine.Outcome {
 		out.Value = &v
 	} else if shown {
 		if err := trailingError(plan, values); err != nil {
-			out.Fault = faultOf(guard.UnreadError{Err: err}, nil, src)
+			out.Fault = faultOf(guard.UnreadError{Err: err}, lineOf(src, resultLine), src)
 			return out
 		}
 		if out.Fault = refusal(values); out.Fault != nil {
@@ -102,7 +102,7 @@ func trailingError(plan *cell.Plan, values []any) error {
 }
 
 // goroutine runs a job to its end on a goroutine of its own.
-func (r *Runner) goroutine(job func(), src *cell.Source) (reached int, fault *engine.Fault) {
+func (r *Runner) goroutine(job func(), src *cell.Source, plan *cell.Plan) (reached int, fault *engine.Fault) {
 	r.mu.Lock()
 	if r.isStopped() {
 		r.mu.Unlock()
@@ -122,6 +122,10 @@ func (r *Runner) goroutine(job func(), src *cell.Source) (reached int, fault *en
 				frames := userFrames(1)
 				if sp, ok := v.(stepPanic); ok {
 					v, frames = sp.value, sp.frames
+				}
+				if u, ok := v.(guard.UnreadError); ok {
+					// The place is where the error came up, not where it was found unread.
+					frames = lineOf(src, plan.ErrorLine(u.Name, u.At))
 				}
 				done <- faultOf(v, frames, src)
 			case !returned:
