@@ -49,13 +49,19 @@ func (c *checking) callAround(pos token.Pos) *ast.CallExpr {
 	return nil
 }
 
-// text is how the cell writes a node.
+// text is how the cell writes a node; what stands in an older cell is written as
+// the printer does.
 func (c *checking) text(n ast.Node) string {
-	from, to := c.p.src.offset(c.s.fset, n.Pos()), c.p.src.offset(c.s.fset, n.End())
-	if from < 0 || to > len(c.p.src.Text) || from > to {
-		return ""
+	if c.s.fset.Position(n.Pos()).Filename == c.p.src.Name() {
+		from, to := c.p.src.offset(c.s.fset, n.Pos()), c.p.src.offset(c.s.fset, n.End())
+		if from >= 0 && to <= len(c.p.src.Text) && from <= to {
+			return c.p.src.Text[from:to]
+		}
 	}
-	return c.p.src.Text[from:to]
+	if e, ok := n.(ast.Expr); ok {
+		return types.ExprString(e)
+	}
+	return "..."
 }
 
 // parameters is a signature's list of parameters as a reader writes it.

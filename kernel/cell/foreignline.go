@@ -181,7 +181,7 @@ func (l *foreignLine) literal() string {
 		default:
 			continue
 		}
-		if w.tok == token.LBRACE && i == 0 {
+		if w.tok == token.LBRACE && (i == 0 || l.word(0).tok == token.FUNC) {
 			continue
 		}
 		depth, j := 0, i
@@ -244,6 +244,8 @@ func (l *foreignLine) logic() string {
 		switch {
 		case l.word(i).tok == token.ASSIGN && (l.word(i-1).tok == token.EQL || l.word(i-1).tok == token.NEQ):
 			return "write " + l.word(i-1).lit
+		case l.word(i).tok == token.ASSIGN && l.word(i-1).tok == token.ASSIGN:
+			return "write one = to assign, == to compare"
 		case l.word(i).tok == token.GTR && l.word(i-1).tok == token.LSS:
 			return "write !="
 		case l.word(i).tok == token.INC || l.word(i).tok == token.DEC:

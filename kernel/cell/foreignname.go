@@ -108,6 +108,9 @@ func (c *checking) foreignName(path []ast.Node, name string) string {
 	if b, ok := parent.(*ast.BinaryExpr); ok && name == "cout" {
 		return "write fmt.Println(" + c.text(b.Y) + ")"
 	}
+	if _, ok := parent.(*ast.BinaryExpr); !ok && len([]rune(name)) == 1 && name != "π" && name != "ħ" {
+		return "" // a name of the user's own, most likely
+	}
 	if how := constantNames[name]; how != "" {
 		return "write " + how
 	}

@@ -280,6 +280,7 @@ func TestWrongCells(t *testing.T) {
 		{"if x > 1:\n    y = 2", "1:9 write if x > 1 { ... }"},
 		{"if x > 1 {\n}\nelse {\n}", "3:1 write } else { on one line"},
 		{"x === 2", "1:5 write =="},
+		{"x = = 3", "1:5 write one = to assign, == to compare"},
 		{"if x <> 1 {\n}", "1:7 write !="},
 		{"if not (x > 1) {\n}", "1:4 write ! for not"},
 		{"class Foo:", "1:7 write type Foo struct { ... }, and methods as func (x Foo) Name() { ... }"},
