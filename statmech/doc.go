@@ -103,3 +103,5 @@
 // an argument outside its domain, except the functions of package special,
 // which say so.
 package statmech
+
+//go:generate go run accuracy.go

@@ -88,7 +88,7 @@ func TestLevelsSchottky(t *testing.T) {
 			}
 		}
 	}
-	t.Logf("largest relative departure / (1+x): %.1e", worst)
+	t.Logf("accuracy: Levels, Schottky | ln q, U, C of two levels, x = E/kT from 1e-4 to 200 | relative, over 1+x | %.3g | 1e-15 | 20 digits (mpmath)", worst)
 }
 
 // Maximum of the Schottky heat capacity: mpmath, 12 digits.
@@ -196,7 +196,7 @@ func TestLevelsTable(t *testing.T) {
 			worst = math.Max(worst, math.Abs(x))
 		}
 	}
-	t.Logf("largest departure %.1e", worst)
+	t.Logf("accuracy: Levels.ReducedAt | 40000 levels at 100 temperatures | relative | %.3g | 5e-14 | the direct sum", worst)
 	if worst > 5e-14 {
 		t.Errorf("table and direct sum differ by %.1e", worst)
 	}
@@ -216,15 +216,18 @@ func TestLevelsTableClosedForm(t *testing.T) {
 	for i := range ts {
 		ts[i] = unit.Temperature(20 + 5*i)
 	}
+	largest := 0.0
 	for i, r := range l.ReducedAt(ts) {
 		x := theta / float64(ts[i])
 		lnq := -math.Log(-math.Expm1(-x))
 		U := x / math.Expm1(x)
 		C := x * x * math.Exp(x) / (math.Expm1(x) * math.Expm1(x))
+		largest = max(largest, relDiff(r.LogQ, lnq), relDiff(r.U, U), relDiff(r.C, C))
 		if relDiff(r.LogQ, lnq) > 2e-14 || relDiff(r.U, U) > 2e-14 || relDiff(r.C, C) > 2e-14 {
 			t.Errorf("T = %v: %+v, want %.16g %.16g %.16g", ts[i], r, lnq, U, C)
 		}
 	}
+	t.Logf("accuracy: Levels.ReducedAt | 200000 equally spaced levels at 40 temperatures | relative | %.3g | 2e-14 | closed forms", largest)
 }
 
 // Shifting all energies leaves the functions: exactly where the shift is

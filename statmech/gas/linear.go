@@ -22,8 +22,8 @@ import (
 //
 // ln q counts energies from the lowest level with a weight.
 //
-// Accuracy: 1e-12 relative in q, U and C against 16-digit sums for B/kT from
-// 1e-3 to 6 (TestLinearRotorAccuracy).
+// Accuracy: 1e-12 max(1, B/kT) relative in q, U and C against 16-digit sums for
+// B/kT from 1e-3 to 6 (TestLinearRotorAccuracy).
 type LinearRotor struct {
 	B, D      unit.Energy
 	Symmetry  int

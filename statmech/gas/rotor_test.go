@@ -69,6 +69,7 @@ func top(t testing.TB) func(*Top, error) *Top {
 }
 
 func TestLinearRotorAccuracy(t *testing.T) {
+	largest := 0.0
 	const theta = 100.0
 	B := unit.Energy(theta) * unit.KelvinEnergy
 	h2 := LinearRotor{B: B, Spin: &SpinWeights{Weights: []float64{1, 3}, Total: 4}}
@@ -94,11 +95,13 @@ func TestLinearRotorAccuracy(t *testing.T) {
 			{"ortho D2", ortho, v("D2 equilibrium ortho fraction")}, {"C D2", d2.Reduced(T).C, v("C/R equilibrium D2")},
 			{"C normal H2", (even.C + 3*o.C) / 4, v("C/R normal H2 (1:3)")},
 		} {
+			largest = max(largest, rel(c.got, c.want)/max(1, x))
 			if rel(c.got, c.want) > 1e-12*math.Max(1, x) {
 				t.Errorf("θ/T = %g: %s = %.15g, want %.15g", x, c.what, c.got, c.want)
 			}
 		}
 	}
+	t.Logf("accuracy: LinearRotor | q, U, C, spin isomers for B/kT from 1e-3 to 6 | relative, over max(1, B/kT) | %.3g | 1e-12 | 16 digits (mpmath)", largest)
 }
 
 // Hydrogen from B0 and D0 against measured term values and Woolley's table.
@@ -211,6 +214,10 @@ func TestTopAccuracy(t *testing.T) {
 // The continuation meets the sum: a top is made with a larger J limit and the
 // two are compared above the reach of the smaller one.
 func TestTopContinuation(t *testing.T) {
+	all := 0.0
+	defer func() {
+		t.Logf("accuracy: Top, continuation above the levels | ln q, U, C of 7 tops where both meet | relative | %.3g | 1e-9 | the sum with twice as many J", all)
+	}()
 	for _, c := range [][3]float64{{27.8806, 14.5216, 9.2778}, {8, 0.43, 0.41}, {9.7, 9.7, 6.3}, {5.2, 0.44, 0.44}, {5.24, 5.24, 5.24}, {1, 0.7, 0.412}, {1, 0.55, 0.355}} {
 		A, B, C := unit.Energy(c[0])*unit.PerCm, unit.Energy(c[1])*unit.PerCm, unit.Energy(c[2])*unit.PerCm
 		small, large := top(t)(NewTop(A, B, C, 1, nil)), top(t)(NewTop(A, B, C, 1, nil))
@@ -223,6 +230,7 @@ func TestTopContinuation(t *testing.T) {
 			worst = math.Max(worst, math.Max(math.Abs(x.LogQ-y.LogQ), math.Max(math.Abs(x.U-y.U), math.Abs(x.C-y.C))))
 		}
 		t.Logf("%v cm-1: reach %.4g K, J <= %d, largest departure %.1e", c, small.reach, small.jMax, worst)
+		all = max(all, worst)
 		if worst > 1e-9 {
 			t.Errorf("%v cm-1: continuation departs by %.1e", c, worst)
 		}

@@ -46,7 +46,8 @@ func (m TorsionMethod) String() string {
 // half a quantum above the minimum (PitzerGwinn) or from the minimum
 // (ClassicalTorsion).
 //
-// Accuracy: levels 1e-9 cm⁻¹ (TestTorsionLevels), S and C 1e-8 k.
+// Accuracy: levels 2e-8 cm⁻¹ (TestTorsionLevels), S, C and U 1e-8 of
+// max(k, their size) (TestHinderedRotorTable).
 //
 // References: K. S. Pitzer, W. D. Gwinn, J. Chem. Phys. 10, 428 (1942); A. L. L.
 // East, L. Radom, J. Chem. Phys. 106, 6655 (1997).

@@ -81,7 +81,7 @@ func TestEquilibriumConstantsPublished(t *testing.T) {
 		t.Fatal(err)
 	}
 	made := map[string]*Reaction{}
-	n := 0
+	n, largest := 0, 0.0
 	for _, row := range rows[1:] {
 		e, ok := equations[row[0]]
 		T := unit.Temperature(value(row[1]))
@@ -100,10 +100,12 @@ func TestEquilibriumConstantsPublished(t *testing.T) {
 			continue
 		}
 		n++
+		largest = max(largest, math.Abs(r.LogK(T)-value(row[4])*math.Ln10))
 		if d := r.LogK(T) - value(row[4])*math.Ln10; math.Abs(d) > 0.01 {
 			t.Errorf("%s at %v: ln K differs by %+.4f", row[0], T, d)
 		}
 	}
+	t.Logf("accuracy: Reaction.LogK | %d constants of 9 reactions, ΔrH given | of ln K | %.3g | 0.01 | NASA/TP-2002-211556", n, largest)
 	if n < 40 {
 		t.Errorf("only %d constants compared", n)
 	}

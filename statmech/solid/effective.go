@@ -37,7 +37,7 @@ type EffectiveTheta struct {
 // the curve, and its Problem says why. u holds the standard uncertainties of
 // cv.
 //
-// Accuracy: 1e-12 relative times the amplification (TestEffectiveThetas).
+// Accuracy: 1e-14 relative, times the amplification where that is above 1 (TestEffectiveThetas).
 //
 // Errors: an error if lengths differ, a temperature is not positive and
 // finite, an uncertainty is negative or not finite, a heat capacity is not

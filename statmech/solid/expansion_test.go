@@ -63,7 +63,9 @@ func TestEffectiveThetas(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
+	largest := 0.0
 	for _, e := range curve {
+		largest = max(largest, math.Abs(float64(e.Theta/d.Theta-1))/max(1, e.Amplification))
 		if diff := math.Abs(float64(e.Theta - d.Theta)); diff > 343.2*1e-14*max(1, e.Amplification) || e.T < d.Theta/2 && diff > 0.01 {
 			t.Errorf("at %v: %v, off by %g (amplification %g)", e.T, e.Theta, diff, e.Amplification)
 		}
@@ -71,6 +73,7 @@ func TestEffectiveThetas(t *testing.T) {
 			t.Errorf("at %v: %v in %v … %v, u %v", e.T, e.Theta, e.Low, e.High, e.U)
 		}
 	}
+	t.Logf("accuracy: EffectiveThetas | T/θ from 0.002 to 50 | relative, over the amplification | %.3g | 1e-14 | the model inverted", largest)
 	// |d ln θ/d ln C| = 0.33 (T << θ), 0.84 (θ/4), 2.7 (θ/2), 10.2 (θ), 40 (2θ),
 	// computed with 50 digits.
 	for _, test := range []struct{ ratio, want, half float64 }{{0.01, 1.0 / 3, 1e-6}, {0.25, 0.84, 0.005}, {0.5, 2.7, 0.05}, {1, 10.2, 0.05}, {2, 40, 0.5}} {

@@ -61,7 +61,7 @@ type PhononTable struct {
 //
 // Accuracy: the integrals over this g are good to 1e-12 relative
 // (TestPhononsQuadrature), so that a parabola on 1000 points gives Debye's
-// functions to 1e-5 and better (TestPhononsDebye). How well the points describe
+// functions to 1e-8 (TestPhononsDebye). How well the points describe
 // the crystal is another matter.
 //
 // A Phonons may be used by several goroutines. Its methods panic with a

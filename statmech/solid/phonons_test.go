@@ -25,6 +25,10 @@ func parabola(n int, theta float64, u unit.Energy, integral float64) PhononTable
 }
 
 func TestPhononsDebye(t *testing.T) {
+	worst := 0.0
+	defer func() {
+		t.Logf("accuracy: Phonons, 1001 rows growing as ω² | C, S, ln q, U for T/θ from 0.02 to 2 | relative | %.3g | 1e-8 | Debye's functions", worst)
+	}()
 	const theta = 400.0
 	d := Debye{Theta: theta * unit.K}
 	for name, u := range map[string]unit.Energy{"THz": unit.THzEnergy, "meV": unit.MilliEV, "cm-1": unit.PerCm} {
@@ -49,7 +53,7 @@ func TestPhononsDebye(t *testing.T) {
 				}
 			}
 		}
-		t.Logf("%s: largest relative difference from Debye's functions %.2g", name, largest)
+		worst = max(worst, largest)
 		near(t, "zero-point energy", float64(p.ZeroPointEnergy()), float64(d.ZeroPointEnergy()), 1e-9)
 		for _, n := range []float64{-2.5, -2, -1, 0, 1, 2, 4} {
 			m, err := p.MomentTheta(n)

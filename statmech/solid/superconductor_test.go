@@ -21,16 +21,12 @@ func TestSuperconductor(t *testing.T) {
 			e := math.Abs(got/(float64(gamma)*float64(T))/number(t, row[2+i]) - 1)
 			largest = max(largest, e)
 			// Half an eps of t moves the exponent Δ/kT by up to 40 half eps.
-			limit := 1e-11
-			if i == 1 {
-				limit = 1e-9 // S = ln q + U, and ln q is a quadrature
-			}
-			if !(e <= limit) {
+			if !(e <= 1e-11) {
 				t.Errorf("gap %s, t = %s: column %d = %.16g, off by %.2g", row[0], row[1], i, got/(float64(gamma)*float64(T)), e)
 			}
 		}
 	}
-	t.Logf("largest relative difference %.2g", largest)
+	t.Logf("accuracy: Superconductor | C and S from 0.06 to 0.97 Tc | relative | %.3g | 1e-11 | 15 digits (mpmath)", largest)
 	// The jump of weak coupling, 12/(7ζ(3)) = 1.42613 γTc, ζ(3) = 1.2020569.
 	s := Superconductor{Gamma: gamma, Tc: 9.25 * unit.K}
 	jump := float64(s.HeatCapacity(s.Tc*(1-1e-9))/s.HeatCapacity(s.Tc)) - 1

@@ -13,8 +13,8 @@ func TestExpIntegralAccuracy(t *testing.T) {
 			w[n].see(t, "E", row[0], ExpIntegral(n, x), exactly(t, row[n]), 0, 12)
 		}
 	}
-	w[1].log(t, "E_1")
-	w[2].log(t, "E_2")
+	w[1].log(t, "ExpIntegral, order 1", "")
+	w[2].log(t, "ExpIntegral, order 2", "")
 }
 
 func TestExpIntegralSpecialCases(t *testing.T) {

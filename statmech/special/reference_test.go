@@ -68,10 +68,13 @@ func difference(got float64, want *big.Float) float64 {
 	return d
 }
 
-// worst keeps the largest error of one function and where it was.
+// worst keeps the largest error of one function, where it was, and between
+// which arguments it was looked for.
 type worst struct {
-	err   float64
-	where string
+	err, limit float64
+	where      string
+	from, to   float64
+	n          int
 }
 
 // see compares got with want. The error is |got-want|/max(|want|, floor) in
@@ -90,12 +93,25 @@ func (w *worst) see(t testing.TB, what, where string, got float64, want *big.Flo
 	if e > w.err {
 		w.err, w.where = e, where
 	}
+	x := number(t, where[strings.LastIndex(where, " ")+1:]) // "order, argument" or "argument"
+	if w.n == 0 {
+		w.from, w.to = x, x
+	}
+	w.from, w.to, w.limit = min(w.from, x), max(w.to, x), max(w.limit, limit)
+	w.n++
 	if !(e <= limit) {
 		t.Errorf("%s(%s) = %.17g, want %.17g: %.3g eps, limit %g", what, where, got, ref, e, limit)
 	}
 }
 
-func (w *worst) log(t testing.TB, what string) {
+// log writes what the test found as a line of the table of accuracies (go
+// generate levelsum/statmech). of says what the error is relative to, if that
+// is not the value.
+func (w *worst) log(t testing.TB, what, of string) {
 	t.Helper()
-	t.Logf("%s: largest error %.2f eps at %s", what, w.err, w.where)
+	if of == "" {
+		of = "relative"
+	}
+	t.Logf("largest error %.2f eps at %s", w.err, w.where)
+	t.Logf("accuracy: %s | %d arguments from %.3g to %.3g | eps, %s | %.3g | %g | 30 digits (mpmath)", what, w.n, w.from, w.to, of, w.err, w.limit)
 }
