@@ -3,6 +3,7 @@ package display
 import (
 	"fmt"
 	"math"
+	"regexp"
 	"strings"
 
 	"levelsum/display/internal/mark"
@@ -217,6 +218,16 @@ func (r *stepRead) follows(i int) bool {
 	return false
 }
 
+// alone reports whether slot i is all that a group holds, such as a part of a
+// fraction, so that its number needs no brackets.
+func (r *stepRead) alone(i int) bool {
+	if i == 0 || i == len(r.pieces)-1 || r.pieces[i-1].slot != "" || r.pieces[i+1].slot != "" {
+		return false
+	}
+	before, after := strings.TrimRight(r.pieces[i-1].text, " "), strings.TrimLeft(r.pieces[i+1].text, " ")
+	return strings.HasSuffix(before, "{") && strings.HasPrefix(after, "}") && !strings.HasPrefix(after, "}^")
+}
+
 func (r *stepRead) numbers() string {
 	var b strings.Builder
 	for i, p := range r.pieces {
@@ -228,7 +239,7 @@ func (r *stepRead) numbers() string {
 			b.WriteString("{" + r.latex[p.slot] + "}")
 		default:
 			s := v.math("")
-			if strings.ContainsAny(s, `-\(`) || r.follows(i) {
+			if (strings.ContainsAny(s, `-\(`) || r.follows(i)) && !r.alone(i) {
 				s = `\left(` + s + `\right)`
 			}
 			b.WriteString("{" + s + "}")
@@ -292,7 +303,33 @@ func (d Derivation) View() View {
 
 // display math must be one paragraph and must not hold what begins HTML.
 func mathBlock(s string) string {
-	return strings.NewReplacer("\n", " ", "<", `\lt `, ">", `\gt `).Replace(mark.Clean(s))
+	return strings.NewReplacer("\n", " ", "< ", "< ", "<", "< ").Replace(mark.Clean(s))
+}
+
+// htmlRelations are the names by which MathJax knows < and >; LaTeX has none.
+var htmlRelations = regexp.MustCompile(`\\[lg]t\b ?`)
+
+// latexMath writes a formula for LaTeX itself.
+func latexMath(s string) string {
+	return htmlRelations.ReplaceAllStringFunc(s, func(m string) string {
+		if m[1] == 'l' {
+			return "<"
+		}
+		return ">"
+	})
+}
+
+// latexProse writes a sentence with formulas between dollar signs for LaTeX.
+func latexProse(s string) string {
+	var b strings.Builder
+	for i, part := range strings.Split(strings.ReplaceAll(s, `\$`, "\x00"), "$") {
+		if i%2 == 1 {
+			b.WriteString("$" + latexMath(part) + "$")
+			continue
+		}
+		b.WriteString(mark.EscapeLaTeX(strings.ReplaceAll(part, "\x00", "$")))
+	}
+	return b.String()
 }
 
 func (r *stepRead) markdown(b *strings.Builder) {
@@ -300,7 +337,7 @@ func (r *stepRead) markdown(b *strings.Builder) {
 		in := false
 		b.WriteString(safeMarkdown(r.Text, &in) + "\n\n")
 	}
-	b.WriteString("$$" + mathBlock(r.symbols()) + "$$\n\n")
+	b.WriteString("$$" + mathBlock(breakFormula(r.symbols())) + "$$\n\n")
 	if len(r.Symbols) > 0 {
 		b.WriteString("| symbol | meaning | value |\n|:--|:--|:--|\n")
 		for _, y := range r.Symbols {
@@ -313,10 +350,10 @@ func (r *stepRead) markdown(b *strings.Builder) {
 		b.WriteString("\n")
 	}
 	if r.hasNumbers() {
-		b.WriteString("$$" + mathBlock(r.numbers()) + "$$\n\n")
+		b.WriteString("$$" + mathBlock(breakFormula(r.numbers())) + "$$\n\n")
 	}
 	if r.Result != "" {
-		b.WriteString("$$" + mathBlock(r.result()) + "$$\n\n")
+		b.WriteString("$$" + mathBlock(breakFormula(r.result())) + "$$\n\n")
 	}
 	if r.Source != "" {
 		b.WriteString("Source: " + escapeMarkdown(r.Source) + "\n\n")
@@ -325,9 +362,9 @@ func (r *stepRead) markdown(b *strings.Builder) {
 
 func (r *stepRead) tex(b *strings.Builder) {
 	if r.Text != "" {
-		b.WriteString(r.Text + "\n")
+		b.WriteString(latexProse(r.Text) + "\n")
 	}
-	b.WriteString("\\[" + r.symbols() + "\\]\n")
+	b.WriteString("\\[" + latexMath(breakFormula(r.symbols())) + "\\]\n")
 	if len(r.Symbols) > 0 {
 		b.WriteString("\\begin{tabular}{lll}\n")
 		for _, y := range r.Symbols {
@@ -340,7 +377,7 @@ func (r *stepRead) tex(b *strings.Builder) {
 		b.WriteString("\\end{tabular}\n")
 	}
 	if r.hasNumbers() {
-		b.WriteString("\\[" + r.numbers() + "\\]\n")
+		b.WriteString("\\[" + latexMath(breakFormula(r.numbers())) + "\\]\n")
 	}
 	if r.Result != "" {
 		b.WriteString("\\[" + r.result() + "\\]\n")

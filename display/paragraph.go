@@ -97,8 +97,11 @@ func safeMarkdown(s string, inMath *bool) string {
 			}
 			b.WriteByte('$')
 			*inMath = !*inMath
-		case c == '<' && *inMath:
-			b.WriteString(`\lt `)
+		case c == '<' && *inMath: // no tag begins with a space
+			b.WriteByte('<')
+			if i+1 == len(s) || s[i+1] != ' ' {
+				b.WriteByte(' ')
+			}
 		case c == '<':
 			b.WriteString("&lt;")
 		default:

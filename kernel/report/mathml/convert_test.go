@@ -50,6 +50,8 @@ func TestStyles(t *testing.T) {
 		{`\displaystyle\sum_i x`, Inline, `<munder>`},
 		{`\int_0^1 x`, Display, `<msubsup>`},
 		{`\begin{aligned}\sum_i x\end{aligned}`, Inline, `<munder>`},
+		// As package display breaks long formulas.
+		{`\begin{aligned} {S}& = -{k} \bigl( {a} \\ &\quad {} + {b} \bigr) \end{aligned}`, Display, `<mtable`},
 	} {
 		if got := presentation(t, test.formula, test.style); !strings.Contains(got, test.want) {
 			t.Errorf("%s: no %s in %s", test.formula, test.want, got)
