@@ -37,7 +37,7 @@ func Math(rs []Run) string {
 	return b.String()
 }
 
-func math(g group) string {
+func math(g shifted) string {
 	var b strings.Builder
 	for _, r := range g.runs {
 		if r.Italic {
@@ -49,7 +49,8 @@ func math(g group) string {
 			b.WriteString(strings.ReplaceAll(text, "−", "-"))
 			continue
 		}
-		b.WriteString(`\mathrm{` + greekToLaTeX(strings.ReplaceAll(mathEscape(text), " ", `\ `)) + "}")
+		text = strings.ReplaceAll(mathEscape(strings.ReplaceAll(text, "−", "-")), " ", `\ `)
+		b.WriteString(`\mathrm{` + greekToLaTeX(text) + "}")
 	}
 	switch g.shift {
 	case 1:

@@ -54,9 +54,25 @@ func parse(s string, how manner) []Run {
 		}
 		out = append(out, italics(text, shift)...)
 	}
+	known := how != upright && substances(s) // then H_2 is a substance too
 	var plain strings.Builder
-	for s != "" {
+	for whole := s; s != ""; {
+		if at := len(whole) - len(s); how != upright && s[0] >= 'A' && s[0] <= 'Z' && wordBegins(whole, at) {
+			n, sure := chemical(s)
+			of := at > 0 && whole[at-1] == '(' && strings.HasPrefix(s[n:], ")") // as in p(O_2)
+			if sure == surely || sure == perhaps && (known || of && how == symbols && at > 1) {
+				add(plain.String(), 0)
+				plain.Reset()
+				out = append(out, substance(s[:n])...)
+				hung = false
+				s = s[n:]
+				continue
+			}
+		}
 		switch c := s[0]; {
+		case c == '-' && symbol && isMinus(whole, len(whole)-len(s)):
+			plain.WriteString("−")
+			s = s[1:]
 		case (c == '_' || c == '^') && len(s) > 1 && s[1] != ' ':
 			shift := -1
 			if c == '^' {
@@ -90,8 +106,14 @@ func parse(s string, how manner) []Run {
 				}
 			}
 			add(base, 0)
-			add(greek(body), shift)
+			add(minus(greek(body)), shift)
 			s = rest
+		case strings.HasPrefix(s, `\mathrm{`) || strings.HasPrefix(s, `\text{`):
+			add(plain.String(), 0)
+			plain.Reset()
+			body, rest := group(s[strings.IndexByte(s, '{'):])
+			out = append(out, parse(body, upright)...)
+			s, hung = rest, false
 		case c == '\\':
 			name := letters(s[1:])
 			if g, ok := greekLetters[name]; ok {
@@ -120,6 +142,39 @@ func parse(s string, how manner) []Run {
 	}
 	add(plain.String(), 0)
 	return out
+}
+
+// isMinus reports whether the hyphen at i is the sign of what follows, as in
+// exp(-E/kT), and not part of a word.
+func isMinus(s string, i int) bool {
+	return i+1 < len(s) && (i == 0 && s[1] != ' ' || i > 0 && strings.IndexByte("( =,", s[i-1]) >= 0)
+}
+
+// minus sets the sign of a power or index.
+func minus(s string) string {
+	if rest, ok := strings.CutPrefix(s, "-"); ok && (rest == "" || strings.Trim(rest, "0123456789./") == "" || letters(rest) == rest) {
+		return "−" + rest
+	}
+	if rest, ok := strings.CutSuffix(s, "-"); ok && rest != "" && strings.Trim(rest, "0123456789") == "" {
+		return rest + "−" // the charge of an ion
+	}
+	return s
+}
+
+// group takes a group in braces from the front of s, braces in it included.
+func group(s string) (body, rest string) {
+	depth := 0
+	for i := 0; i < len(s); i++ {
+		switch s[i] {
+		case '{':
+			depth++
+		case '}':
+			if depth--; depth == 0 {
+				return s[1:i], s[i+1:]
+			}
+		}
+	}
+	return s[1:], ""
 }
 
 // argument takes the argument of _ or ^ from the front of s: a braced group, a
@@ -196,6 +251,11 @@ func italics(text string, shift int) []Run {
 			continue
 		}
 		word := rs[i:j]
+		if products[string(word)] && shift == 0 {
+			push(string(word), true)
+			i = j
+			continue
+		}
 		it := len(word) == 1 && !(unicode.Is(unicode.Greek, word[0]) && unicode.IsUpper(word[0]))
 		if it && shift < 0 {
 			it = strings.ContainsRune("pVTxnij", word[0])
@@ -205,6 +265,9 @@ func italics(text string, shift int) []Run {
 	}
 	return out
 }
+
+// products of symbols that are written without a space.
+var products = map[string]bool{"kT": true, "RT": true, "nRT": true, "pV": true, "hc": true, "hν": true, "ħω": true}
 
 var greekLetters = map[string]string{
 	"alpha": "α", "beta": "β", "gamma": "γ", "delta": "δ", "epsilon": "ε",
@@ -285,12 +348,13 @@ func Superscript(s string) (string, bool) {
 	return b.String(), true
 }
 
-type group struct {
+// shifted is a stretch of runs on one height.
+type shifted struct {
 	shift int
 	runs  []Run
 }
 
-func (g group) text() string {
+func (g shifted) text() string {
 	var b strings.Builder
 	for _, r := range g.runs {
 		b.WriteString(r.Text)
@@ -299,14 +363,14 @@ func (g group) text() string {
 }
 
 // groups joins neighbouring runs of the same shift.
-func groups(rs []Run) []group {
-	var out []group
+func groups(rs []Run) []shifted {
+	var out []shifted
 	for _, r := range rs {
 		if n := len(out); n > 0 && out[n-1].shift == r.Shift {
 			out[n-1].runs = append(out[n-1].runs, r)
 			continue
 		}
-		out = append(out, group{shift: r.Shift, runs: []Run{r}})
+		out = append(out, shifted{shift: r.Shift, runs: []Run{r}})
 	}
 	return out
 }

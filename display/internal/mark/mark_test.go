@@ -37,7 +37,7 @@ func TestLabel(t *testing.T) {
 		{"T_{trs}, a phase", "<i>T</i><sub>trs</sub>, a phase", "T<sub>trs</sub>, a phase"},
 		{"x² and C_p^2", "x<sup>2</sup> and <i>C</i><sub><i>p</i></sub><sup>2</sup>", "x<sup>2</sup> and C<sub>p</sub><sup>2</sup>"},
 		{"^3P_2", "<sup>3</sup><i>P</i><sub>2</sub>", "<sup>3</sup>P<sub>2</sub>"},
-		{"10^{-3} kg, A1_x", "10<sup>-3</sup> kg, A1_x", "10<sup>-3</sup> kg, A1<sub>x</sub>"},
+		{"10^{-3} kg, A1_x", "10<sup>−3</sup> kg, A1_x", "10<sup>−3</sup> kg, A1<sub>x</sub>"},
 		{"alloy_run_7.csv", "alloy_run_7.csv", "alloy<sub>r</sub>un<sub>7</sub>.csv"},
 	} {
 		if got := HTML(Label(test.in)); got != test.label {
@@ -46,6 +46,44 @@ func TestLabel(t *testing.T) {
 		if got := HTML(Upright(test.in)); got != test.upright {
 			t.Errorf("Upright(%q): %s, want %s", test.in, got, test.upright)
 		}
+	}
+}
+
+// Formulas of substances are upright, quantities with numbers below are not.
+func TestSubstances(t *testing.T) {
+	for _, test := range []struct{ in, symbol, label string }{
+		{"n(H_{2}O)", "<i>n</i>(H<sub>2</sub>O)", "n(H<sub>2</sub>O)"},
+		{"CO_2 + H₂", "CO<sub>2</sub> + H<sub>2</sub>", "CO<sub>2</sub> + H<sub>2</sub>"},
+		{"K(2 H_{2}O = 2 H_2 + O_2)", "<i>K</i>(2 H<sub>2</sub>O = 2 H<sub>2</sub> + O<sub>2</sub>)", "K(2 H<sub>2</sub>O = 2 H<sub>2</sub> + O<sub>2</sub>)"},
+		{"p(O_2)", "<i>p</i>(O<sub>2</sub>)", "p(<i>O</i><sub>2</sub>)"},
+		{"CH_3CH_2OH", "CH<sub>3</sub>CH<sub>2</sub>OH", "CH<sub>3</sub>CH<sub>2</sub>OH"},
+		{"Al_2(SO_4)_3", "Al<sub>2</sub>(SO<sub>4</sub>)<sub>3</sub>", "Al<sub>2</sub>(SO<sub>4</sub>)<sub>3</sub>"},
+		{"SO_4^{2-}", "SO<sub>4</sub><sup>2−</sup>", "SO<sub>4</sub><sup>2−</sup>"},
+		{"2H_2O", "2H<sub>2</sub>O", "2H<sub>2</sub>O"},
+		{"H_2", "<i>H</i><sub>2</sub>", "<i>H</i><sub>2</sub>"},
+		{"N_1", "<i>N</i><sub>1</sub>", "<i>N</i><sub>1</sub>"},
+		{"B_2(T)", "<i>B</i><sub>2</sub>(<i>T</i>)", "<i>B</i><sub>2</sub>(T)"},
+		{"C_p", "<i>C</i><sub><i>p</i></sub>", "<i>C</i><sub><i>p</i></sub>"},
+		{"P_1V_1", "<i>P</i><sub>1</sub><i>V</i><sub>1</sub>", "<i>P</i><sub>1</sub><i>V</i><sub>1</sub>"},
+		{"run_2", "run<sub>2</sub>", "run_2"},
+		{`p(\mathrm{H})`, "<i>p</i>(H)", "p(H)"},
+		{`\text{run_{2}, C_p}`, "run<sub>2</sub>, C<sub>p</sub>", "run<sub>2</sub>, C<sub>p</sub>"},
+		{`g_i exp(-\epsilon_i/kT)`, "<i>g</i><sub><i>i</i></sub> exp(−<i>ε</i><sub><i>i</i></sub>/<i>kT</i>)", "<i>g</i><sub><i>i</i></sub> exp(-<i>ε</i><sub><i>i</i></sub>/kT)"},
+		{"third-law S", "third-law <i>S</i>", "third-law S"},
+		{"E - E_0", "<i>E</i> − <i>E</i><sub>0</sub>", "E - <i>E</i><sub>0</sub>"},
+	} {
+		if got := HTML(Symbol(test.in)); got != test.symbol {
+			t.Errorf("Symbol(%q): %s, want %s", test.in, got, test.symbol)
+		}
+		if got := HTML(Label(test.in)); got != test.label {
+			t.Errorf("Label(%q): %s, want %s", test.in, got, test.label)
+		}
+	}
+	if got, want := LaTeX(Symbol("n(H_{2}O)")), "$n$(H$_{2}$O)"; got != want {
+		t.Errorf("LaTeX %s, want %s", got, want)
+	}
+	if got, want := Math(Symbol("x^{-n}")), "x^{-n}"; got != want {
+		t.Errorf("Math %s, want %s", got, want)
 	}
 }
 
@@ -73,7 +111,7 @@ func TestSameUnit(t *testing.T) {
 }
 
 func FuzzMarkup(f *testing.F) {
-	for _, s := range []string{"C_{p,m}", `\theta_D^2`, "_", "^", "a_{", "x_\\", "J/(mol K)", "((", "1/", "m⁻¹", "\x00<", "é_é"} {
+	for _, s := range []string{"C_{p,m}", `\theta_D^2`, "_", "^", "a_{", "x_\\", "J/(mol K)", "((", "1/", `\mathrm{`, "H_2O", "Al_2(SO_4)_", `\text{}`, "m⁻¹", "\x00<", "é_é"} {
 		f.Add(s)
 	}
 	f.Fuzz(func(t *testing.T, s string) {
