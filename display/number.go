@@ -27,13 +27,19 @@ func round(v, u float64) rounded {
 	if !(u > 0) || math.IsInf(u, 0) {
 		return plainNumber(v, 10)
 	}
-	exp := 0
 	lead := math.Max(math.Abs(v), u)
 	if lead >= 1e7 || lead < 1e-4 || u >= 1e3 && lead >= 1e4 || u < 1e-9 {
-		exp = exponent(lead)
-		if w := scale10(lead, exp); roundsUp(w, scale10(u, exp)) {
-			exp++ // rounding carries 9.99 to 10.0
-		}
+		return roundScientific(v, u)
+	}
+	return roundAt(v, u, decimalsOf(u, 2))
+}
+
+// roundScientific rounds v by u with one digit before the point.
+func roundScientific(v, u float64) rounded {
+	lead := math.Max(math.Abs(v), u)
+	exp := exponent(lead)
+	if w := scale10(lead, exp); roundsUp(w, scale10(u, exp)) {
+		exp++ // rounding carries 9.99 to 10.0
 	}
 	sv, su := scale10(v, exp), scale10(u, exp)
 	d := decimalsOf(su, 2)
@@ -125,6 +131,14 @@ func plainNumber(v float64, n int) rounded {
 		r := strconv.FormatFloat(v, 'f', max(n-1-e, 0), 64)
 		return rounded{digits: trimZeros(r)}
 	}
+	return rounded{digits: trimZeros(m), exp: e}
+}
+
+// scientific writes a number that is not zero to at most n significant digits,
+// one before the point.
+func scientific(v float64, n int) rounded {
+	m, es, _ := strings.Cut(strconv.FormatFloat(v, 'e', n-1, 64), "e")
+	e, _ := strconv.Atoi(es)
 	return rounded{digits: trimZeros(m), exp: e}
 }
 

@@ -25,7 +25,10 @@ import (
 // all rows. Every value is rounded by its own uncertainty to two significant
 // digits of it (JCGM 100:2008, 7.2.6), the digits in parentheses. Without U the
 // column is rounded to Digits significant digits of its largest value, 6 if
-// Digits is 0; zeros at the end of all rows are dropped.
+// Digits is 0; zeros at the end of all rows are dropped. Where the smallest
+// value would keep fewer than three digits of that, every value is rounded to
+// Digits digits of its own; if most of them then need a power of ten, all have
+// one.
 type Column struct {
 	Quantity string // "C_{p,m}", "\theta_D"; words stay upright, symbols are italic
 	Unit     string // "J/(mol K)"
@@ -131,6 +134,12 @@ func (t Table) sheet() (*sheet, error) {
 		}
 		if q == "" {
 			q = col.kind
+		}
+		if i := strings.LastIndex(q, " / "); i > 0 && col.unit == "" { // a head as data files have it
+			q, col.unit = q[:i], strings.TrimSpace(q[i+3:])
+			if u := col.unit; strings.HasPrefix(u, "(") && strings.HasSuffix(u, ")") {
+				col.unit = u[1 : len(u)-1]
+			}
 		}
 		s.cols = append(s.cols, sheetColumn{column: col, quantity: q, digits: c.Digits})
 	}
@@ -248,6 +257,32 @@ func (c *sheetColumn) format(rows []int) {
 			c.cells[k] = rounded{digits: fixed(c.v[i], d)}
 		default:
 			c.cells[k] = plainNumber(c.v[i], digits)
+		}
+	}
+	c.agree(rows, digits)
+}
+
+// agree writes all numbers of a column with a power of ten if most of them
+// have one, so that they can be compared.
+func (c *sheetColumn) agree(rows []int, digits int) {
+	with, all := 0, 0
+	for _, r := range c.cells {
+		if r.word == "" && r.digits != "" && strings.Trim(r.digits, "-0.") != "" {
+			all++
+			with += min(1, max(r.exp, -r.exp))
+		}
+	}
+	if 2*with <= all {
+		return
+	}
+	for k, i := range rows {
+		r := c.cells[k]
+		switch {
+		case i < 0 || r.word != "" || r.exp != 0 || strings.Trim(r.digits, "-0.") == "":
+		case c.u != nil && c.u[i] > 0:
+			c.cells[k] = roundScientific(c.v[i], c.u[i])
+		default:
+			c.cells[k] = scientific(c.v[i], digits)
 		}
 	}
 }

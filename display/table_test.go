@@ -7,6 +7,7 @@ import (
 	"math"
 	"os"
 	"path/filepath"
+	"slices"
 	"strconv"
 	"strings"
 	"testing"
@@ -220,5 +221,55 @@ func BenchmarkTable(b *testing.B) {
 				tb.View()
 			}
 		})
+	}
+}
+
+// Columns whose numbers differ by many powers of ten: most with a power of ten
+// makes all have one, one alone does not; all align on the point.
+func TestTableOfMixedScales(t *testing.T) {
+	tab := Table{Columns: []Column{
+		{Quantity: "K", Unit: "1", Values: []float64{3.2e-18, 444, 1.25e7}},
+		{Quantity: "p", Unit: "1", Values: []float64{0.94, 0.0000012, 0.32}},
+		{Quantity: "k / (J mol-1)", Values: []estimate{{v: 3.2e-18, u: 2e-19}, {v: 444, u: 10}, {v: 1e7, u: 2e5}}},
+		{Quantity: "x", Unit: "1", Values: []float64{0.000123456789, 12.3456789, 98765.4321}},
+	}}
+	got := strings.Split(text(tab), "\n")
+	for i, parts := range [][]string{{"3.2×10⁻¹⁸", "0.94", "3.20(20)×10⁻¹⁸", "0.000123457"}, {"4.44×10²", "1.2×10⁻⁶", "4.44(10)×10²", "12.3457"},
+		{"1.25×10⁷", "0.32", "1.000(20)×10⁷", "98765.4"}} {
+		if fields := strings.Fields(got[i+2]); !slices.Equal(fields, parts) {
+			t.Errorf("row %d: %q, want %q", i+1, fields, parts)
+		}
+	}
+	if !strings.Contains(got[0], "k / (J mol⁻¹)") {
+		t.Errorf("head %q", got[0])
+	}
+	at := strings.Index(got[2], "3.2×")
+	if strings.Index(got[3], "4.44×") != at || strings.Index(got[4], "1.25×") != at {
+		t.Errorf("not aligned on the point:\n%s", strings.Join(got, "\n"))
+	}
+	html := tab.View().Data["text/html"].(string)
+	wellFormed(t, html)
+	if !strings.Contains(html, `>4<span style="display:inline-block;min-width:9ch;text-align:left">.44×10<sup>2</sup></span></td>`) {
+		t.Errorf("no box behind the point in\n%s", html)
+	}
+}
+
+// Words are set as labels are, and keep their hyphens.
+func TestTableOfWords(t *testing.T) {
+	tab := Table{Columns: []Column{
+		{Quantity: "name", Values: []string{"θ_D", "third-law H_2O", "run_7 <b>", strings.Repeat("long ", 8)}},
+		{Quantity: "unit", Values: []string{"K", "J K-1 mol-1", "1", "cm-1"}},
+	}}
+	v := tab.View()
+	for _, want := range []string{">θ_D<", "<i>θ</i><sub>D</sub>", "third-law H<sub>2</sub>O", "run_7 &lt;b&gt;", "min-width:16em", "J\u00a0K<sup>−1</sup>\u00a0mol<sup>−1</sup>"} {
+		if has := strings.Contains(v.Data["text/html"].(string), want); has == (want == ">θ_D<") {
+			t.Errorf("%q in the HTML: %v\n%s", want, has, v.Data["text/html"])
+		}
+	}
+	if s := v.Data["text/plain"].(string); !strings.Contains(s, "third-law H_2O") || !strings.Contains(s, "J K-1 mol-1") {
+		t.Errorf("the text is not as given:\n%s", s)
+	}
+	if s := v.Data["text/latex"].(string); !strings.Contains(s, `third-law H$_{2}$O & J~K$^{-1}$~mol$^{-1}$`) {
+		t.Errorf("LaTeX\n%s", s)
 	}
 }

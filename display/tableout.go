@@ -3,6 +3,7 @@ package display
 import (
 	"encoding/csv"
 	"fmt"
+	"math"
 	"strconv"
 	"strings"
 	"unicode/utf8"
@@ -126,6 +127,8 @@ func (s *sheet) html() string {
 	b.WriteString("<thead><tr>")
 	aligns := make([]string, len(s.cols))
 	tails := make([]int, len(s.cols))
+	powers := make([]float64, len(s.cols)) // widths of tails where some have a power of ten
+	wrap := make([]bool, len(s.cols))
 	for i := range s.cols {
 		c := &s.cols[i]
 		aligns[i] = "right"
@@ -135,14 +138,19 @@ func (s *sheet) html() string {
 		for k := range rows {
 			_, t := c.cells[k].parts(minus)
 			tails[i] = max(tails[i], utf8.RuneCountInString(t))
+			wrap[i] = wrap[i] || c.words() && utf8.RuneCountInString(c.cells[k].word) > longText
 		}
+		powers[i] = c.powerWidth()
 		fmt.Fprintf(&b, "<th scope=\"col\" "+th+">%s</th>", aligns[i], mark.HTML(mark.Over(c.quantity, c.unit)))
 	}
 	b.WriteString("</tr></thead>\n<tbody>\n")
 	cell, ruled := make([]string, len(s.cols)), make([]string, len(s.cols))
 	for i := range s.cols {
 		cell[i] = fmt.Sprintf("<td "+td+">", aligns[i])
-		ruled[i] = strings.Replace(cell[i], "white-space", "border-bottom:"+rule+";white-space", 1)
+		if wrap[i] {
+			cell[i] = strings.Replace(cell[i], "white-space:nowrap", "min-width:16em", 1)
+		}
+		ruled[i] = strings.Replace(cell[i], "padding", "border-bottom:"+rule+";padding", 1)
 	}
 	for k, row := range rows {
 		if row < 0 {
@@ -157,9 +165,14 @@ func (s *sheet) html() string {
 			} else {
 				b.WriteString(cell[i])
 			}
-			b.WriteString(c.cells[k].html())
-			if !c.words() && c.cells[k].exp == 0 {
-				_, t := c.cells[k].parts(minus)
+			switch r := c.cells[k]; {
+			case c.words():
+				b.WriteString(mark.HTML(c.typeset(r.word)))
+			case powers[i] > 0:
+				b.WriteString(r.htmlAligned(powers[i]))
+			default:
+				b.WriteString(r.html())
+				_, t := r.parts(minus)
 				b.WriteString(filler(t, tails[i]))
 			}
 			b.WriteString("</td>")
@@ -171,6 +184,50 @@ func (s *sheet) html() string {
 		b.WriteString(`<p style="margin:0.2em 0;font-size:0.9em;color:inherit">` + mark.HTML(mark.Label(n)) + "</p>\n")
 	}
 	return b.String()
+}
+
+// longText is the number of characters above which text may take several lines.
+const longText = 28
+
+// typeset is how text in a cell is set: as a label, a unit in a column of units.
+func (c *sheetColumn) typeset(s string) []mark.Run {
+	if c.quantity == "unit" {
+		return mark.AsWritten(s)
+	}
+	return mark.Label(s)
+}
+
+// powerWidth returns the room for what follows the integers of a column, in
+// widths of a digit; 0 where no number has a power of ten.
+func (c *sheetColumn) powerWidth() float64 {
+	w, some := 0.0, false
+	for _, r := range c.cells {
+		_, t := r.parts(minus)
+		n := float64(utf8.RuneCountInString(t))
+		if r.exp != 0 {
+			some = true
+			n += 3.5 + 0.9*float64(len(strconv.Itoa(r.exp)))
+		}
+		w = math.Max(w, n)
+	}
+	if !some {
+		return 0
+	}
+	return math.Ceil(w)
+}
+
+// htmlAligned writes a number with what follows its integers in a box, so that
+// numbers with and without a power of ten align on the point.
+func (r rounded) htmlAligned(width float64) string {
+	s := r.html()
+	at := strings.IndexAny(s, ".(×")
+	if at < 0 {
+		at = len(s)
+	}
+	if r.word != "" && !r.split {
+		at = len(s)
+	}
+	return s[:at] + fmt.Sprintf(`<span style="display:inline-block;min-width:%gch;text-align:left">`, width) + s[at:] + "</span>"
 }
 
 // filler returns spaces as wide as the characters that a tail lacks: a figure
@@ -278,7 +335,7 @@ func (s *sheet) latex() string {
 			}
 			r := c.cells[k]
 			if c.words() {
-				b.WriteString(mark.EscapeLaTeX(r.word))
+				b.WriteString(mark.LaTeX(c.typeset(r.word)))
 				continue
 			}
 			if r.split {
