@@ -57,7 +57,10 @@ type Axis struct {
 	Unit     string // needed for plain numbers, known for typed quantities; "1" for none
 	In       any    // the unit itself, to convert a typed quantity: unit.PerCm
 	Log      bool
-	Min, Max float64 // both 0: from the data
+	// Min and Max limit the axis. Both 0: from the data; one alone leaves the
+	// other end to the data (Max alone begins at 0, unless Log). Of data beyond
+	// a limited x axis the y axes take no notice.
+	Min, Max float64
 	// Factor makes the right axis another scale for the same data: right = Factor × left.
 	Factor float64
 }

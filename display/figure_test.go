@@ -8,6 +8,8 @@ import (
 	"strconv"
 	"strings"
 	"testing"
+
+	"levelsum/display/internal/scene"
 )
 
 func line(T kelvin) molar { return molar(2 * float64(T)) }
@@ -219,5 +221,93 @@ func TestFigureResidualLabel(t *testing.T) {
 		if got := out.Panels[1].Y.Quantity; got != want {
 			t.Errorf("residuals of %s are called %s, want %s", quantity, got, want)
 		}
+	}
+	out, _, err := Figure{X: someT, Y: someC, Curve: line, Residuals: true, XAxis: tAxis}.read()
+	if err != nil {
+		t.Fatal(err)
+	}
+	if got := out.Panels[1].Y; got.Quantity != "residual" || got.Unit != "J/(mol K)" {
+		t.Errorf("residuals of a quantity that its type names in words: %s in %s", got.Quantity, got.Unit)
+	}
+}
+
+// The y axes cover what a limited x axis shows; one limit leaves the other end
+// to the data.
+func TestFigureLimits(t *testing.T) {
+	x, y := []kelvin{1, 2, 3, 100}, []molar{1, 2, 3, 1000}
+	u := []molar{0.1, 0.1, 0.1, 400}
+	for _, test := range []struct {
+		axis           Axis
+		x0, x1, y0, y1 float64 // y without the margin
+	}{
+		{Axis{Quantity: "T", Min: 0.5, Max: 4}, 0.5, 4, 0.9, 3.1},
+		{Axis{Quantity: "T", Max: 3}, 0, 3, 0.9, 3.1},
+		{Axis{Quantity: "T", Min: 2.5}, 2.5, 100 + 0.04*99, 2.9, 1400},
+		{Axis{Quantity: "T", Max: 3, Log: true}, math.Pow(10, -0.04*2), 3, 0.9, 3.1},
+		{Axis{Quantity: "T", Min: -1}, -1, 0, 0.9, 1400}, // to zero, where no data are
+	} {
+		out, _, err := Figure{X: x, Y: y, Err: u, XAxis: test.axis, YAxis: cAxis}.read()
+		if err != nil {
+			t.Fatal(err)
+		}
+		pad := 0.04 * (test.y1 - test.y0)
+		got := []float64{out.X.Min, out.X.Max, out.Panels[0].Y.Min, out.Panels[0].Y.Max}
+		for i, want := range []float64{test.x0, test.x1, test.y0 - pad, test.y1 + pad} {
+			if math.Abs(got[i]-want) > 1e-9*math.Abs(want)+1e-12 {
+				t.Errorf("%+v: axes %v, want %v at %d", test.axis, got, want, i)
+			}
+		}
+	}
+	_, _, err := Figure{X: x, Y: y, XAxis: Axis{Quantity: "T", Min: 200}, YAxis: cAxis}.read()
+	if err == nil || !strings.Contains(err.Error(), "the x axis shows no data") {
+		t.Errorf("an axis from 200 K on: %v", err)
+	}
+}
+
+// A curve without data is drawn over the whole of a given range, though few
+// models are defined at 0 K; one with data, where they are and are shown.
+func TestFigureCurveRange(t *testing.T) {
+	positive := func(T kelvin) molar {
+		if T <= 0 {
+			panic("T is not positive")
+		}
+		return molar(T)
+	}
+	ends := func(f Figure) (string, string) {
+		_, all := rows(t, f)
+		c := of(all, "curve")
+		return c[0][2], c[len(c)-1][2]
+	}
+	if lo, hi := ends(Figure{Curve: positive, XAxis: Axis{Quantity: "T", Max: 400}, YAxis: cAxis}); lo != "0.001" || hi != "400" {
+		t.Errorf("from %s to %s, want from just above 0 to 400", lo, hi)
+	}
+	f := Figure{X: someT, Y: someC, Curve: line, XAxis: Axis{Quantity: "T", Min: 1.5, Max: 10}, YAxis: cAxis}
+	if lo, hi := ends(f); lo != "1.5" || hi != "3" {
+		t.Errorf("from %s to %s, want 1.5 to 3", lo, hi)
+	}
+}
+
+// Marks that a line joins are one entry of the legend, with both.
+func TestFigureJoinedMarks(t *testing.T) {
+	out, _, err := Figure{XAxis: tAxis, YAxis: cAxis, Series: []Series{{Name: "a", X: someT, Y: someC, Line: true},
+		{Name: "b", X: someT, Y: someC, Line: true, Marks: true}}}.read()
+	if err != nil {
+		t.Fatal(err)
+	}
+	named := 0
+	for _, l := range out.Panels[0].Layers {
+		switch l := l.(type) {
+		case scene.Line:
+			if l.Name != "" {
+				named++
+			}
+		case scene.Points:
+			if l.Name != "b" || !l.Joined || l.Dash != 1 {
+				t.Errorf("marks %q, joined %v, dashes %d", l.Name, l.Joined, l.Dash)
+			}
+		}
+	}
+	if named != 1 {
+		t.Errorf("%d lines in the legend, want that of a", named)
 	}
 }

@@ -17,6 +17,7 @@ type axisState struct {
 	quantity string
 	unit     string
 	known    bool // unit settled by some data
+	words    bool // the quantity is named by its type: "molar entropy or heat capacity"
 	lo, hi   float64
 	used     bool
 }
@@ -49,6 +50,7 @@ func (a *axisState) take(what string, c *column) error {
 	}
 	if a.quantity == "" {
 		a.quantity = c.kind
+		a.words = a.quantity != ""
 	}
 	a.used = true
 	return nil
@@ -64,15 +66,39 @@ func unitOr(u string) string {
 func (a *axisState) cover(vs ...[]float64) {
 	for _, v := range vs {
 		for _, x := range v {
-			if !math.IsNaN(x) && !math.IsInf(x, 0) && (!a.spec.Log || x > 0) {
-				a.lo, a.hi = math.Min(a.lo, x), math.Max(a.hi, x)
-			}
+			a.cover1(x)
 		}
+	}
+}
+
+func (a *axisState) cover1(x float64) {
+	if math.IsNaN(x) || math.IsInf(x, 0) || a.spec.Log && !(x > 0) {
+		return
+	}
+	if x < a.lo {
+		a.lo = x
+	}
+	if x > a.hi {
+		a.hi = x
 	}
 }
 
 func newAxisState(name string, spec Axis) axisState {
 	return axisState{spec: spec, name: name, factor: 1, quantity: spec.Quantity, lo: math.Inf(1), hi: math.Inf(-1)}
+}
+
+// limits returns the ends that the user has given. A zero beside a number is
+// an end too, where it can be one.
+func (s Axis) limits() (from, to float64, low, high bool) {
+	low = s.Min != 0 || s.Max > 0 && !s.Log
+	high = s.Max != 0 || s.Min < 0 && !s.Log
+	return s.Min, s.Max, low, high
+}
+
+// shows reports whether x is on an axis as the user has limited it.
+func (s Axis) shows(x float64) bool {
+	from, to, low, high := s.limits()
+	return (!low || x >= from) && (!high || x <= to)
 }
 
 // settle returns the axis with its range, 4 % wider than the data.
@@ -91,14 +117,16 @@ func (a *axisState) settle(tight bool) (scene.Axis, error) {
 			out.Min, out.Max = 1, 10
 		}
 	}
-	given := s.Min != 0 || s.Max != 0
+	from, to, low, high := s.limits()
 	switch {
-	case given && !(s.Min < s.Max):
+	case low && high && !(from < to):
 		return out, fmt.Errorf("the %s goes from %v to %v: want Min < Max", a.name, s.Min, s.Max)
-	case given && s.Log && !(s.Min > 0):
+	case low && s.Log && !(from > 0):
 		return out, fmt.Errorf("the %s is logarithmic and begins at %v: want a positive Min", a.name, s.Min)
-	case given:
-		out.Min, out.Max = s.Min, s.Max
+	case low && !high && !(from < out.Max), high && !low && !(to > out.Min):
+		return out, fmt.Errorf("the %s shows no data: they go from %v to %v", a.name, out.Min, out.Max)
+	case low && high:
+		out.Min, out.Max = from, to
 	case tight && a.lo < a.hi:
 	case s.Log:
 		l, h := math.Log10(out.Min), math.Log10(out.Max)
@@ -115,6 +143,12 @@ func (a *axisState) settle(tight bool) (scene.Axis, error) {
 		// Values that differ in the last digits only are shown as equal.
 		pad = math.Max(pad, 1e-9*math.Max(math.Abs(out.Min), math.Abs(out.Max)))
 		out.Min, out.Max = out.Min-pad, out.Max+pad
+	}
+	if low {
+		out.Min = from
+	}
+	if high {
+		out.Max = to
 	}
 	return out, drawable(a.name, out)
 }

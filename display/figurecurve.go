@@ -86,13 +86,18 @@ func (r *figureReader) curves(s Series, d *seriesData) (below, above []scene.Lay
 		}
 		gx := e.grid(d)
 		gy, err := e.at(gx)
+		if err != nil && len(d.x) == 0 && c.F != nil && gx[0] == 0 {
+			// A range from 0 K on, where few models are defined.
+			gx[0] = 1e-3 * gx[1]
+			gy, err = e.at(gx)
+		}
 		if err != nil {
 			return nil, nil, 0, err
 		}
 		if err := d.axis.checkLog("the curve", gy); err != nil {
 			return nil, nil, 0, err
 		}
-		d.axis.cover(gy)
+		r.coverShown(d.axis, gx, gy)
 		r.x.cover(gx)
 		above = append(above, scene.Line{X: gx, Y: gy, Right: s.Right, Style: st})
 		p := plotted{what: "curve", name: c.Name, x: gx, y: gy, right: s.Right}
@@ -108,7 +113,7 @@ func (r *figureReader) curves(s Series, d *seriesData) (below, above []scene.Lay
 			for j := range gx {
 				p.lo, p.hi = append(p.lo, gy[j]-k*u[j]), append(p.hi, gy[j]+k*u[j])
 			}
-			d.axis.cover(p.lo, p.hi)
+			r.coverShown(d.axis, gx, p.lo, p.hi)
 			b := st
 			b.Name = ""
 			below = append(below, scene.Band{X: gx, Lower: p.lo, Upper: p.hi, Right: s.Right, Style: b})
@@ -217,10 +222,13 @@ func (e *curveReader) grid(d *seriesData) []float64 {
 	if len(d.x) > 0 {
 		lo, hi = slices.Min(d.x), slices.Max(d.x)
 	}
-	if a.spec.Min != 0 || a.spec.Max != 0 {
-		if len(d.x) == 0 {
-			lo, hi = a.spec.Min, a.spec.Max
-		}
+	from, to, low, high := a.spec.limits()
+	none := len(d.x) == 0
+	if low && (none || lo < from && from < hi) {
+		lo = from
+	}
+	if high && (none || lo < to && to < hi) {
+		hi = to
 	}
 	if lo > hi {
 		lo, hi = 0, 1
@@ -359,8 +367,8 @@ func (r *figureReader) residualPanel() scene.Panel {
 	a := newAxisState("residuals", Axis{})
 	for _, l := range r.res {
 		p := l.(scene.Points)
-		a.cover(p.Y)
-		coverBars(&a, p.Y, p.YErr)
+		r.coverShown(&a, p.X, p.Y)
+		r.coverBars(&a, p.X, p.Y, p.YErr)
 	}
 	a.cover([]float64{0})
 	a.quantity = "r"
@@ -370,8 +378,14 @@ func (r *figureReader) residualPanel() scene.Panel {
 		q = "(" + q + ")"
 	}
 	y.Quantity, y.Unit = "Δ"+q, r.y.unit
+	if r.y.words { // too long for the panel
+		y.Quantity = "residual"
+	}
 	if r.f.RelativeResiduals {
 		y.Quantity, y.Unit = "Δ"+q+"/"+q, "%"
+		if r.y.words {
+			y.Quantity = "residual"
+		}
 	}
 	m := math.Max(math.Abs(y.Min), math.Abs(y.Max))
 	y.Min, y.Max = -m, m

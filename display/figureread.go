@@ -247,9 +247,9 @@ func (r *figureReader) points(i int, s Series) (*seriesData, error) {
 		return nil, err
 	}
 	r.x.cover(d.x)
-	d.axis.cover(d.y)
-	coverBars(d.axis, d.y, d.yerr)
-	coverBars(&r.x, d.x, d.xerr)
+	r.coverShown(d.axis, d.x, d.y)
+	r.coverBars(d.axis, d.x, d.y, d.yerr)
+	r.coverBars(&r.x, d.x, d.x, d.xerr)
 	kind := "points"
 	if s.Line {
 		kind = "line"
@@ -257,24 +257,47 @@ func (r *figureReader) points(i int, s Series) (*seriesData, error) {
 		st.Dash = r.dash
 		r.dash++
 		if s.Marks {
-			st.Name = ""
+			st.Name = "" // the marks have it
 		}
 		r.main = append(r.main, scene.Line{X: d.x, Y: d.y, Right: s.Right, Style: st})
 	}
 	if !s.Line || s.Marks {
+		st := d.style
+		if s.Line {
+			st.Dash = r.dash - 1
+		}
 		r.marker++
-		r.main = append(r.main, scene.Points{X: d.x, Y: d.y, XErr: d.xerr, YErr: d.yerr, Right: s.Right, Of: len(d.x), Style: d.style})
+		r.main = append(r.main, scene.Points{X: d.x, Y: d.y, XErr: d.xerr, YErr: d.yerr, Right: s.Right, Of: len(d.x), Joined: s.Line, Style: st})
 	}
 	r.all = append(r.all, plotted{what: kind, name: s.Name, x: d.x, y: d.y, xerr: d.xerr, yerr: d.yerr, right: s.Right})
 	return d, nil
 }
 
-func coverBars(a *axisState, v, u []float64) {
-	for i := range u {
-		if u[i] > 0 {
-			a.cover([]float64{v[i] - u[i], v[i] + u[i]})
+// coverShown extends an axis by the values whose x the x axis shows: where the
+// user has limited that, the rest does not count. If nothing is shown, all do.
+func (r *figureReader) coverShown(a *axisState, x []float64, vs ...[]float64) {
+	all := r.allShown(x)
+	for _, v := range vs {
+		for i := range v {
+			if all || r.f.XAxis.shows(x[i]) {
+				a.cover1(v[i])
+			}
 		}
 	}
+}
+
+func (r *figureReader) coverBars(a *axisState, x, v, u []float64) {
+	all := r.allShown(x)
+	for i := range u {
+		if u[i] > 0 && (all || r.f.XAxis.shows(x[i])) {
+			a.cover1(v[i] - u[i])
+			a.cover1(v[i] + u[i])
+		}
+	}
+}
+
+func (r *figureReader) allShown(x []float64) bool {
+	return r.f.XAxis.Min == 0 && r.f.XAxis.Max == 0 || !slices.ContainsFunc(x, r.f.XAxis.shows)
 }
 
 // errorsOf reads the error bars of a column, nil if there are none.
@@ -352,7 +375,7 @@ func (r *figureReader) band(what string, s Series, d *seriesData) error {
 	if s.Y != nil {
 		st.Name = ""
 	}
-	d.axis.cover(v[0], v[1])
+	r.coverShown(d.axis, d.x, v[0], v[1])
 	r.main = append([]scene.Layer{scene.Band{X: d.x, Lower: v[0], Upper: v[1], Right: s.Right, Style: st}}, r.main...)
 	r.all = append(r.all, plotted{what: "band", name: s.Name, x: d.x, lo: v[0], hi: v[1], right: s.Right})
 	return nil

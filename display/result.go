@@ -164,9 +164,9 @@ func (n Number) View() View {
 	r := m.rounded()
 	return View{Data: map[string]any{
 		"text/plain": n.String(),
-		"text/html": `<span style="font-variant-numeric:tabular-nums">` + mark.HTML(mark.Label(n.Name)) + " = " +
+		"text/html": `<span style="font-variant-numeric:tabular-nums">` + mark.HTML(mark.Name(n.Name)) + " = " +
 			withUnitHTML(r, n.Unit) + mark.Escape(n.remark()) + "</span>",
-		"text/latex":    mark.LaTeX(mark.Label(n.Name)) + " = " + withUnitLaTeX(r, n.Unit) + mark.EscapeLaTeX(n.remark()),
+		"text/latex":    mark.LaTeX(mark.Name(n.Name)) + " = " + withUnitLaTeX(r, n.Unit) + mark.EscapeLaTeX(n.remark()),
 		ResultMediaType: n.stored(),
 	}}
 }

@@ -27,8 +27,8 @@ import (
 // column is rounded to Digits significant digits of its largest value, 6 if
 // Digits is 0; zeros at the end of all rows are dropped. Where the smallest
 // value would keep fewer than three digits of that, every value is rounded to
-// Digits digits of its own; if most of them then need a power of ten, all have
-// one.
+// Digits digits of its own; if half of them then need a power of ten, all that
+// are not between 1e-3 and 1e3 have one.
 type Column struct {
 	Quantity string // "C_{p,m}", "\theta_D"; words stay upright, symbols are italic
 	Unit     string // "J/(mol K)"
@@ -262,8 +262,8 @@ func (c *sheetColumn) format(rows []int) {
 	c.agree(rows, digits)
 }
 
-// agree writes all numbers of a column with a power of ten if most of them
-// have one, so that they can be compared.
+// agree writes numbers that are not between 1e-3 and 1e3 with a power of ten if
+// half of the column have one, so that they can be compared.
 func (c *sheetColumn) agree(rows []int, digits int) {
 	with, all := 0, 0
 	for _, r := range c.cells {
@@ -272,13 +272,13 @@ func (c *sheetColumn) agree(rows []int, digits int) {
 			with += min(1, max(r.exp, -r.exp))
 		}
 	}
-	if 2*with <= all {
+	if with == 0 || 2*with < all {
 		return
 	}
 	for k, i := range rows {
 		r := c.cells[k]
 		switch {
-		case i < 0 || r.word != "" || r.exp != 0 || strings.Trim(r.digits, "-0.") == "":
+		case i < 0 || r.word != "" || r.exp != 0 || math.Abs(c.v[i]) >= 1e-3 && math.Abs(c.v[i]) < 1e3 || c.v[i] == 0:
 		case c.u != nil && c.u[i] > 0:
 			c.cells[k] = roundScientific(c.v[i], c.u[i])
 		default:

@@ -114,8 +114,8 @@ func (s *sheet) text() string {
 func (s *sheet) html() string {
 	const (
 		rule  = "1px solid currentColor"
-		th    = `style="text-align:%s;border:0;border-bottom:` + rule + `;padding:0.25em 0.8em;font-weight:normal;white-space:nowrap"`
-		td    = `style="text-align:%s;padding:0.12em 0.8em;white-space:nowrap"`
+		th    = `style="text-align:%s;border:0;border-bottom:` + rule + `;padding:0.25em 0.7em;font-weight:normal;white-space:nowrap"`
+		td    = `style="text-align:%s;padding:0.12em 0.7em;white-space:nowrap"`
 		frame = `style="border-collapse:collapse;border:0;border-top:1.5px solid currentColor;border-bottom:1.5px solid currentColor;color:inherit;background:transparent;font-variant-numeric:tabular-nums lining-nums;margin:0.4em 0"`
 	)
 	rows := s.shown()
@@ -203,17 +203,27 @@ func (c *sheetColumn) powerWidth() float64 {
 	w, some := 0.0, false
 	for _, r := range c.cells {
 		_, t := r.parts(minus)
-		n := float64(utf8.RuneCountInString(t))
+		n := 0.0
+		for _, x := range t {
+			switch x {
+			case '.':
+				n += 0.5
+			case '(', ')':
+				n += 0.7
+			default:
+				n++
+			}
+		}
 		if r.exp != 0 {
 			some = true
-			n += 3.5 + 0.9*float64(len(strconv.Itoa(r.exp)))
+			n += 3.4 + 0.9*float64(len(strconv.Itoa(r.exp)))
 		}
 		w = math.Max(w, n)
 	}
 	if !some {
 		return 0
 	}
-	return math.Ceil(w)
+	return w
 }
 
 // htmlAligned writes a number with what follows its integers in a box, so that
@@ -227,7 +237,7 @@ func (r rounded) htmlAligned(width float64) string {
 	if r.word != "" && !r.split {
 		at = len(s)
 	}
-	return s[:at] + fmt.Sprintf(`<span style="display:inline-block;min-width:%gch;text-align:left">`, width) + s[at:] + "</span>"
+	return s[:at] + fmt.Sprintf(`<span style="display:inline-block;min-width:%.1fch;text-align:left">`, width) + s[at:] + "</span>"
 }
 
 // filler returns spaces as wide as the characters that a tail lacks: a figure

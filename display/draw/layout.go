@@ -2,6 +2,8 @@ package draw
 
 import (
 	"math"
+	"slices"
+	"strings"
 
 	"levelsum/display/internal/mark"
 	"levelsum/display/internal/scene"
@@ -20,6 +22,7 @@ type plan struct {
 	barBox box
 	barRul *ruler
 	notes  []string
+	second float64 // room for second lines of the labels on the left
 }
 
 type panelPlan struct {
@@ -88,7 +91,15 @@ func (p *plan) lay(legendAbove bool) {
 		}
 		p.panels = append(p.panels, q)
 	}
-	left += 2.5 * fs
+	p.second = 0
+	for _, q := range p.panels {
+		if w := width(q.Y.Label(q.y.power), fs); w > p.labelRoom(q.box) {
+			if _, _, ok := q.labelLines(); ok {
+				p.second = 1.2 * fs
+			}
+		}
+	}
+	left += 2.5*fs + p.second
 	if p.bar != nil {
 		left += 0.8 * majorTick
 		b := p.panels[0].box
@@ -214,7 +225,12 @@ func (p *plan) frame(q *panelPlan, last bool) {
 	p.s.stroke(&minor, pen{paint: ink, width: tickWidth})
 	p.s.stroke(&major, pen{paint: ink, width: frameWidth})
 	p.s.stroke(&outline, pen{paint: ink, width: frameWidth})
-	p.upLabel(q.Y.Label(q.y.power), 1.15*fs, b)
+	label := q.Y.Label(q.y.power)
+	if first, second, ok := q.labelLines(); ok && p.second > 0 && width(label, fs) > p.labelRoom(b) {
+		p.upLabel(first, 1.15*fs, b)
+		label = second
+	}
+	p.upLabel(label, 1.15*fs+p.second, b)
 	if q.right != nil {
 		p.upLabel(q.Panel.Right.Label(q.right.power), b.x1+0.45*fs+q.right.widest(fs)+1.45*fs, b)
 	}
@@ -242,11 +258,28 @@ func (p *plan) fit(rs []mark.Run, x, y, room float64, ink paint) {
 	p.s.text(rs, x, y, size, middle, false, ink)
 }
 
-// upLabel writes the label of a vertical axis, in two lines or smaller if it
-// is longer than the panel.
+// labelRoom is the length that the label of a panel may have.
+func (p *plan) labelRoom(b box) float64 { return b.h() + 1.2*p.size }
+
+// labelLines splits the label of the left axis between quantity and unit.
+func (q *panelPlan) labelLines() (first, second []mark.Run, ok bool) {
+	rs := q.Y.Label(q.y.power)
+	for i, r := range rs {
+		if at := strings.Index(r.Text, " / "); at >= 0 && r.Shift == 0 {
+			head, tail := r, r
+			head.Text, tail.Text = r.Text[:at+2], r.Text[at+3:]
+			first = append(slices.Clone(rs[:i]), head)
+			return first, append([]mark.Run{tail}, rs[i+1:]...), true
+		}
+	}
+	return nil, nil, false
+}
+
+// upLabel writes the label of a vertical axis, smaller if it is longer than
+// the panel.
 func (p *plan) upLabel(rs []mark.Run, x float64, b box) {
 	ink := paint{ink: true, alpha: 1}
-	mid, room := (b.y0+b.y1)/2, b.h()+1.2*p.size
+	mid, room := (b.y0+b.y1)/2, p.labelRoom(b)
 	size := p.size
 	w := width(rs, size)
 	if w > room {

@@ -295,3 +295,20 @@ func BenchmarkFigure(b *testing.B) {
 		}
 	})
 }
+
+// A label that is longer than its panel takes two lines in full size.
+func TestLongLabel(t *testing.T) {
+	f := display.Figure{X: []kelvin{1, 2, 3}, Y: []molar{1, 2, 3}, XAxis: display.Axis{Quantity: "T"}, Width: 70, Height: 45,
+		YAxis: display.Axis{Quantity: "heat capacity of the sample"}}
+	s := f.View().Data["text/html"].(string)
+	for _, want := range []string{">heat capacity of the sample /</text>", ">(J mol<tspan"} {
+		i := strings.Index(s, want)
+		if i < 0 {
+			t.Fatalf("no line %q in\n%s", want, s)
+		}
+		tag := s[strings.LastIndex(s[:i+1], "<text"):i]
+		if !strings.Contains(tag, `rotate(-90)" font-size="8"`) {
+			t.Errorf("%q is set as %s", want, tag)
+		}
+	}
+}

@@ -243,6 +243,12 @@ func (l *legend) sample(p *plan, layer scene.Layer, x, y float64) {
 	w := swatch * l.size
 	switch s := layer.(type) {
 	case scene.Points:
+		if s.Joined {
+			var q path
+			q.move(x, y)
+			q.line(x+w, y)
+			p.s.stroke(&q, pen{paint: series(s.Colour), width: lineWidth, dash: dashOf(s.Dash)})
+		}
 		if s.YErr != nil || s.XErr != nil {
 			var q path
 			q.move(x+w/2, y-0.45*l.size)

@@ -35,8 +35,8 @@ const (
 	tickWidth  = 0.6
 	majorTick  = 4.2
 	minorTick  = 2.3
-	barAlpha   = 0.55
-	bandAlpha  = 0.2
+	barAlpha   = 0.65
+	bandAlpha  = 0.26
 )
 
 func series(i int) paint {

@@ -28,6 +28,18 @@ func Symbol(s string) []Run { return parse(s, symbols) }
 // C_p of "from C_p". An underscore after a word, as in run_7.csv, is itself.
 func Label(s string) []Run { return parse(s, running) }
 
+// Name parses the name of a result: running text whose first word may be a
+// symbol, as in "S°(298.15 K)" or "T, all lines".
+func Name(s string) []Run {
+	r, n := utf8.DecodeRuneInString(s)
+	next, _ := utf8.DecodeRuneInString(s[n:])
+	if !unicode.IsLetter(r) || n < len(s) && (unicode.IsLetter(next) || unicode.IsDigit(next) || next == '_' || next == '^' || next == '-') ||
+		strings.ContainsRune("aAI", r) && next == ' ' {
+		return Label(s)
+	}
+	return append(italics(s[:n], 0), Label(s[n:])...)
+}
+
 // Upright parses text with _{}, ^{} and Greek names in which nothing is
 // italic, such as term symbols.
 func Upright(s string) []Run { return parse(s, upright) }
@@ -147,7 +159,7 @@ func parse(s string, how manner) []Run {
 // isMinus reports whether the hyphen at i is the sign of what follows, as in
 // exp(-E/kT), and not part of a word.
 func isMinus(s string, i int) bool {
-	return i+1 < len(s) && (i == 0 && s[1] != ' ' || i > 0 && strings.IndexByte("( =,", s[i-1]) >= 0)
+	return i+1 < len(s) && (i == 0 && s[1] != ' ' || i > 0 && (strings.IndexByte("( =,)]}", s[i-1]) >= 0 || strings.HasSuffix(s[:i], "°")))
 }
 
 // minus sets the sign of a power or index.
@@ -257,6 +269,9 @@ func italics(text string, shift int) []Run {
 			continue
 		}
 		it := len(word) == 1 && !(unicode.Is(unicode.Greek, word[0]) && unicode.IsUpper(word[0]))
+		if it && shift == 0 && i > 1 && unicode.IsDigit(rs[i-2]) && unicode.IsSpace(rs[i-1]) && strings.ContainsRune("KJmsgW", word[0]) {
+			it = false // the unit of a number: H(298.15 K)
+		}
 		if it && shift < 0 {
 			it = strings.ContainsRune("pVTxnij", word[0])
 		}

@@ -69,6 +69,7 @@ func TestSubstances(t *testing.T) {
 		{`p(\mathrm{H})`, "<i>p</i>(H)", "p(H)"},
 		{`\text{run_{2}, C_p}`, "run<sub>2</sub>, C<sub>p</sub>", "run<sub>2</sub>, C<sub>p</sub>"},
 		{`g_i exp(-\epsilon_i/kT)`, "<i>g</i><sub><i>i</i></sub> exp(−<i>ε</i><sub><i>i</i></sub>/<i>kT</i>)", "<i>g</i><sub><i>i</i></sub> exp(-<i>ε</i><sub><i>i</i></sub>/kT)"},
+		{"H°-H°(298.15 K)", "<i>H</i>°−<i>H</i>°(298.15 K)", "H°-H°(298.15 K)"},
 		{"third-law S", "third-law <i>S</i>", "third-law S"},
 		{"E - E_0", "<i>E</i> − <i>E</i><sub>0</sub>", "E - <i>E</i><sub>0</sub>"},
 	} {
@@ -84,6 +85,24 @@ func TestSubstances(t *testing.T) {
 	}
 	if got, want := Math(Symbol("x^{-n}")), "x^{-n}"; got != want {
 		t.Errorf("Math %s, want %s", got, want)
+	}
+}
+
+func TestName(t *testing.T) {
+	for _, test := range []struct{ in, want string }{
+		{"κ", "<i>κ</i>"},
+		{"S°(298.15 K)", "<i>S</i>°(298.15 K)"},
+		{"T, all lines", "<i>T</i>, all lines"},
+		{"χ² per degree of freedom", "<i>χ</i><sup>2</sup> per degree of freedom"},
+		{"θ_D", "<i>θ</i><sub>D</sub>"},
+		{"a sum", "a sum"},
+		{"residual entropy", "residual entropy"},
+		{"T-window", "T-window"},
+		{"", ""},
+	} {
+		if got := HTML(Name(test.in)); got != test.want {
+			t.Errorf("Name(%q): %s, want %s", test.in, got, test.want)
+		}
 	}
 }
 

@@ -51,7 +51,8 @@ type Style struct {
 type Points struct {
 	X, Y, XErr, YErr []float64
 	Right            bool
-	Of               int // number of points before thinning
+	Of               int  // number of points before thinning
+	Joined           bool // by a line with the dashes of Style, which the legend shows as well
 	Style
 }
 
