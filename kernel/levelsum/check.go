@@ -180,6 +180,8 @@ func where(f rerun.Finding) string {
 	switch {
 	case f.Kind == "result":
 		return f.Name
+	case f.Kind == "number":
+		return fmt.Sprintf("%s, in the text of cell %d", f.Name, f.Cell)
 	case f.Kind == "data":
 		return "data " + f.Name
 	case f.Kind == "seed":

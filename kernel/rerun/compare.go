@@ -2,7 +2,7 @@ package rerun
 
 import (
 	"fmt"
-	"math"
+	"slices"
 	"sort"
 	"strings"
 
@@ -11,8 +11,8 @@ import (
 
 // A Finding is one thing compared.
 type Finding struct {
-	// Kind is "result", "table", "figure", "value", "text", "fault", "data",
-	// "seed", "provenance".
+	// Kind is "result", "number" (of a paragraph or derivation), "table",
+	// "figure", "value", "text", "fault", "data", "seed", "provenance".
 	Kind string `json:"kind"`
 	Cell int    `json:"cell,omitempty"`
 	// Name is the name of a result or a data file; of an output its place in
@@ -69,65 +69,9 @@ func compareResults(stored, now *notebook.Document) ([]Finding, error) {
 	if err != nil {
 		return nil, err
 	}
-	// The n-th result of a name belongs to the n-th stored one.
-	type key struct {
-		name string
-		n    int
-	}
-	index := func(rs []Result) (keys []key, by map[key]Result) {
-		by = map[key]Result{}
-		count := map[string]int{}
-		for _, r := range rs {
-			k := key{r.Name, count[r.Name]}
-			count[r.Name]++
-			keys, by[k] = append(keys, k), r
-		}
-		return keys, by
-	}
-	oldKeys, oldBy := index(old)
-	curKeys, curBy := index(cur)
-	var all []Finding
-	for _, k := range curKeys {
-		n := curBy[k]
-		f := Finding{Kind: "result", Cell: n.Cell, Name: k.name, Now: n.text()}
-		o, ok := oldBy[k]
-		if !ok {
-			f.Verdict = New
-			all = append(all, f)
-			continue
-		}
-		f.Old = o.text()
-		f.Verdict, f.Note = judgeResult(o, n)
-		if d := n.Value - o.Value; o.Unit == n.Unit && !math.IsNaN(d) && !math.IsInf(d, 0) {
-			f.Delta = d
-			if o.U > 0 {
-				f.DeltaU = d / o.U
-			}
-		}
-		all = append(all, f)
-	}
-	for _, k := range oldKeys {
-		if _, ok := curBy[k]; !ok {
-			o := oldBy[k]
-			if !reached(now.Cells()[o.Cell-1]) {
-				continue
-			}
-			all = append(all, Finding{Kind: "result", Cell: o.Cell, Name: k.name, Verdict: Missing, Old: o.text()})
-		}
-	}
-	return all, nil
-}
-
-// text writes a result at full precision.
-func (r Result) text() string {
-	s := fmt.Sprint(r.Value)
-	if r.HasU {
-		s += fmt.Sprintf(" ± %v", r.U)
-	}
-	if r.Unit != "" && r.Unit != "1" {
-		s += " " + r.Unit
-	}
-	return s
+	return slices.DeleteFunc(compareByName("result", 0, old, cur), func(f Finding) bool {
+		return f.Verdict == Missing && !reached(now.Cells()[f.Cell-1])
+	}), nil
 }
 
 // compareCell compares the outputs of a cell that are no named results.
@@ -152,6 +96,9 @@ func compareCell(a, b *notebook.Cell) []Finding {
 		case kindOf(old[i]) != kindOf(cur[i]):
 			f.Kind, f.Verdict, f.Old, f.Now = kindOf(cur[i]), Moved, excerpt(old[i]), excerpt(cur[i])
 			f.Note = "was a " + kindOf(old[i])
+		case isLive(old[i]) && isLive(cur[i]):
+			all = append(all, compareLive(f, old[i], cur[i])...)
+			continue
 		default:
 			f.Kind = kindOf(cur[i])
 			compareOutput(&f, old[i], cur[i])
@@ -160,6 +107,8 @@ func compareCell(a, b *notebook.Cell) []Finding {
 	}
 	return all
 }
+
+func isLive(o notebook.Output) bool { _, ok := liveNumbers(o); return ok }
 
 // kindOf says what an output is to the reader.
 func kindOf(o notebook.Output) string {

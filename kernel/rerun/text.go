@@ -236,10 +236,22 @@ func compareTables(old, now string) Finding {
 			f.take(g)
 		}
 	}
-	if differ > 1 {
-		f.Note += fmt.Sprintf(", and %d more cells", differ-1)
-	}
+	f.addMore(differ, "cell")
 	return f
+}
+
+// addMore says that the finding stands for several places.
+func (f *Finding) addMore(differ int, what string) {
+	switch {
+	case differ <= 1:
+		return
+	case differ > 2:
+		what += "s"
+	}
+	if f.Note != "" {
+		f.Note += ", and "
+	}
+	f.Note += fmt.Sprintf("%d more %s", differ-1, what)
 }
 
 // compareJSON compares two JSON values; numbers of one list share its scale.
@@ -247,9 +259,7 @@ func compareJSON(old, now any) Finding {
 	var f Finding
 	differ := 0
 	walkJSON(&f, &differ, "", old, now, 0)
-	if differ > 1 {
-		f.Note += fmt.Sprintf(", and %d more numbers", differ-1)
-	}
+	f.addMore(differ, "number")
 	return f
 }
 
