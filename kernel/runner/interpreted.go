@@ -77,9 +77,14 @@ func (i *interpreter) fresh() error {
 		i.used++
 		return nil
 	}
-	i.in = interp.New(interp.Options{Stdin: strings.NewReader(""), Stdout: standardOut{}, Stderr: io.Discard})
+	i.in = interp.New(interp.Options{Stdin: strings.NewReader(""), Stdout: standardOut{}, Stderr: io.Discard, Unrestricted: true})
 	i.used, i.imports, i.offered = 1, map[string]bool{}, map[string]bool{}
-	if err := i.in.Use(symbols.Table()); err != nil {
+	table := symbols.Table()
+	if err := i.in.Use(table); err != nil {
+		return err
+	}
+	// The interpreter has put a logger of its own in place of the program's.
+	if err := i.in.Use(interp.Exports{"log/log": table["log/log"]}); err != nil {
 		return err
 	}
 	if err := i.offer(map[string]reflect.Value{
