@@ -102,7 +102,10 @@ func serveConnection(file string, connection socket.Connection, say *log.Logger,
 	if parent := parentPID(); parent > 0 {
 		go watchParent(ctx, parent, s.Stop)
 	}
-	_, err = s.Serve(ctx)
+	restart, err := s.Serve(ctx)
+	if restart {
+		journal.Keep()
+	}
 	return err
 }
 

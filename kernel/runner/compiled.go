@@ -73,8 +73,11 @@ type loaded struct {
 }
 
 // manyPlugins is after how many opened plugins the reader is told what they
-// take.
-const manyPlugins = 300
+// take, and perPlugin is that, in kB: TestManyDeclaringCells measures it.
+const (
+	manyPlugins = 300
+	perPlugin   = 3500
+)
 
 // load builds and opens the plugin of a unit, once in a session.
 func (r *Runner) load(u *cell.Unit) (*loaded, error) {
@@ -108,7 +111,8 @@ func (r *Runner) open(built *compile.Plugin, units ...*cell.Unit) error {
 	}
 	r.opened++
 	if n := r.opened; n%manyPlugins == 0 {
-		r.send(engine.Event{Op: "warn", Text: fmt.Sprintf("note: this session has compiled %d cells, which cannot be unloaded and take about %d MB; restart the kernel and run kernel.Replay() to have your values in a fresh one\n", n, n*27/10)})
+		r.send(engine.Event{Op: "warn", Text: fmt.Sprintf("note: this session has compiled %d cells one by one, which cannot be unloaded and take about %d MB; "+
+			"restart the kernel and run kernel.Replay(): it compiles them as one program, which takes little\n", n, n*perPlugin/1000)})
 	}
 	return nil
 }

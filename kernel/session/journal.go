@@ -15,12 +15,13 @@ import (
 
 // A Journal remembers the cells that have been run, so that they can be run
 // again when the engine's values are lost. With a file it outlives the
-// process; the file is removed by Close. Its methods may be called from
-// several goroutines.
+// process; the file is removed by Close, unless Keep has said that another
+// process follows. Its methods may be called from several goroutines.
 type Journal struct {
 	mu   sync.Mutex // guards the fields below
 	live []Record   // run since the engine was started
 	lost []Record   // had succeeded, and their values are gone
+	kept bool       // lost by a restart that was asked for: another cell means that they are not wanted
 	path string
 	file *os.File // nil if there is none
 	err  error    // the first error of writing
@@ -35,11 +36,12 @@ type Record struct {
 }
 
 // line is one line of the file: a cell, a cell that was run again after it had
-// been lost, or the loss of all values.
+// been lost, or the loss of all values, which a reader may have asked for.
 type line struct {
 	Record
 	Again bool `json:"again,omitempty"`
 	Lost  bool `json:"lost,omitempty"`
+	Kept  bool `json:"kept,omitempty"`
 }
 
 // NewJournal returns a journal without a file.
@@ -91,10 +93,15 @@ func (j *Journal) take(l line) {
 	case l.Lost:
 		j.lost = append(j.lost, slices.DeleteFunc(j.live, func(r Record) bool { return !r.OK })...)
 		j.live = nil
+		j.kept = l.Kept
 	case l.Again && len(j.lost) > 0:
 		j.lost = j.lost[1:]
-		fallthrough
+		j.kept = false
+		j.live = append(j.live, l.Record)
 	default:
+		if j.kept {
+			j.lost, j.kept = nil, false
+		}
 		j.live = append(j.live, l.Record)
 	}
 }
@@ -125,6 +132,16 @@ func (j *Journal) Add(r Record) { j.note(line{Record: r}) }
 // Lose says that all values are gone: the engine was started again.
 func (j *Journal) Lose() { j.note(line{Lost: true}) }
 
+// Keep says that the process ends at the reader's wish and another follows with
+// the same file: Close leaves it. The cells can be run again there, unless
+// another cell is run first; who begins anew does not want the old ones later.
+func (j *Journal) Keep() {
+	j.note(line{Lost: true, Kept: true})
+	j.mu.Lock()
+	defer j.mu.Unlock()
+	j.path = ""
+}
+
 // Again says that the first lost cell has been run again and succeeded.
 func (j *Journal) Again(r Record) { j.note(line{Record: r, Again: true}) }
 
@@ -147,15 +164,14 @@ func (j *Journal) Lost() []Record {
 func (j *Journal) Close() error {
 	j.mu.Lock()
 	defer j.mu.Unlock()
-	if j.path == "" {
-		return nil
-	}
 	err := j.err
 	if j.file != nil {
 		err = errors.Join(err, j.file.Close())
 	}
-	err = errors.Join(err, os.Remove(j.path))
-	j.file, j.path = nil, ""
+	if j.path != "" {
+		err = errors.Join(err, os.Remove(j.path))
+	}
+	j.file, j.path, j.err = nil, "", nil
 	return err
 }
 

@@ -1,8 +1,11 @@
 package session
 
 import (
+	"context"
+	"errors"
 	"os"
 	"path/filepath"
+	"reflect"
 	"slices"
 	"strings"
 	"sync/atomic"
@@ -191,6 +194,87 @@ func TestReplayAfterAKilledProcess(t *testing.T) {
 	c.reply(c.run("kernel.Replay()", nil), "execute_reply").want(t, "status", "ok")
 	if want := []string{"new", "from before"}; !slices.Equal(f.sources(), want) {
 		t.Errorf("the engine ran %q, want %q", f.sources(), want)
+	}
+}
+
+// whole is a fake that compiles many cells at once.
+type whole struct {
+	*fake
+	compiled []engine.Cell
+}
+
+func (w *whole) Program(_ context.Context, cells []engine.Cell, _ engine.Output) (engine.Program, error) {
+	w.compiled = cells
+	return engine.Program{}, errors.New("cells are compiled one by one then")
+}
+
+// A restart that the reader asks for keeps the journal for the process that
+// follows, and the cells are compiled as one program before they are run again.
+func TestReplayAfterARestart(t *testing.T) {
+	path := filepath.Join(t.TempDir(), "k.journal")
+	old, err := OpenJournal(path)
+	if err != nil {
+		t.Fatal(err)
+	}
+	old.Add(Record{N: 1, ID: "x", Source: "one", OK: true})
+	old.Add(Record{N: 2, Source: "bad"})
+	old.Add(Record{N: 3, Source: "two", OK: true})
+	old.Keep()
+	if err := old.Close(); err != nil {
+		t.Fatal(err)
+	}
+	j, err := OpenJournal(path)
+	if err != nil {
+		t.Fatal(err)
+	}
+	w := &whole{fake: &fake{}}
+	c := connect(serveFake(t, w.fake, func(o *Options) {
+		o.Journal = j
+		o.Start = func(context.Context) (Engine, error) { return w, nil }
+	}))
+	c.reply(c.run("kernel.Replay()", nil), "execute_reply").want(t, "status", "ok")
+	if want := []string{"one", "two"}; !slices.Equal(w.sources(), want) {
+		t.Errorf("the engine ran %q, want %q", w.sources(), want)
+	}
+	if want := []engine.Cell{{N: 1, ID: "x", Source: "one"}, {N: 3, Source: "two"}}; !reflect.DeepEqual(w.compiled, want) {
+		t.Errorf("compiled %v, want %v", w.compiled, want)
+	}
+	if err := j.Close(); err != nil {
+		t.Error(err)
+	}
+	if _, err := os.Stat(path); !os.IsNotExist(err) {
+		t.Errorf("a session that ends for good leaves its journal: %v", err)
+	}
+}
+
+// Who runs another cell first after a restart begins anew: the cells from
+// before are not run again when the engine dies later.
+func TestJournalOfARestartIsForgotten(t *testing.T) {
+	path := filepath.Join(t.TempDir(), "k.journal")
+	j, err := OpenJournal(path)
+	if err != nil {
+		t.Fatal(err)
+	}
+	j.Add(Record{N: 1, Source: "old", OK: true})
+	j.Keep()
+	j.Close()
+	for _, again := range []bool{false, true} {
+		if j, err = OpenJournal(path); err != nil {
+			t.Fatal(err)
+		}
+		if again { // and it stays so for a process after this one
+			break
+		}
+		if !slices.Equal(sources(j.Lost()), []string{"old"}) {
+			t.Errorf("lost %q", sources(j.Lost()))
+		}
+		j.Add(Record{N: 1, Source: "new", OK: true})
+		if len(j.Lost()) > 0 {
+			t.Errorf("after another cell: lost %q", sources(j.Lost()))
+		}
+	}
+	if !slices.Equal(sources(j.Lost()), []string{"new"}) {
+		t.Errorf("in the process after it: lost %q", sources(j.Lost()))
 	}
 }
 
