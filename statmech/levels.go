@@ -18,8 +18,9 @@ import (
 // an unbounded spectrum see [Levels.MarkTruncated].
 //
 // Accuracy: ln q, U and C within 1e-15 (1 + x) relative, x the largest (E-E₀)/kT
-// that counts (direct sum, TestLevelsSchottky), and 2e-14 for long lists at many temperatures (TestLevelsTableClosedForm; 2e-15
-// was seen for 10⁷ equally spaced levels at 100 temperatures).
+// that counts (direct sum, TestLevelsSchottky), and 2e-14 for long lists at many
+// temperatures (TestLevelsTableClosedForm, TestLevelsSurvey; 2e-15 was seen for
+// 10⁷ equally spaced levels at 100 temperatures).
 type Levels struct {
 	energies  []unit.Energy
 	g         []float64 // nil if every degeneracy is 1
@@ -28,11 +29,12 @@ type Levels struct {
 	gSum      float64
 	truncated bool
 	warnings  []string
+	surveyed  *survey // of a long list, else nil
 }
 
 // NewLevels returns the levels with the given energies, in any order and from
 // any zero, and degeneracies; nil degeneracies are all 1. The slices are kept,
-// not copied.
+// not copied, and must not change afterwards.
 //
 // It returns a [*DomainError] if the list is empty, the lengths differ, an
 // energy is not finite or a degeneracy is not positive and finite. A degeneracy
@@ -47,6 +49,10 @@ func NewLevels(energies []unit.Energy, degeneracies []float64) (*Levels, error) 
 			fmt.Sprintf("%d, one for each energy", len(energies))}
 	}
 	l := &Levels{energies: energies, g: degeneracies, min: energies[0], max: energies[0]}
+	if l.survey() {
+		return l, nil
+	}
+	// Short lists, and those with something to complain of.
 	for i, e := range energies {
 		if e-e != 0 {
 			return nil, &DomainError{fn, fmt.Sprintf("energies[%d]", i), e.String(), "finite"}
@@ -75,10 +81,14 @@ func NewLevels(energies []unit.Energy, degeneracies []float64) (*Levels, error) 
 		}
 		l.gSum += g
 	}
-	if fractions > 0 {
-		l.warnings = append(l.warnings, fmt.Sprintf("%d of %d degeneracies are not integers", fractions, len(degeneracies)))
-	}
+	l.warnFractions(fractions)
 	return l, nil
+}
+
+func (l *Levels) warnFractions(n int) {
+	if n > 0 {
+		l.warnings = append(l.warnings, fmt.Sprintf("%d of %d degeneracies are not integers", n, len(l.g)))
+	}
 }
 
 func (l *Levels) weight(i int) float64 {

@@ -19,7 +19,9 @@ const (
 // ReducedAt returns the functions at each temperature. For long lists and many
 // temperatures one pass over the levels per range of temperatures builds
 // Taylor moments of the degeneracies within narrow energy bins, from which each
-// temperature follows without looking at the levels again.
+// temperature follows without looking at the levels again. Of very long lists
+// [NewLevels] has made such moments in the pass that checks the levels; they do
+// down to temperatures of about 1/120 of the range of the energies.
 func (l *Levels) ReducedAt(ts []unit.Temperature) []Reduced {
 	for _, T := range ts {
 		CheckTemperature("statmech.Levels.ReducedAt", T)
@@ -45,11 +47,20 @@ func (l *Levels) ReducedAt(ts []unit.Temperature) []Reduced {
 		}
 		tMin, tMax := ts[order[lo]], ts[order[hi-1]]
 		bins := l.tableBins(tMin, tMax)
+		served := l.surveyed.serves(tMin)
 		// A pass costs about as much as two direct sums, a bin as two levels.
-		if hi-lo > 2 && bins > 0 && (hi-lo-2)*l.Len() > 2*(hi-lo)*bins {
-			t := l.newTable(tMin, tMax, bins)
+		if hi-lo > 2 && (served || bins > 0 && (hi-lo-2)*l.Len() > 2*(hi-lo)*bins) {
+			var t *levelTable
+			if served {
+				t = l.surveyed.table(l, tMin)
+			} else {
+				t = l.newTable(tMin, tMax, bins)
+			}
 			for _, i := range order[lo:hi] {
-				rs[i] = t.reduced(float64(ts[i]))
+				var ok bool
+				if rs[i], ok = t.reduced(float64(ts[i])); !ok {
+					rs[i] = l.direct(unit.Boltzmann * float64(ts[i]))
+				}
 			}
 		} else {
 			for _, i := range order[lo:hi] {
@@ -73,9 +84,10 @@ func (l *Levels) tableBins(tMin, tMax unit.Temperature) int {
 }
 
 // A levelTable holds Mₙ = Σ g tⁿ, t = (E-c)/h, of each energy bin with centre
-// c = (2i+1)h and half-width h (in K).
+// c = origin+(2i+1)h and half-width h (in K).
 type levelTable struct {
 	h       float64
+	origin  float64 // above the lowest level, in K
 	moments [][tableMoments]float64
 	gMin    float64
 }
@@ -134,7 +146,11 @@ func (l *Levels) fill(m [][tableMoments]float64, lo, hi int, h, reach float64) {
 	}
 }
 
-func (t *levelTable) reduced(T float64) Reduced {
+// reduced returns the functions at T, and false if they lose digits: where next
+// to nothing is excited, a small U and C are differences of larger numbers, the
+// energies of the levels in the lowest bin and of its centre.
+func (t *levelTable) reduced(T float64) (Reduced, bool) {
+	const loss = 32 // cancellation that is put up with
 	alpha := t.h / T
 	var a [tableOrder + 1]float64 // (-α)ⁿ/n!
 	a[0] = 1
@@ -144,13 +160,13 @@ func (t *levelTable) reduced(T float64) Reduced {
 	// First pass: q and the mean; second: the variance about the mean.
 	type sums struct{ c, z, z1, z2 float64 }
 	bins := make([]sums, 0, len(t.moments))
-	var q, mean float64
+	var q, mean, size float64
 	for i := range t.moments {
 		row := &t.moments[i]
 		if row[0] == 0 {
 			continue
 		}
-		c := float64(2*i+1) * alpha // centre in units of kT
+		c := float64(float64(2*i+1)*alpha) + t.origin/T // centre in units of kT
 		if c > tableReach {
 			break
 		}
@@ -165,12 +181,17 @@ func (t *levelTable) reduced(T float64) Reduced {
 		bins = append(bins, s)
 		q += s.z
 		mean += float64(s.c*s.z) + float64(alpha*s.z1)
+		size += math.Abs(s.c) * s.z
 	}
 	mean /= q
+	ok := size <= loss*mean*q
 	variance := 0.0
+	size = 0
 	for _, s := range bins {
 		d := s.c - mean
 		variance += float64(float64(d*d)*s.z) + float64(2*d*alpha*s.z1) + float64(alpha*alpha*s.z2)
+		size += float64(d*d) * s.z
 	}
-	return Reduced{LogQ: math.Log(q), U: mean, C: variance / q}
+	ok = ok && size <= loss*variance && (q > 1.1 || q < 0.9)
+	return Reduced{LogQ: math.Log(q), U: mean, C: variance / q}, ok
 }

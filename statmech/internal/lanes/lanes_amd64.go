@@ -20,3 +20,9 @@ func fill8(dst, v *float64, inside *uint8, groups int, num, f1, f2 float64, rows
 //
 //go:noescape
 func products8(sum, y *[Width]float64, w, weight *float64, n int, rows *[9]float64, end float64) int
+
+// moments8 is the loop of Moments.Add for whole groups. It returns
+// how many groups it did.
+//
+//go:noescape
+func moments8(m *Moments, e, weight *float64, groups int) int

@@ -58,29 +58,30 @@
 
 // EIGHTROWS: the same where every lane has a row of its own. The rows are
 // loaded and transposed, which takes a third of the time of gathering; only c8
-// is gathered. 64 bytes at the top of the stack hold the offsets.
+// is gathered. R13 = 64 bytes of the stack for the offsets, in one line of the
+// cache.
 // Z27 = 72, the bytes of a row.
 #define EIGHTROWS \
 	VCVTTPD2QQ Z1, Z1 \
 	VPMULLQ Z27, Z1, Z1 \
-	VMOVDQU64 Z1, 0(SP) \
+	VMOVDQA64 Z1, (R13) \
 	KXNORB K4, K4, K4 \
 	VXORPD X7, X7, X7 \
 	VGATHERQPD 64(R8)(Z1*1), K4, Z7 \
-	MOVQ 0(SP), AX \
-	MOVQ 8(SP), BX \
+	MOVQ 0(R13), AX \
+	MOVQ 8(R13), BX \
 	VMOVUPD (R8)(AX*1), Z8 \
 	VMOVUPD (R8)(BX*1), Z9 \
-	MOVQ 16(SP), AX \
-	MOVQ 24(SP), BX \
+	MOVQ 16(R13), AX \
+	MOVQ 24(R13), BX \
 	VMOVUPD (R8)(AX*1), Z10 \
 	VMOVUPD (R8)(BX*1), Z11 \
-	MOVQ 32(SP), AX \
-	MOVQ 40(SP), BX \
+	MOVQ 32(R13), AX \
+	MOVQ 40(R13), BX \
 	VMOVUPD (R8)(AX*1), Z12 \
 	VMOVUPD (R8)(BX*1), Z13 \
-	MOVQ 48(SP), AX \
-	MOVQ 56(SP), BX \
+	MOVQ 48(R13), AX \
+	MOVQ 56(R13), BX \
 	VMOVUPD (R8)(AX*1), Z14 \
 	VMOVUPD (R8)(BX*1), Z15 \
 	VUNPCKLPD Z9, Z8, Z16 \
@@ -125,7 +126,7 @@
 	VADDPD Z16, Z0, Z0
 
 // func fill8(dst, v *float64, inside *uint8, groups int, num, f1, f2 float64, rows *[9]float64, end float64, divide bool) bool
-TEXT ·fill8(SB), 0, $64-81
+TEXT ·fill8(SB), 0, $128-81
 	MOVQ dst+0(FP), DI
 	MOVQ v+8(FP), SI
 	MOVQ inside+16(FP), R11
@@ -141,6 +142,8 @@ TEXT ·fill8(SB), 0, $64-81
 	SPREAD(HALF, Z28)
 	MOVQ $72, AX
 	VPBROADCASTQ AX, Z27
+	LEAQ 63(SP), R13
+	ANDQ $~63, R13
 	XORQ DX, DX
 	XORQ R12, R12
 
@@ -184,7 +187,7 @@ fillDone:
 	RET
 
 // func products8(sum, y *[8]float64, w, weight *float64, n int, rows *[9]float64, end float64) int
-TEXT ·products8(SB), 0, $64-64
+TEXT ·products8(SB), 0, $128-64
 	MOVQ sum+0(FP), DI
 	MOVQ y+8(FP), AX
 	MOVQ w+16(FP), SI
@@ -199,6 +202,8 @@ TEXT ·products8(SB), 0, $64-64
 	SPREAD(HALF, Z28)
 	MOVQ $72, AX
 	VPBROADCASTQ AX, Z27
+	LEAQ 63(SP), R13
+	ANDQ $~63, R13
 	XORQ DX, DX
 
 products:
