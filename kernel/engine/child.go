@@ -370,7 +370,10 @@ func (t *crashText) meaning() string {
 			return "endless recursion: the stack grew beyond its limit"
 		case strings.HasPrefix(line, "fatal error: runtime: out of memory"), strings.HasPrefix(line, "fatal error: runtime: cannot allocate memory"):
 			return "out of memory"
-		case strings.HasPrefix(line, "fatal error: "), strings.HasPrefix(line, "panic: "):
+		case strings.HasPrefix(line, "panic: "):
+			// A goroutine that a cell starts is guarded.
+			return "panic in a goroutine that a library has started: " + strings.TrimPrefix(line, "panic: ")
+		case strings.HasPrefix(line, "fatal error: "):
 			return line
 		case strings.HasPrefix(line, "SIG"), strings.HasPrefix(line, "unexpected fault address"):
 			return line

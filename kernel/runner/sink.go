@@ -33,6 +33,11 @@ func (s sink) Ask(prompt string, secret bool) (string, error) {
 	s.r.send(engine.Event{Op: "ask", ID: q.id, Sync: true, Text: prompt, Secret: secret})
 	select {
 	case a := <-q.answer:
+		select {
+		case <-stop:
+			panic(guard.Halted)
+		default:
+		}
 		if a.Err != "" {
 			return "", errors.New(a.Err)
 		}

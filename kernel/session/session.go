@@ -226,15 +226,16 @@ func (s *Session) closeSockets(linger time.Duration) {
 // no cell running it does nothing.
 func (s *Session) Interrupt() {
 	s.mu.Lock()
-	executing := s.executing
+	executing, asked := s.executing, s.question
 	if executing {
 		s.stopCell = true
-		s.question.answer(reply{err: errInterrupted})
 	}
 	s.mu.Unlock()
 	if !executing {
 		return
 	}
+	// The engine hears of it first: the cell is to end, not to get an error.
+	defer asked.answer(reply{err: errInterrupted})
 	select {
 	case <-s.up:
 		if s.engine != nil {
