@@ -133,6 +133,7 @@ type emitter struct {
 	edits []edit
 	skip  map[ast.Node]bool // nodes that an edit has replaced whole
 	comm  map[ast.Node]bool // sends and receives that a select waits for
+	list  *listing          // set if the text is for a reader and the go command
 	err   error
 }
 
@@ -198,6 +199,9 @@ func (e *emitter) node(n ast.Node) string {
 
 // use returns the name under which the unit imports a package.
 func (e *emitter) use(path string) string {
+	if e.list != nil {
+		return e.list.use(path)
+	}
 	if a, ok := e.alias[path]; ok {
 		return a
 	}
@@ -215,6 +219,9 @@ func (e *emitter) guard(name string) string { return e.use(GuardPath) + "." + na
 
 // ref is how the unit names an object declared by a cell.
 func (e *emitter) ref(o types.Object) string {
+	if e.list != nil {
+		return e.list.name(o, o.Name())
+	}
 	name := mark(o.Name())
 	if o.Pkg() == e.plan.pkg {
 		return name
@@ -243,6 +250,9 @@ func (e *emitter) fail(pos token.Pos, msg string) {
 
 // slot returns the expression for a session variable.
 func (e *emitter) slot(l *Slot) string {
+	if e.list != nil {
+		return e.list.variable(e, l)
+	}
 	if !slices.Contains(e.unit.Slots, l) {
 		e.unit.Slots = append(e.unit.Slots, l)
 	}

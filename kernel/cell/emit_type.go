@@ -51,7 +51,7 @@ func (e *emitter) typ(t types.Type) string {
 				s = e.guard(mark(b.Name()))
 			}
 			tag := t.Tag(i)
-			if !f.Exported() && f.Name() != "_" && !(f.Embedded() && isStruct(f.Type())) {
+			if e.list == nil && !f.Exported() && f.Name() != "_" && !(f.Embedded() && isStruct(f.Type())) {
 				tag = strings.TrimSpace(`json:"-" xml:"-" ` + tag)
 			}
 			if tag != "" {

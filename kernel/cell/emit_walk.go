@@ -36,6 +36,9 @@ func (e *emitter) visit(n ast.Node, stack []ast.Node) bool {
 	if len(stack) > 0 {
 		parent = stack[len(stack)-1]
 	}
+	if e.list != nil {
+		return e.visitListed(n, parent)
+	}
 	switch n := n.(type) {
 	case *ast.FuncDecl:
 		if n.Recv == nil && n.Name.Name == "init" {

@@ -14,6 +14,7 @@ import (
 	"strings"
 	"testing"
 
+	"levelsum/display"
 	"levelsum/kernel/compile"
 	"levelsum/kernel/compile/kittest"
 )
@@ -330,7 +331,26 @@ func TestPicture(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	stored, err := os.ReadFile(filepath.Join(root, "notebooks", name+".ipynb"))
+	for _, data := range storedOutputs(t, filepath.Join(root, "notebooks", name+".ipynb")) {
+		svg := data["image/svg+xml"]
+		switch {
+		case svg == "":
+			continue
+		case *update:
+			write(t, file, []byte(svg))
+		case svg != string(picture):
+			t.Errorf("%s is not the notebook's first figure: go test ./kernel/levelsum -run TestPicture -update", file)
+		}
+		return
+	}
+	t.Errorf("%s.ipynb stores no figure", name)
+}
+
+// storedOutputs are the texts that a notebook's outputs hold, by media type;
+// what is no text is there and empty.
+func storedOutputs(t *testing.T, file string) (all []map[string]string) {
+	t.Helper()
+	stored, err := os.ReadFile(file)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -346,21 +366,31 @@ func TestPicture(t *testing.T) {
 	}
 	for _, c := range nb.Cells {
 		for _, o := range c.Outputs {
-			lines, ok := o.Data["image/svg+xml"].([]any)
-			if !ok {
-				continue
+			texts := map[string]string{}
+			for media, v := range o.Data {
+				texts[media] = ""
+				lines, _ := v.([]any)
+				for _, l := range lines {
+					text, _ := l.(string)
+					texts[media] += text
+				}
+				if text, ok := v.(string); ok {
+					texts[media] = text
+				}
 			}
-			var svg strings.Builder
-			for _, l := range lines {
-				svg.WriteString(l.(string))
-			}
-			if *update {
-				write(t, file, []byte(svg.String()))
-			} else if svg.String() != string(picture) {
-				t.Errorf("%s is not the notebook's first figure: go test ./kernel/levelsum -run TestPicture -update", file)
-			}
-			return
+			all = append(all, texts)
 		}
 	}
-	t.Errorf("%s.ipynb stores no figure", name)
+	return all
+}
+
+// storedResults are the lines of the named results that a notebook stores.
+func storedResults(t *testing.T, file string) (lines []string) {
+	t.Helper()
+	for _, data := range storedOutputs(t, file) {
+		if _, ok := data[display.ResultMediaType]; ok {
+			lines = append(lines, data["text/plain"])
+		}
+	}
+	return lines
 }

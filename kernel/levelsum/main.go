@@ -9,6 +9,7 @@ Usage:
 	levelsum check NOTEBOOK...    run, say which results are not the stored ones
 	levelsum report NOTEBOOK      write one page of HTML for readers and for paper
 	levelsum clear NOTEBOOK...    take the outputs out
+	levelsum script NOTEBOOK      write the code as one Go program
 	levelsum install              register the kernel, compile what cells may import
 	levelsum remove               take away what install has made
 	levelsum serve FILE           answer a front end; front ends call it
@@ -42,6 +43,7 @@ var commands = map[string]command{
 	"remove":  remove,
 	"report":  makeReport,
 	"run":     run,
+	"script":  script,
 	"serve":   serve,
 	"version": showVersion,
 }
@@ -61,6 +63,7 @@ const usage = `usage: levelsum COMMAND ...
   check NOTEBOOK...    run, say which results are not the stored ones
   report NOTEBOOK      write one page of HTML for readers and for paper
   clear NOTEBOOK...    take the outputs out
+  script NOTEBOOK      write the code as one Go program
   install              register the kernel, compile what cells may import
   remove               take away what install has made
   serve FILE           answer a front end; front ends call it
