@@ -274,8 +274,7 @@ func (d Derivation) View() View {
 		tex.WriteString("\\paragraph{" + mark.EscapeLaTeX(d.Title) + "}\n")
 		text.WriteString(oneLineText(d.Title) + "\n")
 	}
-	var names []string
-	all := map[string]slotValue{}
+	var all []namedSlot
 	for i := range steps {
 		r := &steps[i]
 		r.markdown(&md)
@@ -283,8 +282,7 @@ func (d Derivation) View() View {
 		r.text(&text)
 		for _, y := range r.Symbols {
 			if v, ok := r.vals[y.Name]; ok {
-				names = append(names, y.Name)
-				all[y.Name] = v
+				all = append(all, namedSlot{y.Name, v})
 			}
 		}
 	}
@@ -297,7 +295,7 @@ func (d Derivation) View() View {
 		"text/plain":     strings.TrimSuffix(text.String(), "\n"),
 		"text/markdown":  strings.TrimSuffix(md.String(), "\n"),
 		"text/latex":     tex.String(),
-		NumbersMediaType: stored(names, all),
+		NumbersMediaType: stored(all),
 	}}
 }
 

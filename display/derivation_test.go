@@ -1,6 +1,7 @@
 package display
 
 import (
+	"fmt"
 	"strings"
 	"testing"
 )
@@ -25,5 +26,21 @@ func TestDerivationKeepsFactorsApart(t *testing.T) {
 		if s, _ := v.Data["text/markdown"].(string); !strings.Contains(s, test.want) {
 			t.Errorf("%s: no %s in\n%s", test.formula, test.want, s)
 		}
+	}
+}
+
+// A symbol that stands for one number in one step and for another in the next
+// is stored with both.
+func TestDerivationStoresAllNumbers(t *testing.T) {
+	step := func(c float64) Step {
+		return Step{Formula: `[[C]] = [[n]]`, Symbols: []Symbol{{Name: "C", Meaning: "m", Value: c, Unit: "J/K"}, {Name: "n", Meaning: "m", Value: 3}}}
+	}
+	v := Derivation{Steps: []Step{step(1.5), step(2.5), step(1.5)}}.View()
+	var got []string
+	for _, n := range v.Data[NumbersMediaType].([]map[string]any) {
+		got = append(got, fmt.Sprint(n["name"], n["value"]))
+	}
+	if s := strings.Join(got, " "); s != "C1.5 n3 C2.5" {
+		t.Errorf("stored %s", s)
 	}
 }

@@ -57,6 +57,10 @@ func (p Paragraph) View() View {
 	if err != nil {
 		return refused(err)
 	}
+	var all []namedSlot
+	for _, name := range names {
+		all = append(all, namedSlot{name, vals[name]})
+	}
 	var text, md strings.Builder
 	inMath := false
 	for _, c := range ps {
@@ -76,7 +80,7 @@ func (p Paragraph) View() View {
 	return View{Data: map[string]any{
 		"text/plain":     text.String(),
 		"text/markdown":  md.String(),
-		NumbersMediaType: stored(names, vals),
+		NumbersMediaType: stored(all),
 	}}
 }
 

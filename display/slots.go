@@ -98,25 +98,32 @@ func readSlot(name string, v any) (slotValue, error) {
 
 func safeText(s fmt.Stringer) string { return oneLine(s) }
 
-// stored lists numbers for the comparison of two runs, each once.
-func stored(names []string, vals map[string]slotValue) []map[string]any {
-	seen := map[string]bool{}
+// A namedSlot is a value with the name of its slot.
+type namedSlot struct {
+	name string
+	slotValue
+}
+
+// stored lists numbers for the comparison of two runs, each once: a symbol that
+// stands for one number in one step and for another in the next is there twice.
+func stored(all []namedSlot) []map[string]any {
+	seen := map[Number]bool{}
 	list := []map[string]any{}
-	for _, name := range names {
-		v := vals[name]
-		if seen[name] || !v.number {
+	for _, v := range all {
+		if !v.number {
 			continue
 		}
-		seen[name] = true
-		label := v.m.name
-		if label == "" {
-			label = name
+		n := Number{Name: v.m.name, Value: v.m.v, Unit: v.m.unit, Withheld: v.m.withheld}
+		if n.Name == "" {
+			n.Name = v.name
 		}
-		n := Number{Name: label, Value: v.m.v, Unit: v.m.unit, Withheld: v.m.withheld}
 		if v.m.hasU {
 			n.U = v.m.u
 		}
-		list = append(list, n.stored())
+		if !seen[n] {
+			seen[n] = true
+			list = append(list, n.stored())
+		}
 	}
 	return list
 }
