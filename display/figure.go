@@ -125,10 +125,10 @@ type Mark struct {
 	Label string
 }
 
-// A renderer draws a figure in a format: "svg" (colours of the page it stands
-// in), "svg file" (stands alone), "pdf", "png".
-var renderer func(f *scene.Figure, format string) ([]byte, error)
+// A renderer draws a figure in some formats: "svg" (colours of the page it
+// stands in), "svg file" (stands alone), "pdf", "png".
+var renderer func(f *scene.Figure, formats ...string) ([][]byte, error)
 
 // SetRenderer is called by display/draw's Register, once, before figures are
 // shown.
-func SetRenderer(r func(f *scene.Figure, format string) ([]byte, error)) { renderer = r }
+func SetRenderer(r func(f *scene.Figure, formats ...string) ([][]byte, error)) { renderer = r }

@@ -31,22 +31,18 @@ func (f Figure) View() View {
 	if renderer == nil {
 		return Text(text + "\n" + f.numbers(sc.X.Quantity, all))
 	}
-	page, err := renderer(sc, "svg")
+	drawn, err := renderer(sc, "svg", "svg file")
 	if err != nil {
 		return refused(refuse("Figure", err))
 	}
-	file, err := renderer(sc, "svg file")
-	if err != nil {
-		return refused(refuse("Figure", err))
-	}
-	html := string(page)
+	html := string(drawn[0])
 	if f.Caption != "" {
 		html += `<p style="margin:0.2em 0;max-width:46em">` + mark.HTML(mark.Label(f.Caption)) + "</p>\n"
 	}
 	return View{Data: map[string]any{
 		"text/plain":    oneLineText(strings.ReplaceAll(text, "\n", " ")),
 		"text/html":     html,
-		"image/svg+xml": string(file),
+		"image/svg+xml": string(drawn[1]),
 	}}
 }
 
@@ -79,7 +75,7 @@ func (f Figure) Save(path string) error {
 	if err != nil {
 		return refuse("Figure", err)
 	}
-	return os.WriteFile(path, b, 0o666)
+	return os.WriteFile(path, b[0], 0o666)
 }
 
 // CSV returns the plotted numbers at full precision, one row a point. Columns

@@ -37,31 +37,41 @@ const pngDotsPerInch = 300
 // bytes.
 var creationDate = regexp.MustCompile(`/(CreationDate|ModDate) \(D:\d{14}`)
 
-func render(f *scene.Figure, format string) (out []byte, err error) {
+// render draws a figure in some formats; both kinds of SVG are drawn once.
+func render(f *scene.Figure, formats ...string) ([][]byte, error) {
 	w, h := points(f.Width), points(f.Height)
-	switch format {
-	case "svg", "svg file":
-		s := newSVG(w, h, f.Alt, format == "svg file")
-		draw(f, s, w, h)
-		return s.bytes(), nil
-	case "pdf":
-		c := vgpdf.New(vg.Length(w), vg.Length(h))
-		draw(f, newCanvas(c, h), w, h)
-		var b bytes.Buffer
-		if _, err := c.WriteTo(&b); err != nil {
-			return nil, fmt.Errorf("writing PDF: %w", err)
+	var out [][]byte
+	var body []byte // of SVG
+	for _, format := range formats {
+		switch format {
+		case "svg", "svg file":
+			if body == nil {
+				s := &svg{}
+				draw(f, s, w, h)
+				body = s.b.Bytes()
+			}
+			out = append(out, svgDocument(w, h, f.Alt, format == "svg file", body))
+		case "pdf":
+			c := vgpdf.New(vg.Length(w), vg.Length(h))
+			draw(f, newCanvas(c, h), w, h)
+			var b bytes.Buffer
+			if _, err := c.WriteTo(&b); err != nil {
+				return nil, fmt.Errorf("writing PDF: %w", err)
+			}
+			out = append(out, creationDate.ReplaceAll(b.Bytes(), []byte("/$1 (D:20000101000000")))
+		case "png":
+			c := vgimg.NewWith(vgimg.UseWH(vg.Length(w), vg.Length(h)), vgimg.UseDPI(pngDotsPerInch))
+			draw(f, newCanvas(c, h), w, h)
+			var b bytes.Buffer
+			if _, err := (vgimg.PngCanvas{Canvas: c}).WriteTo(&b); err != nil {
+				return nil, fmt.Errorf("writing PNG: %w", err)
+			}
+			out = append(out, b.Bytes())
+		default:
+			return nil, fmt.Errorf("no format %q", format)
 		}
-		return creationDate.ReplaceAll(b.Bytes(), []byte("/$1 (D:20000101000000")), nil
-	case "png":
-		c := vgimg.NewWith(vgimg.UseWH(vg.Length(w), vg.Length(h)), vgimg.UseDPI(pngDotsPerInch))
-		draw(f, newCanvas(c, h), w, h)
-		var b bytes.Buffer
-		if _, err := (vgimg.PngCanvas{Canvas: c}).WriteTo(&b); err != nil {
-			return nil, fmt.Errorf("writing PNG: %w", err)
-		}
-		return b.Bytes(), nil
 	}
-	return nil, fmt.Errorf("no format %q", format)
+	return out, nil
 }
 
 // points converts mm to points.

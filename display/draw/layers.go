@@ -2,6 +2,7 @@ package draw
 
 import (
 	"math"
+	"slices"
 
 	"levelsum/display/internal/scene"
 )
@@ -116,6 +117,11 @@ func (p *plan) points(q *panelPlan, l scene.Points) {
 		if a, c, ok := clip(a, c, q.box); ok {
 			bars.move(a.x, a.y)
 			bars.line(c.x, c.y)
+		}
+	}
+	for _, u := range [][]float64{l.XErr, l.YErr} {
+		if u != nil {
+			bars.ops = slices.Grow(bars.ops, 2*len(keep))
 		}
 	}
 	at := make([]point, 0, len(keep))

@@ -183,7 +183,7 @@ func TestTextsApart(t *testing.T) {
 			f.Width, f.Height = w, 0
 			t.Run(fmt.Sprintf("%s/%v", name, w), func(t *testing.T) {
 				var got *scene.Figure
-				display.SetRenderer(func(s *scene.Figure, format string) ([]byte, error) { got = s; return nil, nil })
+				display.SetRenderer(func(s *scene.Figure, _ ...string) ([][]byte, error) { got = s; return [][]byte{nil, nil}, nil })
 				defer Register()
 				f.View()
 				s := &texts{}
@@ -208,7 +208,7 @@ func TestTextsApart(t *testing.T) {
 func TestLegendFree(t *testing.T) {
 	for name, f := range gallery() {
 		var got *scene.Figure
-		display.SetRenderer(func(s *scene.Figure, format string) ([]byte, error) { got = s; return nil, nil })
+		display.SetRenderer(func(s *scene.Figure, _ ...string) ([][]byte, error) { got = s; return [][]byte{nil, nil}, nil })
 		f.View()
 		Register()
 		p := &plan{f: got, s: &texts{}, w: points(got.Width), h: points(got.Height), size: 9}
@@ -284,7 +284,7 @@ func BenchmarkFigure(b *testing.B) {
 	}
 	b.Run("svg/points=2000", func(b *testing.B) {
 		var got *scene.Figure
-		display.SetRenderer(func(s *scene.Figure, format string) ([]byte, error) { got = s; return nil, nil })
+		display.SetRenderer(func(s *scene.Figure, _ ...string) ([][]byte, error) { got = s; return [][]byte{nil, nil}, nil })
 		bigFigure(2000).View()
 		Register()
 		b.ReportAllocs()

@@ -19,27 +19,21 @@ type svg struct {
 	b bytes.Buffer
 }
 
-// newSVG begins a drawing. One that stands alone brings paper and ink, light
-// or dark as the reader prefers; one in a page takes the page's.
-func newSVG(w, h float64, alt string, alone bool) *svg {
-	s := &svg{}
-	s.b.WriteString(`<svg xmlns="http://www.w3.org/2000/svg" role="img" aria-label="` + mark.Escape(alt) + `" width="` + num(w*4/3) +
-		`" height="` + num(h*4/3) + `" viewBox="0 0 ` + num(w) + " " + num(h) + `" font-family="Liberation Sans, Arial, Helvetica, sans-serif"`)
+// svgDocument puts a drawing into a document. One that stands alone brings paper
+// and ink, light or dark as the reader prefers; one in a page takes the page's.
+func svgDocument(w, h float64, alt string, alone bool, body []byte) []byte {
+	head := `<svg xmlns="http://www.w3.org/2000/svg" role="img" aria-label="` + mark.Escape(alt) + `" width="` + num(w*4/3) +
+		`" height="` + num(h*4/3) + `" viewBox="0 0 ` + num(w) + " " + num(h) + `" font-family="Liberation Sans, Arial, Helvetica, sans-serif"`
 	if alone {
-		s.b.WriteString(`>` + "\n" + `<style>svg{color:#1a1a1a;background:#fff}@media (prefers-color-scheme:dark){svg{color:#e4e4e4;background:#15171a}}</style>`)
+		head += `>` + "\n" + `<style>svg{color:#1a1a1a;background:#fff}@media (prefers-color-scheme:dark){svg{color:#e4e4e4;background:#15171a}}</style>` +
+			"\n<title>" + mark.Escape(alt) + "</title>" // in a page it would be a tooltip over the whole figure
 	} else {
-		s.b.WriteString(` style="max-width:100%;height:auto;background:transparent">`)
+		head += ` style="max-width:100%;height:auto;background:transparent">`
 	}
-	if alone { // in a page it would be a tooltip over the whole figure
-		s.b.WriteString("\n<title>" + mark.Escape(alt) + "</title>")
-	}
-	s.b.WriteString("\n" + `<g fill="none" stroke-linejoin="round">` + "\n")
-	return s
-}
-
-func (s *svg) bytes() []byte {
-	s.b.WriteString("</g>\n</svg>\n")
-	return s.b.Bytes()
+	head += "\n" + `<g fill="none" stroke-linejoin="round">` + "\n"
+	const tail = "</g>\n</svg>\n"
+	out := make([]byte, 0, len(head)+len(body)+len(tail))
+	return append(append(append(out, head...), body...), tail...)
 }
 
 // num writes a length with two decimals at most.

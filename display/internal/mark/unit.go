@@ -12,12 +12,14 @@ type factor struct {
 	exp int
 }
 
+var plainUnit = strings.NewReplacer("·", " ", "*", " ", "⁻", "-", "⁰", "0", "¹", "1", "²", "2", "³", "3",
+	"⁴", "4", "⁵", "5", "⁶", "6", "−", "-", "^", "", "{", "", "}", "")
+
 // factors parses a unit text: "J/(mol K)", "J mol-1 K-1", "J·mol^-1·K^-1",
 // "cm-1", "m²". It reports false for what it does not understand, which is
 // then shown as it stands.
 func factors(s string) ([]factor, bool) {
-	s = strings.NewReplacer("·", " ", "*", " ", "⁻", "-", "⁰", "0", "¹", "1", "²", "2", "³", "3",
-		"⁴", "4", "⁵", "5", "⁶", "6", "−", "-", "^", "", "{", "", "}", "").Replace(strings.TrimSpace(s))
+	s = plainUnit.Replace(strings.TrimSpace(s))
 	var out []factor
 	sign, slashes, inParen := 1, 0, false
 	closed := false // one denominator has been read outside parentheses
@@ -166,6 +168,8 @@ func SameUnit(a, b string) bool {
 	return true
 }
 
+var bareUnit = strings.NewReplacer("^", "", "{", "", "}", "")
+
 // AsWritten gives the runs of a unit in the writer's own arrangement, with
 // exponents raised: "J/(mol K)" stays, "cm-1" gets its superscript.
 func AsWritten(unit string) []Run {
@@ -173,7 +177,7 @@ func AsWritten(unit string) []Run {
 		return Label(unit)
 	}
 	var rs []Run
-	s := []rune(strings.NewReplacer("^", "", "{", "", "}", "").Replace(unit))
+	s := []rune(bareUnit.Replace(unit))
 	for i := 0; i < len(s); {
 		j := i
 		if i > 0 && unicode.IsLetter(s[i-1]) {
