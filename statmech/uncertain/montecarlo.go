@@ -5,6 +5,7 @@ import (
 	"math"
 	"math/rand/v2"
 	"runtime"
+	"slices"
 	"sync"
 
 	"levelsum/display"
@@ -182,7 +183,6 @@ func (s *sampler) draw(n int) {
 			}()
 			b := s.newBlock(blockSize)
 			pcg := rand.NewPCG(0, 0)
-			r := rand.New(pcg)
 			for k := w; k < blocks; k += workers {
 				pcg.Seed(s.d.seed, s.next+uint64(k))
 				from := k * blockSize
@@ -190,7 +190,7 @@ func (s *sampler) draw(n int) {
 				if display.Interrupted() {
 					return
 				}
-				s.inputs(b, r, m)
+				s.inputs(b, pcg, m)
 				s.run(b, m)
 				for i, slot := range s.outputs {
 					copy(out[i][from:from+m], b.values[slot][:m])
@@ -207,6 +207,9 @@ func (s *sampler) draw(n int) {
 	default:
 	}
 	s.next += uint64(blocks)
+	for i := range s.values {
+		s.values[i] = slices.Grow(s.values[i], n)
+	}
 	for k := range n {
 		if !done[k/blockSize] {
 			s.halted = true
@@ -228,20 +231,19 @@ func (s *sampler) draw(n int) {
 }
 
 // inputs draws the values of every source (JCGM 101:2008, 6.4).
-func (s *sampler) inputs(b *block, r *rand.Rand, m int) {
+func (s *sampler) inputs(b *block, source *rand.PCG, m int) {
+	r := rand.New(source)
 	for _, src := range s.sources {
 		rows := b.draws[src]
 		if len(rows) == 1 {
-			s.single(src, rows[0][:m], r)
+			s.single(src, rows[0][:m], r, source)
 			continue
 		}
 		n := len(rows)
 		l := s.l[src]
 		z := make([]float64, n)
 		for k := range m {
-			for i := range z {
-				z[i] = r.NormFloat64()
-			}
+			normals(z, 0, 1, source)
 			f := tFactor(src.dof, r)
 			for i := range rows {
 				v := 0.0
@@ -254,7 +256,7 @@ func (s *sampler) inputs(b *block, r *rand.Rand, m int) {
 	}
 }
 
-func (s *sampler) single(src *source, out []float64, r *rand.Rand) {
+func (s *sampler) single(src *source, out []float64, r *rand.Rand, source *rand.PCG) {
 	x, u := src.value[0], math.Sqrt(src.cov[0])
 	switch src.shape {
 	case Uniform:
@@ -274,13 +276,12 @@ func (s *sampler) single(src *source, out []float64, r *rand.Rand) {
 		}
 	default:
 		if math.IsInf(src.dof, 1) {
-			for k := range out {
-				out[k] = x + float64(u*r.NormFloat64())
-			}
+			normals(out, x, u, source)
 			return
 		}
+		normals(out, 0, u, source)
 		for k := range out {
-			out[k] = x + u*r.NormFloat64()*tFactor(src.dof, r)
+			out[k] = x + float64(out[k]*tFactor(src.dof, r))
 		}
 	}
 }

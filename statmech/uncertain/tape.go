@@ -3,6 +3,8 @@ package uncertain
 import (
 	"math"
 	"sort"
+
+	"levelsum/statmech/internal/lanes"
 )
 
 // tape is the computation of several quantities as a list of steps, each on a
@@ -187,6 +189,8 @@ func (t *tape) run(b *block, n int) {
 					}
 				}
 			}
+		case opExp:
+			lanes.Exp(out, x)
 		default:
 			f := elementary[st.op]
 			for k := range out {
@@ -217,5 +221,5 @@ func power(out, x []float64, k float64) {
 	}
 }
 
-var elementary = [...]func(float64) float64{opExp: math.Exp, opLog: math.Log, opSqrt: math.Sqrt, opSin: math.Sin, opCos: math.Cos, opTan: math.Tan,
+var elementary = [...]func(float64) float64{opLog: math.Log, opSqrt: math.Sqrt, opSin: math.Sin, opCos: math.Cos, opTan: math.Tan,
 	opAsin: math.Asin, opAcos: math.Acos, opAtan: math.Atan, opSinh: math.Sinh, opCosh: math.Cosh, opTanh: math.Tanh, opAbs: math.Abs}
