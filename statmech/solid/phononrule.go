@@ -1,6 +1,11 @@
 package solid
 
-import "math"
+import (
+	"math"
+	"slices"
+
+	"levelsum/statmech/internal/lanes"
+)
 
 // A rule is a quadrature over a density of states: ∫ g f dω ≈ Σ weightᵢ f(wᵢ)
 // for the f of a harmonic mode at every temperature from low on.
@@ -18,7 +23,7 @@ type rule struct {
 }
 
 const (
-	panelNodes = 20
+	panelNodes = lanes.Chebyshevs
 	// rulesKept is how many rules a Phonons remembers.
 	rulesKept = 4
 )
@@ -102,20 +107,54 @@ func (r *rule) piece(p *Phonons, i int, a, b, panel float64) {
 	if b-a > a/8 && a > 0 {
 		parts = min(8, int(math.Ceil(8*(b-a)/a)))
 	}
-	nodes, weights := gauss6Nodes[:], gauss6Weights[:]
+	nodes, weights, whole := gauss6Nodes[:], gauss6Weights[:], inCell6[:]
 	if b-a < panel/16 {
-		nodes, weights = gauss4Nodes[:], gauss4Weights[:]
+		nodes, weights, whole = gauss4Nodes[:], gauss4Weights[:], inCell4[:]
 	}
+	n := len(nodes)
+	at := len(r.w)
+	r.w, r.weight = slices.Grow(r.w, parts*n)[:at+parts*n], slices.Grow(r.weight, parts*n)[:at+parts*n]
+	x, y := &p.knots[i], &p.knots[i+1]
 	h := (b - a) / float64(parts)
+	if parts == 1 && a == x.w && b == y.w {
+		// A whole cell: the points are at known places between the knots.
+		w, weight := r.w[at:at+n], r.weight[at:at+n]
+		mid, half := a+h*0.5, h/2
+		slopeX, slopeY := h*x.slope, h*y.slope
+		for j, c := range whole {
+			w[j] = mid + float64(half*nodes[j])
+			density := (float64(c.gX*x.g) + float64(c.gY*y.g)) + (float64(c.slopeX*slopeX) + float64(c.slopeY*slopeY))
+			weight[j] = half * weights[j] * density
+		}
+		return
+	}
 	for k := range parts {
 		mid := a + h*(float64(k)+0.5)
-		for j, x := range nodes {
-			v := mid + h/2*x
-			r.w = append(r.w, v)
-			r.weight = append(r.weight, h/2*weights[j]*p.density(i, v))
+		for j, node := range nodes {
+			v := mid + h/2*node
+			r.w[at], r.weight[at] = v, h/2*weights[j]*p.density(i, v)
+			at++
 		}
 	}
 }
+
+// inCell holds what the values and slopes at the two knots of a cell of width 1
+// contribute to the cubic at a point.
+type inCell struct{ gX, gY, slopeX, slopeY float64 }
+
+func inCellAt(node float64) inCell {
+	t := (1 + node) / 2
+	u := (1 - node) / 2
+	return inCell{u * u * (1 + 2*t), t * t * (1 + 2*u), t * u * u, -t * t * u}
+}
+
+var (
+	inCell4 = [...]inCell{inCellAt(gauss4Nodes[0]), inCellAt(gauss4Nodes[1]), inCellAt(gauss4Nodes[2]), inCellAt(gauss4Nodes[3])}
+	inCell6 = [...]inCell{
+		inCellAt(gauss6Nodes[0]), inCellAt(gauss6Nodes[1]), inCellAt(gauss6Nodes[2]),
+		inCellAt(gauss6Nodes[3]), inCellAt(gauss6Nodes[4]), inCellAt(gauss6Nodes[5]),
+	}
+)
 
 // condensed returns the panel's points, or Chebyshev nodes in their place if
 // those are fewer.
@@ -124,21 +163,8 @@ func (r rule) condensed(a, b float64) (w, weight []float64) {
 		return r.w, r.weight
 	}
 	mid, half := (a+b)/2, (b-a)/2
-	weight = make([]float64, panelNodes)
-	var moment [panelNodes]float64 // ∫ g Tₖ dω
-	for i, v := range r.w {
-		t := (v - mid) / half
-		// The recurrence carries the weight along.
-		t0 := r.weight[i]
-		t1 := t0 * t
-		t *= 2
-		for k := 0; k < panelNodes; k += 2 {
-			moment[k] += t0
-			moment[k+1] += t1
-			t0 = float64(t*t1) - t0
-			t1 = float64(t*t0) - t1
-		}
-	}
+	w, weight = make([]float64, 0, panelNodes), make([]float64, panelNodes)
+	moment := lanes.ChebyshevMoments(r.w, r.weight, mid, half) // ∫ g Tₖ dω
 	// Weight of node j: (1/n) Σ' 2 Tₖ(tⱼ) moment_k.
 	for j := range panelNodes {
 		t := math.Cos(math.Pi * (float64(j) + 0.5) / panelNodes)

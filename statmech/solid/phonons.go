@@ -9,6 +9,8 @@ import (
 	"sync"
 
 	"levelsum/statmech"
+	"levelsum/statmech/internal/heats"
+	"levelsum/statmech/internal/lanes"
 	"levelsum/statmech/special"
 	"levelsum/statmech/unit"
 )
@@ -176,7 +178,8 @@ func NewPhonons(t PhononTable) (*Phonons, error) {
 	if g0 := real[0].g; real[0].w == 0 && g0 > 1e-3*top/(float64(t.Per)/unit.Boltzmann) {
 		p.warnings = append(p.warnings, fmt.Sprintf("the density at ω = 0 is %.2g of the largest: sound waves have none there, and entropy and low-temperature heat capacity take it at its word", g0*(float64(t.Per)/unit.Boltzmann)/top))
 	}
-	whole := integral(real) + imaginary
+	area := integral(real)
+	whole := area + imaginary
 	p.share = imaginary / whole
 	want := map[Normalisation]float64{IntegralOne: 1, IntegralThree: 3, IntegralCellModes: p.cell}[t.Integral]
 	p.measured = whole / want
@@ -190,10 +193,11 @@ func NewPhonons(t PhononTable) (*Phonons, error) {
 	} else if p.share > 0 {
 		p.warnings = append(p.warnings, fmt.Sprintf("imaginary frequencies have %.2g %% of the states; they were left out and the others scaled", 100*p.share))
 	}
-	scale := 1 / integral(real)
-	for _, k := range real {
-		p.knots = append(p.knots, knot{k.w, k.g * scale, k.slope * scale})
+	scale := 1 / area
+	for i, k := range real {
+		real[i] = knot{k.w, k.g * scale, k.slope * scale}
 	}
+	p.knots = real
 	return p, nil
 }
 
@@ -204,41 +208,34 @@ func cubic(w, g []float64) []knot {
 	n := len(w)
 	k := make([]knot, n)
 	secant := func(i int) float64 { return (g[i+1] - g[i]) / (w[i+1] - w[i]) }
-	for i := range k {
-		k[i] = knot{w: w[i], g: g[i]}
-		switch {
-		case n < 3:
-			k[i].slope = secant(0)
-		case i == 0:
-			k[i].slope = secant(0) + (secant(0)-secant(1))*(w[1]-w[0])/(w[2]-w[0])
-		case i == n-1:
-			k[i].slope = secant(n-2) + (secant(n-2)-secant(n-3))*(w[n-1]-w[n-2])/(w[n-1]-w[n-3])
-		default:
-			h0, h1 := w[i]-w[i-1], w[i+1]-w[i]
-			k[i].slope = (secant(i-1)*h1 + secant(i)*h0) / (h0 + h1)
-		}
+	first, last := secant(0), secant(n-2)
+	k[0] = knot{w: w[0], g: g[0], slope: first}
+	k[n-1] = knot{w: w[n-1], g: g[n-1], slope: last}
+	if n > 2 {
+		s := secant(1)
+		k[0].slope = first + (first-s)*(w[1]-w[0])/(w[2]-w[0])
+		s = secant(n - 3)
+		k[n-1].slope = last + (last-s)*(w[n-1]-w[n-2])/(w[n-1]-w[n-3])
 	}
-	for i := range k {
-		limit := math.Inf(1)
-		var sign float64
-		for _, j := range []int{i - 1, i} {
-			if j < 0 || j >= n-1 {
-				continue
-			}
-			s := secant(j)
-			limit = min(limit, 3*math.Abs(s))
-			if sign == 0 {
-				sign = math.Copysign(1, s)
-			} else if sign*s < 0 {
-				limit = 0
-			}
-		}
-		if k[i].slope*sign < 0 {
-			k[i].slope = 0
-		}
-		k[i].slope = math.Copysign(min(math.Abs(k[i].slope), limit), k[i].slope)
+	k[0].slope = limited(k[0].slope, first, first)
+	k[n-1].slope = limited(k[n-1].slope, last, last)
+	before := first
+	for i := 1; i < n-1; i++ {
+		h0, h1 := w[i]-w[i-1], w[i+1]-w[i]
+		after := (g[i+1] - g[i]) / h1
+		k[i] = knot{w[i], g[i], limited((before*h1+after*h0)/(h0+h1), before, after)}
+		before = after
 	}
 	return k
+}
+
+// limited returns a slope made so small that the cubics to both sides, whose
+// mean slopes are given, do not overshoot.
+func limited(slope, before, after float64) float64 {
+	if before*after < 0 || slope*math.Copysign(1, before) < 0 {
+		return math.Copysign(0, slope)
+	}
+	return math.Copysign(min(math.Abs(slope), 3*math.Abs(before), 3*math.Abs(after)), slope)
 }
 
 // integral returns ∫ g dω of the cubics, exactly.
@@ -389,15 +386,37 @@ func (p *Phonons) heats(dst, ts []float64) {
 	}
 	r := p.rule(slices.Min(ts))
 	inParallel(len(ts), len(r.w), func(from, to int) {
-		for k := from; k < to; k++ {
-			sum, inverse := 0.0, 1/ts[k]
-			for i, w := range r.w {
-				sum += float64(r.weight[i] * special.EinsteinC(w*inverse))
+		for ; from < to; from += lanes.Width {
+			n := min(lanes.Width, to-from)
+			var inverse, sum [lanes.Width]float64
+			for l := range inverse {
+				inverse[l] = 1 / ts[from+min(l, n-1)] // lanes too many repeat the last temperature
 			}
-			dst[k] = p.count * sum
+			r.addHeats(&sum, &inverse)
+			for l, c := range sum[:n] {
+				dst[from+l] = p.count * c
+			}
 		}
 	})
 }
+
+// addHeats adds Σ weightᵢ C(wᵢ/T) for eight inverse temperatures to sum.
+func (r rule) addHeats(sum, inverse *[lanes.Width]float64) {
+	warm := slices.Min(inverse[:])
+	for i := 0; i < len(r.w); i++ {
+		i += heats.Einstein.AddProducts(sum, inverse, r.w[i:], r.weight[i:])
+		if i == len(r.w) || r.w[i]*warm > heatIsZero {
+			continue
+		}
+		// Beyond the table for the coldest at least.
+		for l, y := range inverse {
+			sum[l] += float64(r.weight[i] * special.EinsteinC(r.w[i]*y))
+		}
+	}
+}
+
+// heatIsZero is an x from which on special.EinsteinC is 0.
+const heatIsZero = 750
 
 // inParallel calls f for parts of 0 … n-1, on all processors if n calls of the
 // given cost (in evaluations of a mode) are worth it, and waits for them.

@@ -1,6 +1,10 @@
 package special
 
-import "math"
+import (
+	"math"
+
+	"levelsum/statmech/internal/lanes"
+)
 
 // fermiSeries is F_j: y·low(y), y = e^η, for η < -2; segments of width 1/2 up
 // to 42; Sommerfeld's expansion beyond, whose first term left out and the
@@ -125,16 +129,8 @@ func FermiDiracs(dst []float64, j float64, eta []float64) []float64 {
 		}
 		return dst
 	}
-	mid := s.mid
-	for k, v := range eta {
-		if v >= fermiMidFrom && v < fermiMidTo {
-			y := 2 * (v - fermiMidFrom)
-			i := int(y)
-			dst[k] = poly11(&mid[i], y-(float64(i)+0.5))
-			continue
-		}
-		dst[k] = s.outside(v)
-	}
+	table := lanes.Table11{Rows: s.mid[:], From: fermiMidFrom, To: fermiMidTo, PerUnit: 2}
+	table.Fill(dst, eta, func(k int) float64 { return s.outside(eta[k]) })
 	return dst
 }
 

@@ -26,3 +26,13 @@ func products8(sum, y *[Width]float64, w, weight *float64, n int, rows *[9]float
 //
 //go:noescape
 func moments8(m *Moments, e, weight *float64, groups int) int
+
+// chebyshev8 is the loop of ChebyshevMoments for groups of 8 points.
+//
+//go:noescape
+func chebyshev8(sum *[Chebyshevs][Width]float64, w, weight *float64, groups int, mid, half float64)
+
+// fill11 is the loop of Table11.Fill for groups of 8 numbers; see fill8.
+//
+//go:noescape
+func fill11(dst, x *float64, inside *uint8, groups int, from, to, perUnit float64, rows *[12]float64) bool

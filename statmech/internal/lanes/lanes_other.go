@@ -16,3 +16,10 @@ func products8(sum, y *[Width]float64, w, weight *float64, n int, rows *[9]float
 func hasVector() bool { return false }
 
 func moments8(m *Moments, e, weight *float64, groups int) int { return 0 }
+
+func chebyshev8(sum *[Chebyshevs][Width]float64, w, weight *float64, groups int, mid, half float64) {
+}
+
+func fill11(dst, x *float64, inside *uint8, groups int, from, to, perUnit float64, rows *[12]float64) bool {
+	return false
+}

@@ -2,14 +2,7 @@
 // Multiplications and additions are kept apart (no FMA), as in the Go loops.
 
 #include "textflag.h"
-
-// Constants in every lane.
-#define HALF  $0x3FE0000000000000
-#define FOUR  $0x4010000000000000
-
-#define SPREAD(bits, z) \
-	MOVQ bits, AX \
-	VPBROADCASTQ AX, z
+#include "lanes_amd64.h"
 
 // INSIDE: K2 = the lanes of Z0 = x that are in (0, end). The carry flag is set
 // if all are, the zero flag if none is.
@@ -68,46 +61,7 @@
 	KXNORB K4, K4, K4 \
 	VXORPD X7, X7, X7 \
 	VGATHERQPD 64(R8)(Z1*1), K4, Z7 \
-	MOVQ 0(R13), AX \
-	MOVQ 8(R13), BX \
-	VMOVUPD (R8)(AX*1), Z8 \
-	VMOVUPD (R8)(BX*1), Z9 \
-	MOVQ 16(R13), AX \
-	MOVQ 24(R13), BX \
-	VMOVUPD (R8)(AX*1), Z10 \
-	VMOVUPD (R8)(BX*1), Z11 \
-	MOVQ 32(R13), AX \
-	MOVQ 40(R13), BX \
-	VMOVUPD (R8)(AX*1), Z12 \
-	VMOVUPD (R8)(BX*1), Z13 \
-	MOVQ 48(R13), AX \
-	MOVQ 56(R13), BX \
-	VMOVUPD (R8)(AX*1), Z14 \
-	VMOVUPD (R8)(BX*1), Z15 \
-	VUNPCKLPD Z9, Z8, Z16 \
-	VUNPCKHPD Z9, Z8, Z17 \
-	VUNPCKLPD Z11, Z10, Z18 \
-	VUNPCKHPD Z11, Z10, Z19 \
-	VUNPCKLPD Z13, Z12, Z20 \
-	VUNPCKHPD Z13, Z12, Z21 \
-	VUNPCKLPD Z15, Z14, Z22 \
-	VUNPCKHPD Z15, Z14, Z23 \
-	VSHUFF64X2 $0x88, Z18, Z16, Z8 \
-	VSHUFF64X2 $0xdd, Z18, Z16, Z9 \
-	VSHUFF64X2 $0x88, Z22, Z20, Z10 \
-	VSHUFF64X2 $0xdd, Z22, Z20, Z11 \
-	VSHUFF64X2 $0x88, Z19, Z17, Z12 \
-	VSHUFF64X2 $0xdd, Z19, Z17, Z13 \
-	VSHUFF64X2 $0x88, Z23, Z21, Z14 \
-	VSHUFF64X2 $0xdd, Z23, Z21, Z15 \
-	VSHUFF64X2 $0x88, Z10, Z8, Z16 \
-	VSHUFF64X2 $0xdd, Z10, Z8, Z20 \
-	VSHUFF64X2 $0x88, Z11, Z9, Z18 \
-	VSHUFF64X2 $0xdd, Z11, Z9, Z22 \
-	VSHUFF64X2 $0x88, Z14, Z12, Z17 \
-	VSHUFF64X2 $0xdd, Z14, Z12, Z21 \
-	VSHUFF64X2 $0x88, Z15, Z13, Z19 \
-	VSHUFF64X2 $0xdd, Z15, Z13, Z23 \
+	TRANSPOSE \
 	VMULPD Z19, Z2, Z0 \
 	VADDPD Z18, Z0, Z0 \
 	VMULPD Z21, Z2, Z5 \
