@@ -12,7 +12,7 @@ import (
 const clearUsage = `usage: levelsum clear NOTEBOOK...
 
 Takes out of each notebook what running it has put there: outputs, numbers of
-runs, the list of data files. Everything else stays.
+runs, the provenance. Everything else stays.
 
 The exit status is 0 on success, 2 if a file cannot be read as a notebook, 1 if
 it cannot be written.
@@ -30,6 +30,9 @@ func clearNotebooks(args []string, _ io.Reader, stdout, stderr io.Writer) int {
 	for _, file := range fs.Args() {
 		d, err := notebook.Read(file)
 		if err == nil {
+			for _, m := range d.Mended {
+				fmt.Fprintf(stderr, "%s: %s\n", file, m)
+			}
 			if err = rerun.Clear(d); err == nil {
 				err = d.Write(file)
 			}
