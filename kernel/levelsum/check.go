@@ -12,8 +12,8 @@ import (
 	"strings"
 	"syscall"
 	"text/tabwriter"
+	"time"
 
-	"levelsum/kernel/notebook"
 	"levelsum/kernel/rerun"
 )
 
@@ -52,6 +52,8 @@ type checked struct {
 	Failures []string        `json:"failures,omitempty"`
 	NotRun   int             `json:"not_run,omitempty"`
 	Findings []rerun.Finding `json:"findings"`
+
+	took time.Duration
 }
 
 // check is "levelsum check".
@@ -78,7 +80,7 @@ func checkWith(args []string, stdout, stderr io.Writer, start runner) int {
 	defer stop()
 	status := 0
 	var all []checked
-	for _, file := range fs.Args() {
+	for i, file := range fs.Args() {
 		c, err := checkOne(ctx, file, f, start, stderr)
 		if err != nil {
 			fmt.Fprintf(stderr, "levelsum: check: %v\n", err)
@@ -90,6 +92,10 @@ func checkWith(args []string, stdout, stderr io.Writer, start runner) int {
 		}
 		all = append(all, c)
 		if ctx.Err() != nil {
+			for _, left := range fs.Args()[i+1:] {
+				fmt.Fprintf(stderr, "levelsum: check: not checked: %s\n", left)
+				all = append(all, checked{File: left, Failures: []string{"not checked: the command was interrupted"}})
+			}
 			break
 		}
 	}
@@ -115,7 +121,7 @@ func checkWith(args []string, stdout, stderr io.Writer, start runner) int {
 }
 
 func checkOne(ctx context.Context, file string, f runFlags, start runner, stderr io.Writer) (checked, error) {
-	stored, err := notebook.Read(file)
+	stored, err := readNotebook(file)
 	if err != nil {
 		return checked{}, err
 	}
@@ -129,6 +135,7 @@ func checkOne(ctx context.Context, file string, f runFlags, start runner, stderr
 	}
 	c := checked{File: file, OK: r.OK(), Cells: len(r.Steps), NotRun: r.NotRun, Findings: findings}
 	for _, s := range r.Steps {
+		c.took += s.Took
 		if s.Fault != nil && !s.Allowed {
 			c.Failures = append(c.Failures, fmt.Sprintf("cell %d: %s: %s", s.Cell, s.Fault.Name, s.Fault.Message))
 		}
@@ -222,53 +229,88 @@ func change(f rerun.Finding) string {
 	return strings.Join(s, "; ")
 }
 
+// The elements that readers of JUnit XML agree on (testsuites, testsuite,
+// testcase, failure, error, system-out).
 type junitCase struct {
 	Class   string     `xml:"classname,attr"`
 	Name    string     `xml:"name,attr"`
+	Time    string     `xml:"time,attr"`
 	Failure *junitText `xml:"failure,omitempty"`
 	Error   *junitText `xml:"error,omitempty"`
+	Note    string     `xml:"system-out,omitempty"`
 }
 
 type junitText struct {
 	Message string `xml:"message,attr"`
+	Type    string `xml:"type,attr"`
+	Text    string `xml:",chardata"`
+}
+
+type junitCount struct {
+	Tests    int    `xml:"tests,attr"`
+	Failures int    `xml:"failures,attr"`
+	Errors   int    `xml:"errors,attr"`
+	Skipped  int    `xml:"skipped,attr"`
+	Time     string `xml:"time,attr"`
 }
 
 type junitSuite struct {
-	Name     string      `xml:"name,attr"`
-	Tests    int         `xml:"tests,attr"`
-	Failures int         `xml:"failures,attr"`
-	Errors   int         `xml:"errors,attr"`
-	Cases    []junitCase `xml:"testcase"`
+	Name string `xml:"name,attr"`
+	junitCount
+	Cases []junitCase `xml:"testcase"`
 }
 
 func writeJUnit(w io.Writer, all []checked) error {
 	root := struct {
-		XMLName xml.Name     `xml:"testsuites"`
-		Suites  []junitSuite `xml:"testsuite"`
-	}{}
+		XMLName xml.Name `xml:"testsuites"`
+		Name    string   `xml:"name,attr"`
+		junitCount
+		Suites []junitSuite `xml:"testsuite"`
+	}{Name: "levelsum check"}
+	const none = "0.000"
+	var took time.Duration
 	for _, c := range all {
 		s := junitSuite{Name: c.File}
-		cells := junitCase{Class: c.File, Name: "cells run"}
+		s.Time = fmt.Sprintf("%.3f", c.took.Seconds())
+		took += c.took
+		names := map[string]int{}
+		add := func(name string) *junitCase {
+			// Readers take two cases of one name for one.
+			if names[name]++; names[name] > 1 {
+				name = fmt.Sprintf("%s (%d)", name, names[name])
+			}
+			s.Cases = append(s.Cases, junitCase{Class: c.File, Name: name, Time: none})
+			return &s.Cases[len(s.Cases)-1]
+		}
+		cells := add("cells run")
+		cells.Time = s.Time
 		if len(c.Failures) > 0 || c.NotRun > 0 {
 			text := strings.Join(c.Failures, "; ")
 			if c.NotRun > 0 {
 				text += fmt.Sprintf("; %d cells not run", c.NotRun)
 			}
-			cells.Error = &junitText{strings.TrimPrefix(text, "; ")}
+			text = strings.TrimPrefix(text, "; ")
+			cells.Error = &junitText{text, "failed", text}
 			s.Errors++
 		}
-		s.Cases = append(s.Cases, cells)
 		for _, f := range c.Findings {
-			x := junitCase{Class: c.File, Name: where(f)}
-			if f.Verdict.Differs() {
-				x.Failure = &junitText{f.Verdict.String() + ": " + change(f)}
+			x := add(where(f))
+			text := f.Verdict.String() + ": " + change(f)
+			switch {
+			case f.Verdict.Differs():
+				x.Failure = &junitText{text, f.Verdict.String(), text}
 				s.Failures++
+			case f.Verdict != rerun.Identical:
+				x.Note = text
 			}
-			s.Cases = append(s.Cases, x)
 		}
 		s.Tests = len(s.Cases)
+		root.Tests += s.Tests
+		root.Failures += s.Failures
+		root.Errors += s.Errors
 		root.Suites = append(root.Suites, s)
 	}
+	root.Time = fmt.Sprintf("%.3f", took.Seconds())
 	if _, err := io.WriteString(w, xml.Header); err != nil {
 		return err
 	}

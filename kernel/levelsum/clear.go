@@ -5,7 +5,6 @@ import (
 	"fmt"
 	"io"
 
-	"levelsum/kernel/notebook"
 	"levelsum/kernel/rerun"
 )
 
@@ -28,13 +27,19 @@ func clearNotebooks(args []string, _ io.Reader, stdout, stderr io.Writer) int {
 	}
 	status := 0
 	for _, file := range fs.Args() {
-		d, err := notebook.Read(file)
+		d, err := readNotebook(file)
 		if err == nil {
 			for _, m := range d.Mended {
 				fmt.Fprintf(stderr, "%s: %s\n", file, m)
 			}
+			var to target
+			if to, err = openTarget(file, true); err != nil {
+				fmt.Fprintf(stderr, "levelsum: clear: %v\n", err)
+				status = max(status, statusOf(err))
+				continue
+			}
 			if err = rerun.Clear(d); err == nil {
-				err = d.Write(file)
+				err = to.save(d)
 			}
 		}
 		if err != nil {

@@ -57,6 +57,12 @@ func makeReport(args []string, _ io.Reader, stdout, stderr io.Writer) int {
 		return fail(2, "-code %s: want folded, shown or hidden", *code)
 	}
 	file := fs.Arg(0)
+	if err := writable(*out); err != nil {
+		return fail(statusOf(err), "%v", err)
+	}
+	if _, err := readNotebook(file); err != nil {
+		return fail(statusOf(err), "%v", err)
+	}
 	data, err := os.ReadFile(file)
 	if err != nil {
 		return fail(statusOf(err), "%v", err)
@@ -79,6 +85,9 @@ func makeReport(args []string, _ io.Reader, stdout, stderr io.Writer) int {
 	})
 	if err != nil {
 		return fail(1, "%s: %v", file, err)
+	}
+	for _, m := range d.Mended {
+		fmt.Fprintf(stderr, "%s: %s\n", file, m)
 	}
 	for _, w := range append(state, warnings...) {
 		fmt.Fprintf(stderr, "%s: %s\n", file, w)

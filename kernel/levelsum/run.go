@@ -7,10 +7,12 @@ import (
 	"flag"
 	"fmt"
 	"io"
+	"maps"
 	"math"
 	"os"
 	"os/signal"
 	"path/filepath"
+	"slices"
 	"strconv"
 	"strings"
 	"syscall"
@@ -144,19 +146,32 @@ func runWith(args []string, stdout, stderr io.Writer, start runner) int {
 	case len(f.set) > 0 && *out == "":
 		return misuse("-set changes the notebook's inputs, so it needs -o OUT; nothing was run")
 	}
+	targets := map[string]string{}
+	for _, file := range files {
+		targets[file] = file
+		switch {
+		case intoFolder:
+			targets[file] = filepath.Join(*out, filepath.Base(file))
+		case *out != "":
+			targets[file] = *out
+		}
+	}
+	from := map[string]string{}
+	for _, file := range slices.Sorted(maps.Keys(targets)) {
+		if other, ok := from[targets[file]]; ok {
+			return misuse("%s and %s would both be written to %s; nothing was run", other, file, targets[file])
+		}
+		from[targets[file]] = file
+	}
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
 	defer stop()
 	status := 0
-	for _, file := range files {
-		target := file
-		switch {
-		case intoFolder:
-			target = filepath.Join(*out, filepath.Base(file))
-		case *out != "":
-			target = *out
-		}
-		status = max(status, runOne(ctx, file, target, f, start, stdout, stderr))
+	for i, file := range files {
+		status = max(status, runOne(ctx, file, targets[file], f, start, stdout, stderr))
 		if ctx.Err() != nil {
+			if i+1 < len(files) {
+				fmt.Fprintf(stderr, "levelsum: run: not run: %s\n", strings.Join(files[i+1:], ", "))
+			}
 			break
 		}
 	}
@@ -193,9 +208,12 @@ func parseFlags(fs *flag.FlagSet, args []string, stdout io.Writer, usage string)
 
 // execute reads a notebook and runs it, telling stderr how each cell went.
 func execute(ctx context.Context, file string, f runFlags, start runner, stderr io.Writer) (*notebook.Document, *rerun.Report, error) {
-	d, err := notebook.Read(file)
+	d, err := readNotebook(file)
 	if err != nil {
 		return nil, nil, err
+	}
+	if err := rerun.CheckLanguage(d); err != nil {
+		return nil, nil, fmt.Errorf("%s: %w", file, err)
 	}
 	dir := filepath.Dir(file)
 	var env []string
@@ -226,6 +244,9 @@ func execute(ctx context.Context, file string, f runFlags, start runner, stderr 
 	})
 	if err != nil {
 		return nil, nil, fmt.Errorf("%s: %w", file, err)
+	}
+	if len(r.Steps) == 0 && r.NotRun == 0 {
+		fmt.Fprintln(stderr, "  no cell of code in it, so nothing was run")
 	}
 	if r.Stopped != "" {
 		fmt.Fprintf(stderr, "  stopped: %s\n", r.Stopped)
@@ -283,19 +304,32 @@ func printStep(w io.Writer, s rerun.Step) {
 	}
 }
 
-func runOne(ctx context.Context, file, target string, f runFlags, start runner, stdout, stderr io.Writer) int {
-	d, r, err := execute(ctx, file, f, start, stderr)
-	if err != nil {
+func runOne(ctx context.Context, file, path string, f runFlags, start runner, stdout, stderr io.Writer) int {
+	fail := func(err error) int {
 		fmt.Fprintf(stderr, "levelsum: run: %v\n", err)
 		return statusOf(err)
+	}
+	if _, err := readNotebook(file); err != nil {
+		return fail(err)
+	}
+	to, err := openTarget(path, path == file)
+	if err != nil {
+		return fail(err)
+	}
+	d, r, err := execute(ctx, file, f, start, stderr)
+	if err != nil {
+		return fail(err)
 	}
 	if ctx.Err() != nil {
 		fmt.Fprintf(stderr, "levelsum: run: %s: interrupted, nothing was written\n", file)
 		return 1
 	}
-	if err := d.Write(target); err != nil {
-		fmt.Fprintf(stderr, "levelsum: run: %v\n", err)
-		return 1
+	if p, err := rerun.ReadProvenance(d); err == nil && p != nil && len(p.Data) > 0 && filepath.Dir(file) != filepath.Dir(path) {
+		fmt.Fprintf(stderr, "  note: %s lies in another folder than %s; names of data files in it start from the latter\n", path, file)
+	}
+	failed := 0
+	if err := to.save(d); err != nil {
+		failed = fail(err)
 	}
 	for _, x := range r.Inputs {
 		if x.Set != "" {
@@ -308,16 +342,17 @@ func runOne(ctx context.Context, file, target string, f runFlags, start runner, 
 		fmt.Fprintln(stdout, x.Shown)
 	}
 	if !r.OK() {
-		return 1
+		return max(1, failed)
 	}
-	return 0
+	return failed
 }
 
 // statusOf returns 2 for what the user can put right in the call or the
 // notebook file, 1 for everything else.
 func statusOf(err error) int {
 	var format *notebook.FormatError
-	if errors.As(err, &format) || errors.Is(err, notebook.ErrSyntax) || errors.Is(err, os.ErrNotExist) || errors.Is(err, rerun.ErrInput) {
+	var misuse *misuseError
+	if errors.As(err, &format) || errors.As(err, &misuse) || errors.Is(err, rerun.ErrLanguage) || errors.Is(err, notebook.ErrSyntax) || errors.Is(err, os.ErrNotExist) || errors.Is(err, rerun.ErrInput) {
 		return 2
 	}
 	return 1

@@ -77,6 +77,8 @@ func TestScripts(t *testing.T) {
 //	cat FILE                 prints a file of the notebook's folder
 //	fail TEXT                ends the cell
 //	wait                     ends the cell when it is interrupted
+//	tell FILE                writes a line to a file, as to a pipe
+//	copy FROM TO             copies a file
 //
 // Other lines do nothing.
 type scripted struct {
@@ -114,6 +116,19 @@ func (s *scripted) Run(_ context.Context, c engine.Cell, out engine.Output) engi
 				return fault("compile error", err.Error())
 			}
 			out.Show(display.Number{Name: name, Value: v, U: u, Unit: w[3]}.View(), "", false)
+		case "tell":
+			if err := os.WriteFile(s.dir+"/"+arg, []byte("now\n"), 0o666); err != nil {
+				return fault("panic", err.Error())
+			}
+		case "copy":
+			from, to, _ := strings.Cut(arg, " ")
+			b, err := os.ReadFile(s.dir + "/" + from)
+			if err == nil {
+				err = os.WriteFile(s.dir+"/"+to, b, 0o666)
+			}
+			if err != nil {
+				return fault("panic", err.Error())
+			}
 		case "fail":
 			return fault("panic", arg)
 		case "wait":

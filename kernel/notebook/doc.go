@@ -14,7 +14,8 @@
 // that this package does not know, the order of keys and the spelling of
 // numbers and strings stay as they were. What is written has the layout that
 // the format's own tools write (one space a level, text in lines, a newline at
-// the end), so that a front end that saves the file again changes nothing.
+// the end; CR LF at the ends of lines if all of the file's had it), so that a
+// front end that saves the file again changes nothing.
 //
 // A document that breaks the rules of its version is refused with the cell and
 // the field named, see [FormatError]. Two things are mended instead and noted

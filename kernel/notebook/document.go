@@ -16,6 +16,7 @@ type Document struct {
 	root  *value
 	cells []*Cell
 	minor int
+	crlf  bool // every line of the file ends in CR LF
 }
 
 // ErrSyntax is matched by the error of a file that is not JSON.
@@ -65,7 +66,8 @@ func Parse(file string, data []byte) (*Document, error) {
 		}
 		return nil, err
 	}
-	d := &Document{root: root}
+	lines := bytes.Count(data, []byte("\n"))
+	d := &Document{root: root, crlf: lines > 0 && lines == bytes.Count(data, []byte("\r\n"))}
 	if err := d.check(file); err != nil {
 		return nil, err
 	}
@@ -124,7 +126,11 @@ func putMetadata(holder *value, x any, path []string) error {
 
 // Bytes returns the document as it is written to a file.
 func (d *Document) Bytes() []byte {
-	return append(d.root.write(nil, 0), '\n')
+	b := append(d.root.write(nil, 0), '\n')
+	if d.crlf { // a string holds no line end of its own
+		b = bytes.ReplaceAll(b, []byte("\n"), []byte("\r\n"))
+	}
+	return b
 }
 
 // version reads nbformat and nbformat_minor.

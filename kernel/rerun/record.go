@@ -7,6 +7,7 @@ import (
 	"sync"
 
 	"levelsum/display"
+	"levelsum/kernel/engine"
 	"levelsum/kernel/notebook"
 )
 
@@ -17,6 +18,8 @@ type recorder struct {
 	outputs map[int][]notebook.Output
 	clear   map[int]bool       // cells whose outputs go when the next one comes
 	places  map[string][]place // where a display id is shown
+	limits  map[int]*engine.Limit
+	growing map[int][]byte // what the stream that ends the list of a cell goes on with
 	over    bool
 
 	hint func(text string)
@@ -32,8 +35,7 @@ type cellOutput struct {
 
 func (r *recorder) cell(n int) cellOutput { return cellOutput{r, n} }
 
-// add appends an output to a cell: a stream to the stream of the same name
-// that ends the list, if one does.
+// add appends an output to a cell.
 func (r *recorder) add(cell int, o notebook.Output) {
 	r.mu.Lock()
 	defer r.mu.Unlock()
@@ -44,24 +46,92 @@ func (r *recorder) addLocked(cell int, o notebook.Output) {
 	if r.over {
 		return
 	}
+	r.begin(cell)
+	r.release(cell)
+	r.settle(cell)
+	r.outputs[cell] = append(r.outputs[cell], o)
+}
+
+// begin clears a cell that was to be cleared when something new comes.
+func (r *recorder) begin(cell int) {
 	if r.outputs == nil {
 		r.outputs, r.clear = map[int][]notebook.Output{}, map[int]bool{}
+		r.limits, r.growing = map[int]*engine.Limit{}, map[int][]byte{}
 	}
 	if r.clear[cell] {
 		delete(r.clear, cell)
 		r.drop(cell)
 	}
-	list := r.outputs[cell]
-	if n := len(list); o.Kind == notebook.Stream && n > 0 && list[n-1].Kind == notebook.Stream && list[n-1].Name == o.Name {
-		list[n-1].Text += o.Text
+	if r.limits[cell] == nil {
+		l := engine.NewLimit()
+		r.limits[cell] = &l
+	}
+}
+
+// print adds as much text as the limit of a cell allows; what is held back is
+// added by release.
+func (r *recorder) print(cell int, name, text string) {
+	r.mu.Lock()
+	defer r.mu.Unlock()
+	if r.over {
 		return
 	}
-	r.outputs[cell] = append(list, o)
+	r.begin(cell)
+	now, notice := r.limits[cell].Add(name, text)
+	r.stream(cell, name, now)
+	r.stream(cell, "stderr", notice)
+}
+
+// stream appends text to the stream of its name that ends the list of a cell,
+// if one does.
+func (r *recorder) stream(cell int, name, text string) {
+	if text == "" {
+		return
+	}
+	list := r.outputs[cell]
+	if n := len(list); n == 0 || list[n-1].Kind != notebook.Stream || list[n-1].Name != name {
+		r.settle(cell)
+		r.outputs[cell] = append(r.outputs[cell], notebook.Output{Kind: notebook.Stream, Name: name})
+	}
+	r.growing[cell] = append(r.growing[cell], text...)
+}
+
+// release adds the last part of what was held back.
+func (r *recorder) release(cell int) {
+	if l := r.limits[cell]; l != nil {
+		notice, last := l.Rest()
+		r.stream(cell, "stderr", notice)
+		for _, p := range last {
+			r.stream(cell, p.Name, string(p.Text))
+		}
+	}
+}
+
+// settle gives the stream that ends the list of a cell its text.
+func (r *recorder) settle(cell int) {
+	if text := r.growing[cell]; len(text) > 0 {
+		list := r.outputs[cell]
+		list[len(list)-1].Text += string(text)
+		delete(r.growing, cell)
+	}
+}
+
+// end says that a cell is over; what its goroutines print later has a limit of
+// its own.
+func (r *recorder) end(cell int) {
+	r.mu.Lock()
+	defer r.mu.Unlock()
+	if l := r.limits[cell]; l != nil {
+		r.release(cell)
+		l.More(engine.TailBytes)
+	}
 }
 
 // drop takes the outputs of a cell away.
 func (r *recorder) drop(cell int) {
 	delete(r.outputs, cell)
+	delete(r.limits, cell)
+	delete(r.growing, cell)
 	for id, places := range r.places {
 		r.places[id] = slices.DeleteFunc(places, func(p place) bool { return p.cell == cell })
 	}
@@ -71,13 +141,17 @@ func (r *recorder) drop(cell int) {
 func (r *recorder) finish() map[int][]notebook.Output {
 	r.mu.Lock()
 	defer r.mu.Unlock()
+	for cell := range r.outputs {
+		r.release(cell)
+		r.settle(cell)
+	}
 	r.over = true
 	return maps.Clone(r.outputs)
 }
 
 func (c cellOutput) Stream(name, text string) {
 	if text != "" {
-		c.r.add(c.n, notebook.Output{Kind: notebook.Stream, Name: name, Text: text})
+		c.r.print(c.n, name, text)
 	}
 }
 

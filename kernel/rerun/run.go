@@ -254,6 +254,7 @@ func runCell(ctx context.Context, s Session, rec *recorder, n int, c *notebook.C
 	// the context.
 	o := s.Run(context.WithoutCancel(ctx), engineCell(n, c), out)
 	step.Took = time.Since(start)
+	rec.end(c.N)
 	close(done)
 	wait.Wait()
 	step.Fault, step.restarted, step.origins = o.Fault, o.Restarted, o.How["origins"]

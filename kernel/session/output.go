@@ -8,6 +8,7 @@ import (
 	"unicode/utf8"
 
 	"levelsum/display"
+	"levelsum/kernel/engine"
 	"levelsum/kernel/wire"
 )
 
@@ -30,7 +31,7 @@ type output struct {
 	pending []event    // in the order in which they came
 	bytes   int        // of text in pending
 	timer   *time.Timer
-	limit   limit
+	limit   engine.Limit
 	shown   shownSoFar
 	broken  map[string]string // by stream: the start of a rune
 	stopped bool              // nothing is published any more
@@ -61,7 +62,7 @@ func (s *Session) newOutput(r *request) *output {
 	if last := s.lastOutput.Load(); last != nil {
 		last.flushNow()
 	}
-	o := &output{s: s, r: r, silent: r.execute.Silent, limit: newLimit(), broken: map[string]string{}}
+	o := &output{s: s, r: r, silent: r.execute.Silent, limit: engine.NewLimit(), broken: map[string]string{}}
 	s.lastOutput.Store(o)
 	return o
 }
@@ -84,7 +85,7 @@ func (o *output) Stream(name, text string) {
 
 // print puts as much of text as the limit allows in line.
 func (o *output) print(name, text string) {
-	now, notice := o.limit.add(name, text)
+	now, notice := o.limit.Add(name, text)
 	o.add(name, []byte(now))
 	o.add("stderr", []byte(notice))
 }
@@ -104,10 +105,10 @@ func (o *output) add(name string, text []byte) {
 
 // release puts in line what the limit has held back.
 func (o *output) release() {
-	notice, last := o.limit.rest()
+	notice, last := o.limit.Rest()
 	o.add("stderr", []byte(notice))
 	for _, p := range last {
-		o.add(p.name, p.text)
+		o.add(p.Name, p.Text)
 	}
 }
 
@@ -184,7 +185,7 @@ func (o *output) Clear(wait bool) {
 	}
 	o.pending = append(kept, event{kind: clearEvent, wait: wait})
 	o.bytes = 0
-	o.limit = newLimit()
+	o.limit = engine.NewLimit()
 	o.soon()
 }
 
@@ -270,7 +271,7 @@ func (o *output) finish() {
 	o.flush()
 	o.settle()
 	o.shown.over, o.shown.events = true, nil
-	o.limit.head = max(o.limit.head, tailBytes)
+	o.limit.More(engine.TailBytes)
 }
 
 // stop publishes what waits and nothing more.

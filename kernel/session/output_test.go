@@ -232,7 +232,7 @@ func TestLongOutputIsCut(t *testing.T) {
 			stdout.WriteString(text)
 		}
 	}
-	if size > headBytes+tailBytes+1000 {
+	if size > engine.HeadBytes+engine.TailBytes+1000 {
 		t.Errorf("%d bytes were published", size)
 	}
 	shown := strings.Count(stdout.String(), "\n")
@@ -255,7 +255,7 @@ func TestLongOutputIsCut(t *testing.T) {
 
 // A little more than the head is shown whole.
 func TestOutputALittleLonger(t *testing.T) {
-	want := strings.Repeat("0123456789abcde\n", headBytes/16+100)
+	want := strings.Repeat("0123456789abcde\n", engine.HeadBytes/16+100)
 	got := shownBy(t, func(r *running) { r.Stream("stdout", want) })
 	var stdout strings.Builder
 	for _, m := range got {
@@ -272,16 +272,16 @@ func TestOutputALittleLonger(t *testing.T) {
 func TestCutDoesNotDependOnTiming(t *testing.T) {
 	text := strings.Repeat("some line with a number 0.123456789\n", 60_000)
 	cut := func(step int) string {
-		l := newLimit()
+		l := engine.NewLimit()
 		var b strings.Builder
 		for i := 0; i < len(text); i += step {
-			now, notice := l.add("stdout", text[i:min(i+step, len(text))])
+			now, notice := l.Add("stdout", text[i:min(i+step, len(text))])
 			b.WriteString(now + notice)
 		}
-		notice, last := l.rest()
+		notice, last := l.Rest()
 		b.WriteString(notice)
 		for _, p := range last {
-			b.Write(p.text)
+			b.Write(p.Text)
 		}
 		return b.String()
 	}
