@@ -132,6 +132,17 @@ func (c *checked) types(scope Scope) {
 			c.pkg.Scope().Insert(o)
 		}
 	}
+	for _, path := range dotsOf(scope) {
+		p, err := scope.Import(path)
+		if err != nil {
+			continue
+		}
+		for _, name := range p.Scope().Names() {
+			if o := p.Scope().Lookup(name); o.Exported() && !own[name] && c.pkg.Scope().Lookup(name) == nil {
+				c.pkg.Scope().Insert(o)
+			}
+		}
+	}
 	ast.Inspect(c.file, func(n ast.Node) bool {
 		sel, ok := n.(*ast.SelectorExpr)
 		if !ok {

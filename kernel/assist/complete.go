@@ -23,16 +23,19 @@ type Completion struct {
 // "constant", "type", "field", "module" (a package) or "keyword".
 type Match struct {
 	Text, Kind, Signature string
-	rank                  int // lower comes first
+	rank, order           int // lower comes first; order among those of one rank
 }
 
 // The ranks of matches.
 const (
-	rankWanted  = iota // a constant, or what else makes the type that is wanted here
-	rankFits           // a variable of the type that is wanted here
-	rankMember         // a field that a struct literal lacks, a member
-	rankLocal          // declared in this cell
-	rankSession        // declared in the session
+	rankWanted   = iota // a constant, or what else makes the type that is wanted here
+	rankFits            // a variable of the type that is wanted here
+	rankField           // a field, in the order of the struct
+	rankMember          // another member
+	rankOther           // a member that is wanted less often
+	rankPlumbing        // a member that is there for other code
+	rankLocal           // declared in this cell
+	rankSession         // declared in the session
 	rankPackage
 	rankBuiltin
 	rankKeyword
@@ -48,6 +51,9 @@ func Complete(scope Scope, source string, cursor int) Completion {
 	prefix := source[start:cursor]
 	none := Completion{Start: cursor, End: cursor}
 	if inText(source, start) {
+		if out, ok := textAt(scope, source, cursor); ok {
+			return out
+		}
 		return none
 	}
 	c, path := checkAt(scope, source, start, end)
@@ -56,15 +62,23 @@ func Complete(scope Scope, source string, cursor int) Completion {
 	}
 	out := Completion{Start: start, End: end}
 	for _, m := range c.candidates(scope, path) {
-		if m.rank == rankWanted && hasPrefix(m.Text[strings.IndexByte(m.Text, '.')+1:], prefix) || hasPrefix(m.Text, prefix) {
+		if m.rank == rankWanted && hasPrefix(m.Text[strings.IndexByte(m.Text, '.')+1:], prefix) || hasPrefix(strings.TrimPrefix(m.Text, "&"), prefix) {
 			m.Signature = strings.ReplaceAll(m.Signature, placeholder, source[start:end])
+			if (m.rank == rankField || m.rank == rankMember) && !strings.HasPrefix(m.Text, prefix) {
+				m.rank = rankOther // written in another case
+			}
 			out.Matches = append(out.Matches, m)
 		}
 	}
 	slices.SortStableFunc(out.Matches, func(a, b Match) int {
-		return cmp.Or(cmp.Compare(a.rank, b.rank), cmp.Compare(strings.ToLower(a.Text), strings.ToLower(b.Text)), cmp.Compare(a.Text, b.Text))
+		return cmp.Or(cmp.Compare(a.rank, b.rank), cmp.Compare(a.order, b.order), cmp.Compare(strings.ToLower(a.Text), strings.ToLower(b.Text)), cmp.Compare(a.Text, b.Text))
 	})
-	out.Matches = slices.CompactFunc(out.Matches, func(a, b Match) bool { return a.Text == b.Text })
+	seen := map[string]bool{}
+	out.Matches = slices.DeleteFunc(out.Matches, func(m Match) bool {
+		again := seen[m.Text]
+		seen[m.Text] = true
+		return again
+	})
 	return out
 }
 
@@ -80,6 +94,7 @@ func checkAt(scope Scope, source string, start, end int) (*checked, []ast.Node) 
 		func() string { return before + placeholder + "()" + after },
 		// So may what is wrong before.
 		func() string { return withoutBroken(before) + placeholder },
+		func() string { return lastLine(before) + placeholder },
 	} {
 		c := check(scope, text())
 		if path := c.pathTo(func(id *ast.Ident) bool { return id.Name == placeholder }); path != nil {
@@ -87,6 +102,12 @@ func checkAt(scope Scope, source string, start, end int) (*checked, []ast.Node) 
 		}
 	}
 	return nil, nil
+}
+
+// lastLine blanks all lines but the last.
+func lastLine(source string) string {
+	i := strings.LastIndexByte(source, '\n') + 1
+	return string(blanked(source[:i])) + source[i:]
 }
 
 // withoutBroken blanks the statements and declarations that do not parse, but
@@ -170,7 +191,12 @@ func inText(source string, offset int) bool {
 func (c *checked) candidates(scope Scope, path []ast.Node) []Match {
 	id := path[0].(*ast.Ident)
 	if sel, ok := parent(path, 0).(*ast.SelectorExpr); ok && sel.Sel == id {
-		return c.wantedFirst(scope, sel, path[1:], c.membersOf(sel.X))
+		members := c.membersOf(sel.X)
+		if isTypePlace(path[1:]) {
+			typesFirst(members)
+			return members
+		}
+		return c.wantedFirst(scope, sel, path[1:], members)
 	}
 	var all []Match
 	if lit, keyed := literalAround(path); lit != nil {
@@ -188,6 +214,9 @@ func (c *checked) candidates(scope Scope, path []ast.Node) []Match {
 	all = append(all, c.visible(id.Pos(), want)...)
 	for _, name := range scope.ImportNames() {
 		all = append(all, Match{Text: name, Kind: "module", Signature: scope.ImportPath(name), rank: rankPackage})
+	}
+	if isTypePlace(path) {
+		typesFirst(all)
 	}
 	for tok := token.BREAK; tok <= token.VAR; tok++ {
 		all = append(all, Match{Text: tok.String(), Kind: "keyword", rank: rankKeyword})
@@ -224,8 +253,16 @@ func (c *checked) visible(pos token.Pos, want types.Type) []Match {
 			}
 			if _, o := inner.LookupParent(name, pos); o != nil && o == s.Lookup(name) {
 				m := match(o, rank)
-				if _, isVar := o.(*types.Var); isVar && want != nil && fits(o.Type(), want) {
-					m.rank = rankFits
+				if rank == rankSession && o.Pkg() != nil && o.Pkg() != c.pkg && o.Pkg().Path() != "cell" {
+					m.rank = rankPackage // imported with a dot
+				}
+				if _, isVar := o.(*types.Var); isVar && want != nil {
+					switch {
+					case fits(o.Type(), want):
+						m.rank = rankFits
+					case fits(types.NewPointer(o.Type()), want):
+						m.rank, m.Text = rankFits, "&"+m.Text
+					}
 				}
 				all = append(all, m)
 			}

@@ -2,7 +2,6 @@ package assist
 
 import (
 	"go/ast"
-	"go/importer"
 	"go/parser"
 	"go/token"
 	"go/types"
@@ -11,6 +10,9 @@ import (
 	"strings"
 	"sync"
 	"testing"
+
+	"levelsum/kernel/compile"
+	"levelsum/kernel/symbols/export"
 )
 
 // A session whose declarations are one file.
@@ -20,11 +22,18 @@ type session struct {
 	imp   types.Importer
 }
 
-func (s session) Names() []string                            { return s.pkg.Scope().Names() }
-func (s session) Lookup(name string) types.Object            { return s.pkg.Scope().Lookup(name) }
-func (s session) ImportNames() []string                      { return slices.Sorted(maps.Keys(s.names)) }
-func (s session) ImportPath(name string) string              { return s.names[name] }
-func (s session) ImportPaths() []string                      { return importable }
+func (s session) Names() []string                 { return s.pkg.Scope().Names() }
+func (s session) Lookup(name string) types.Object { return s.pkg.Scope().Lookup(name) }
+func (s session) ImportNames() []string           { return slices.Sorted(maps.Keys(s.names)) }
+func (s session) ImportPath(name string) string   { return s.names[name] }
+func (s session) ImportPaths() []string           { return importable }
+func (s session) Dots() []string                  { return []string{"math/bits"} }
+func (s session) Texts(path, function string) []string {
+	if path+"."+function == "levelsum/statmech/data.Read" {
+		return []string{"copper.csv", "Δrun.csv", "notes.csv"}
+	}
+	return nil
+}
 func (s session) Import(path string) (*types.Package, error) { return s.imp.Import(path) }
 
 var importable = []string{"levelsum/statmech/unit", "math", "math/bits", "math/cmplx", "math/rand", "time"}
@@ -34,7 +43,12 @@ const declared = `package cell
 import (
 	"time"
 
+	"levelsum/display"
 	"levelsum/statmech"
+	"levelsum/statmech/data"
+	"levelsum/statmech/fit"
+	"levelsum/statmech/gas"
+	"levelsum/statmech/solid"
 	"levelsum/statmech/uncertain"
 	"levelsum/statmech/unit"
 )
@@ -82,19 +96,26 @@ var known uncertain.Quantity
 
 func area(s Shape) float64 { return 0 }
 func audit(o statmech.AuditOptions)                          {}
+
+var copper solid.Debye
+var water *gas.Molecule
+var table *data.Table
+var result *fit.Result
+var figure display.Figure
 `
 
-// oneSession is made once: the checker reads the source of all that it imports.
+// oneSession is made once.
 var oneSession = sync.OnceValues(func() (session, error) {
 	fset := token.NewFileSet()
 	f, err := parser.ParseFile(fset, "", declared, 0)
 	if err != nil {
 		return session{}, err
 	}
-	imp := importer.ForCompiler(fset, "source", nil)
+	imp := export.New(compile.List("../.."))
 	pkg, err := (&types.Config{Importer: imp}).Check("cell", fset, []*ast.File{f}, nil)
 	return session{pkg, map[string]string{"time": "time", "math": "math", "strings": "strings",
-		"unit": "levelsum/statmech/unit", "statmech": "levelsum/statmech", "uncertain": "levelsum/statmech/uncertain"}, imp}, err
+		"unit": "levelsum/statmech/unit", "statmech": "levelsum/statmech", "uncertain": "levelsum/statmech/uncertain", "solid": "levelsum/statmech/solid",
+		"gas": "levelsum/statmech/gas", "data": "levelsum/statmech/data", "fit": "levelsum/statmech/fit", "display": "levelsum/display"}, imp}, err
 })
 
 func newSession(t testing.TB) session {
@@ -175,7 +196,7 @@ func TestComplete(t *testing.T) {
 		{"any unit right of a negative number", "x := -2 * Bar|", "unit.Bar", "unit.Bar", ""},
 		{"no unit right of a variable", "x := θ * |", "run", "", "unit.K"},
 		{"quantity to an assigned variable", "room = 3 * |", "unit.K", "unit.K", "unit.Bar"},
-		{"quantity to a declared variable", "var e unit.Energy = 12 * |", "unit.PerCm gap", "unit.EV", "unit.K"},
+		{"quantity to a declared variable", "var e unit.Energy = 12 * |", "unit.PerCm gap unit.EV", "unit.PerCm", "unit.K"},
 		{"quantity in a sum", "gap + 3*PerC|", "unit.PerCm", "unit.PerCm", "unit.K"},
 		{"quantity in a comparison", "if room < 3*|", "unit.K", "unit.K", "unit.Bar"},
 		{"what is compared is not the condition", "if room < 3*unit.K && |", "run", "", "unit.K"},
@@ -199,7 +220,7 @@ func TestComplete(t *testing.T) {
 		{"value with the wanted methods", "area(|", "round shape", "round", ""},
 		{"options that are functions", "uncertain.MonteCarlo(known, |", "uncertain.Draws:function uncertain.Seed uncertain.Coverage", "uncertain.Coverage", "uncertain.Exp"},
 		{"options by their own names", "uncertain.MonteCarlo(known, uncertain.Draws(9), Se|", "uncertain.Seed", "uncertain.Seed", "uncertain.Draws"},
-		{"a wanted value of another package", "uncertain.Exp(|", "known uncertain.Quantity", "", "unit.K"},
+		{"a wanted value of another package", "uncertain.Exp(|", "known", "known", "unit.K uncertain.Quantity"},
 		{"first field of a struct of quantities", "type P struct{ T unit.Temperature }\nP{|", "T:field", "T", "unit.K"},
 		{"field of a struct of quantities", "type P struct{ T unit.Temperature }\nP{T: 3 * |", "unit.K", "unit.K", "unit.Bar"},
 		{"quantity among the units", "cv(300*unit.|", "K Bar Temperature:type", "K", ""},
@@ -231,6 +252,70 @@ func TestComplete(t *testing.T) {
 		{"pair assigned in the cell", "n, err := pair()\nerr.|", "Error:method", "Error", ""},
 		{"embedded in a cell's type", "type Wrap struct{ Sample }\nvar w Wrap\nw.|", "Mass Sample Below", "", ""},
 		{"generic function of the cell", "func first[T any](xs []T) T { return xs[0] }\nfirst(list).|", "Mass Label", "", ""},
+		{"dot import of a cell", "import . \"math\"\nSqr|", "Sqrt:function", "Sqrt", ""},
+		{"dot import of an earlier cell", "LeadingZ|", "LeadingZeros:function LeadingZeros64", "LeadingZeros", ""},
+		{"dot import behind what the session declares", "l|", "list Len", "list", ""},
+		{"own name before a dot import", "Len := 3\nLe|", "Len:variable", "Len", ""},
+		{"fields, then what computes, then plumbing", "copper.|", "Theta HeatCapacity Accumulate String", "Theta", ""},
+		{"physics first of a molecule", "water.|", "HeatCapacity Entropy At View", "HeatCapacity", ""},
+		{"physics begun", "copper.Ent|", "Entropy EnthalpyIncrement Entropies", "Entropy", "HeatCapacity"},
+		{"models first", "solid.|", "Debye Einstein HeatCapacities", "Debye", ""},
+		{"molecules first", "gas.|", "Molecule FromLibrary New", "Molecule", ""},
+		{"units before types of quantities", "unit.|", "K Temperature Celsius", "K", ""},
+		{"figures first", "display.|", "Figure Table Result Sink", "Figure", ""},
+		{"fields of a literal in their order", "display.Figure{|}", "X Y Err Residuals", "X", ""},
+		{"fields that are missing, in their order", "display.Figure{X: 1, Y: 2, |}", "Err Residuals", "Err", "X Y run"},
+		{"field of a model's literal", "solid.Debye{|}", "Theta Modes", "Theta", ""},
+		{"field begun", "solid.Debye{Mo|", "Modes", "Modes", "Theta"},
+		{"quantity of a field", "solid.Debye{Theta: |}", "unit.K room cold", "unit.K", "unit.Bar"},
+		{"quantity of a field right of a factor", "solid.Debye{Theta: 343 * |", "unit.K", "unit.K", "unit.Bar"},
+		{"quantity of an assigned field", "copper.Theta = 343 * |", "unit.K", "unit.K", "unit.Bar"},
+		{"argument of a method of a literal", "solid.Debye{Theta: 343 * unit.K}.Entropy(|", "unit.K room", "unit.K", "unit.Bar"},
+		{"argument of a method of a pointer", "water.Entropy(298.15 * |", "unit.K", "unit.K", "unit.Bar"},
+		{"result of a method", "water.Entropy(room).|", "In Over SI", "In", ""},
+		{"unit to read a result in", "copper.HeatCapacity(room).In(|", "unit.JPerMolK unit.R", "unit.JPerMolK", "unit.K"},
+		{"everyday units first", "x := 3 * |", "unit.K unit.PerCm unit.KHz", "unit.K", ""},
+		{"everyday units first, begun", "x := 3 * P|", "unit.PerCm unit.Pa", "unit.PerCm", "unit.K"},
+		{"kinds are no units", "x := 3 * unit.K|", "K Kg", "K", ""},
+		{"units in other case", "x := 3 * unit.kj|", "KJPerMol", "KJPerMol", "K"},
+		{"options of a fit", "fit.HeatCapacity(&copper, table, |", "fit.Vary:function fit.Window", "fit.Vary", "fit.Curve"},
+		{"options of a fit, begun", "fit.HeatCapacity(&copper, table, fit.Vary(&copper.Theta), Win|", "fit.Window", "fit.Window", "fit.Vary"},
+		{"options among the members of fit", "fit.HeatCapacity(&copper, table, fit.|", "Vary Window Curve", "Vary", ""},
+		{"table wanted", "fit.HeatCapacity(&copper, |", "table", "table", "data.Table"},
+		{"field behind an address", "fit.HeatCapacity(&copper, table, fit.Vary(&copper.|", "Theta Modes", "Theta", ""},
+		{"address of a variable", "func show(p *solid.Debye) {}\nshow(|", "&copper:variable", "&copper", ""},
+		{"address of a variable, begun", "func show(p *solid.Debye) {}\nshow(cop|", "&copper:variable", "&copper", ""},
+		{"a model as a mode", "statmech.Audit(|", "copper", "copper", ""},
+		{"a model in a sum", "solid.Sum{|", "copper", "copper", ""},
+		{"type of a variable", "var p unit.|", "Pressure Temperature K", "Amount", ""},
+		{"type of a parameter", "func f(T unit.Temp|", "Temperature:type Temperatures", "Temperature", ""},
+		{"type of a result", "func f() unit.Mol|", "MolarEntropy MolarEnergy MolarKJ", "MolarEnergy", ""},
+		{"type of a slice", "ts := []unit.Te|", "Temperature", "Temperature", ""},
+		{"type of a map", "m := map[string]unit.Pr|", "Pressure", "Pressure", ""},
+		{"type of a field", "type C struct {\n\tT unit.Te|", "Temperature", "Temperature", ""},
+		{"type without a package", "var x flo|", "float64 float32", "float32", ""},
+		{"text that a function takes", "data.Read(\"|\")", "copper.csv:text notes.csv", "copper.csv", "run"},
+		{"text begun", "data.Read(\"cop|\")", "copper.csv", "copper.csv", "notes.csv"},
+		{"open text", "t, err := data.Read(\"no|", "notes.csv", "notes.csv", "copper.csv"},
+		{"text of several bytes", "data.Read(\"Δ|\")", "Δrun.csv", "Δrun.csv", "copper.csv"},
+		{"text, more after it", "data.Read(\"|)\nx := 1", "copper.csv", "copper.csv", ""},
+		{"text of another function", "strings.ToUpper(\"co|\")", "", "", "copper.csv"},
+		{"columns of a table", "table.|", "Column", "", ""},
+		{"result of a fit", "result.|", "Covariance", "", ""},
+		{"first value of two", "t, err := data.Read(\"a\")\nt.|", "Column", "", "Error"},
+		{"error of two", "t, err := data.Read(\"a\")\nerr.|", "Error", "Error", ""},
+		{"in a loop over temperatures", "for _, T := range unit.TemperatureSteps(room, cold, 1*unit.K) {\n\tcopper.HeatCapacity(|", "T unit.K", "unit.K", ""},
+		{"in a function of a cell", "func cp(T unit.Temperature) unit.MolarEntropy {\n\treturn copper.|", "HeatCapacity", "Theta", ""},
+		{"own mode", "type Own struct{ Gap unit.Energy }\nfunc (o Own) Reduced(T unit.Temperature) statmech.Reduced {\n\tx := o.|", "Gap Reduced", "Gap", ""},
+		{"method of an own field", "type Own struct{ Gap unit.Energy }\nfunc (o Own) Reduced(T unit.Temperature) statmech.Reduced {\n\tx := o.Gap.Over|", "OverKT", "OverKT", ""},
+		{"fields to return", "func f() statmech.Reduced {\n\treturn statmech.Reduced{|", "LogQ U C", "LogQ", ""},
+		{"behind a python loop", "for i in range(10):\n    copper.|", "HeatCapacity", "", ""},
+		{"behind an unclosed bracket", "x := math.Exp(gap.|", "OverKT PerMole", "", ""},
+		{"behind a wrong line", "y = [1, 2\ncopper.Hea|", "HeatCapacity", "HeatCapacity", ""},
+		{"between good and bad", "y := nosuch.x\ncopper.Hea|\nz := (", "HeatCapacity", "HeatCapacity", ""},
+		{"after an emoji", "s := \"🧪\"; copper.Hea|", "HeatCapacity", "HeatCapacity", ""},
+		{"a name in Greek", "δθ := room\nδθ.I|", "In", "In", ""},
+		{"a name in Greek, begun", "δθ := room\nδ|", "δθ", "δθ", ""},
 	} {
 		t.Run(test.name, func(t *testing.T) {
 			cursor := strings.IndexByte(test.source, '|')

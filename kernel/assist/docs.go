@@ -2,6 +2,7 @@ package assist
 
 import (
 	"encoding/json"
+	"go/ast"
 	"go/types"
 	"os"
 	"path/filepath"
@@ -86,6 +87,13 @@ func (c *checked) docOf(scope Scope, docs *Docs, o types.Object) (text string, c
 		return docs.load(o.Pkg().Path())[keyOf(o, o.Pkg())], 0
 	}
 	if v, ok := o.(*types.Var); ok && !v.IsField() {
+		if v.Pos().IsValid() { // of this cell
+			return c.remark(v), 0
+		}
+		if d, ok := scope.(Declared); ok {
+			text, _, _ := d.Documentation(o.Name()) // the cell is said with the value
+			return text, 0
+		}
 		return "", 0
 	}
 	key := keyOf(o, c.pkg)
@@ -98,6 +106,37 @@ func (c *checked) docOf(scope Scope, docs *Docs, o types.Object) (text string, c
 		}
 	}
 	return "", 0
+}
+
+// remark is the comment on the statement of the cell that declares v.
+func (c *checked) remark(v *types.Var) (text string) {
+	ast.Inspect(c.file, func(n ast.Node) bool {
+		var names []ast.Expr
+		switch n := n.(type) {
+		case *ast.AssignStmt:
+			names = n.Lhs
+		case *ast.GenDecl:
+			for _, s := range n.Specs {
+				if s, ok := s.(*ast.ValueSpec); ok && len(n.Specs) == 1 {
+					for _, id := range s.Names {
+						names = append(names, id)
+					}
+				}
+			}
+		case *ast.ValueSpec:
+			for _, id := range n.Names {
+				names = append(names, id)
+			}
+		}
+		for _, e := range names {
+			if id, ok := e.(*ast.Ident); ok && id.Pos() == v.Pos() && text == "" {
+				base := c.where(0)
+				text = export.CommentOn(c.source, int(n.Pos()-base), int(n.End()-base))
+			}
+		}
+		return text == ""
+	})
+	return text
 }
 
 // own returns the comment of a name that the cell itself declares.

@@ -1,6 +1,7 @@
 package assist
 
 import (
+	"cmp"
 	"go/scanner"
 	"go/token"
 	"slices"
@@ -51,6 +52,17 @@ func importAt(source string, cursor int) (start, end int, ok bool) {
 	}
 }
 
+// house orders import paths: levelsum's own, Go's, others.
+func house(path string) int {
+	switch {
+	case strings.HasPrefix(path, "levelsum/"):
+		return 0
+	case !strings.Contains(path, "."):
+		return 1
+	}
+	return 2
+}
+
 // importPaths lists what can be imported by a path that begins with prefix, and
 // after that the paths with an element that does.
 func importPaths(scope Scope, prefix string) []Match {
@@ -64,5 +76,6 @@ func importPaths(scope Scope, prefix string) []Match {
 			within = append(within, m)
 		}
 	}
+	slices.SortStableFunc(begin, func(a, b Match) int { return cmp.Compare(house(a.Text), house(b.Text)) })
 	return append(begin, within...)
 }

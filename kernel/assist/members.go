@@ -26,7 +26,9 @@ func packageMembers(p *types.Package) []Match {
 	var all []Match
 	for _, name := range p.Scope().Names() {
 		if o := p.Scope().Lookup(name); o.Exported() {
-			all = append(all, match(o, rankMember))
+			m := match(o, rankInPackage(p, o))
+			m.order = usual(p, name)
+			all = append(all, m)
 		}
 	}
 	return all
@@ -42,7 +44,9 @@ func (c *checked) methods(t types.Type, value bool) []Match {
 	set := types.NewMethodSet(t)
 	for i := range set.Len() {
 		if o := set.At(i).Obj(); c.sees(o) {
-			all = append(all, match(o, rankMember))
+			m := match(o, rankOfMethod(o))
+			m.order = usual(o.Pkg(), o.Name())
+			all = append(all, m)
 		}
 	}
 	return all
@@ -74,7 +78,9 @@ func (c *checked) fields(t types.Type) []Match {
 				}
 				if c.sees(f) && !seen[f.Name()] {
 					seen[f.Name()] = true
-					all = append(all, match(f, rankMember))
+					m := match(f, rankField)
+					m.order = len(all)
+					all = append(all, m)
 				}
 			}
 		}
@@ -127,7 +133,9 @@ func (c *checked) missingFields(lit *ast.CompositeLit, at *ast.Ident) (all []Mat
 	}
 	for f := range structOf(tv.Type).Fields() {
 		if c.sees(f) && !named[f.Name()] {
-			all = append(all, match(f, rankMember))
+			m := match(f, rankField)
+			m.order = len(all)
+			all = append(all, m)
 		}
 	}
 	return all, only

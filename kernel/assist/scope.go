@@ -16,3 +16,22 @@ type Scope interface {
 	// ImportPaths lists what cells can import, sorted.
 	ImportPaths() []string
 }
+
+// A Dotted scope knows the packages that cells have imported with a dot.
+type Dotted interface {
+	Dots() []string
+}
+
+// A Texts scope knows what a text given to a function of a package may be, such
+// as the name of a file; nil if it does not.
+type Texts interface {
+	Texts(path, function string) []string
+}
+
+// dotsOf lists the packages imported with a dot.
+func dotsOf(scope Scope) []string {
+	if d, ok := scope.(Dotted); ok {
+		return d.Dots()
+	}
+	return nil
+}

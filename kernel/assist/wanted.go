@@ -4,6 +4,7 @@ import (
 	"go/ast"
 	"go/token"
 	"go/types"
+	"slices"
 )
 
 // wanted lists what makes a value of the type t, written with its package: the
@@ -11,7 +12,8 @@ import (
 // for a function or an interface, as options are, the functions that return it;
 // for a struct, the type itself.
 func (c *checked) wanted(scope Scope, want types.Type) []Match {
-	if p, ok := want.(*types.Pointer); ok {
+	p, pointer := want.(*types.Pointer)
+	if pointer {
 		want = p.Elem()
 	}
 	t, _ := types.Unalias(want).(*types.Named)
@@ -27,10 +29,20 @@ func (c *checked) wanted(scope Scope, want types.Type) []Match {
 			r := o.Signature().Results()
 			return (option || types.IsInterface(t)) && r.Len() == 1 && types.Identical(r.At(0).Type(), t)
 		case *types.TypeName:
-			return structOf(t) != nil && o == t.Obj()
+			return structOf(t) != nil && o == t.Obj() && !pointer && exportsFields(t)
 		}
 		return false
 	})
+}
+
+// exportsFields reports whether a cell can fill in a struct.
+func exportsFields(t types.Type) bool {
+	for f := range structOf(t).Fields() {
+		if f.Exported() {
+			return true
+		}
+	}
+	return false
 }
 
 // unitPath is the package whose constants are units.
@@ -43,11 +55,7 @@ func (c *checked) units(scope Scope) []Match {
 		return nil
 	}
 	return c.constantsOf(scope, p, func(o types.Object) bool {
-		if k, ok := o.(*types.Const); ok {
-			_, named := k.Type().(*types.Named)
-			return named
-		}
-		return false
+		return isUnit(o)
 	})
 }
 
@@ -83,11 +91,15 @@ func (c *checked) constantsOf(scope Scope, p *types.Package, want func(types.Obj
 		p = whole
 	}
 	prefix := c.nameOf(p)
+	if slices.Contains(dotsOf(scope), p.Path()) {
+		prefix = ""
+	}
 	var all []Match
 	for _, name := range p.Scope().Names() {
 		if o := p.Scope().Lookup(name); o.Exported() && want(o) {
 			m := match(o, rankWanted)
 			m.Text = prefix + name
+			m.order = usual(p, name)
 			all = append(all, m)
 		}
 	}
@@ -286,4 +298,29 @@ func (c *checked) parameter(call *ast.CallExpr, x ast.Node) types.Type {
 		}
 	}
 	return nil
+}
+
+// isUnit reports whether an object is a unit of a quantity.
+func isUnit(o types.Object) bool {
+	k, ok := o.(*types.Const)
+	if !ok || o.Pkg() == nil || o.Pkg().Path() != unitPath {
+		return false
+	}
+	t, ok := k.Type().(*types.Named)
+	if !ok {
+		return false
+	}
+	b, ok := t.Underlying().(*types.Basic)
+	return ok && b.Info()&types.IsFloat != 0
+}
+
+// everyday are the units that the field writes most, most of all the first.
+var everyday = []string{"K", "PerCm", "JPerMolK", "MolarKJ", "KJPerMol", "Bar", "U", "GPerMol", "Angstrom", "THz", "MilliEV", "EV", "Gram", "GPa", "Pa", "Atm"}
+
+// familiar orders units of one kind: those of every day before the others.
+func familiar(name string) int {
+	if i := slices.Index(everyday, name); i >= 0 {
+		return i
+	}
+	return len(everyday)
 }

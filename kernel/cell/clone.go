@@ -17,6 +17,7 @@ func (s *Scope) Clone() *Scope {
 	c.dropped = maps.Clone(s.dropped)
 	c.failed = maps.Clone(s.failed)
 	c.units = maps.Clone(s.units)
+	c.remarks = maps.Clone(s.remarks)
 	c.methods = map[string][]*Decl{}
 	for k, v := range s.methods {
 		c.methods[k] = slices.Clone(v)

@@ -28,6 +28,7 @@ func (s *Scope) Commit(p *Plan, reached func(name string) bool) (lost []string) 
 		}
 		s.addDecl(d, objs)
 	}
+	remarks := p.remarks()
 	for _, v := range p.vars {
 		slot := p.slots[v]
 		s.keepSlot(slot) // its place exists, whether or not it was set
@@ -47,6 +48,7 @@ func (s *Scope) Commit(p *Plan, reached func(name string) bool) (lost []string) 
 			obj = types.NewVar(v.Pos(), p.pkg, v.Name(), v.Type())
 		}
 		s.setVar(v.Name(), obj, slot)
+		s.remarks[v.Name()] = remarks[v.Name()]
 	}
 	s.note(p, p.Source.ID)
 	return lost

@@ -14,6 +14,9 @@ func (s *Scope) ImportNames() []string {
 	return slices.Sorted(maps.Keys(names))
 }
 
+// Dots lists the packages that cells have imported with a dot.
+func (s *Scope) Dots() []string { return slices.Clone(s.dots) }
+
 // ImportPath is the package that such a name means, "" if none.
 func (s *Scope) ImportPath(name string) string { return s.importPath(name) }
 

@@ -61,6 +61,7 @@ type Scope struct {
 	dropped  map[string]string          // variables that were dropped, and why
 	failed   map[string]string          // names that a cell would have declared that had an error: the cell
 	slots    map[string][]*Slot         // all slots a name has had
+	remarks  map[string]remark          // comments on variables
 	units    map[*types.Package]*Unit
 	origins  origins
 }
@@ -82,6 +83,7 @@ func NewScope(importer types.Importer, usual map[string]string) *Scope {
 		dropped:  map[string]string{},
 		failed:   map[string]string{},
 		slots:    map[string][]*Slot{},
+		remarks:  map[string]remark{},
 		units:    map[*types.Package]*Unit{},
 		origins:  origins{at: map[string]int{}, made: map[string]*origin{}},
 	}

@@ -2,6 +2,8 @@ package runner
 
 import (
 	"fmt"
+	"os"
+	"slices"
 	"strings"
 	"time"
 
@@ -10,12 +12,13 @@ import (
 	"levelsum/kernel/cell"
 	"levelsum/kernel/compile"
 	"levelsum/kernel/engine"
+	"levelsum/kernel/symbols"
 	"levelsum/kernel/symbols/export"
 )
 
 // complete answers how a cell can go on.
 func (r *Runner) complete(source string, cursor int) *engine.Completion {
-	c := assist.Complete(r.scope, source, cursor)
+	c := assist.Complete(texted{r.scope}, source, cursor)
 	out := &engine.Completion{Start: c.Start, End: c.End}
 	for _, m := range c.Matches {
 		out.Matches = append(out.Matches, engine.Match{Text: cell.Unmark(m.Text), Kind: m.Kind, Signature: cell.Unmark(m.Signature)})
@@ -87,4 +90,33 @@ func (v valued) ValueOf(name string) (text string, number int, ok bool) {
 		text = strings.ToValidUTF8(text[:valueLimit], "") + " ..."
 	}
 	return text, slot.Cell, true
+}
+
+// texted is the session's scope with what some functions take as text.
+type texted struct{ *cell.Scope }
+
+// atMostFiles is how many files of a folder are offered.
+const atMostFiles = 500
+
+// Texts lists the library's molecules for the functions that find one, and the
+// files of the session's folder for those that read one.
+func (texted) Texts(path, function string) []string {
+	switch path + "." + function {
+	case "levelsum/statmech/gas.FromLibrary", "levelsum/statmech/gas.Find":
+		if f, ok := symbols.Table()["levelsum/statmech/gas/gas"]["Library"]; ok {
+			names, _ := f.Call(nil)[0].Interface().([]string)
+			return names
+		}
+	case "levelsum/statmech/data.Read", "levelsum/statmech/gas.Open", "os.Open", "os.ReadFile":
+		d, err := os.Open(".")
+		if err != nil {
+			return nil
+		}
+		defer d.Close()
+		names, _ := d.Readdirnames(atMostFiles)
+		names = slices.DeleteFunc(names, func(n string) bool { return strings.HasPrefix(n, ".") })
+		slices.Sort(names)
+		return names
+	}
+	return nil
 }

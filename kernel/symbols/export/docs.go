@@ -196,3 +196,19 @@ func comment(parts ...string) string {
 	}
 	return strings.TrimLeft(g.Text(), " ")
 }
+
+// CommentOn returns the comment on the statement that begins at the offset in a
+// text: the one that ends on the line above, or else the one behind the
+// statement on its line.
+func CommentOn(text string, from, to int) string {
+	if above := CommentAbove(text, from); above != "" {
+		return above
+	}
+	to = max(0, min(to, len(text)))
+	line, _, _ := strings.Cut(text[to:], "\n")
+	line = strings.TrimSpace(strings.TrimLeft(strings.TrimSpace(line), ";"))
+	if strings.HasPrefix(line, "//") {
+		return comment(line)
+	}
+	return ""
+}
