@@ -1,11 +1,13 @@
 package assist
 
 import (
+	"cmp"
 	"fmt"
 	"go/ast"
 	"go/doc/comment"
 	"go/token"
 	"go/types"
+	"slices"
 	"strings"
 )
 
@@ -96,7 +98,7 @@ func (c *checked) describe(scope Scope, docs *Docs, o types.Object, detail int) 
 		}
 	case *types.TypeName:
 		extra = listed(c.fields(o.Type()), detail)
-		methods = listed(c.methods(o.Type(), true), detail)
+		methods = listed(inOrder(c.methods(o.Type(), true)), detail)
 	case *types.PkgName:
 		members := packageMembers(o.Imported())
 		if detail > 0 {
@@ -116,10 +118,12 @@ func (c *checked) describe(scope Scope, docs *Docs, o types.Object, detail int) 
 	}
 	code := strings.Join(append([]string{head}, extra...), "\n")
 	d := Inspection{Text: code, Markdown: "```go\n" + code + "\n```"}
-	if text != "" {
-		plain, markdown := printed(text)
-		d.Text += "\n\n" + plain
-		d.Markdown += "\n\n" + markdown
+	for _, text := range []string{text, c.modelOf(scope, docs, o, text)} {
+		if text != "" {
+			plain, markdown := printed(text)
+			d.Text += "\n\n" + plain
+			d.Markdown += "\n\n" + markdown
+		}
 	}
 	if len(methods) > 0 {
 		code := "// methods\n" + strings.Join(methods, "\n")
@@ -127,6 +131,36 @@ func (c *checked) describe(scope Scope, docs *Docs, o types.Object, detail int) 
 		d.Markdown += "\n\n```go\n" + code + "\n```"
 	}
 	return d
+}
+
+// enough is the length of a documentation that says more than a name does.
+const enough = 240
+
+// modelOf is the documentation of the type of which o is a method, if what o
+// itself says is short: formula, range and source stand there.
+func (c *checked) modelOf(scope Scope, docs *Docs, o types.Object, text string) string {
+	f, ok := o.(*types.Func)
+	if !ok || len(text) > enough || f.Signature().Recv() == nil || !strings.HasPrefix(pkgPath(f), "levelsum/statmech") || pkgPath(f) == unitPath {
+		return ""
+	}
+	t := f.Signature().Recv().Type()
+	if p, ok := t.(*types.Pointer); ok {
+		t = p.Elem()
+	}
+	n, ok := types.Unalias(t).(*types.Named)
+	if !ok {
+		return ""
+	}
+	doc, _ := c.docOf(scope, docs, n.Obj())
+	return doc
+}
+
+// inOrder sorts members as completion does.
+func inOrder(all []Match) []Match {
+	slices.SortStableFunc(all, func(a, b Match) int {
+		return cmp.Or(cmp.Compare(a.rank, b.rank), cmp.Compare(a.order, b.order))
+	})
+	return all
 }
 
 // listed is a line for each member, for a few of them without detail.
@@ -140,8 +174,8 @@ func listed(members []Match, detail int) (lines []string) {
 	return lines
 }
 
-// printed is a documentation comment as plain text and as Markdown, formulas as
-// the code blocks that they are.
+// printed is a documentation comment as plain text and as Markdown, in which
+// formulas are LaTeX.
 func printed(text string) (plain, markdown string) {
 	p := comment.Parser{
 		LookupSym:     func(string, string) bool { return true },
@@ -152,7 +186,7 @@ func printed(text string) (plain, markdown string) {
 		withoutLinks(b)
 	}
 	pr := comment.Printer{HeadingLevel: 4, HeadingID: func(*comment.Heading) string { return "" }}
-	return strings.TrimSpace(string(pr.Text(doc))), strings.TrimSpace(string(pr.Markdown(doc)))
+	return strings.TrimSpace(string(pr.Text(doc))), formulas(strings.TrimSpace(string(pr.Markdown(doc))))
 }
 
 // withoutLinks makes code of the links to other names, which lead nowhere here.

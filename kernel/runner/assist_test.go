@@ -17,6 +17,7 @@ func TestHelpWhileTyping(t *testing.T) {
 		"// A sample was weighed.\ntype sample struct {\n\tmass float64 // in kg\n\tTemp float64\n}\n\n// heat is mass times Temp.\nfunc (s sample) heat() float64 { return s.mass * s.Temp }",
 		"run := sample{mass: 2, Temp: 3}\nθ := 343.5",
 		"import \"math/bits\"\nwidth := bits.Len(8)",
+		"import . \"math/bits\"\n// w is the width of the beam.\nw := Len(8)",
 		"type slow int\nfunc (slow) String() string { for { } }\nvar z slow",
 	} {
 		if out := e.Run(t.Context(), engine.Cell{N: i + 1, Source: source}, &capture{}); out.Fault != nil {
@@ -38,6 +39,8 @@ func TestHelpWhileTyping(t *testing.T) {
 		{"res, err := fit.HeatCapacity(&solid.Debye{}, nil, ", "fit.Vary fit.Window"},
 		{"statmech.Audit(solid.Debye{}, ", "statmech.AuditOptions"},
 		{"gas.FromLib", "FromLibrary"},
+		{"gas.FromLibrary(\"H2", "H2 H2O"},
+		{"OnesC", "OnesCount OnesCount64"},
 		{"if sample := run.heat(); sample > wid", "width"},
 		{"for _, x := range []sample{run} {\n\tx.", "mass heat"},
 	} {
@@ -64,6 +67,7 @@ func TestHelpWhileTyping(t *testing.T) {
 		{"solid.Debye", "type solid.Debye struct\n"},
 		{"sample", "A sample was weighed."},
 		{"run.mass", "in kg"},
+		{"w", "w is the width of the beam."},
 		{"unit.PerCm", "// PerCm = Planck * SpeedOfLight * 100"},
 		{"unit.K", "const unit.K unit.Temperature = 1"},
 		{"z", "z = (takes long to show)"},
