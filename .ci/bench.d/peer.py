@@ -15,6 +15,7 @@ import numpy as np
 from scipy.interpolate import CubicSpline
 from scipy.linalg import eigvals_banded, lapack
 from scipy.optimize import curve_fit
+from scipy.special import erfcx
 
 R = 8.31446261815324
 ready = {}
@@ -92,13 +93,14 @@ def _():
     return run
 
 
-def fit_problem():
+def fit_problem(quadrature=False):
     table = spline_of_debye()
 
     def model(T, gamma, theta, n, thetaE, nE):
         x = thetaE / T
         e = np.exp(-x)
-        return gamma * T + n * R * debye_spline(table, theta / T) + nE * R * x * x * e / (1 - e)**2
+        debye = debye_quadrature(theta / T) if quadrature else debye_spline(table, theta / T)
+        return gamma * T + n * R * debye + nE * R * x * x * e / (1 - e)**2
 
     T = 2 + 0.6 * np.arange(500)
     c = model(T, 7e-4, 250, 3, 550, 3)
@@ -109,22 +111,26 @@ def fit_problem():
     return model, T, y, u, start, fit
 
 
-@workload("c scipy, curve_fit on a spline")
-def _():
-    _, _, y, _, start, fit = fit_problem()
+def one_fit(quadrature):
+    _, _, y, _, start, fit = fit_problem(quadrature)
     return lambda: fit(y, start)[1]
 
 
-@workload("cb scipy, curve_fit on a spline")
-def _():
-    model, T, y, u, start, fit = fit_problem()
+def refits(count, quadrature):
+    model, T, y, u, start, fit = fit_problem(quadrature)
     rng = np.random.default_rng(1)
 
     def run():
         best = fit(y, start)
         c = model(T, *best)
-        return np.std([fit(c + u * rng.standard_normal(500), best)[1] for _ in range(50)], ddof=1)
+        return np.std([fit(c + u * rng.standard_normal(500), best)[1] for _ in range(count)], ddof=1)
     return run
+
+
+workload("c scipy, curve_fit on a spline")(lambda: one_fit(False))
+workload("c scipy, curve_fit on quadrature")(lambda: one_fit(True))
+workload("cb scipy, curve_fit on a spline")(lambda: refits(50, False))
+workload("cb scipy, curve_fit on quadrature")(lambda: refits(10, True))
 
 
 def wang(A, B, C, J):
@@ -178,6 +184,41 @@ def _():
     return run
 
 
+@workload("f numpy, two sublattices")
+def _():
+    L, rng = 256, np.random.default_rng(1)
+    p = (math.sqrt(2) - 1)**2  # exp(-4 J/kT) at Tc
+    # Acceptance by (s times the sum of the neighbours + 4)/2.
+    accept = np.array([1, 1, 1, p, p * p], dtype=np.float32)
+    u = np.empty((L, L // 2), dtype=np.float32)
+    side = np.empty((L, L // 2), dtype=np.int8)
+
+    def neighbours(other, odd):
+        near, far = (-1, 1) if odd else (1, -1)
+        side[0::2], side[1::2] = np.roll(other[0::2], near, 1), np.roll(other[1::2], far, 1)
+        total = other + side
+        total[1:] += other[:-1]
+        total[0] += other[-1]
+        total[:-1] += other[1:]
+        total[-1] += other[0]
+        return total
+
+    def half(own, other, odd):
+        rng.random(out=u, dtype=np.float32)
+        index = own * neighbours(other, odd)
+        index += 4
+        index >>= 1
+        np.negative(own, out=own, where=u < accept.take(index))
+
+    def run():
+        black, white = np.ones((L, L // 2), np.int8), np.ones((L, L // 2), np.int8)
+        for _ in range(1000):
+            half(black, white, False)
+            half(white, black, True)
+        return -float((black * neighbours(white, False)).sum(dtype=np.int64)) / L**2
+    return run
+
+
 @workload("g numpy, sum in pieces")
 def _():
     n = 20_000
@@ -211,15 +252,19 @@ def _():
     return run
 
 
-def fermi(eta):
+def fermi(eta, largest=50, slope=False):
     """Trapezoid in u = sqrt(t) over the whole line, 2/sqrt(pi) times the
-    integral of u^2/(e^(u^2-eta)+1) du, 400 points."""
-    u = np.linspace(0, math.sqrt(50 + 45), 400)
-    out = np.empty_like(eta)
+    integral of u^2/(e^(u^2-eta)+1) du, 400 points; with slope also
+    F_-1/2, the derivative."""
+    u = np.linspace(0, math.sqrt(largest + 45), 400)
+    out, out1 = np.empty_like(eta), np.empty_like(eta)
     for i in range(0, len(eta), 2000):
         with np.errstate(over="ignore"):
-            out[i:i + 2000] = (u * u / (np.exp(u * u - eta[i:i + 2000, None]) + 1)).sum(1) * u[1] * 4 / math.sqrt(math.pi)
-    return out
+            f = 1 / (np.exp(u * u - eta[i:i + 2000, None]) + 1)
+        out[i:i + 2000] = f @ (u * u) * u[1] * 4 / math.sqrt(math.pi)
+        if slope:
+            out1[i:i + 2000] = (f.sum(1) - f[:, 0] / 2) * u[1] * 2 / math.sqrt(math.pi)
+    return (out, out1) if slope else out
 
 
 def ramp(a, b):
@@ -230,6 +275,43 @@ def ramp(a, b):
 def _():
     eta = ramp(-10, 50)
     return lambda: fermi(eta).sum()
+
+
+@workload("i2 numpy, Newton on the trapezoid")
+def _():
+    F = np.exp(ramp(-8, 6))
+
+    def run():
+        # Non-degenerate and degenerate limits, then Newton in ln F.
+        eta = np.where(F < 1.5, np.log(F) + F / math.sqrt(8), (0.75 * math.sqrt(math.pi) * F)**(2 / 3))
+        for _ in range(20):
+            f, slope = fermi(eta, 70, True)
+            step = np.log(F / f) * f / slope
+            eta = eta + step
+            if abs(step).max() < 1e-10:
+                break
+        return eta.sum()
+    return run
+
+
+@workload("i3 numpy, trapezoid")
+def _():
+    z = ramp(0, 1)
+
+    def run():
+        # 4/sqrt(pi) times the integral of u^2/(e^y-1), y = u^2 + alpha. What is
+        # left when e^-y/y is subtracted is smooth; that integral is known.
+        alpha = -np.log(z)
+        u = np.linspace(0, 6.5, 100)
+        out = np.empty_like(z)
+        for i in range(0, len(z), 2000):
+            y = u * u + alpha[i:i + 2000, None]
+            e = np.exp(-y)
+            out[i:i + 2000] = (e / (1 - e) - e / y) @ (u * u) * u[1]
+        a = np.sqrt(alpha)
+        out += z * (math.sqrt(math.pi) / 2 - math.pi / 2 * a * erfcx(a))
+        return out.sum() * 4 / math.sqrt(math.pi)
+    return run
 
 
 def figure_data():
@@ -298,7 +380,7 @@ def _():
     return run
 
 
-PART = {"b numpy, sum in pieces": 10, "cb scipy, curve_fit on a spline": 20}
+PART = {"b numpy, sum in pieces": 10, "cb scipy, curve_fit on a spline": 20, "cb scipy, curve_fit on quadrature": 100}
 
 
 def main():

@@ -14,6 +14,7 @@ import (
 	"levelsum/statmech/data"
 	"levelsum/statmech/fit"
 	"levelsum/statmech/gas"
+	"levelsum/statmech/lattice"
 	"levelsum/statmech/solid"
 	"levelsum/statmech/special"
 	"levelsum/statmech/uncertain"
@@ -32,6 +33,8 @@ var ready = map[string]func() func() float64{
 	"cb": func() func() float64 { return fitted(1000) },
 	"d":  top,
 	"e":  torsion,
+	"f":  ising,
+	"fz": isingDeparture,
 	"g":  phonons,
 	"h":  propagation,
 	"i1": func() func() float64 {
@@ -49,10 +52,20 @@ var ready = map[string]func() func() float64{
 		z := ramp(size(100_000), 0, 1)
 		return func() float64 { return total(special.Boses(nil, 1.5, z)) }
 	},
-	"j":  figure,
-	"k1": func() func() float64 { return func() float64 { return float64(fib(27)) } },
-	"k2": func() func() float64 { return func() float64 { return rotorSums(400, 500) } },
-	"k3": func() func() float64 { return func() float64 { return simpson(integrand, 0, 20, 1_000_000) } },
+	"j": figure,
+	"k1": func() func() float64 {
+		n := map[int]int{1: 27, 4: 24, 16: 21}[divisor]
+		amount = float64(fib(n)) // as many calls, but for a factor
+		return func() float64 { return float64(fib(n)) }
+	},
+	"k2": func() func() float64 {
+		n := size(500)
+		return func() float64 { return rotorSums(400, n) }
+	},
+	"k3": func() func() float64 {
+		n := size(1_000_000)
+		return func() float64 { return simpson(integrand, 0, 20, n) }
+	},
 }
 
 func ramp(n int, from, to float64) []float64 {
@@ -151,23 +164,71 @@ func fitted(refits int) func() float64 {
 	}
 }
 
-// top sums the levels of an asymmetric top to J = 60, which is where the library
-// stops for this molecule at this temperature.
+// top sums the levels of an asymmetric top to J = 60, which is where the
+// library stops for this temperature; to 120 and 240 for others, which are
+// larger and have the place of the parts.
 func top() func() float64 {
+	A, T, J := 27.88*unit.PerCm, 300*unit.K, 60.0
+	switch divisor {
+	case 4:
+		T, J = 2000*unit.K, 120
+	case 16:
+		A, T, J = 5000*unit.PerCm, 6000*unit.K, 240
+	}
+	amount = J
 	return func() float64 {
-		t, err := gas.NewAsymmetricTop(27.88*unit.PerCm, 14.52*unit.PerCm, 9.28*unit.PerCm, 1, nil)
+		t, err := gas.NewAsymmetricTop(A, 14.52*unit.PerCm, 9.28*unit.PerCm, 1, nil)
 		check(err)
-		return t.Reduced(300 * unit.K).LogQ
+		return t.Reduced(T).LogQ
 	}
 }
 
 // torsion has a potential without symmetry: one block of cosines, one of sines.
+// High temperatures ask for more plane waves, in the place of the parts.
 func torsion() func() float64 {
 	V := gas.Barrier(800*unit.PerCm, 3).Plus(gas.Barrier(100*unit.PerCm, 1)).Plus(gas.Barrier(50*unit.PerCm, 2))
+	T := map[int]unit.Temperature{4: 20_000 * unit.K, 16: 50_000 * unit.K}[divisor]
+	amount = map[int]float64{1: 401, 4: 601, 16: 901}[divisor]
 	return func() float64 {
 		t, err := gas.NewTorsion(10*unit.PerCm, V, 1, gas.Diagonalised)
 		check(err)
+		if T > 0 {
+			return t.Reduced(T).LogQ
+		}
 		return t.ZeroPointEnergy().In(unit.PerCm)
+	}
+}
+
+func square(L int) lattice.Torus {
+	return lattice.Torus{J: 1 * unit.KelvinEnergy, Rows: L, Columns: L}
+}
+
+// ising makes 1000 sweeps of 256 × 256 spins at the critical temperature of
+// the infinite lattice, from all spins alike.
+func ising() func() float64 {
+	L := int(math.Sqrt(float64(size(256 * 256))))
+	m := square(L)
+	Tc := lattice.Onsager{J: m.J}.CriticalTemperature()
+	return func() float64 {
+		s, err := lattice.NewSimulation(m, Tc, 1)
+		check(err)
+		s.Sweep(1000)
+		return s.Energy().In(m.J)
+	}
+}
+
+// isingDeparture gives how far the energy of 64 × 64 spins at the same
+// temperature is from Kaufman's exact one, in standard uncertainties.
+func isingDeparture() func() float64 {
+	m := square(64)
+	Tc := lattice.Onsager{J: m.J}.CriticalTemperature()
+	return func() float64 {
+		s, err := lattice.NewSimulation(m, Tc, 1)
+		check(err)
+		s.Sweep(20_000)
+		e, err := s.Sample(100_000).Estimates()
+		check(err)
+		return (e.Energy.Value() - m.Energy(Tc).In(m.J)) / e.Energy.StandardUncertainty()
 	}
 }
 
@@ -282,13 +343,23 @@ var cpu = func() float64 {
 	return ns / 1e9
 }
 
-// divisor makes the sizes of the workloads smaller, to see how time grows.
-var divisor = 1
+// divisor makes the sizes of the workloads smaller, to see how time grows;
+// amount is what the size became.
+var (
+	divisor = 1
+	amount  float64
+)
 
-func size(n int) int { return n / divisor }
+func size(n int) int {
+	amount = float64(n / divisor)
+	return n / divisor
+}
 
-// prepared keeps what ready made.
-var prepared = map[string]func() float64{}
+// prepared keeps what ready made, amounts how large it is.
+var (
+	prepared = map[string]func() float64{}
+	amounts  = map[string]float64{}
+)
 
 // timed runs a workload until 50 ms have passed and returns seconds of the
 // clock, seconds of the processor and bytes allocated for one call, as JSON. A
@@ -299,6 +370,7 @@ func timed(name string) string {
 		divisor = 1
 		fmt.Sscan(part, &divisor)
 		prepared[name] = ready[workload]()
+		amounts[name] = amount
 		prepared[name]() // warm
 	}
 	f := prepared[name]
@@ -316,6 +388,6 @@ func timed(name string) string {
 		delete(prepared, name) // 160 MB
 	}
 	k := float64(n)
-	return fmt.Sprintf(`{"name": %q, "wall": %g, "cpu": %g, "bytes": %g, "value": %.17g}`,
-		name, wall/k, used/k, float64(after.TotalAlloc-before.TotalAlloc)/k, value)
+	return fmt.Sprintf(`{"name": %q, "wall": %g, "cpu": %g, "bytes": %g, "amount": %g, "value": %.17g}`,
+		name, wall/k, used/k, float64(after.TotalAlloc-before.TotalAlloc)/k, amounts[name], value)
 }
