@@ -2,7 +2,10 @@ package solid
 
 import (
 	"math"
+	"runtime"
 	"slices"
+	"sync"
+	"sync/atomic"
 
 	"levelsum/statmech/internal/lanes"
 )
@@ -65,7 +68,8 @@ func (p *Phonons) makeRule(low float64) rule {
 		r.first = first
 		r.piece(p, 0, 0, first, first)
 	}
-	var points rule // of one panel
+	// The panels, then their points, which are independent.
+	var panels []panel
 	cell := 0
 	for a := first; a < top; {
 		width := a
@@ -79,14 +83,58 @@ func (p *Phonons) makeRule(low float64) rule {
 		for p.knots[cell+1].w <= a {
 			cell++
 		}
-		points.w, points.weight = points.w[:0], points.weight[:0]
-		for i := cell; i < len(p.knots)-1 && p.knots[i].w < b; i++ {
-			points.piece(p, i, max(a, p.knots[i].w), min(b, p.knots[i+1].w), b-a)
-		}
-		r.add(points.condensed(a, b))
+		panels = append(panels, panel{a, b, cell})
 		a = b
 	}
+	parts := make([]rule, len(panels))
+	inTurn(len(panels), len(p.knots) > 4000, func(next func() (int, bool)) {
+		var points rule
+		for i, ok := next(); ok; i, ok = next() {
+			c := panels[i]
+			points.w, points.weight = points.w[:0], points.weight[:0]
+			for k := c.cell; k < len(p.knots)-1 && p.knots[k].w < c.b; k++ {
+				if k = points.wholeCells(p, k, c); k == len(p.knots)-1 || p.knots[k].w >= c.b {
+					break
+				}
+				points.piece(p, k, max(c.a, p.knots[k].w), min(c.b, p.knots[k+1].w), c.b-c.a)
+			}
+			w, weight := points.condensed(c.a, c.b)
+			if len(w) == len(points.w) {
+				w, weight = slices.Clone(w), slices.Clone(weight)
+			}
+			parts[i] = rule{w: w, weight: weight}
+		}
+	})
+	for _, part := range parts {
+		r.add(part.w, part.weight)
+	}
 	return r
+}
+
+// A panel reaches from a to b, from the cell between two knots on.
+type panel struct {
+	a, b float64
+	cell int
+}
+
+// inTurn calls f on every processor if the work is worth it, else once, and
+// waits. Each f asks next for indexes from 0 … n-1 until there are no more.
+func inTurn(n int, worth bool, f func(next func() (int, bool))) {
+	var taken atomic.Int64
+	next := func() (int, bool) {
+		i := int(taken.Add(1)) - 1
+		return i, i < n
+	}
+	workers := min(runtime.GOMAXPROCS(0), n)
+	if !worth || workers < 2 {
+		f(next)
+		return
+	}
+	var wait sync.WaitGroup
+	for range workers {
+		wait.Go(func() { f(next) })
+	}
+	wait.Wait()
 }
 
 func (r *rule) add(w, weight []float64) {
@@ -107,27 +155,14 @@ func (r *rule) piece(p *Phonons, i int, a, b, panel float64) {
 	if b-a > a/8 && a > 0 {
 		parts = min(8, int(math.Ceil(8*(b-a)/a)))
 	}
-	nodes, weights, whole := gauss6Nodes[:], gauss6Weights[:], inCell6[:]
+	nodes, weights := gauss6Nodes[:], gauss6Weights[:]
 	if b-a < panel/16 {
-		nodes, weights, whole = gauss4Nodes[:], gauss4Weights[:], inCell4[:]
+		nodes, weights = gauss4Nodes[:], gauss4Weights[:]
 	}
 	n := len(nodes)
 	at := len(r.w)
 	r.w, r.weight = slices.Grow(r.w, parts*n)[:at+parts*n], slices.Grow(r.weight, parts*n)[:at+parts*n]
-	x, y := &p.knots[i], &p.knots[i+1]
 	h := (b - a) / float64(parts)
-	if parts == 1 && a == x.w && b == y.w {
-		// A whole cell: the points are at known places between the knots.
-		w, weight := r.w[at:at+n], r.weight[at:at+n]
-		mid, half := a+h*0.5, h/2
-		slopeX, slopeY := h*x.slope, h*y.slope
-		for j, c := range whole {
-			w[j] = mid + float64(half*nodes[j])
-			density := (float64(c.gX*x.g) + float64(c.gY*y.g)) + (float64(c.slopeX*slopeX) + float64(c.slopeY*slopeY))
-			weight[j] = half * weights[j] * density
-		}
-		return
-	}
 	for k := range parts {
 		mid := a + h*(float64(k)+0.5)
 		for j, node := range nodes {
@@ -138,23 +173,50 @@ func (r *rule) piece(p *Phonons, i int, a, b, panel float64) {
 	}
 }
 
-// inCell holds what the values and slopes at the two knots of a cell of width 1
-// contribute to the cubic at a point.
-type inCell struct{ gX, gY, slopeX, slopeY float64 }
-
-func inCellAt(node float64) inCell {
-	t := (1 + node) / 2
-	u := (1 - node) / 2
-	return inCell{u * u * (1 + 2*t), t * t * (1 + 2*u), t * u * u, -t * t * u}
+// wholeCells adds the points of piece for the cells from i on that are whole and
+// small in the panel, and returns the first that is not. These are most cells of
+// a long table; the points are at known places between the knots.
+func (r *rule) wholeCells(p *Phonons, i int, c panel) int {
+	if p.knots[i].w < c.a {
+		return i
+	}
+	small := (c.b - c.a) / 16
+	for ; i < len(p.knots)-1; i++ {
+		x, y := &p.knots[i], &p.knots[i+1]
+		h := y.w - x.w
+		if y.w > c.b || h >= small || h > x.w/8 {
+			break
+		}
+		const n = len(inCell4)
+		at := len(r.w)
+		if at+n > min(cap(r.w), cap(r.weight)) {
+			r.w, r.weight = slices.Grow(r.w, n), slices.Grow(r.weight, n)
+		}
+		r.w, r.weight = r.w[:at+n], r.weight[:at+n]
+		w, weight := (*[n]float64)(r.w[at:]), (*[n]float64)(r.weight[at:])
+		half := h / 2
+		mid, slopeX, slopeY := x.w+half, h*x.slope, h*y.slope
+		for j := range inCell4 {
+			q := &inCell4[j]
+			w[j] = mid + float64(half*q.node)
+			density := (float64(q.gX*x.g) + float64(q.gY*y.g)) + (float64(q.slopeX*slopeX) + float64(q.slopeY*slopeY))
+			weight[j] = half * q.weight * density
+		}
+	}
+	return i
 }
 
-var (
-	inCell4 = [...]inCell{inCellAt(gauss4Nodes[0]), inCellAt(gauss4Nodes[1]), inCellAt(gauss4Nodes[2]), inCellAt(gauss4Nodes[3])}
-	inCell6 = [...]inCell{
-		inCellAt(gauss6Nodes[0]), inCellAt(gauss6Nodes[1]), inCellAt(gauss6Nodes[2]),
-		inCellAt(gauss6Nodes[3]), inCellAt(gauss6Nodes[4]), inCellAt(gauss6Nodes[5]),
-	}
-)
+// inCell is a Gauss point of a cell from -1 to 1, and what the values and slopes
+// at the two knots contribute to the cubic there.
+type inCell struct{ node, weight, gX, gY, slopeX, slopeY float64 }
+
+func inCellAt(j int) inCell {
+	node := gauss4Nodes[j]
+	t, u := (1+node)/2, (1-node)/2
+	return inCell{node, gauss4Weights[j], u * u * (1 + 2*t), t * t * (1 + 2*u), t * u * u, -t * t * u}
+}
+
+var inCell4 = [...]inCell{inCellAt(0), inCellAt(1), inCellAt(2), inCellAt(3)}
 
 // condensed returns the panel's points, or Chebyshev nodes in their place if
 // those are fewer.

@@ -131,6 +131,7 @@ func NewPhonons(t PhononTable) (*Phonons, error) {
 	}
 	p := &Phonons{count: 3 * float64(t.AtomsPerFormula), cell: 3 * float64(t.AtomsPerCell)}
 	clipped := 0
+	per := float64(t.Per) / unit.Boltzmann
 	g := make([]float64, n)
 	w := make([]float64, n)
 	for i, v := range t.States {
@@ -141,7 +142,7 @@ func NewPhonons(t PhononTable) (*Phonons, error) {
 			clipped, v = clipped+1, 0
 		}
 		w[i] = float64(t.Energies[i]) / unit.Boltzmann
-		g[i] = v / (float64(t.Per) / unit.Boltzmann)
+		g[i] = v / per
 	}
 	if clipped > 0 {
 		p.warnings = append(p.warnings, fmt.Sprintf("%d negative densities, each below 0.1 %% of the largest, taken as 0", clipped))
@@ -175,8 +176,8 @@ func NewPhonons(t PhononTable) (*Phonons, error) {
 			real[1].slope = min(2*first.g/first.w, 3*first.g/first.w)
 		}
 	}
-	if g0 := real[0].g; real[0].w == 0 && g0 > 1e-3*top/(float64(t.Per)/unit.Boltzmann) {
-		p.warnings = append(p.warnings, fmt.Sprintf("the density at ω = 0 is %.2g of the largest: sound waves have none there, and entropy and low-temperature heat capacity take it at its word", g0*(float64(t.Per)/unit.Boltzmann)/top))
+	if g0 := real[0].g; real[0].w == 0 && g0 > 1e-3*top/per {
+		p.warnings = append(p.warnings, fmt.Sprintf("the density at ω = 0 is %.2g of the largest: sound waves have none there, and entropy and low-temperature heat capacity take it at its word", g0*per/top))
 	}
 	area := integral(real)
 	whole := area + imaginary
@@ -219,13 +220,15 @@ func cubic(w, g []float64) []knot {
 	}
 	k[0].slope = limited(k[0].slope, first, first)
 	k[n-1].slope = limited(k[n-1].slope, last, last)
-	before := first
-	for i := 1; i < n-1; i++ {
-		h0, h1 := w[i]-w[i-1], w[i+1]-w[i]
-		after := (g[i+1] - g[i]) / h1
-		k[i] = knot{w[i], g[i], limited((before*h1+after*h0)/(h0+h1), before, after)}
-		before = after
-	}
+	inParallel(n-2, 5, func(from, to int) {
+		before := secant(from)
+		for i := from + 1; i <= to; i++ {
+			h0, h1 := w[i]-w[i-1], w[i+1]-w[i]
+			after := (g[i+1] - g[i]) / h1
+			k[i] = knot{w[i], g[i], limited((before*h1+after*h0)/(h0+h1), before, after)}
+			before = after
+		}
+	})
 	return k
 }
 
@@ -358,7 +361,7 @@ func (p *Phonons) reducedAt(ts []float64) []statmech.Reduced {
 		return out
 	}
 	r := p.rule(slices.Min(ts))
-	inParallel(len(ts), len(r.w), func(from, to int) {
+	inParallel(len(ts), 30*len(r.w), func(from, to int) {
 		for i := from; i < to; i++ {
 			out[i] = r.reduced(ts[i]).Scale(p.count)
 		}
@@ -419,10 +422,10 @@ func (r rule) addHeats(sum, inverse *[lanes.Width]float64) {
 const heatIsZero = 750
 
 // inParallel calls f for parts of 0 … n-1, on all processors if n calls of the
-// given cost (in evaluations of a mode) are worth it, and waits for them.
+// given cost (in nanoseconds) are worth it, and waits for them.
 func inParallel(n, cost int, f func(from, to int)) {
 	workers := min(runtime.GOMAXPROCS(0), n)
-	if n*cost < 20_000 || workers < 2 {
+	if n*cost < 50_000 || workers < 2 {
 		f(0, n)
 		return
 	}
