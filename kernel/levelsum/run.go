@@ -224,6 +224,7 @@ func execute(ctx context.Context, file string, f runFlags, start runner, stderr 
 		}
 		env = []string{child.OptionsEnv + "=" + string(b)}
 	}
+	stderr, progress := withProgress(stderr)
 	fmt.Fprintln(stderr, file)
 	for _, m := range d.Mended {
 		fmt.Fprintf(stderr, "  %s\n", m)
@@ -240,6 +241,7 @@ func execute(ctx context.Context, file string, f runFlags, start runner, stderr 
 		Whole:     f.native,
 		Compiled:  func(p engine.Program) { printProgram(stderr, p) },
 		Step:      func(s rerun.Step) { printStep(stderr, s) },
+		Progress:  progress,
 		Hint:      func(text string) { fmt.Fprintf(stderr, "  %s\n", strings.TrimRight(text, "\n")) },
 	})
 	if err != nil {

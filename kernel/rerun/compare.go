@@ -6,6 +6,7 @@ import (
 	"sort"
 	"strings"
 
+	"levelsum/display"
 	"levelsum/kernel/notebook"
 )
 
@@ -78,8 +79,8 @@ func compareResults(stored, now *notebook.Document) ([]Finding, error) {
 func compareCell(a, b *notebook.Cell) []Finding {
 	rest := func(c *notebook.Cell) (out []notebook.Output) {
 		for _, o := range c.Outputs() {
-			if _, ok := o.Data[resultType]; !ok {
-				out = append(out, o)
+			if _, ok := o.Data[resultType]; !ok && !display.Transient(display.View{Metadata: o.Metadata}) {
+				out = append(out, o) // lines of progress are what a front end leaves of them
 			}
 		}
 		return out

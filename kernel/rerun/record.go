@@ -22,7 +22,8 @@ type recorder struct {
 	growing map[int][]byte // what the stream that ends the list of a cell goes on with
 	over    bool
 
-	hint func(text string)
+	hint     func(text string)
+	progress func(text string)
 }
 
 type place struct{ cell, at int }
@@ -157,6 +158,9 @@ func (c cellOutput) Stream(name, text string) {
 
 func (c cellOutput) Show(v display.View, id string, replace bool) {
 	if display.Transient(v) { // a progress line, which is gone at the end
+		if text, ok := v.Data["text/plain"].(string); ok && c.r.progress != nil {
+			c.r.progress(text)
+		}
 		return
 	}
 	c.r.mu.Lock()

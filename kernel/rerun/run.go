@@ -47,6 +47,10 @@ type Options struct {
 	// Hint, if not nil, gets hints for the reader of the moment, see
 	// [engine.Hinter]. They are not stored.
 	Hint func(text string)
+	// Progress, if not nil, gets the line that a running cell shows of its
+	// progress, which takes the place of the one before; "" ends it. Lines of
+	// progress are not stored.
+	Progress func(text string)
 }
 
 // A Step says how one code cell ended.
@@ -119,7 +123,7 @@ func Run(ctx context.Context, d *notebook.Document, o Options) (*Report, error) 
 	defer session.Close()
 	from := &Provenance{Options: o.Words}
 	var interpreted, compiled []int
-	rec := &recorder{places: map[string][]place{}, hint: o.Hint}
+	rec := &recorder{places: map[string][]place{}, hint: o.Hint, progress: o.Progress}
 	if o.Whole {
 		r.Program = compileWhole(ctx, session, rec, code)
 		if r.Program != nil && o.Compiled != nil {

@@ -18,6 +18,7 @@ import (
 // fake is a session whose language has one command a line:
 //
 //	print TEXT | warn TEXT | show TEXT | show@ID TEXT | replace@ID TEXT | clear | clearlater
+//	progress TEXT
 //	value TEXT | fail TEXT | die | ask | loop
 //	result NAME VALUE U UNIT | table TEXT
 //	read FILE SHA256 ROWS | seed NUMBER USE | stale TEXT
@@ -56,6 +57,10 @@ func (f *fake) Run(ctx context.Context, c engine.Cell, out engine.Output) (o eng
 		cmd, arg, _ := strings.Cut(strings.TrimSuffix(l, "\n"), " ")
 		cmd, id, _ := strings.Cut(cmd, "@")
 		switch cmd {
+		case "progress":
+			v := display.Text(arg)
+			v.Metadata = map[string]any{"levelsum": map[string]any{"transient": true}}
+			out.Show(v, "line", false)
 		case "print":
 			out.Stream("stdout", arg+"\n")
 		case "warn":
@@ -245,6 +250,29 @@ func TestHintsAreNotStored(t *testing.T) {
 	run(t, d, Options{Hint: func(s string) { hints = append(hints, s) }})
 	if got := outline(d.Cells()[0]); got != `stdout "a\nb\n"` || !reflect.DeepEqual(hints, []string{"compiling"}) {
 		t.Errorf("stored %s, hints %q", got, hints)
+	}
+}
+
+// Lines of progress go to who watches and are not stored; where a front end has
+// stored what is left of one, it is no output that is missing.
+func TestProgressIsNotStored(t *testing.T) {
+	cell := "print a\nprogress 1 of 9\nprogress\nprint b"
+	d := doc(t, cell)
+	var lines []string
+	run(t, d, Options{Progress: func(s string) { lines = append(lines, s) }})
+	if got := outline(d.Cells()[0]); got != `stdout "a\nb\n"` || !reflect.DeepEqual(lines, []string{"1 of 9", ""}) {
+		t.Errorf("stored %s, lines %q", got, lines)
+	}
+	stored := doc(t, cell)
+	run(t, stored, Options{})
+	c := stored.Cells()[0]
+	rest := notebook.Output{Kind: notebook.DisplayData, Data: map[string]any{"text/plain": ""}, Metadata: map[string]any{"levelsum": map[string]any{"transient": true}}}
+	if err := c.SetOutputs(append([]notebook.Output{rest}, c.Outputs()...)); err != nil {
+		t.Fatal(err)
+	}
+	fs, err := Compare(stored, d)
+	if err != nil || findings(fs) != "" {
+		t.Errorf("%s, error %v", findings(fs), err)
 	}
 }
 
