@@ -1,5 +1,7 @@
 // Writes mathml.json: KaTeX's MathML for the formulas of formulas.txt and of
-// the notebooks, in display and in text style.
+// the notebooks (their text, and what they show as text), in display and in
+// text style. In what is shown, numbers are live; each is written 7, so that
+// a number that changes does not change this file.
 //
 //   npm install katex@0.19.1
 //   node generate.mjs FOLDER-OF-NOTEBOOKS > mathml.json
@@ -14,9 +16,12 @@ const formulas = fs.readFileSync("formulas.txt", "utf8").split("\n").filter((l) 
 const folder = process.argv[2];
 for (const file of fs.readdirSync(folder).filter((f) => f.endsWith(".ipynb")).sort()) {
   for (const cell of JSON.parse(fs.readFileSync(path.join(folder, file), "utf8")).cells) {
-    if (cell.cell_type !== "markdown") continue;
-    const text = [].concat(cell.source).join("");
-    for (const m of text.matchAll(/\$\$([^]+?)\$\$|\$([^$]+?)\$/g)) formulas.push(m[1] ?? m[2]);
+    const find = (text, change) => {
+      for (const m of text.matchAll(/\$\$([^]+?)\$\$|\$([^$]+?)\$/g)) formulas.push(change(m[1] ?? m[2]));
+    };
+    if (cell.cell_type === "markdown") find([].concat(cell.source).join(""), (f) => f);
+    for (const output of cell.outputs ?? [])
+      find([].concat(output.data?.["text/markdown"] ?? "").join(""), (f) => f.replace(/\d+/g, "7"));
   }
 }
 const render = (f, displayMode) =>
