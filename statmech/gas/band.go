@@ -1,10 +1,6 @@
 package gas
 
-import (
-	"math"
-
-	"gonum.org/v1/gonum/lapack/gonum"
-)
+import "math"
 
 // A band is a real symmetric band matrix, stored by columns: A[j+d][j] is
 // at[j*stride+d]. One diagonal more than the bandwidth is kept for the bulge of
@@ -26,13 +22,12 @@ func (b *band) set(i, j int, x float64) {
 	b.at[j*b.stride+i-j] = x
 }
 
-// eigenvalues returns the eigenvalues in ascending order and destroys b: the
-// band is reduced to three diagonals by Givens rotations, the element that each
-// one pushes out of the band being chased down (H. R. Schwarz, Numer. Math. 12,
-// 231, 1968), then LAPACK's QL. Rows should be ordered from small to large
-// diagonal elements, which keeps the relative accuracy of the low eigenvalues.
-// It returns nil if the iteration did not converge.
-func (b *band) eigenvalues() []float64 {
+// tridiagonal reduces b, which it destroys, to three diagonals by Givens
+// rotations, the element that each one pushes out of the band being chased down
+// (H. R. Schwarz, Numer. Math. 12, 231, 1968). Rows should be ordered from small
+// to large diagonal elements, which keeps the relative accuracy of the low
+// eigenvalues.
+func (b *band) tridiagonal() *tridiagonal {
 	for k := 0; k+2 < b.n; k++ {
 		for r := min(b.width, b.n-1-k); r >= 2; r-- {
 			b.chase(k, k+r)
@@ -42,10 +37,7 @@ func (b *band) eigenvalues() []float64 {
 	for j := range d {
 		d[j], e[j] = b.at[j*b.stride], b.at[j*b.stride+1]
 	}
-	if !(gonum.Implementation{}).Dsterf(b.n, d, e[:max(b.n-1, 0)]) {
-		return nil
-	}
-	return d
+	return newTridiagonal(d, e)
 }
 
 // chase removes A[i][p] by a rotation of rows and columns i-1, i and follows

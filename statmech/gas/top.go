@@ -8,8 +8,6 @@ import (
 	"sync"
 	"sync/atomic"
 
-	"gonum.org/v1/gonum/lapack/gonum"
-
 	"levelsum/statmech"
 	"levelsum/statmech/unit"
 )
@@ -408,38 +406,37 @@ func (t *Top) asymmetricLevels(jMax int) [][]float64 {
 func asymmetricLevels(a, b, c float64, J int) []float64 {
 	j := float64(J) * float64(J+1)
 	mean, quarter := (b+c)/2, (b-c)/4
-	diagonal := func(K int) float64 { return mean*j + float64((a-mean)*float64(K)*float64(K)) }
-	coupling := func(K int) float64 { // of K and K+2
+	couplings := make([]float64, J+1) // of K and K+2
+	for K := range couplings {
 		k := float64(K)
-		return quarter * math.Sqrt((j-k*(k+1))*(j-(k+1)*(k+2)))
+		couplings[K] = quarter * math.Sqrt((j-k*(k+1))*(j-(k+1)*(k+2)))
 	}
-	out := make([]float64, 0, 2*J+1)
-	converged := true
+	var blocks []*tridiagonal
 	block := func(first int, shift, root float64) {
 		if first > J {
 			return
 		}
 		n := (J-first)/2 + 1
-		d, e := make([]float64, n), make([]float64, max(n-1, 0))
+		d, e := make([]float64, n), make([]float64, n)
 		for i := range d {
-			d[i] = diagonal(first + 2*i)
-			if i < n-1 {
-				e[i] = coupling(first + 2*i)
-			}
+			K := first + 2*i
+			d[i] = mean*j + float64((a-mean)*float64(K)*float64(K))
+			e[i] = couplings[K]
 		}
 		d[0] += shift
-		if len(e) > 0 {
-			e[0] *= root
-		}
-		converged = (gonum.Implementation{}).Dsterf(n, d, e) && converged
-		out = append(out, d...)
+		e[0] *= root
+		blocks = append(blocks, newTridiagonal(d, e))
 	}
 	block(0, 0, math.Sqrt2) // E⁺
 	block(2, 0, 1)          // E⁻
 	block(1, quarter*j, 1)  // O⁺
 	block(1, -quarter*j, 1) // O⁻
-	if !converged {
-		return nil
+	out := make([]float64, 0, 2*J+1)
+	for _, levels := range eigenvaluesOf(blocks) {
+		if levels == nil {
+			return nil
+		}
+		out = append(out, levels...)
 	}
 	slices.Sort(out)
 	return out

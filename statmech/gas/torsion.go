@@ -288,14 +288,14 @@ func (t *Torsion) diagonalise(top int) *statmech.Levels {
 			blocks, times = append(blocks, t.block(cosines)), append(times, 2)
 		}
 	}
-	levels := make([][]float64, len(blocks))
+	tridiagonals := make([]*tridiagonal, len(blocks))
 	var wait sync.WaitGroup
 	for i, b := range blocks {
-		wait.Go(func() { levels[i] = b.eigenvalues() })
+		wait.Go(func() { tridiagonals[i] = b.tridiagonal() })
 	}
 	wait.Wait()
 	var es []unit.Energy
-	for i, list := range levels {
+	for i, list := range eigenvaluesOf(tridiagonals) {
 		if list == nil {
 			panic("gas: eigenvalues of a torsion did not converge")
 		}
