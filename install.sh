@@ -131,6 +131,17 @@ if [ "$(cat "$env/levelsum-packages" 2>/dev/null)" != "$lab_packages" ]; then
 	"$env/bin/pip" install --quiet --disable-pip-version-check $lab_packages
 	printf '%s\n' "$lab_packages" >"$env/levelsum-packages"
 fi
+# Go's indentation. The editor moves a typed } back at the first level only, so
+# it is to write the closing one itself. JupyterLab's news are not asked for.
+mkdir -p "$env/share/jupyter/lab/settings"
+cat >"$env/share/jupyter/lab/settings/overrides.json" <<'END'
+{
+  "@jupyterlab/notebook-extension:tracker": {
+    "codeCellConfig": {"lineNumbers": false, "lineWrap": false, "indentUnit": "Tab", "autoClosingBrackets": true}
+  },
+  "@jupyterlab/apputils-extension:notification": {"fetchNews": "false", "checkForUpdates": false}
+}
+END
 "$bin/levelsum" install -prefix "$env" -source "$here" # an active environment may hold the kernel
 rm -rf "$work" # exec leaves no trap
 root=()
