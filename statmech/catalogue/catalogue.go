@@ -27,13 +27,17 @@ type Part struct {
 // Contents are all groups. A notebook shows them as tables.
 type Contents []Part
 
-// All lists models, calculations, units and the data that come with Levelsum.
+// All lists models, calculations, units, the data and the worked notebooks that
+// come with Levelsum, a line each. Names with a slash are files in the folder
+// that Levelsum was installed from.
 func All() Contents {
 	return Contents{
 		{"Models", slices.Clone(models)},
 		{"Calculations", slices.Clone(calculations)},
 		{"Units, by the quantity they measure", slices.Clone(units)},
-		{"Data", dataSets()},
+		{"Data of the library", dataSets()},
+		{"Files of data, in Levelsum's source", slices.Clone(sets)},
+		{"Worked notebooks, in Levelsum's source", slices.Clone(notebooks)},
 	}
 }
 

@@ -1,5 +1,5 @@
-// Package catalogue lists what there is to compute with: models, calculations,
-// units, data sets, a line each.
+// Package catalogue lists what there is: models, calculations, units, data,
+// worked notebooks, a line each.
 //
 //	catalogue.All()
 //

@@ -178,3 +178,29 @@ var units = []Entry{
 	{"unit.Volume", "M3, Litre, Cm3, Angstrom3"},
 	{"unit.Wavenumber", "InverseM, InverseCm"},
 }
+
+var notebooks = []Entry{
+	{"notebooks/copper-heat-capacity.ipynb", "How far does one Debye temperature carry copper?"},
+	{"notebooks/gas-standard-functions.ipynb", "Can the shipped gases stand in for the tables?"},
+	{"notebooks/heat-capacity-decomposition.ipynb", "Is there a local mode in this compound, and is the compound a metal?"},
+	{"notebooks/line-temperature.ipynb", "How hot is it, from thirteen lines?"},
+	{"notebooks/measured-distribution.ipynb", "When do measured populations have the entropy k ln W?"},
+	{"notebooks/methyl-torsion.ipynb", "Does it matter how one methyl torsion is counted?"},
+	{"notebooks/ortho-para-hydrogen.ipynb", "What does it cost to liquefy hydrogen without a catalyst?"},
+	{"notebooks/schottky-anomaly.ipynb", "Does the whole spin entropy R ln 2 come out of this salt?"},
+	{"notebooks/third-law-entropy.ipynb", "How much entropy has this crystal kept at 0 K?"},
+}
+
+var sets = []Entry{
+	{"testdata/codata-1989/gases.csv", "the gases among the key values that the library of statmech/gas has; S at 298.15 K and 100 kPa, H(298.15 K) - H(0); J. D. Cox, D. D. Wagman, V. A. Medvedev, CODATA Key Values for Thermodynamics, Hemisphere, New York (1989)"},
+	{"testdata/fennsund/sample-12-heat-capacity.csv", "invented data: sample 12, an invented molecular compound XYZ"},
+	{"testdata/fennsund/sample-12-transitions.csv", "invented data: sample 12, an invented molecular compound XYZ"},
+	{"testdata/fennsund/sample-21-heat-capacity.csv", "invented data: sample 21, an invented salt with one magnetic ion and 16 atoms in the formula unit"},
+	{"testdata/fennsund/sample-7-heat-capacity.csv", "invented data: sample 7, an invented compound AX2"},
+	{"testdata/fennsund/trapped-atoms.csv", "invented data: single atoms of an invented element, total spin 7/2, found in each of the 8 states m after no wait, a short wait and a long wait"},
+	{"testdata/invented-emitter/lines.csv", "invented data: an invented emitter"},
+	{"testdata/janaf-1998/gases.csv", "the entropies of hydrogen (H-050), nitrogen, water and ammonia, 1 bar, the rows from 100 K to 3000 K that all four tables have; M. W. Chase, NIST-JANAF Thermochemical Tables, 4th edition, J. Phys. Chem. Ref. Data Monograph 9 (1998)"},
+	{"testdata/nasa-2002/ethane.csv", "ethane (g); B. J. McBride, M. J. Zehe, S. Gordon, NASA Glenn Coefficients for Calculating Thermodynamic Properties of Individual Species, NASA/TP-2002-211556 (2002)"},
+	{"testdata/white-collocott-1984/copper.csv", "copper (cr); G. K. White, S. J. Collocott, Heat capacity of reference materials: Cu and W, J. Phys. Chem. Ref. Data 13, 1251-1257 (1984)"},
+	{"testdata/woolley-1948/para.csv", "hydrogen; H. W. Woolley, R. B. Scott, F. G. Brickwedde, J. Res. Natl. Bur. Stand. 41, 379-475 (1948)"},
+}

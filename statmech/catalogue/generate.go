@@ -5,6 +5,7 @@ package main
 
 import (
 	"bytes"
+	"encoding/json"
 	"fmt"
 	"go/ast"
 	"go/doc"
@@ -15,6 +16,7 @@ import (
 	"log"
 	"os"
 	"path/filepath"
+	"regexp"
 	"slices"
 	"strings"
 	"unicode/utf8"
@@ -62,6 +64,9 @@ func main() {
 	write(&b, "models", models)
 	write(&b, "calculations", calculations)
 	write(&b, "units", units)
+	books, sets := notebooks()
+	write(&b, "notebooks", books)
+	write(&b, "sets", sets)
 	text, err := format.Source(b.Bytes())
 	if err != nil {
 		log.Fatal(err)
@@ -71,10 +76,99 @@ func main() {
 	}
 }
 
+// root is the module's folder.
+const root = "../.."
+
+var (
+	reads  = regexp.MustCompile(`data\.Read\("\.\./(testdata/[^"]+)"\)`)
+	author = regexp.MustCompile(`^([^(]*\(\d{4}\)|[^,]*, [^(]*\d{4}\)).*`)
+)
+
+// notebooks lists the worked notebooks by the question that is their title, and
+// the files of data that they read by substance and source.
+func notebooks() (books, sets []entry) {
+	files, err := filepath.Glob(filepath.Join(root, "notebooks", "*.ipynb"))
+	if err != nil || len(files) == 0 {
+		log.Fatal("no notebooks: ", err)
+	}
+	seen := map[string]bool{}
+	for _, file := range files {
+		text, err := os.ReadFile(file)
+		if err != nil {
+			log.Fatal(err)
+		}
+		var nb struct {
+			Cells []struct {
+				Type   string          `json:"cell_type"`
+				Source json.RawMessage `json:"source"`
+			}
+		}
+		if err := json.Unmarshal(text, &nb); err != nil {
+			log.Fatal(file, ": ", err)
+		}
+		title := ""
+		for _, c := range nb.Cells {
+			var lines []string
+			var whole string
+			if json.Unmarshal(c.Source, &lines) == nil {
+				whole = strings.Join(lines, "")
+			} else if err := json.Unmarshal(c.Source, &whole); err != nil {
+				log.Fatal(file, ": ", err)
+			}
+			if first, _, _ := strings.Cut(whole, "\n"); c.Type == "markdown" && title == "" {
+				title = strings.TrimPrefix(first, "# ")
+			}
+			for _, m := range reads.FindAllStringSubmatch(whole, -1) {
+				if !seen[m[1]] {
+					seen[m[1]] = true
+					sets = append(sets, entry{m[1], describe(filepath.Join(root, m[1]))})
+				}
+			}
+		}
+		books = append(books, entry{"notebooks/" + filepath.Base(file), title})
+	}
+	slices.SortFunc(sets, func(a, b entry) int { return strings.Compare(a.name, b.name) })
+	return books, sets
+}
+
+// describe says of what a file of data is and from where.
+func describe(file string) string {
+	text, err := os.ReadFile(file)
+	if err != nil {
+		log.Fatal(err)
+	}
+	note := func(name string) string {
+		for line := range strings.Lines(string(text)) {
+			if rest, ok := strings.CutPrefix(line, "# "+name+": "); ok {
+				return strings.TrimSpace(rest)
+			}
+		}
+		return ""
+	}
+	what, source := note("substance"), note("source")
+	if what == "" {
+		what = note("what")
+	}
+	if what == "" {
+		what = note("where")
+	}
+	for _, end := range []string{", M/(", ", per: ", ", pressure: "} {
+		what, _, _ = strings.Cut(what, end)
+	}
+	if strings.HasPrefix(strings.ToLower(source), "invented") {
+		return "invented data: " + what
+	}
+	source = author.ReplaceAllString(source, "$1")
+	return what + "; " + source
+}
+
 type entry struct{ name, line string }
 
 func write(b *bytes.Buffer, name string, all []entry) {
 	slices.SortStableFunc(all, func(a, b entry) int {
+		if strings.Contains(a.name, "/") {
+			return 0
+		}
 		pa, _, _ := strings.Cut(a.name, ".")
 		pb, _, _ := strings.Cut(b.name, ".")
 		if pa != pb {
@@ -98,6 +192,9 @@ const mostRunes = 110
 // short is what the first sentence says of the name, without the name; a long
 // one ends at a comma, colon or semicolon.
 func short(e entry) string {
+	if strings.Contains(e.name, "/") {
+		return e.line // a file, said as a whole
+	}
 	_, name, _ := strings.Cut(e.name, ".")
 	line := strings.TrimPrefix(strings.TrimPrefix(strings.TrimPrefix(e.line, "A "), "An "), name+" ")
 	for _, verb := range []string{"is ", "returns "} {
