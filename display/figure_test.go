@@ -54,7 +54,10 @@ func TestFigureRefused(t *testing.T) {
 		want string
 	}{
 		{"nothing", Figure{}, "nothing to plot"},
-		{"no label", Figure{X: []float64{1}, Y: []float64{1}}, "the x axis has neither quantity nor unit"},
+		{"no label", Figure{X: []float64{1}, Y: []molar{1}}, "the x axis has neither quantity nor unit: give XAxis: "},
+		{"no labels", Figure{X: []float64{1}, Y: []float64{1}}, "the x axis and the y axis have neither quantity nor unit: give XAxis: display.Axis{Quantity: \"...\", Unit: \"...\"}, YAxis: "},
+		{"no label on the right", with(func(f *Figure) { f.Series = []Series{{X: someT, Y: []float64{1, 2, 3}, Right: true}} }), "the right axis has neither"},
+		{"legend", with(func(f *Figure) { f.Legend = "topright" }), `Legend is "topright", want "" for a free place, or one of none, above, top left`},
 		{"a type without unit", Figure{X: []naked{1}, Y: []naked{1}}, "whose unit is not known"},
 		{"lengths", with(func(f *Figure) { f.Y = someC[:2] }), "X has 3 values, Y has 2"},
 		{"bars", with(func(f *Figure) { f.Err = someU[:2] }), "3 values and 2 uncertainties"},
@@ -86,6 +89,31 @@ func TestFigureRefused(t *testing.T) {
 		{"log colours", Figure{Map: &Map{X: []float64{1, 2}, Y: []float64{1, 2}, Z: [][]float64{{1, 2}, {0, 3}}, Unit: "1", Log: true}, XAxis: tAxis, YAxis: tAxis},
 			"1 of 4 values of Z of the map are not positive"},
 		{"population", Figure{Ladders: []Ladder{{Energies: []joule{1}, Populations: []float64{2}}}}, "want 0 to 1"},
+		{"levels and labels", Figure{Ladders: []Ladder{{Name: "a", Energies: []joule{1, 2}, Labels: []string{"x"}}}}, "2 values, but 1 Labels"},
+		{"levels among points", with(func(f *Figure) { f.Ladders = []Ladder{{Energies: []joule{1}}} }), "a level diagram has no other data in it"},
+		{"factor", with(func(f *Figure) { f.RightAxis = Axis{Factor: -2, Unit: "J"} }), "Factor is -2, want a positive number"},
+		{"factor and data", with(func(f *Figure) {
+			f.RightAxis = Axis{Factor: 2, Unit: "J"}
+			f.Series = []Series{{X: someT, Y: []joule{1, 2, 3}, Right: true}}
+		}), "data of its own and a Factor"},
+		{"mark at nothing", with(func(f *Figure) { f.Marks = []Mark{{Label: "here"}} }), "mark 1: want X or Y"},
+		{"mark in another unit", with(func(f *Figure) { f.Marks = []Mark{{X: joule(1)}} }), "mark 1 is in J, other data on the x axis are in K"},
+		{"mark on a log axis", with(func(f *Figure) { f.XAxis.Log = true; f.Marks = []Mark{{X: kelvin(-1)}} }), "1 of 1 values of mark 1 are not positive"},
+		{"bins", Figure{Histogram: &Histogram{Values: someT, Bins: -1}, XAxis: tAxis}, "-1 bins, want 1 to 2000"},
+		{"log histogram", Figure{Histogram: &Histogram{Values: []kelvin{0, 1}}, XAxis: Axis{Quantity: "T", Log: true}}, "1 of 2 values of the histogram are not positive"},
+		{"map without a label", Figure{Map: &Map{X: someT, Y: someT, Z: [][]float64{{1, 2, 3}, {1, 2, 3}, {1, 2, 3}}}, XAxis: tAxis, YAxis: tAxis}, "colours have neither quantity nor unit"},
+		{"map out of order", Figure{Map: &Map{X: []kelvin{2, 1}, Y: someT, Z: [][]float64{{1, 2}, {1, 2}, {1, 2}}, Unit: "1"}, XAxis: tAxis, YAxis: tAxis}, "in ascending order"},
+		{"map that parts at zero on a log scale", Figure{Map: &Map{X: someT[:2], Y: someT[:2], Z: [][]float64{{1, 2}, {1, 2}}, Unit: "1", Log: true, Diverging: true}, XAxis: tAxis, YAxis: tAxis}, "cannot part at zero"},
+		{"lines only, without lines", Figure{Map: &Map{X: someT[:2], Y: someT[:2], Z: [][]float64{{1, 2}, {1, 2}}, Unit: "1", LinesOnly: true}, XAxis: tAxis, YAxis: tAxis}, "LinesOnly but no Contours"},
+		{"relative residuals where the curve is zero", with(func(f *Figure) { f.Curve = func(T kelvin) molar { return molar(T) - 2 }; f.RelativeResiduals = true }), "the curve is 0 at x = 2"},
+		{"residuals on the right", with(func(f *Figure) {
+			f.Series = []Series{{X: someT, Y: someC, Right: true, Curve: line}}
+			f.X, f.Y, f.RightAxis, f.Residuals = nil, nil, cAxis, true
+		}), "residuals are for data on the left axis"},
+		{"curve out of order", with(func(f *Figure) { f.Curve = Curve{X: []kelvin{2, 1}, Y: []molar{1, 2}} }), "not in ascending order"},
+		{"a point that cannot be drawn", with(func(f *Figure) { f.Y = []molar{1, 2, 1e300} }), "which cannot be drawn: give Min and Max"},
+		{"text for numbers", with(func(f *Figure) { f.Y = []string{"a", "b", "c"} }), "is text, want numbers"},
+		{"X without Y", with(func(f *Figure) { f.Y = nil }), "X and Y belong together"},
 		{"width", with(func(f *Figure) { f.Width = -3 }), "Width is -3 mm"},
 	} {
 		err := test.f.Check()

@@ -108,9 +108,6 @@ func (a *axisState) settle(tight bool) (scene.Axis, error) {
 	if out.Unit == "" {
 		out.Unit = s.Unit
 	}
-	if a.quantity == "" && out.Unit == "" {
-		return out, fmt.Errorf("the %s has neither quantity nor unit: give %s.Quantity and .Unit (\"1\" for a pure number)", a.name, a.field())
-	}
 	if a.lo > a.hi {
 		out.Min, out.Max = 0, 1
 		if s.Log {

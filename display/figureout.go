@@ -26,7 +26,7 @@ func (f Figure) View() View {
 	}
 	text := sc.Alt
 	if f.Caption != "" {
-		text = f.Caption + "\n" + text
+		text = oneLineText(f.Caption) + "\n" + text
 	}
 	if renderer == nil {
 		return Text(text + "\n" + f.numbers(sc.X.Quantity, all))
@@ -153,7 +153,7 @@ func (f Figure) numbers(_ string, all []plotted) string {
 			continue
 		}
 		s.notes = nil
-		fmt.Fprintf(&b, "%s\n%s\n", strings.TrimSpace(p.what+" "+p.name), s.text())
+		fmt.Fprintf(&b, "%s\n%s\n", strings.TrimSpace(p.what+" "+oneLineText(p.name)), s.text())
 	}
 	return strings.TrimSuffix(b.String(), "\n")
 }
@@ -191,7 +191,7 @@ func (r *figureReader) describe() string {
 		}
 		name := ""
 		if p.name != "" {
-			name = fmt.Sprintf(" %q", p.name)
+			name = fmt.Sprintf(" %q", oneLineText(p.name))
 		}
 		switch p.what {
 		case "curve":

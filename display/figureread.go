@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"strings"
 
 	"levelsum/display/internal/scene"
 )
@@ -118,6 +119,12 @@ func (r *figureReader) finish() error {
 	if !(out.Height >= 20 && out.Height <= 1000) {
 		return fmt.Errorf("Height is %v mm, want 20 to 1000", out.Height)
 	}
+	if err := checkLegend(f.Legend); err != nil {
+		return err
+	}
+	if err := r.unlabelled(); err != nil {
+		return err
+	}
 	if len(f.Ladders) > 0 {
 		for _, l := range f.Ladders {
 			out.Categories = append(out.Categories, l.Name)
@@ -173,6 +180,42 @@ func (r *figureReader) finish() error {
 		r.out.Alt = r.describe()
 	}
 	return nil
+}
+
+// legendPlaces are what Figure.Legend may be.
+var legendPlaces = []string{"", "none", "above", "top left", "top", "top right", "bottom left", "bottom", "bottom right"}
+
+func checkLegend(s string) error {
+	if !slices.Contains(legendPlaces, s) {
+		return fmt.Errorf("Legend is %q, want \"\" for a free place, or one of %s", s, strings.Join(legendPlaces[1:], ", "))
+	}
+	return nil
+}
+
+// unlabelled refuses axes of which nothing is known, all of them at once.
+func (r *figureReader) unlabelled() error {
+	axes := []*axisState{&r.x, &r.y}
+	if len(r.f.Ladders) > 0 {
+		axes = axes[1:]
+	}
+	if r.right.used {
+		axes = append(axes, &r.right)
+	}
+	var names, fields []string
+	for _, a := range axes {
+		if a.quantity == "" && a.unit == "" && a.spec.Unit == "" {
+			names = append(names, "the "+a.name)
+			fields = append(fields, fmt.Sprintf(`%s: display.Axis{Quantity: "...", Unit: "..."}`, a.field()))
+		}
+	}
+	if names == nil {
+		return nil
+	}
+	has := " has"
+	if len(names) > 1 {
+		has = " have"
+	}
+	return fmt.Errorf("%s%s neither quantity nor unit: give %s (Unit \"1\" for a pure number)", strings.Join(names, " and "), has, strings.Join(fields, ", "))
 }
 
 type seriesData struct {

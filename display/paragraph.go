@@ -128,7 +128,7 @@ func (v slotValue) plain(form string) string {
 	case form == "value":
 		return v.m.rounded().text()
 	case form == "unit":
-		return mark.Plain(mark.AsWritten(v.m.unit))
+		return mark.Plain(mark.AsWritten(oneLineText(v.m.unit)))
 	}
 	return withUnitText(v.m.rounded(), v.m.unit) + Number{Withheld: v.m.withheld}.remark()
 }
@@ -149,7 +149,7 @@ func (v slotValue) markdown(form string) string {
 // math writes the value for LaTeX's math mode.
 func (v slotValue) math(form string) string {
 	if !v.number {
-		return `\text{` + mark.EscapeLaTeX(v.text) + `}`
+		return `\text{` + mathText.Replace(mark.EscapeLaTeX(v.text)) + `}`
 	}
 	unit := unitMath(v.m.unit)
 	switch {
@@ -160,6 +160,9 @@ func (v slotValue) math(form string) string {
 	}
 	return v.m.rounded().math() + `\,` + unit
 }
+
+// mathText hides from Markdown what it could take for a link or for code.
+var mathText = strings.NewReplacer("[", "{[}", "]", "{]}", "`", "{`}")
 
 func unitMath(unit string) string {
 	if mark.Dimensionless(unit) {

@@ -186,7 +186,7 @@ func withUnitText(r rounded, unit string) string {
 	if mark.Dimensionless(unit) {
 		return r.text()
 	}
-	return r.text() + " " + mark.Plain(mark.AsWritten(unit))
+	return r.text() + " " + mark.Plain(mark.AsWritten(oneLineText(unit)))
 }
 
 func withUnitHTML(r rounded, unit string) string {

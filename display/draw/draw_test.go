@@ -4,6 +4,7 @@ import (
 	"bytes"
 	"encoding/xml"
 	"flag"
+	"fmt"
 	"io"
 	"os"
 	"path/filepath"
@@ -21,6 +22,14 @@ var (
 func TestMain(m *testing.M) {
 	flag.Parse()
 	Register()
+	if dir := os.Getenv(printEnv); dir != "" {
+		s, err := hashes(dir)
+		if err != nil {
+			panic(err)
+		}
+		fmt.Println(s)
+		return
+	}
 	os.Exit(m.Run())
 }
 
