@@ -27,7 +27,7 @@ const (
 	surveyWidths = 16
 	surveyParts  = 4 // always as many, so that sums come out the same on any machine
 	surveySample = 1024
-	surveyBlock  = 4096
+	surveyBlock  = 65536
 )
 
 // survey checks the levels and makes the moments in one pass. It returns false,

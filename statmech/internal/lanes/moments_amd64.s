@@ -51,8 +51,8 @@ TEXT ·moments8(SB), NOSPLIT, $128-40
 
 next:
 	// The energies come from memory faster if asked for early.
-	PREFETCHT0 2048(SI)(DX*1)
-	PREFETCHT0 2048(R10)(DX*1)
+	PREFETCHT0 4096(SI)(DX*1)
+	PREFETCHT0 4096(R10)(DX*1)
 	VMOVUPD (SI)(DX*1), Z16
 	VMOVUPD (R10)(DX*1), Z8
 	VSUBPD Z26, Z16, Z17
