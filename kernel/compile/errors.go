@@ -79,7 +79,10 @@ func (e *ToolError) Error() string {
 	if out := strings.TrimSpace(e.Output); out != "" {
 		s += "\n" + out
 	}
-	return s
+	if strings.Contains(e.Err.Error(), "signal: killed") {
+		return s + "\nthe system may have ended it because it was out of memory: close what takes much, and run the cell again"
+	}
+	return s + "\nthe command levelsum version tries whether cells can be compiled here; if not, see to the Go toolchain and the C compiler, and run install.sh again"
 }
 
 func (e *ToolError) Unwrap() error { return e.Err }
