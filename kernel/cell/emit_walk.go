@@ -83,6 +83,7 @@ func (e *emitter) visit(n ast.Node, stack []ast.Node) bool {
 	case *ast.GoStmt:
 		e.goStmt(n)
 	case *ast.CallExpr:
+		e.printing(n, parent)
 		if id, ok := ast.Unparen(n.Fun).(*ast.Ident); ok && e.isBuiltin(id, "recover") {
 			if _, deferred := parent.(*ast.DeferStmt); !deferred {
 				e.insert(n.Pos(), e.guard("Recover")+"(")

@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"reflect"
+	"regexp"
 	"runtime"
 	"strconv"
 	"strings"
@@ -67,6 +68,19 @@ func nameTag(src *cell.Source) {
 		tags.names = map[string]string{}
 	}
 	tags.names[src.Tag()] = src.Name()
+}
+
+// tagged is the name of a cell in compiled code.
+var tagged = regexp.MustCompile(`In\[[0-9a-f]{12}\]`)
+
+// cellText is text of the Go runtime's or of a library's for a reader: without
+// marker letters, and with the cells' own names.
+func cellText(s string) string {
+	s = cell.Unmark(s)
+	if strings.Contains(s, "In[") {
+		s = tagged.ReplaceAllStringFunc(s, cellFile)
+	}
+	return s
 }
 
 // cellFile picks In[3] out of the file of a frame, "" if it is not of a cell.

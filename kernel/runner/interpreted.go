@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"go/types"
 	"io"
+	"maps"
 	"reflect"
 	"runtime"
 	"strings"
@@ -79,7 +80,9 @@ func (i *interpreter) fresh() error {
 	}
 	i.in = interp.New(interp.Options{Stdin: strings.NewReader(""), Stdout: standardOut{}, Stderr: io.Discard, Unrestricted: true})
 	i.used, i.imports, i.offered = 1, map[string]bool{}, map[string]bool{}
-	table := symbols.Table()
+	table := maps.Clone(symbols.Table())
+	table["fmt/fmt"] = maps.Clone(table["fmt/fmt"])
+	maps.Copy(table["fmt/fmt"], plainText)
 	if err := i.in.Use(table); err != nil {
 		return err
 	}
@@ -94,6 +97,17 @@ func (i *interpreter) fresh() error {
 		return err
 	}
 	return i.importPackage(cell.Inner+"s", cell.Session)
+}
+
+// plainText does for interpreted code what package cell does for compiled code:
+// text that is made of values has no marker letters in it.
+var plainText = map[string]reflect.Value{
+	"Sprint":   reflect.ValueOf(func(a ...any) string { return guard.Plain(fmt.Sprint(a...)) }),
+	"Sprintf":  reflect.ValueOf(func(f string, a ...any) string { return guard.Plain(fmt.Sprintf(f, a...)) }),
+	"Sprintln": reflect.ValueOf(func(a ...any) string { return guard.Plain(fmt.Sprintln(a...)) }),
+	"Fprint":   reflect.ValueOf(func(w io.Writer, a ...any) (int, error) { return fmt.Fprint(guard.Out(w), a...) }),
+	"Fprintf":  reflect.ValueOf(func(w io.Writer, f string, a ...any) (int, error) { return fmt.Fprintf(guard.Out(w), f, a...) }),
+	"Fprintln": reflect.ValueOf(func(w io.Writer, a ...any) (int, error) { return fmt.Fprintln(guard.Out(w), a...) }),
 }
 
 func (i *interpreter) offer(m map[string]reflect.Value) error {

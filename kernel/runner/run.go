@@ -214,6 +214,3 @@ func oneView(types []string, i int, v any) display.View {
 	}
 	return display.ViewOf(v)
 }
-
-// cellText takes the marker letters out of text for a reader.
-func cellText(s string) string { return cell.Unmark(s) }

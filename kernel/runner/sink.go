@@ -58,11 +58,15 @@ func wireView(v display.View) display.View {
 		case string:
 			out.Data[k] = cellText(x)
 		default:
-			if _, err := json.Marshal(x); err != nil {
+			b, err := json.Marshal(x)
+			if err != nil {
 				out.Data["text/plain"] = fmt.Sprintf("%v\n(%s left out: %v)", v.Data["text/plain"], k, err)
 				continue
 			}
 			out.Data[k] = x
+			if text := cellText(string(b)); text != string(b) {
+				out.Data[k] = json.RawMessage(text)
+			}
 		}
 	}
 	if _, err := json.Marshal(out.Metadata); err != nil {
