@@ -22,7 +22,7 @@ func Example() {
 		log.Fatal(err)
 	}
 	s.Sweep(1000) // until the beginning is forgotten
-	e, err := s.Sample(50000).Estimates()
+	e, err := s.Sample(200000).Estimates()
 	if err != nil {
 		log.Fatal(err)
 	}
@@ -30,5 +30,5 @@ func Example() {
 	// Output:
 	// kTc/J = 2.269185
 	// exact: E/NJ = -1.255043, C/Nk = 1.4082
-	// drawn: E/NJ = -1.2523(27) C/Nk = 1.395(14)
+	// drawn: E/NJ = -1.2552(13) C/Nk = 1.4048(69)
 }

@@ -31,7 +31,7 @@ import (
 //
 // Reference: N. Metropolis, A. W. Rosenbluth, M. N. Rosenbluth, A. H. Teller and
 // E. Teller, Journal of Chemical Physics 21, 1087 (1953),
-// doi:10.1063/1.1699114; many spins in a word: R. Zorn, H. J. Herrmann and C.
+// doi:10.1063/1.1699114; many spins in words: R. Zorn, H. J. Herrmann and C.
 // Rebbi, Computer Physics Communications 23, 337 (1981) (from memory).
 type Simulation struct {
 	lattice Torus

@@ -3,6 +3,7 @@ package lattice
 import (
 	"math"
 	"math/rand/v2"
+	"slices"
 	"strings"
 	"sync/atomic"
 	"testing"
@@ -27,6 +28,45 @@ func TestPCG(t *testing.T) {
 			}
 			if v, want := g.next(), std.Uint64(); v != want {
 				t.Fatalf("seed %d: after 64 numbers %x, want %x", seed, v, want)
+			}
+		}
+	}
+}
+
+// TestSameStates compares what the loops in assembly do with the loops in Go:
+// the numbers of the generator and the states, from lattices of less than a
+// group to rows of many words.
+func TestSameStates(t *testing.T) {
+	if !hasVector() {
+		t.Log("no vector loops on this machine: nothing to compare")
+		return
+	}
+	defer useVector(true)
+	for _, n := range []int{2, 14, 16, 34, 4096} {
+		a, b := newPCG(uint64(n)), newPCG(uint64(n))
+		x, y := make([]uint64, n), make([]uint64, n)
+		for range 3 {
+			useVector(false)
+			a.fill(x)
+			useVector(true)
+			b.fill(y)
+			if !slices.Equal(x, y) || a != b {
+				t.Fatalf("%d numbers differ", n)
+			}
+		}
+	}
+	for _, shape := range append(shapes, [2]int{64, 64}, [2]int{2, 2048}) {
+		for _, K := range []float64{0, 0.05, 0.44, 1.5, 20} {
+			a, b := newSpins(shape[0], shape[1]), newSpins(shape[0], shape[1])
+			d, g, h := newDigits(math.Exp(-4*K)), newPCG(9), newPCG(9)
+			for range 50 {
+				useVector(false)
+				a.sweep(&d, &g)
+				useVector(true)
+				b.sweep(&d, &h)
+			}
+			if !slices.Equal(a.black, b.black) || !slices.Equal(a.white, b.white) || len(a.left) != len(b.left) {
+				t.Errorf("%v, K = %g: different states", shape, K)
 			}
 		}
 	}
@@ -64,10 +104,11 @@ func TestNeighbours(t *testing.T) {
 	for _, shape := range shapes {
 		s := newSpins(shape[0], shape[1])
 		for range 5 {
-			for i := range s.black {
-				s.black[i] = r.Uint64() & s.sites(i%s.words)
-				s.white[i] = r.Uint64() & s.sites(i%s.words)
+			for i, m := range s.sites[:s.rows*s.words] {
+				s.black[s.words+i], s.white[s.words+i] = r.Uint64()&m, r.Uint64()&m
 			}
+			s.close(s.black)
+			s.close(s.white)
 			before := naive(s, shape[1])
 			pairs, ups := 0, 0
 			for r := range before {
@@ -83,9 +124,9 @@ func TestNeighbours(t *testing.T) {
 				want := naive(s, shape[1])
 				cold, g := newDigits(0), newPCG(1)
 				if white {
-					s.half(s.white, s.black, true, &cold, &g)
+					s.update(s.white, s.black, true, &cold, &g)
 				} else {
-					s.half(s.black, s.white, false, &cold, &g)
+					s.update(s.black, s.white, false, &cold, &g)
 				}
 				got := naive(s, shape[1])
 				for r := range want {
@@ -126,16 +167,15 @@ func TestAcceptance(t *testing.T) {
 				for r := range L {
 					for c := range L {
 						if !state.up(r, c) {
-							row := s.black
-							if (r+c)&1 == 1 {
-								row = s.white
-							}
-							row[r*s.words+c/128] &^= 1 << (c / 2 % 64)
+							word, bit := s.place(r, c)
+							*word &^= 1 << bit
 						}
 					}
 				}
+				s.close(s.black)
+				s.close(s.white)
 				before := naive(s, L)
-				s.half(s.black, s.white, false, &d, &g)
+				s.update(s.black, s.white, false, &d, &g)
 				for r := range L {
 					for c := range L {
 						if s.at(r, c) != before[r][c] {
@@ -169,9 +209,9 @@ func TestDetailedBalance(t *testing.T) {
 	moves := map[[2][2]int]float64{}
 	for range 400_000 {
 		a := class()
-		s.spins.half(s.spins.black, s.spins.white, false, &s.digits, &s.random)
+		s.spins.update(s.spins.black, s.spins.white, false, &s.digits, &s.random)
 		moves[[2][2]int{a, class()}]++
-		s.spins.half(s.spins.white, s.spins.black, true, &s.digits, &s.random)
+		s.spins.update(s.spins.white, s.spins.black, true, &s.digits, &s.random)
 	}
 	chi, pairs := 0.0, 0.0
 	for k, n := range moves {
@@ -398,7 +438,7 @@ func TestWithheld(t *testing.T) {
 		t.Errorf("at 0.1 J/k: %v", e.Energy)
 	}
 	warned := func(e *Estimates) bool { return strings.Contains(strings.Join(e.Warnings, " "), "not in equilibrium") }
-	if e := estimates(Torus{kelvin, 128, 128}, 3*unit.K, 0, 1000); !warned(e) {
+	if e := estimates(Torus{kelvin, 128, 128}, 3*unit.K, 0, 200); !warned(e) {
 		t.Errorf("from the ground state at once: %v", e.Warnings)
 	}
 	if e := estimates(Torus{kelvin, 128, 128}, 3*unit.K, 500, 1000); warned(e) {
@@ -407,14 +447,14 @@ func TestWithheld(t *testing.T) {
 }
 
 // TestMeanCoverage: for autoregressive series x ← ρx + ξ, whose τ is
-// ½(1+ρ)/(1-ρ), u is what the means of 400 series scatter by.
+// ½(1+ρ)/(1-ρ), u is what the means of 300 series scatter by.
 func TestMeanCoverage(t *testing.T) {
 	r := rand.New(rand.NewPCG(5, 6))
 	for _, test := range []struct {
 		rho float64
 		n   int
-	}{{0, 200}, {0.9, 2000}, {0.99, 20000}} {
-		const series = 400
+	}{{0, 200}, {0.9, 2000}, {0.98, 10000}} {
+		const series = 300
 		within, taus, flat := 0, 0.0, 0
 		for range series {
 			x := make([]float64, test.n)
@@ -443,13 +483,15 @@ func TestMeanCoverage(t *testing.T) {
 			}
 		}
 		want := (1 + test.rho) / (1 - test.rho) / 2
-		t.Logf("ρ = %g: %d of 400 within u, τ = %.3g, want %.3g, %d of 400 agree with blocks", test.rho, within, taus, want, flat)
+		t.Logf("ρ = %g: %d of 300 within u, τ = %.3g, want %.3g, %d of 300 agree with blocks", test.rho, within, taus, want, flat)
 		if f := 100 * float64(within) / series; f < 63 || f > 73 {
 			t.Errorf("ρ = %g: %.1f of 100 within u, want 68 ± 5", test.rho, f)
 		}
-		closeTo(t, "τ", taus, want, 0.08, 0)
-		if flat < 380 {
-			t.Errorf("ρ = %g: %d of 400 series have blocks that agree", test.rho, flat)
+		// From 200 τ the correction of the bias makes τ 5 % too large on the
+		// average, u half as much; a mean of 300 scatters by 2 %.
+		closeTo(t, "τ", taus, want, 0.12, 0)
+		if flat < 285 {
+			t.Errorf("ρ = %g: %d of 300 series have blocks that agree", test.rho, flat)
 		}
 	}
 	for _, x := range [][]float64{nil, {1}, {1, math.NaN()}, {math.Inf(1), 1}} {

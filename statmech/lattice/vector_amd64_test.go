@@ -1,0 +1,3 @@
+package lattice
+
+func useVector(use bool) { vector = use }

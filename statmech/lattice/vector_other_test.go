@@ -1,0 +1,5 @@
+//go:build !amd64
+
+package lattice
+
+func useVector(bool) {}
