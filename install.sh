@@ -93,7 +93,7 @@ say "building levelsum ($have); the first time Go fetches the packages that it n
 work=$(mktemp -d)
 trap 'rm -rf "$work"' EXIT
 CGO_ENABLED=1 go build -trimpath -buildvcs=false -o "$work/levelsum" ./kernel/levelsum 2>"$work/said" || {
-	grep -v '^go: downloading' "$work/said" | head -n 5 >&2
+	grep -v '^go: downloading' "$work/said" | head -n 5 >&2 || true
 	stop "levelsum could not be built; the first lines of what Go said are above." \
 		"If packages could not be fetched: the first build needs a network (or a proxy, see" \
 		"'go help goproxy'). Later ones take them from $(go env GOMODCACHE)." \
