@@ -62,7 +62,7 @@ func GibbsEntropy(p []float64) (display.Derivation, error) {
 		}
 		step.Formula = `[[S]] = -[[k]] [[Σ]]`
 		step.Symbols = append(step.Symbols, display.Symbol{Name: "Σ", LaTeX: `\sum_i p_i \ln p_i`,
-			Meaning: fmt.Sprintf("sum over %d states", len(p)), Value: sum, Unit: "1"})
+			Meaning: fmt.Sprintf("Σ pᵢ ln pᵢ over the %d states", len(p)), Value: sum, Unit: "1"})
 		step.Compute = func(x map[string]float64) float64 { return -x["k"] * x["Σ"] }
 		return display.Derivation{Title: "Gibbs entropy", Steps: []display.Step{step}}, nil
 	}
