@@ -142,9 +142,15 @@ func (l *Levels) HighTemperatureEntropy() EntropyOverK {
 func (l *Levels) MarkTruncated() *Levels { l.truncated = true; return l }
 
 // Reduced returns the functions at temperature T by a direct sum, in two
-// passes so that C does not suffer from cancellation.
+// passes so that C does not suffer from cancellation; of very long lists as
+// [Levels.ReducedAt] does.
 func (l *Levels) Reduced(T unit.Temperature) Reduced {
 	CheckTemperature("statmech.Levels.Reduced", T)
+	if l.surveyed.serves(T) {
+		if r, ok := l.surveyed.table(l, T).reduced(float64(T)); ok {
+			return r
+		}
+	}
 	return l.direct(unit.Boltzmann * float64(T))
 }
 

@@ -75,7 +75,11 @@ func TestLevelsSurvey(t *testing.T) {
 				t.Errorf("%s: %v from %v, %g there, %g in all; want %v from %v, %g, %g", name, l.TopEnergy(), l.ZeroPointEnergy(), l.GroundDegeneracy(), l.gSum, high, low, ground, sum)
 			}
 			ts := []unit.Temperature{10, 12, 20, 45, 46, 60, 99, 100, 101, 250, 300, 420, 1000, 1e4, 1.5e4, 5e4, 1e7, 2e7, 3e7}
-			for i, r := range l.ReducedAt(ts) {
+			all := l.ReducedAt(ts)
+			for _, T := range ts {
+				all, ts = append(all, l.Reduced(T)), append(ts, T)
+			}
+			for i, r := range all {
 				want := l.direct(unit.Boltzmann * float64(ts[i]))
 				for what, d := range map[string]float64{"ln q": relDiff(r.LogQ, want.LogQ), "U": relDiff(r.U, want.U), "C": relDiff(r.C, want.C)} {
 					worst = math.Max(worst, d)

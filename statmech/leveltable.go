@@ -49,7 +49,7 @@ func (l *Levels) ReducedAt(ts []unit.Temperature) []Reduced {
 		bins := l.tableBins(tMin, tMax)
 		served := l.surveyed.serves(tMin)
 		// A pass costs about as much as two direct sums, a bin as two levels.
-		if hi-lo > 2 && (served || bins > 0 && (hi-lo-2)*l.Len() > 2*(hi-lo)*bins) {
+		if served || hi-lo > 2 && bins > 0 && (hi-lo-2)*l.Len() > 2*(hi-lo)*bins {
 			var t *levelTable
 			if served {
 				t = l.surveyed.table(l, tMin)
