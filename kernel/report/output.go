@@ -179,6 +179,7 @@ func (p *page) cleaned(s, prefix string, picture func(string) (string, string)) 
 		code.AppendChild(&html.Node{Type: html.TextNode, Data: s})
 		return []*html.Node{code}
 	}
+	p.fitPaper(nodes)
 	return nodes
 }
 

@@ -80,9 +80,9 @@ func (p *page) provenance(d *notebook.Document) {
 // fields are what a run records, in the order in which a reader wants it.
 var fields = []struct{ key, label string }{
 	{"levelsum", "Levelsum"}, {"go", "Go"}, {"interpreter", "interpreter"}, {"platform", "platform"},
-	{"constants", "physical constants"}, {"conventions", "conventions where a cell does not say otherwise"},
+	{"constants", "physical constants"}, {"conventions", "default conventions"},
 	{"options", "options of the run"}, {"interpreted", "cells interpreted"}, {"compiled", "cells compiled"},
-	{"stale", "values older at the end than what they were made of"}, {"seeds", "seeds of random numbers"},
+	{"stale", "stale values"}, {"seeds", "seeds of random numbers"},
 	{"code", "SHA-256 of the code"},
 }
 

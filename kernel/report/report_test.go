@@ -375,3 +375,41 @@ func BenchmarkPage(b *testing.B) {
 		}
 	}
 }
+
+// What is wider than paper is printed smaller, and said if that is much.
+func TestWideThingsFitPaper(t *testing.T) {
+	table := func(columns int) string {
+		var b strings.Builder
+		for _, row := range []string{"S / (J K−1 mol−1)", "1234.5678"} {
+			cell := "td"
+			if row != "1234.5678" {
+				cell = "th"
+			}
+			b.WriteString("<tr>" + strings.Repeat(`<`+cell+` style="white-space:nowrap">`+row+`</`+cell+`>`, columns) + "</tr>")
+		}
+		return "<table style=\"border:0\">" + b.String() + "</table>"
+	}
+	for _, test := range []struct {
+		text, want, warning string
+	}{
+		{table(4), "", ""},
+		{table(10), `style="border:0;--fit:0.74"`, ""}, // 10 (9 + 2.6) = 116 of 86
+		{table(30), `style="border:0;--fit:0.24"`, "cell 1: a table is wider than paper and will be printed at 24 % of the usual size"},
+		{"$$" + strings.Repeat("a + ", 10) + "b$$", "", ""},
+		{"$$" + strings.Repeat("a + ", 30) + "b$$", `<math display="block" style="--fit:0.73"`, ""}, // 30 (1 + 1.6) + 1 = 79 of 58
+		{"$" + strings.Repeat("a + ", 30) + "b$", "", ""},                                           // is broken into lines
+	} {
+		d := document(t, markdownCell(test.text))
+		page, warnings, err := Page(d, Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		body := string(page)[strings.Index(string(page), "<main>"):]
+		if test.want == "" && strings.Contains(body, "--fit") || !strings.Contains(body, test.want) {
+			t.Errorf("%.40s: no %s in\n%s", test.text, test.want, body)
+		}
+		if strings.Join(warnings, "; ") != test.warning {
+			t.Errorf("%.40s: warnings %q, want %q", test.text, warnings, test.warning)
+		}
+	}
+}
