@@ -52,6 +52,17 @@ func Interrupted() bool {
 	return ok && s.Interrupted()
 }
 
+// Checkpoint is where a long computation without a result of its own for that
+// case ends when the reader has asked the running work to stop: it panics then,
+// and the running cell ends as interrupted. It is for the goroutine that the
+// cell runs on; goroutines of a library ask Interrupted and return. Elsewhere
+// than in the kernel it does nothing.
+func Checkpoint() {
+	if s, ok := Current().(interface{ Checkpoint() }); ok {
+		s.Checkpoint()
+	}
+}
+
 // terminal is the sink of a program without a front end.
 type terminal struct{}
 

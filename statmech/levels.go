@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 
+	"levelsum/display"
 	"levelsum/statmech/unit"
 )
 
@@ -162,6 +163,9 @@ const block = 512
 func (l *Levels) direct(kt float64) Reduced {
 	var rest, first float64 // Σ over levels above the ground of g e⁻ˣ, g x e⁻ˣ
 	for lo := 0; lo < len(l.energies); lo += block {
+		if lo > 0 {
+			display.Checkpoint()
+		}
 		var z, zx float64
 		for i := lo; i < min(lo+block, len(l.energies)); i++ {
 			x := float64(l.energies[i]-l.min) / kt
@@ -179,6 +183,9 @@ func (l *Levels) direct(kt float64) Reduced {
 	mean := first / q
 	second := float64(l.gMin * float64(mean*mean))
 	for lo := 0; lo < len(l.energies); lo += block {
+		if lo > 0 {
+			display.Checkpoint()
+		}
 		var zxx float64
 		for i := lo; i < min(lo+block, len(l.energies)); i++ {
 			x := float64(l.energies[i]-l.min) / kt

@@ -5,6 +5,7 @@ import (
 	"slices"
 	"sync"
 
+	"levelsum/display"
 	"levelsum/statmech/unit"
 )
 
@@ -57,6 +58,7 @@ func (l *Levels) ReducedAt(ts []unit.Temperature) []Reduced {
 				t = l.newTable(tMin, tMax, bins)
 			}
 			for _, i := range order[lo:hi] {
+				display.Checkpoint()
 				var ok bool
 				if rs[i], ok = t.reduced(float64(ts[i])); !ok {
 					rs[i] = l.direct(unit.Boltzmann * float64(ts[i]))
@@ -64,6 +66,7 @@ func (l *Levels) ReducedAt(ts []unit.Temperature) []Reduced {
 			}
 		} else {
 			for _, i := range order[lo:hi] {
+				display.Checkpoint()
 				rs[i] = l.direct(unit.Boltzmann * float64(ts[i]))
 			}
 		}

@@ -1,6 +1,9 @@
 package statmech
 
-import "levelsum/statmech/unit"
+import (
+	"levelsum/display"
+	"levelsum/statmech/unit"
+)
 
 // A SliceMode is a Mode that has a faster way for many temperatures than one
 // call for each.
@@ -17,6 +20,9 @@ func ReducedAt(m Mode, ts []unit.Temperature) []Reduced {
 	}
 	rs := make([]Reduced, len(ts))
 	for i, T := range ts {
+		if i%64 == 0 {
+			display.Checkpoint()
+		}
 		rs[i] = m.Reduced(T)
 	}
 	return rs

@@ -298,7 +298,7 @@ func (e *emitter) run() string {
 	un := p.findUnread()
 	for k, st := range p.stmts {
 		line, col := e.src.place(p.scope.fset, st.Pos())
-		fmt.Fprintf(&out, "%s = %d; /*line %s:%d:%d*/", at, k, e.src.Tag(), line, col)
+		fmt.Fprintf(&out, "%s%s = %d; /*line %s:%d:%d*/", e.pollText(), at, k, e.src.Tag(), line, col)
 		switch {
 		case k == len(p.stmts)-1 && p.result != nil:
 			out.WriteString(e.show(p.result))
@@ -316,7 +316,7 @@ func (e *emitter) run() string {
 		line, col := e.src.place(p.scope.fset, end.last)
 		fmt.Fprintf(&out, "/*line %s:%d:%d*/%s(%q, %s)\n", e.src.Tag(), line, col, e.guard("Unread"), end.v.Name(), e.slot(p.slotOf(end.v, p.sinfo)))
 	}
-	fmt.Fprintf(&out, "%s = %d\n}\n", at, len(p.stmts))
+	fmt.Fprintf(&out, "%s%s = %d\n}\n", e.pollText(), at, len(p.stmts))
 	return out.String()
 }
 

@@ -141,8 +141,12 @@ func (r *Runner) goroutine(job func(), src *cell.Source, plan *cell.Plan) (reach
 	close(stop)
 	r.mu.Lock()
 	r.running = false
-	async := r.async
+	async, stopped := r.async, r.isStopped()
 	r.mu.Unlock()
+	if stopped {
+		// A library that is told to end returns what it has, or an error.
+		fault = faultOf(guard.Halted, nil, src)
+	}
 	if len(async) > 0 && (fault == nil || fault.Name == "interrupted") {
 		msg := "in a goroutine of the cell: " + async[0]
 		fault = &engine.Fault{Name: "panic", Message: msg, Trace: []string{"panic: " + msg}}

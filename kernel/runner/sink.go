@@ -25,6 +25,13 @@ func (s sink) Clear(wait bool) { s.r.send(engine.Event{Op: "clear", Sync: true, 
 // Interrupted lets long computations of libraries notice that they are to end.
 func (s sink) Interrupted() bool { return atomic.LoadUint32(&guard.Stop) != 0 }
 
+// Checkpoint ends a computation of a library that is to end.
+func (s sink) Checkpoint() {
+	if s.Interrupted() {
+		guard.Halt()
+	}
+}
+
 func (s sink) Ask(prompt string, secret bool) (string, error) {
 	s.r.asking.Lock()
 	defer s.r.asking.Unlock()

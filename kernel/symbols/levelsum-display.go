@@ -12,6 +12,7 @@ import (
 func init() {
 	Symbols["levelsum/display/display"] = map[string]reflect.Value{
 		// function, constant and variable definitions
+		"Checkpoint":          reflect.ValueOf(display.Checkpoint),
 		"Correlation":         reflect.ValueOf(display.Correlation),
 		"Current":             reflect.ValueOf(display.Current),
 		"FileRead":            reflect.ValueOf(display.FileRead),

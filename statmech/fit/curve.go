@@ -103,6 +103,10 @@ func fitModel(m model, x, y, u []float64, opts []Option) (*Result, error) {
 		display.SeedUsed(fmt.Sprintf("fit.Starts, %d starts", reg.starts), reg.seed)
 		random := rand.New(rand.NewPCG(reg.seed, 0x5f17))
 		for range reg.starts - 1 {
+			if best.stop == Interrupted || reg.stop != nil && reg.stop() {
+				best.stop = Interrupted
+				break
+			}
 			next := reg.solve(reg.randomStart(random))
 			tried = append(tried, next.chi2)
 			next.evaluations += best.evaluations

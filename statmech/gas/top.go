@@ -8,6 +8,7 @@ import (
 	"sync"
 	"sync/atomic"
 
+	"levelsum/display"
 	"levelsum/statmech"
 	"levelsum/statmech/unit"
 )
@@ -383,7 +384,7 @@ func (t *Top) asymmetricLevels(jMax int) [][]float64 {
 		wait.Go(func() {
 			for {
 				J := jMax - int(next.Add(1)) + 1 // the long ones first
-				if J < 0 {
+				if J < 0 || display.Interrupted() {
 					return
 				}
 				out[J] = asymmetricLevels(t.a, t.b, t.c, J)
@@ -391,6 +392,7 @@ func (t *Top) asymmetricLevels(jMax int) [][]float64 {
 		})
 	}
 	wait.Wait()
+	display.Checkpoint()
 	for _, energies := range out {
 		if energies == nil {
 			panic("gas: eigenvalues of a Wang block did not converge")

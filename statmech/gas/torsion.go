@@ -6,6 +6,7 @@ import (
 	"slices"
 	"sync"
 
+	"levelsum/display"
 	"levelsum/statmech"
 	"levelsum/statmech/unit"
 )
@@ -144,6 +145,7 @@ func (t *Torsion) ReducedAt(ts []unit.Temperature) []statmech.Reduced {
 		t.levelsTo(hot) // one diagonalisation for all
 	}
 	for i, T := range ts {
+		display.Checkpoint()
 		rs[i] = t.Reduced(T)
 	}
 	return rs

@@ -8,6 +8,7 @@ import (
 	"slices"
 	"sync"
 
+	"levelsum/display"
 	"levelsum/statmech"
 	"levelsum/statmech/internal/heats"
 	"levelsum/statmech/internal/lanes"
@@ -389,7 +390,7 @@ func (p *Phonons) heats(dst, ts []float64) {
 	}
 	r := p.rule(slices.Min(ts))
 	inParallel(len(ts), len(r.w), func(from, to int) {
-		for ; from < to; from += lanes.Width {
+		for ; from < to && !display.Interrupted(); from += lanes.Width {
 			n := min(lanes.Width, to-from)
 			var inverse, sum [lanes.Width]float64
 			for l := range inverse {
@@ -401,6 +402,7 @@ func (p *Phonons) heats(dst, ts []float64) {
 			}
 		}
 	})
+	display.Checkpoint()
 }
 
 // addHeats adds Σ weightᵢ C(wᵢ/T) for eight inverse temperatures to sum.

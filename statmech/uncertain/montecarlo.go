@@ -206,6 +206,7 @@ func (s *sampler) draw(n int) {
 		panic(e)
 	default:
 	}
+	display.Checkpoint()
 	s.next += uint64(blocks)
 	for i := range s.values {
 		s.values[i] = slices.Grow(s.values[i], n)
