@@ -10,8 +10,8 @@
 //
 // The packages beside it: unit (quantities), special (functions of one
 // dimensionless variable), uncertain (values with their uncertainty), data
-// (tables from files), gas and solid (models), reaction, fit, calorimetry,
-// derive, and catalogue, which lists them all.
+// (tables from files), gas, solid and lattice (models), reaction, fit,
+// calorimetry, derive, and catalogue, which lists them all.
 //
 // # Conventions
 //

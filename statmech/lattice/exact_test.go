@@ -71,18 +71,31 @@ func TestOnsagerAccuracy(t *testing.T) {
 		near := 2e-16 / math.Abs(T/tc-1)
 		at := " at kT/J = " + row[0]
 		small := 1e-15 * K // the rounding of K in e^(-8K), relative
-		worst[0] = max(worst[0], closeTo(t, "ln q"+at, onsagerLogQ(K), number(t, row[1]), 1e-15+8*small, 0))
-		worst[1] = max(worst[1], closeTo(t, "E/J + 2"+at, rise, number(t, row[2]), 1e-14+8*small, 0))
-		worst[2] = max(worst[2], closeTo(t, "E/J"+at, e, number(t, row[3]), 2e-15, 0))
-		worst[3] = max(worst[3], closeTo(t, "C/k"+at, c, number(t, row[4]), 1e-13+8*small+near, 0))
-		worst[4] = max(worst[4], closeTo(t, "m"+at, m.Magnetisation(unit.Temperature(T)), number(t, row[5]), 1e-15+near, 1))
+		found := [5]float64{
+			closeTo(t, "ln q"+at, onsagerLogQ(K), number(t, row[1]), 1e-15+8*small, 0),
+			closeTo(t, "E/J + 2"+at, rise, number(t, row[2]), 1e-14+8*small, 0),
+			closeTo(t, "E/J"+at, e, number(t, row[3]), 2e-15, 0),
+			closeTo(t, "C/k"+at, c, number(t, row[4]), 1e-13+8*small+near, 0),
+			closeTo(t, "m"+at, m.Magnetisation(unit.Temperature(T)), number(t, row[5]), 1e-15+near, 1),
+		}
+		if math.Abs(T/tc-1) > 1e-3 && T >= 0.5 {
+			for i, d := range found {
+				worst[i] = max(worst[i], d)
+			}
+		}
 		r := m.Reduced(unit.Temperature(T))
 		closeTo(t, "LogQ"+at, r.LogQ, number(t, row[1]), 4e-15+16*small, 0)
 		closeTo(t, "U"+at, r.U, K*number(t, row[2]), 2e-14+16*small, 0)
 		closeTo(t, "Energy"+at, m.Energy(unit.Temperature(T)).In(kelvin), number(t, row[3]), 4e-15, 0)
 		closeTo(t, "HelmholtzEnergy"+at, m.HelmholtzEnergy(unit.Temperature(T)).In(kelvin), -2-T*number(t, row[1]), 1e-15, 0)
 	}
-	t.Logf("largest departures: ln q %.1g, E/J + 2 %.1g, E/J %.1g, C %.1g, m %.1g", worst[0], worst[1], worst[2], worst[3], worst[4])
+	const where = "kT/J from 0.5 to 1e5, 0.1 % and more from Tc"
+	for i, what := range []string{"ln q", "E/J + 2", "E/J", "C/k", "m"} {
+		t.Logf("accuracy: Onsager, %s | %s | relative | %.3g | %s | 20 digits (mpmath)", what, where, worst[i], []string{"2e-14", "3e-14", "2e-15", "1.2e-13", "3e-13"}[i])
+		if bound := [5]float64{2e-14, 3e-14, 2e-15, 1.2e-13, 3e-13}[i]; !(worst[i] <= bound) {
+			t.Errorf("%s: %.2g, want at most %g", what, worst[i], bound)
+		}
+	}
 }
 
 // TestOnsagerCritical holds what is known at Tc: sinh(2J/kTc) = 1 and E = -√2 J.
@@ -141,7 +154,10 @@ func TestTorusAccuracy(t *testing.T) {
 		worst[1] = max(worst[1], closeTo(t, "E/NJ"+at, -2-slope/N, number(t, row[3]), 4e-15, 1))
 		worst[2] = max(worst[2], closeTo(t, "C/Nk"+at, curvature/(T*T)/N, number(t, row[4]), 6e-14, 1)) // 5e-14 is half a digit of the reference
 	}
-	t.Logf("largest departures: ln Z %.1g, E %.1g, C %.1g", worst[0], worst[1], worst[2])
+	const where = "2 × 2 to 128 × 128, kT/J from 1 to 10"
+	t.Logf("accuracy: Torus, ln Z | %s | relative | %.3g | 1e-15 | 20 digits (exact numbers of states, Kaufman's formula)", where, worst[0])
+	t.Logf("accuracy: Torus, E/NJ | %s | absolute | %.3g | 4e-15 | 16 digits (the same)", where, worst[1])
+	t.Logf("accuracy: Torus, C/Nk | %s | over max(1, C/Nk) | %.3g | 6e-14 | 14 digits (the same)", where, worst[2])
 }
 
 // TestTorusLimits: the ground states alone at low T, 2ᴺ states at high T, the

@@ -24,9 +24,10 @@ import (
 // and E and C are its derivatives, term by term.
 //
 // Range: two spins and more along each side and 1e8 at most in all. Accuracy
-// for T from J/k to 10 J/k and up to 128 × 128: 1e-15 relative in ln Z, absolute
-// 4e-15 in E/NJ and 4e-14 in C/Nk (TestTorusAccuracy). So LogQ and U lose their
-// relative accuracy where nearly all spins are alike.
+// for T from J/k to 10 J/k and up to 128 × 128: 1e-15 relative in ln Z, 4e-15 in
+// E/NJ, 6e-14 in C/Nk, the latter relative where it is above 1
+// (TestTorusAccuracy). So LogQ and U lose their relative accuracy where nearly
+// all spins are alike.
 //
 // Errors: Reduced and the other functions of T panic with a
 // [*statmech.DomainError] if T or J is not positive and finite, or a side or
