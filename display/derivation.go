@@ -387,17 +387,17 @@ func (r *stepRead) tex(b *strings.Builder) {
 
 func (r *stepRead) text(b *strings.Builder) {
 	if r.Text != "" {
-		b.WriteString(oneLineText(r.Text) + "\n")
+		b.WriteString(oneLineText(plainProse(r.Text)) + "\n")
 	}
-	b.WriteString("  ")
+	var formula strings.Builder
 	for _, p := range r.pieces {
 		if p.slot == "" {
-			b.WriteString(oneLineText(p.text))
+			formula.WriteString(p.text)
 		} else {
-			b.WriteString(mark.Plain(mark.Symbol(oneLineText(p.slot))))
+			formula.WriteString(mark.Plain(mark.Symbol(p.slot)))
 		}
 	}
-	b.WriteString("\n")
+	b.WriteString("  " + plainFormula(formula.String()) + "\n")
 	for _, y := range r.Symbols {
 		b.WriteString("    " + mark.Plain(mark.Symbol(oneLineText(y.Name))) + ": " + oneLineText(y.Meaning))
 		if v, ok := r.vals[y.Name]; ok && y.Name != r.Result {

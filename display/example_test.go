@@ -39,5 +39,5 @@ func ExampleParagraph() {
 		Values: display.Values{"θ": display.Number{Name: "θ_D", Value: 343.21, U: 0.7, Unit: "K"}, "T": 81.5 * unit.K},
 	})
 	// Output:
-	// The fit gives 343.21(70) K; half of $3R$ is reached at 81.5 K.
+	// The fit gives 343.21(70) K; half of 3R is reached at 81.5 K.
 }

@@ -62,7 +62,7 @@ func (p Paragraph) View() View {
 		all = append(all, namedSlot{name, vals[name]})
 	}
 	var text, md strings.Builder
-	inMath := false
+	inMath, dollars := false, false
 	for _, c := range ps {
 		if c.slot == "" {
 			text.WriteString(mark.Clean(c.text))
@@ -70,15 +70,21 @@ func (p Paragraph) View() View {
 			continue
 		}
 		v := vals[c.slot]
-		text.WriteString(v.plain(c.form))
+		p := v.plain(c.form)
+		text.WriteString(p)
+		dollars = dollars || strings.Contains(p, "$")
 		if inMath {
 			md.WriteString(v.math(c.form))
 		} else {
 			md.WriteString(v.markdown(c.form))
 		}
 	}
+	plain := text.String()
+	if !dollars { // else what is data could be taken for a formula
+		plain = plainProse(plain)
+	}
 	return View{Data: map[string]any{
-		"text/plain":     text.String(),
+		"text/plain":     plain,
 		"text/markdown":  md.String(),
 		NumbersMediaType: stored(all),
 	}}

@@ -96,7 +96,7 @@ func TestParagraph(t *testing.T) {
 		Values: Values{"θ": estimate{v: 343.21, u: 0.7, unit: "K"}, "T": kelvin(85.5), "file": "<img onerror=x>_*a*.csv"},
 	}
 	v := p.View()
-	if got, want := v.Data["text/plain"], "The fit gives 343.21(70) K from <img onerror=x>_*a*.csv, <b>so</b> $x < \\theta/343.21(70) K$ at 85.5 K; [[not a slot]]."; got != want {
+	if got, want := v.Data["text/plain"], "The fit gives 343.21(70) K from <img onerror=x>_*a*.csv, <b>so</b> x < θ/343.21(70) K at 85.5 K; [[not a slot]]."; got != want {
 		t.Errorf("text %q, want %q", got, want)
 	}
 	if got, want := v.Data["text/markdown"], `The fit gives 343.21(70)&#160;K from &lt;img onerror=x&gt;\_\*a\*.csv, &lt;b>so&lt;/b> $x < \theta/343.21(70)\,\mathrm{K}$ at 85.5 K; [[not a slot]].`; got != want {
