@@ -44,10 +44,10 @@ func (p *page) output(o notebook.Output, n int) {
 			return
 		}
 		if o.Name == "stderr" {
-			p.line(`<pre class="stream stderr" aria-label="standard error">`, escape(text), "</pre>")
+			p.line(pre("stream stderr", "standard error", text), escape(text), "</pre>")
 			return
 		}
-		p.line(`<pre class="stream">`, escape(text), "</pre>")
+		p.line(pre("stream", "", text), escape(text), "</pre>")
 	case notebook.ErrorOutput:
 		p.line(`<div class="error"><p><strong>`, escape(o.ErrorName), "</strong>: ", escape(terminal(o.ErrorValue)), "</p>")
 		var trace []string
@@ -57,7 +57,8 @@ func (p *page) output(o notebook.Output, n int) {
 			}
 		}
 		if len(trace) > 0 {
-			p.line("<pre>", escape(terminal(strings.Join(trace, "\n"))), "</pre>")
+			text := terminal(strings.Join(trace, "\n"))
+			p.line(pre("", "", text), escape(text), "</pre>")
 		}
 		p.line("</div>")
 	case notebook.DisplayData, notebook.ExecuteResult:
@@ -85,14 +86,15 @@ func (p *page) shown(o notebook.Output, n int) {
 				class = "output result"
 				p.results = append(p.results, result1{render(withoutIDs(nodes)), p.cell})
 			}
-			p.line(`<div class="`, class, `">`, render(nodes), "</div>")
+			p.line(`<div class="`, class, `"`, scrolled(nodes), `>`, render(nodes), "</div>")
 			return
 		}
 	}
 	if s, ok := text("text/markdown"); ok {
 		md, err := (&prose{p.warn}).markdown(s)
 		if err == nil {
-			p.line(`<div class="output prose">`, render(p.cleaned(md, prefix, nil)), "</div>")
+			nodes := p.cleaned(md, prefix, nil)
+			p.line(`<div class="output prose"`, scrolled(nodes), `>`, render(nodes), "</div>")
 			return
 		}
 	}
@@ -132,13 +134,13 @@ func (p *page) shown(o notebook.Output, n int) {
 		if result {
 			p.results = append(p.results, result1{escape(plain), p.cell})
 		}
-		p.line(`<pre class="output">`, escape(terminal(plain)), "</pre>")
+		p.line(pre("output", "", terminal(plain)), escape(terminal(plain)), "</pre>")
 		return
 	}
 	for _, media := range slices.Sorted(maps.Keys(o.Data)) {
 		if strings.HasSuffix(media, "json") {
 			if b, err := json.MarshalIndent(o.Data[media], "", "  "); err == nil {
-				p.line(`<pre class="output">`, escape(string(b)), "</pre>")
+				p.line(pre("output", "", string(b)), escape(string(b)), "</pre>")
 				return
 			}
 		}

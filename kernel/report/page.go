@@ -114,7 +114,7 @@ func (p *page) add(c *notebook.Cell) {
 		p.code(c)
 	default:
 		if s := strings.TrimRight(c.Source(), "\n"); s != "" {
-			p.line(`<pre class="raw">`, escape(s), "</pre>")
+			p.line(pre("raw", "", s), escape(s), "</pre>")
 		}
 	}
 }
@@ -123,7 +123,7 @@ func (p *page) markdown(c *notebook.Cell) {
 	s, err := (&prose{p.warn}).markdown(c.Source())
 	if err != nil {
 		p.warn("shown as source: " + err.Error())
-		p.line("<pre>", escape(c.Source()), "</pre>")
+		p.line(pre("", "", c.Source()), escape(c.Source()), "</pre>")
 		return
 	}
 	nodes := p.cleaned(s, "", pictures(p.o.Folder, c.Attachments()))
@@ -233,9 +233,9 @@ func (p *page) code(c *notebook.Cell) {
 		if p.o.Code == Folded {
 			first, _, _ := strings.Cut(strings.TrimSpace(source), "\n")
 			p.line(`<details class="code"><summary>`, run, ` <code>`, escape(shortened(first, 100)), "</code></summary>")
-			p.line("<pre><code>", colored(source), "</code></pre></details>")
+			p.line(pre("", "", source), "<code>", colored(source), "</code></pre></details>")
 		} else {
-			p.line(`<pre class="code" aria-label="`, run, `"><code>`, colored(source), "</code></pre>")
+			p.line(pre("code", run, source), "<code>", colored(source), "</code></pre>")
 		}
 	}
 	for _, o := range outputs {

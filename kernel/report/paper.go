@@ -31,6 +31,9 @@ func (p *page) fitPaper(nodes []*html.Node) {
 			case n.Data == "math" && attribute(n, "display") == "block":
 				what, width, line = "a formula", formulaWidth(n), formulaLine
 			}
+			if what == "a formula" && width > formulaScreen && n.Parent != nil {
+				setAttribute(n.Parent, "tabindex", "0")
+			}
 			if what == "" || width <= line {
 				return
 			}
@@ -45,6 +48,48 @@ func (p *page) fitPaper(nodes []*html.Node) {
 			}
 		})
 	}
+}
+
+// On the screen wider things are scrolled. What a reader may have to scroll
+// can be reached by the keyboard.
+const (
+	tableScreen   = 70
+	formulaScreen = 44
+	textScreen    = 76
+	linesScreen   = 25
+)
+
+const focusable = ` tabindex="0"`
+
+// scrolled returns the attribute for what holds a table that may be scrolled.
+func scrolled(nodes []*html.Node) string {
+	wide := false
+	for _, n := range nodes {
+		each(n, func(n *html.Node) { wide = wide || n.Data == "table" && tableWidth(n) > tableScreen })
+	}
+	if wide {
+		return focusable
+	}
+	return ""
+}
+
+// pre returns the tag that begins preformatted text.
+func pre(class, label, text string) string {
+	tag := "<pre"
+	if class != "" {
+		tag += ` class="` + class + `"`
+	}
+	if label != "" {
+		tag += ` aria-label="` + escape(label) + `"`
+	}
+	wide := strings.Count(text, "\n") > linesScreen
+	for l := range strings.Lines(text) {
+		wide = wide || utf8.RuneCountInString(strings.ReplaceAll(l, "\t", "    ")) > textScreen
+	}
+	if wide {
+		tag += focusable
+	}
+	return tag + ">"
 }
 
 func setAttribute(n *html.Node, key, value string) {
