@@ -5,6 +5,10 @@ import (
 	"encoding/json"
 	"flag"
 	"fmt"
+	"go/ast"
+	"go/doc/comment"
+	"go/parser"
+	"go/token"
 	"io"
 	"io/fs"
 	"os"
@@ -317,6 +321,95 @@ func TestCommentsName(t *testing.T) {
 	if n < 50 {
 		t.Errorf("only %d tests named in comments: the search is broken", n)
 	}
+}
+
+// TestCommentCode: what the code in comments of the packages for cells calls is
+// there, and each of these packages has an example that runs.
+func TestCommentCode(t *testing.T) {
+	root, err := kittest.Root(t.Context())
+	if err != nil {
+		t.Fatal(err)
+	}
+	exported := map[string]map[string]bool{} // by the package's name
+	examples := map[string]bool{}
+	type code struct{ file, text string }
+	var codes []code
+	for _, below := range []string{"statmech", "display"} {
+		eachFile(t, filepath.Join(root, below), ".go", func(file, text string) {
+			rel, _ := filepath.Rel(root, file)
+			if strings.Contains(rel, "internal") || strings.Contains(rel, filepath.Join("special", "gen")) || strings.HasPrefix(text, "//go:build ignore") {
+				return
+			}
+			f, err := parser.ParseFile(token.NewFileSet(), file, text, parser.ParseComments)
+			if err != nil {
+				t.Error(err)
+				return
+			}
+			name := strings.TrimSuffix(f.Name.Name, "_test")
+			if strings.HasSuffix(file, "_test.go") {
+				examples[name] = examples[name] || strings.Contains(text, "\nfunc Example") && strings.Contains(text, "// Output:")
+				return
+			}
+			if exported[name] == nil {
+				exported[name] = map[string]bool{}
+			}
+			for _, d := range f.Decls {
+				for _, n := range declaredNames(d) {
+					exported[name][n] = true
+				}
+			}
+			var p comment.Parser
+			for _, g := range f.Comments {
+				for _, block := range p.Parse(g.Text()).Content {
+					if c, ok := block.(*comment.Code); ok {
+						codes = append(codes, code{rel, c.Text})
+					}
+				}
+			}
+		})
+	}
+	call := regexp.MustCompile(`\b([a-z]+)\.([A-Z]\w*)`)
+	n := 0
+	for _, c := range codes {
+		for _, m := range call.FindAllStringSubmatch(c.text, -1) {
+			if names := exported[m[1]]; names != nil {
+				n++
+				if !names[m[2]] {
+					t.Errorf("%s: code in a comment has %s, which is not there", c.file, m[0])
+				}
+			}
+		}
+	}
+	if n < 20 {
+		t.Errorf("only %d names in comments' code: the search is broken", n)
+	}
+	for name := range exported {
+		if name != "draw" && !examples[name] {
+			t.Errorf("package %s has no example with an output", name)
+		}
+	}
+}
+
+// declaredNames are the exported names of a declaration at the top of a file.
+func declaredNames(d ast.Decl) (names []string) {
+	switch d := d.(type) {
+	case *ast.FuncDecl:
+		if d.Recv == nil {
+			names = append(names, d.Name.Name)
+		}
+	case *ast.GenDecl:
+		for _, s := range d.Specs {
+			switch s := s.(type) {
+			case *ast.TypeSpec:
+				names = append(names, s.Name.Name)
+			case *ast.ValueSpec:
+				for _, id := range s.Names {
+					names = append(names, id.Name)
+				}
+			}
+		}
+	}
+	return names
 }
 
 // TestPicture: the picture of the README is the one that the notebook stores.

@@ -65,7 +65,24 @@ func (k EnergyKind) String() string {
 	return "unknown kind of energy"
 }
 
-// A Reaction has the standard quantities of one equation.
+// A Reaction has the standard quantities of one equation,
+//
+//	ΔrH°(T) = ΔrH(0) + Σ νᵢ [Hᵢ°(T)-Hᵢ(0)],  ΔrS°(T) = Σ νᵢ Sᵢ°(T),
+//	ΔrG°(T) = ΔrH° - T ΔrS°,  ln K = -ΔrG°/RT,
+//
+// νᵢ the stoichiometric number (negative for reactants) and Hᵢ°, Sᵢ° the standard
+// functions of species i, an ideal gas at p°; ΔrH(0), in J/mol, comes from the
+// energies that [EnergyKind] names. K is for pressures relative to p°.
+//
+// Range: that of the species' own models, see [gas.Molecule.Warnings].
+//
+// Accuracy: for nine reactions with ΔrH given, ln K is within 0.01 of NASA's
+// functions (TestEquilibriumConstantsPublished); an error of 1 kJ/mol in ΔrH
+// moves ln K by 0.40 at 298.15 K. [Reaction.UncertaintyOfLogK] gives what the
+// uncertainties of the inputs amount to.
+//
+// Errors: evaluations panic with a [*statmech.DomainError] if T is not positive
+// and finite.
 type Reaction struct {
 	Equation string
 	terms    []Term
