@@ -40,7 +40,7 @@ func (l *Levels) survey() bool {
 	// The range is guessed from a sample, with a margin. If a level is outside,
 	// the pass is made again with the true range.
 	lo, hi, ok := energyRange(l.energies, len(l.energies)/surveySample)
-	margin := (hi - lo) / 32
+	margin := (hi - lo) / 20
 	if ok && l.surveyRange(lo-margin, hi+margin) {
 		return true
 	}
