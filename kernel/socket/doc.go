@@ -67,6 +67,8 @@
 // # Goroutines
 //
 // A listener has one for accepting, a peer one that does its handshake and
-// then writes; Close waits for all of them. Those of zmq4 (one reader for each
-// peer and up to three for the socket) end with Close as well.
+// then writes; a small reply for which nothing waits is written by whoever sends
+// it, as far as the network takes it without a wait. Close waits for all of
+// them. Those of zmq4 (one reader for each peer and up to three for the socket)
+// end with Close as well.
 package socket

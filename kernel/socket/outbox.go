@@ -5,6 +5,7 @@ import (
 	"net"
 	"os"
 	"sync"
+	"syscall"
 	"time"
 )
 
@@ -34,6 +35,7 @@ type outbox struct {
 	chunks []chunk    // in order; the writer takes all of them
 	queued int        // bytes in chunks and in the writer's hands
 	moved  time.Time  // when the network last took some of them
+	taken  bool       // somebody writes what was in chunks before
 	slow   bool       // messages are dropped until the queue is below half
 	killed bool
 }
@@ -58,6 +60,40 @@ func (o *outbox) put(parts []chunk, small []byte) {
 	o.mu.Lock()
 	defer o.mu.Unlock()
 	o.append(parts, small)
+	signal(o.wake)
+}
+
+// putAlone queues one small message and returns it, if it is the only one, for
+// the caller to write; what it returns is given to written.
+func (o *outbox) putAlone(small []byte) chunk {
+	o.mu.Lock()
+	defer o.mu.Unlock()
+	o.append(nil, small)
+	if o.taken || len(o.chunks) != 1 {
+		signal(o.wake)
+		return nil
+	}
+	c := o.chunks[0]
+	o.chunks, o.taken = nil, true
+	return c
+}
+
+// written takes back a chunk of which n bytes have left.
+func (o *outbox) written(c chunk, n int) {
+	o.sent(n)
+	o.mu.Lock()
+	defer o.mu.Unlock()
+	o.taken = false
+	switch {
+	case n == len(c) || o.killed:
+		c.free()
+	default:
+		o.chunks = append([]chunk{append(newChunk(), c[n:]...)}, o.chunks...)
+		c.free()
+	}
+	if len(o.chunks) > 0 {
+		signal(o.wake)
+	}
 }
 
 // putIfBelow queues a message unless as many bytes are waiting.
@@ -66,6 +102,7 @@ func (o *outbox) putIfBelow(limit int, small []byte) {
 	defer o.mu.Unlock()
 	if o.queued < limit {
 		o.append(nil, small)
+		signal(o.wake)
 	}
 }
 
@@ -88,7 +125,6 @@ func (o *outbox) append(parts []chunk, small []byte) {
 	default:
 		o.chunks = append(o.chunks, append(newChunk(), small...))
 	}
-	signal(o.wake)
 }
 
 // refuses reports whether a message that begins now is to be dropped. With
@@ -120,12 +156,19 @@ func (o *outbox) kill() {
 	signal(o.room)
 }
 
-// take returns all chunks, or nothing if there are none.
-func (o *outbox) take() []chunk {
+// take returns all chunks, or nothing if there are none or somebody else
+// writes. What was taken before has been written.
+func (o *outbox) take(before bool) []chunk {
 	o.mu.Lock()
 	defer o.mu.Unlock()
+	if before {
+		o.taken = false
+	}
+	if o.taken || len(o.chunks) == 0 {
+		return nil
+	}
 	chunks := o.chunks
-	o.chunks = nil
+	o.chunks, o.taken = nil, true
 	return chunks
 }
 
@@ -147,8 +190,14 @@ func (o *outbox) sent(n int) {
 // or is closed.
 func (p *peer) write() {
 	var buffers [stepChunks][]byte
+	before := false
 	for {
-		waiting := p.outbox.take()
+		if before {
+			// A deadline that has passed would hold writeNow up.
+			p.c.SetWriteDeadline(time.Time{})
+		}
+		waiting := p.outbox.take(before)
+		before = waiting != nil
 		if waiting == nil {
 			select {
 			case <-p.wake:
@@ -171,6 +220,23 @@ func (p *peer) write() {
 			waiting = waiting[k:]
 		}
 	}
+}
+
+// writeNow writes one small message without a wait, if nothing waits before it:
+// a reply is on its way without another goroutine having to be woken. What the
+// network does not take at once is left to write.
+func (p *peer) writeNow(small []byte) {
+	c := p.outbox.putAlone(small)
+	if c == nil {
+		return
+	}
+	n := 0
+	// An error is found again by write.
+	_ = p.raw.Write(func(fd uintptr) bool {
+		n, _ = syscall.Write(int(fd), c)
+		return true
+	})
+	p.outbox.written(c, max(n, 0))
 }
 
 // writeAll writes the buffers, and reports whether the peer is still there.

@@ -4,6 +4,7 @@ import (
 	"bufio"
 	"net"
 	"sync"
+	"syscall"
 	"time"
 )
 
@@ -17,8 +18,9 @@ type peer struct {
 	l    *listener
 	c    net.Conn
 	id   string
-	n    int           // of the listener's connections
-	done chan struct{} // closed by shut
+	n    int             // of the listener's connections
+	raw  syscall.RawConn // to write replies; nil on publishing sockets
+	done chan struct{}   // closed by shut
 	once sync.Once
 	up   chan struct{} // closed when zmq4 knows the peer: what is sent to it arrives
 
@@ -36,6 +38,11 @@ func newPeer(l *listener, c net.Conn, r *bufio.Reader, socketType, id string) *p
 	p.input.in = appendReady(greeting[:greetingSize:greetingSize], socketType, id)
 	p.output.skip = greetingSize
 	p.outbox.init()
+	// What is published leaves in bursts, which one goroutine writes with few
+	// system calls.
+	if s, ok := c.(syscall.Conn); ok && !l.kind.publishes() {
+		p.raw, _ = s.SyscallConn()
+	}
 	return p
 }
 

@@ -115,6 +115,8 @@ func (p *peer) endFrame() {
 		if !p.dead() {
 			p.l.dropped.Add(1)
 		}
+	} else if o.parts == nil && p.raw != nil {
+		p.writeNow(o.small)
 	} else {
 		p.outbox.put(o.parts, o.small)
 	}
