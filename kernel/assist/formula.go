@@ -234,15 +234,18 @@ func latex(line string) (tex string, ok bool) {
 	return strings.TrimSpace(strings.ReplaceAll(b.String(), "  ", " ")), ok
 }
 
-// sentence reports whether the blank at i stands beside a word, where it is to
-// be seen.
+// sentence reports whether the blank at i stands beside a word that is no
+// function, where it is to be seen.
 func sentence(rs []rune, i int) bool {
-	letters := func(step int) int {
-		n := 0
-		for j := i + step; j >= 0 && j < len(rs) && rs[j] < unicode.MaxASCII && unicode.IsLetter(rs[j]); j += step {
-			n++
-		}
-		return n
+	letter := func(j int) bool { return j >= 0 && j < len(rs) && rs[j] < unicode.MaxASCII && unicode.IsLetter(rs[j]) }
+	from, to := i, i+1
+	for letter(from - 1) {
+		from--
 	}
-	return letters(-1) >= 3 && letters(1) >= 1 || letters(1) >= 3 && letters(-1) >= 1
+	for letter(to) {
+		to++
+	}
+	word := func(w string) bool { return len(w) >= 3 && !functions[w] }
+	lower := from > 0 && rs[from-1] == '_'
+	return !lower && word(string(rs[from:i])) || word(string(rs[i+1:to]))
 }

@@ -24,6 +24,8 @@ func TestLatex(t *testing.T) {
 		{"T >= 0", `T \ge 0`},
 		{"x = {a}", `x = \{a\}`},
 		{"Cp = C_total / n", `Cp = C_{\mathrm{total}} / n`},
+		{"C = n R y³ for n = 3", `C = n R y^{3}\ \text{for}\ n = 3`},
+		{"y = cosh 2K coth 2K", `y = \cosh 2K \coth 2K`},
 		{"x = √(", ""},
 		{"x = 日", ""},
 	} {

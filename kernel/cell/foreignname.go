@@ -49,6 +49,9 @@ func (c *checking) foreignName(path []ast.Node, name string) string {
 	if len(path) > 1 {
 		parent = path[1]
 	}
+	if st, ok := parent.(*ast.SendStmt); ok && st.Chan == path[0] {
+		return "write " + name + " := " + c.text(st.Value) + ": <- sends on a channel"
+	}
 	if a, ok := parent.(*ast.AssignStmt); ok {
 		for _, l := range a.Lhs {
 			if l == path[0] {
@@ -142,8 +145,7 @@ func (c *checking) gasConstant(path []ast.Node) string {
 		return "write " + lit.Value + " " + b.Op.String() + " unit.R"
 	}
 	x := unbracketed(c.text(other))
-	factor := "unit.MolarEntropy(" + x + ")"
-	return "write unit.R " + b.Op.String() + " " + factor + " for a quantity, or unit.GasConstant " + b.Op.String() + " " + c.text(other) + " for a plain number in J/(mol K)"
+	return "write unit.R " + b.Op.String() + " unit.MolarEntropy(" + x + "), or unit.GasConstant for a plain number"
 }
 
 // foreignMember answers a method that other languages give to slices, strings

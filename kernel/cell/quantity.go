@@ -62,7 +62,7 @@ func (c *checking) quantities(plan *Plan) Diagnostics {
 			}
 			if b, ok := e.(*ast.BinaryExpr); ok && b.Op == token.MUL && !untyped(b.X, info) && !untyped(b.Y, info) && !(scaled(b.X, info) || scaled(b.Y, info)) {
 				say(b.OpPos, fmt.Sprintf("product of two quantities of the kind unit.%s", q),
-					fmt.Sprintf("the product is not a unit.%s: write float64(x) * y to scale y by a plain number, or use a named method for a product of physics", q))
+					"write float64(x) * y to scale y by a number; products of physics have methods, as S.Times(T)")
 			}
 			if call, ok := e.(*ast.CallExpr); ok && len(call.Args) == 1 && info.Types[call.Fun].IsType() {
 				x := call.Args[0]

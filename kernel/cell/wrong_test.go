@@ -52,7 +52,7 @@ func adopt(t *testing.T, s *cell.Scope, n int, source string) {
 // said is what a reader is told about a cell: place and hint of each error, or
 // of each warning of a cell that runs.
 func said(s *cell.Scope, source string) string {
-	plan, err := s.Check(&cell.Source{N: 2, Text: source})
+	plan, err := s.Clone().Check(&cell.Source{N: 2, Text: source}) // a clone, so that the cells know nothing of one another
 	var ds cell.Diagnostics
 	if err == nil {
 		ds = plan.Warnings
@@ -105,7 +105,7 @@ func TestWrongCells(t *testing.T) {
 		{"sqrt(x)", "1:1 did you mean math.Sqrt or uncertain.Sqrt?"},
 		{"np.exp(x)", "1:1 write math.Exp"},
 		{"exp(-x)", "1:1 did you mean math.Exp or uncertain.Exp?"},
-		{"R*math.Log(1+x)", "1:1 write unit.R * unit.MolarEntropy(math.Log(1+x)) for a quantity, or unit.GasConstant * math.Log(1+x) for a plain number in J/(mol K)"},
+		{"R*math.Log(1+x)", "1:1 write unit.R * unit.MolarEntropy(math.Log(1+x)), or unit.GasConstant for a plain number"},
 		{"k*T", "1:1 write T.AsEnergy() for kT"},
 		{"kB * T", "1:1 write T.AsEnergy() for kT"},
 		{"cu.HeatCapacity(300)", "1:17 give it a unit: 300 * unit.K"},
@@ -161,7 +161,7 @@ func TestWrongCells(t *testing.T) {
 		{"var e unit.MolarEnergy = 12 * unit.KJPerMol", "1:26 write 12 * unit.MolarKJ"},
 		{"var e unit.Energy = 12 * unit.MolarKJ", "1:21 write 12 * unit.KJPerMol"},
 		{"T + 273.15", "1:5 write unit.Celsius(25) for a temperature in °C, or 273.15 * unit.K"},
-		{"T * T", "1:3 the product is not a unit.Temperature: write float64(x) * y to scale y by a plain number, or use a named method for a product of physics"},
+		{"T * T", "1:3 write float64(x) * y to scale y by a number; products of physics have methods, as S.Times(T)"},
 		{"T / T", "1:3 write float64(T / T)"},
 		{"gap / T", "1:1 write gap.OverKT(T) for the ratio to kT"},
 		{"gap * T", "1:1 no method makes a quantity of these two: for a plain number in SI write gap.SI() * T.SI()"},
@@ -197,7 +197,7 @@ func TestWrongCells(t *testing.T) {
 		{"cu.Theta = 300", "1:12 give it a unit: 300 * unit.K"},
 		{"cu.Thetas", "1:4 did you mean Theta?"},
 		{"let y = 3", "1:5 write y := 3"},
-		{"y <- 3", "1:1 y stands in In[2], which had an error and so declared nothing: mend it and run it again"},
+		{"y <- 3", "1:1 write y := 3: <- sends on a channel"},
 		{"x.In(unit.K)", "1:3 x is a plain number: give it a unit, as in 300 * unit.K, to read it in another"},
 		{"T.In(K)", "1:6 did you mean unit.K?"},
 		{"T.In(\"K\")", "1:6 write unit.K"},
@@ -234,7 +234,7 @@ func TestWrongCells(t *testing.T) {
 		{"cu.HeatCapacities(T)", "1:19 write []unit.Temperature{T}"},
 		{"statmech.Audit(cu)", "1:18 it is called as statmech.Audit(m statmech.Mode, o statmech.AuditOptions)"},
 		{"for _, s := range []string{\"1\", \"x\"} {\n\tv, err := strconv.Atoi(s)\n\tfmt.Println(v)\n}", "2:5 look at it: if err != nil { panic(err) } ends the cell and shows it"},
-		{"f(y) = y*2", "1:1 write func f(y float64) float64 { return y*2 }\n1:3 y stands in In[2], which had an error and so declared nothing: mend it and run it again\n1:8 y stands in In[2], which had an error and so declared nothing: mend it and run it again"},
+		{"f(y) = y*2", "1:1 write func f(y float64) float64 { return y*2 }"},
 		{"x := 1,5", "1:6 write 1.5 with a point, if it is one number"},
 		{"y := x²", "1:7 write x*x or math.Pow(x, 2)"},
 		{"s := “hello”", "1:6 write \" for “"},
@@ -388,5 +388,20 @@ func TestWrongCells(t *testing.T) {
 		if got := said(s, test.source); got != test.want {
 			t.Errorf("%q:\n%s\nwant\n%s", test.source, got, test.want)
 		}
+	}
+}
+
+// A name that stands in a cell with an error is not there; the cell is named.
+func TestNameOfAFailedCell(t *testing.T) {
+	s := beginner(t)
+	if _, err := s.Check(&cell.Source{N: 7, Text: "width := nosuch\ndepth := 1"}); err == nil {
+		t.Fatal("no error")
+	}
+	if got, want := said(s, "depth + 1"), "1:1 depth stands in In[7], which had an error and so declared nothing: mend it and run it again"; got != want {
+		t.Errorf("%s, want %s", got, want)
+	}
+	adopt(t, s, 8, "depth := 1")
+	if got := said(s, "depth + 1"); got != "" {
+		t.Errorf("%s, want nothing", got)
 	}
 }
