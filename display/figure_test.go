@@ -33,6 +33,12 @@ func (here) Curve() func([]kelvin) []molar {
 }
 func (here) FittedTo(x, y []float64) bool { return len(x) == 3 && x[2] == 3 && y[2] == 6.5 }
 
+// model has a method that could be drawn.
+type model struct{}
+
+func (model) HeatCapacity(T kelvin) molar { return line(T) }
+func (model) Modes() int                  { return 3 }
+
 var (
 	someT = []kelvin{1, 2, 3}
 	someC = []molar{2, 4, 6.5}
@@ -113,6 +119,9 @@ func TestFigureRefused(t *testing.T) {
 		{"curve out of order", with(func(f *Figure) { f.Curve = Curve{X: []kelvin{2, 1}, Y: []molar{1, 2}} }), "not in ascending order"},
 		{"a point that cannot be drawn", with(func(f *Figure) { f.Y = []molar{1, 2, 1e300} }), "which cannot be drawn: give Min and Max"},
 		{"text for numbers", with(func(f *Figure) { f.Y = []string{"a", "b", "c"} }), "is text, want numbers"},
+		{"curve without a range", Figure{Curve: line, XAxis: tAxis, YAxis: cAxis}, "a curve without data needs the range to draw it over"},
+		{"a model for a curve", with(func(f *Figure) { f.Curve = model{} }), "a curve is a display.model, want a function of x or a display.Curve; its methods HeatCapacity are such functions"},
+		{"a scale with another zero", with(func(f *Figure) { f.XAxis.Unit = "°C" }), "scales with another zero are not converted"},
 		{"X without Y", with(func(f *Figure) { f.Y = nil }), "X and Y belong together"},
 		{"width", with(func(f *Figure) { f.Width = -3 }), "Width is -3 mm"},
 	} {

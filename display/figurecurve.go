@@ -53,7 +53,25 @@ func asCurve(x any) (Curve, error) {
 	if m := rv.MethodByName("Curve"); rv.IsValid() && m.IsValid() && m.Type().NumIn() == 0 && m.Type().NumOut() == 1 {
 		return asCurve(m.Call(nil)[0].Interface())
 	}
-	return Curve{}, fmt.Errorf("a curve is a %T, want a function of x or a display.Curve", x)
+	return Curve{}, fmt.Errorf("a curve is a %T, want a function of x or a display.Curve%s", x, functionsOf(rv))
+}
+
+// functionsOf names methods of a model that could be drawn.
+func functionsOf(rv reflect.Value) string {
+	if !rv.IsValid() {
+		return ""
+	}
+	var names []string
+	for i := range rv.NumMethod() {
+		t := rv.Type().Method(i).Type // with the receiver
+		if t.NumIn() == 2 && t.NumOut() == 1 && t.In(1).Kind() == reflect.Float64 && t.Out(0).Kind() == reflect.Float64 {
+			names = append(names, rv.Type().Method(i).Name)
+		}
+	}
+	if len(names) == 0 {
+		return ""
+	}
+	return "; its methods " + cut(strings.Join(names, ", "), 120) + " are such functions"
 }
 
 // curves draws the curves of a series over the range of its data (of the whole
@@ -84,7 +102,10 @@ func (r *figureReader) curves(s Series, d *seriesData) (below, above []scene.Lay
 			r.colour++
 			r.dash++
 		}
-		gx := e.grid(d)
+		gx, err := e.grid(d)
+		if err != nil {
+			return nil, nil, 0, err
+		}
 		gy, err := e.at(gx)
 		if err != nil && len(d.x) == 0 && c.F != nil && gx[0] == 0 {
 			// A range from 0 K on, where few models are defined.
@@ -213,9 +234,9 @@ func (e *curveReader) checkFunc(what string, f any) error {
 }
 
 // grid returns where the curve is drawn.
-func (e *curveReader) grid(d *seriesData) []float64 {
+func (e *curveReader) grid(d *seriesData) ([]float64, error) {
 	if e.x != nil {
-		return e.x
+		return e.x, nil
 	}
 	a := &e.r.x
 	lo, hi := a.lo, a.hi
@@ -231,10 +252,7 @@ func (e *curveReader) grid(d *seriesData) []float64 {
 		hi = to
 	}
 	if lo > hi {
-		lo, hi = 0, 1
-		if a.spec.Log {
-			lo, hi = 1, 10
-		}
+		return nil, fmt.Errorf("a curve without data needs the range to draw it over: give XAxis.Min and XAxis.Max")
 	}
 	g := make([]float64, curvePoints)
 	for i := range g {
@@ -246,7 +264,7 @@ func (e *curveReader) grid(d *seriesData) []float64 {
 		}
 	}
 	g[len(g)-1] = hi
-	return g
+	return g, nil
 }
 
 // at returns the curve at xs, in the units of the axes.

@@ -375,6 +375,9 @@ func (c *column) applyUnit(what, unit string, in any) error {
 		c.unit = unit
 		return nil
 	}
+	if strings.HasPrefix(unit, "°") && c.unit == "K" {
+		return fmt.Errorf("%s: Unit is %q, but the values are in K: scales with another zero are not converted; give plain numbers less 273.15", what, unit)
+	}
 	if unit != "" && c.unit != "" && !sameUnit(unit, c.unit) {
 		return fmt.Errorf("%s: Unit is %q, but the values are in %q; to convert them give In as well (In: the unit itself)", what, unit, c.unit)
 	}
