@@ -92,18 +92,18 @@ func (s *canvas) dots(at []point, radius float64, with paint) {
 	}
 	s.colour(with)
 	r, k := vg.Length(radius), vg.Length(radius*kappa)
+	var q vg.Path // all in one, so that discs of one set that overlap are not darker there
 	for _, p := range at {
 		c := s.at(p)
 		pt := func(x, y vg.Length) vg.Point { return vg.Point{X: c.X + x, Y: c.Y + y} }
-		var q vg.Path
 		q.Move(pt(r, 0))
 		q.CubeTo(pt(r, k), pt(k, r), pt(0, r))
 		q.CubeTo(pt(-k, r), pt(-r, k), pt(-r, 0))
 		q.CubeTo(pt(-r, -k), pt(-k, -r), pt(0, -r))
 		q.CubeTo(pt(k, -r), pt(r, -k), pt(r, 0))
 		q.Close()
-		s.c.Fill(q)
 	}
+	s.c.Fill(q)
 }
 
 func (s *canvas) text(rs []mark.Run, x, y, size float64, a anchor, upwards bool, with paint) {

@@ -111,7 +111,7 @@ func reduce(pts []point) []point {
 // points draws error bars in one path, then the marks.
 func (p *plan) points(q *panelPlan, l scene.Points) {
 	y := q.ruler(l.Right)
-	keep := thinPoints(l, p.x, y, q.box)
+	keep, counts := thinPoints(l, p.x, y, q.box)
 	var bars path
 	bar := func(a, c point) {
 		if a, c, ok := clip(a, c, q.box); ok {
@@ -125,7 +125,12 @@ func (p *plan) points(q *panelPlan, l scene.Points) {
 		}
 	}
 	at := make([]point, 0, len(keep))
-	for _, i := range keep {
+	byStrength := make([][]point, len(strengths))
+	most := 0
+	for _, n := range counts {
+		most = max(most, n)
+	}
+	for k, i := range keep {
 		c := point{p.x.place(l.X[i]), y.place(l.Y[i])}
 		if l.YErr != nil && l.YErr[i] > 0 {
 			bar(point{c.x, foot(y, l.Y[i]-l.YErr[i])}, point{c.x, y.place(l.Y[i] + l.YErr[i])})
@@ -133,13 +138,24 @@ func (p *plan) points(q *panelPlan, l scene.Points) {
 		if l.XErr != nil && l.XErr[i] > 0 {
 			bar(point{foot(p.x, l.X[i]-l.XErr[i]), c.y}, point{p.x.place(l.X[i] + l.XErr[i]), c.y})
 		}
-		if q.box.grow(0.5).has(c) {
+		switch {
+		case !q.box.grow(0.5).has(c):
+		case counts != nil:
+			s := strength(counts[k], most)
+			byStrength[s] = append(byStrength[s], c)
+		default:
 			at = append(at, c)
 		}
 	}
 	colour := series(l.Colour)
 	p.s.stroke(&bars, pen{paint: colour.with(barAlpha), width: barWidth})
-	p.marks(at, l.Marker, markSize(len(at)), colour)
+	if counts == nil {
+		p.marks(at, l.Marker, markSize(len(at)), colour)
+		return
+	}
+	for s, at := range byStrength { // the strongest on top
+		p.marks(at, l.Marker, markSize(len(keep)), colour.with(strengths[s]))
+	}
 }
 
 // foot is the place of the lower end of a bar, which on a logarithmic axis may

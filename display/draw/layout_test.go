@@ -261,12 +261,37 @@ func TestMillionPoints(t *testing.T) {
 	if len(s) > 400_000 {
 		t.Errorf("%d bytes", len(s))
 	}
-	if !strings.Contains(s, "1 000 000 points: one is drawn for each place.") {
+	if !strings.Contains(s, "1 000 000 points: one is drawn for each place, stronger where there are more.") {
 		t.Error("nothing says that the points are thinned")
 	}
 	f = display.Figure{Series: []display.Series{{X: sorted(x), Y: y, Line: true}}, XAxis: f.XAxis, YAxis: f.YAxis}
 	if s := f.View().Data["image/svg+xml"].(string); len(s) > 400_000 {
 		t.Errorf("a line of a million points takes %d bytes", len(s))
+	}
+}
+
+// The strength of a mark of a thinned set rises with the number of points that
+// it stands for: of 9,000 points 8,000 are at one place.
+func TestThinnedStrength(t *testing.T) {
+	n := 9000
+	x, y := make([]float64, n), make([]float64, n)
+	for i := range 1000 {
+		x[i], y[i] = float64(i%40), float64(i/40)
+	}
+	l := scene.Points{X: x, Y: y}
+	r := newRuler(scene.Axis{Min: -1, Max: 40}, 0, 200, 30)
+	keep, counts := thinPoints(l, r, r, box{0, 0, 200, 200})
+	if len(keep) != 1000 || counts[0] != 8001 || counts[1] != 1 {
+		t.Fatalf("%d places, the first two stand for %v points", len(keep), counts[:2])
+	}
+	if strength(8001, 8001) != len(strengths)-1 || strength(1, 8001) != 0 || strength(90, 8001) != 2 { // ln 90 / ln 8001 = 0.5007
+		t.Errorf("strengths %d, %d, %d", strength(8001, 8001), strength(1, 8001), strength(90, 8001))
+	}
+	s := display.Figure{X: x, Y: y, XAxis: display.Axis{Quantity: "x"}, YAxis: display.Axis{Quantity: "y"}}.View().Data["image/svg+xml"].(string)
+	for _, want := range []string{`stroke-opacity=".4" stroke-width="2.8"`, `stroke="#127dc0" stroke-width="2.8"`} {
+		if !strings.Contains(s, want) {
+			t.Errorf("no marks with %s", want)
+		}
 	}
 }
 

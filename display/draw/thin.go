@@ -17,8 +17,9 @@ const (
 	mostMarks = 20000
 )
 
-// thinPoints returns the points that are drawn, in their order.
-func thinPoints(l scene.Points, x, y *ruler, b box) []int {
+// thinPoints returns the points that are drawn, in their order, and how many
+// points each stands for; no counts where all are drawn.
+func thinPoints(l scene.Points, x, y *ruler, b box) (keep, counts []int) {
 	out := make([]int, 0, min(len(l.X), mostMarks))
 	if len(l.X) <= thinAbove {
 		for i := range l.X {
@@ -26,29 +27,45 @@ func thinPoints(l scene.Points, x, y *ruler, b box) []int {
 				out = append(out, i)
 			}
 		}
-		return out
+		return out, nil
 	}
 	for c := cell; ; c *= 1.5 {
-		out = out[:0]
+		out, counts = out[:0], counts[:0]
 		nx, ny := int(b.w()/c)+1, int(b.h()/c)+1
-		seen := make([]bool, nx*ny)
+		place := make([]int32, nx*ny) // of the cell's point in out, from 1
 		for i := range l.X {
 			p := point{x.place(l.X[i]), y.place(l.Y[i])}
 			if !b.has(p) { // NaN is not in the box either
 				continue
 			}
 			k := int((p.y-b.y0)/c)*nx + int((p.x-b.x0)/c)
-			if !seen[k] {
-				seen[k] = true
-				if out = append(out, i); len(out) > mostMarks {
-					break
-				}
+			if place[k] > 0 {
+				counts[place[k]-1]++
+				continue
 			}
+			if out, counts = append(out, i), append(counts, 1); len(out) > mostMarks {
+				break
+			}
+			place[k] = int32(len(out))
 		}
 		if len(out) <= mostMarks {
-			return out
+			return out, counts
 		}
 	}
+}
+
+// strengths are how opaque the marks of a thinned set are, from those that
+// stand for one point to those that stand for the most.
+var strengths = []float64{0.4, 0.55, 0.7, 0.85, 1}
+
+// strength returns the class of a mark that stands for n points, on a
+// logarithmic scale.
+func strength(n, most int) int {
+	if n <= 1 || most <= 1 {
+		return 0
+	}
+	k := int(math.Log(float64(n)) / math.Log(float64(most)) * float64(len(strengths)))
+	return min(k, len(strengths)-1)
 }
 
 // thinned returns the notes about sets that are too large to be drawn whole.
@@ -61,7 +78,7 @@ func thinned(f *scene.Figure) []string {
 				if s.Name != "" {
 					what += " of " + s.Name
 				}
-				note := fmt.Sprintf("%s %s: one is drawn for each place.", grouped(s.Of), what)
+				note := fmt.Sprintf("%s %s: one is drawn for each place, stronger where there are more.", grouped(s.Of), what)
 				if len(out) == 0 || out[len(out)-1] != note {
 					out = append(out, note)
 				}
