@@ -52,6 +52,16 @@ func History(d *notebook.Document) []Remark {
 	var all []Remark
 	last, lastCell, ran := 0, 0, 0
 	var notRun []string
+	var early []int // cells that were run before the last one above them
+	tell := func() {
+		switch n := len(early); {
+		case n == 1:
+			all = append(all, Remark{early[0], fmt.Sprintf("was run before cell %d above it (In[%d]), or in another session: what it shows may be older than that cell", lastCell, last)})
+		case n > 1:
+			all = append(all, Remark{0, fmt.Sprintf("cells %s were run before cell %d above them (In[%d]), or in another session: what they show may be older than that cell", listed(early), lastCell, last)})
+		}
+		early = nil
+	}
 	for _, c := range d.Cells() {
 		if c.Kind() != notebook.Code {
 			continue
@@ -65,15 +75,16 @@ func History(d *notebook.Document) []Remark {
 		}
 		ran++
 		if n <= last {
-			all = append(all, Remark{c.N, fmt.Sprintf("was run as In[%d], cell %d above it as In[%d]: out of order or in another session, so what it shows may be older than that cell", n, lastCell, last)})
-		}
-		if n > last {
+			early = append(early, c.N)
+		} else {
+			tell()
 			last, lastCell = n, c.N
 		}
 		for _, s := range staleMarks(c) {
 			all = append(all, Remark{c.N, "shows what was made from a value older than it should be: " + s})
 		}
 	}
+	tell()
 	if ran == 0 {
 		return nil
 	}
@@ -88,6 +99,11 @@ func History(d *notebook.Document) []Remark {
 		all = append(all, Remark{0, "code was changed after the recorded run"})
 	}
 	return all
+}
+
+// listed writes numbers of cells: 2-5, 7.
+func listed(ns []int) string {
+	return strings.NewReplacer("In[", "", "]", "").Replace(cellNumbers(ns))
 }
 
 // staleMarks returns what the engine has written beside the outputs of a cell.

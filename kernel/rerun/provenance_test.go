@@ -102,11 +102,10 @@ func TestHistory(t *testing.T) {
 		{[]int{0, 0, 0}, ""},
 		{[]int{1, 2, 3}, ""},
 		{[]int{4, 6, 9}, ""}, // each after the one above
-		{[]int{4, 2, 3}, "3: was run as In[2], cell 1 above it as In[4]: out of order or in another session, so what it shows may be older than that cell\n" +
-			"4: was run as In[3], cell 1 above it as In[4]: out of order or in another session, so what it shows may be older than that cell"},
+		{[]int{4, 2, 3}, "0: cells 3-4 were run before cell 1 above them (In[4]), or in another session: what they show may be older than that cell"},
 		{[]int{1, 0, 2}, "0: cell 3 not run"},
 		{[]int{1, 0, 0}, "0: cells 3, 4 not run"},
-		{[]int{1, 2, 1}, "4: was run as In[1], cell 3 above it as In[2]: out of order or in another session, so what it shows may be older than that cell"},
+		{[]int{1, 2, 1}, "4: was run before cell 3 above it (In[2]), or in another session: what it shows may be older than that cell"},
 	} {
 		d := doc(t, sources...)
 		for i, c := range []int{0, 2, 3} {
