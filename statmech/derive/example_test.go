@@ -14,15 +14,15 @@ func ExampleSackurTetrode() {
 	fmt.Println(derive.SackurTetrode(argon, 298.15*unit.K).View().Data["text/plain"])
 	// Output:
 	// Entropy of a monatomic ideal gas
-	//   Λ = \frac{h}{\sqrt{2 \pi\, m\, k\, T}}
+	//   Λ = h/√(2 π m k T)
 	//     Λ: thermal wavelength
 	//     h: Planck constant (exact) = 6.62607015×10⁻³⁴ J s
 	//     m: mass of one atom = 6.633854×10⁻²⁶ kg
 	//     k: Boltzmann constant (exact) = 1.380649×10⁻²³ J/K
 	//     T: temperature = 298.15 K
 	//   Λ = 1.599647×10⁻¹¹ m
-	// Each atom has the volume $kT/p$; with Stirling's formula for $N!$
-	//   S_tr = R \left[ \ln \frac{k\, T}{p\, Λ^3} + \frac{5}{2} \right]
+	// Each atom has the volume kT/p; with Stirling's formula for N!
+	//   S_tr = R [ln (k T)/(p Λ³) + 5/2]
 	//     S_tr: molar entropy of translation
 	//     R: molar gas constant (exact) = 8.314463 J/(mol K)
 	//     k: Boltzmann constant (exact) = 1.380649×10⁻²³ J/K
