@@ -190,7 +190,7 @@ func killed(t *testing.T, host *kittest.Host) {
 	}
 	child = p.child()
 	f.ask("shutdown_request", map[string]any{"restart": false})
-	p.wantEnd(child)
+	p.wantEnd(child, false)
 }
 
 // gone waits for the end of a process that is not our child.

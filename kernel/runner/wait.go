@@ -51,15 +51,20 @@ func (r *Runner) watchWait() chan struct{} {
 // blockedHint describes the goroutines of cells if all of them wait.
 func blockedHint() (string, bool) {
 	buf := make([]byte, 1<<20)
-	buf = buf[:runtime.Stack(buf, true)]
+	return hintOf(string(buf[:runtime.Stack(buf, true)]))
+}
+
+// hintOf is blockedHint from the stacks of all goroutines. Who waits for the
+// reader, to answer or to take what is shown, is not blocked.
+func hintOf(stacks string) (string, bool) {
 	var lines []string
-	for g := range strings.SplitSeq(string(buf), "\n\n") {
+	for g := range strings.SplitSeq(stacks, "\n\n") {
 		main := strings.Contains(g, "runner.(*Runner).goroutine.func")
 		if !main && !strings.Contains(g, "guard.Left") && !strings.Contains(g, "\tIn[") && !strings.Contains(g, "/In[") {
 			continue
 		}
 		m := waiting.FindStringSubmatch(g)
-		if m == nil || strings.Contains(g, "guard.Sleep") || strings.Contains(g, "sink.Ask") {
+		if m == nil || strings.Contains(g, "guard.Sleep") || strings.Contains(g, "sink.Ask") || strings.Contains(g, "(*Runner).send") {
 			return "", false
 		}
 		where := "a library call"
