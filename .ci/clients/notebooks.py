@@ -9,7 +9,10 @@ from nbclient import NotebookClient
 
 
 def outputs(cell):
-    """The outputs of a cell without what only a front end adds."""
+    """The outputs of a cell without what only a front end adds. What they were
+    made with (display.Provenance) may be another version here."""
+    if any("application/vnd.levelsum.provenance+json" in o.get("data", {}) for o in cell.get("outputs", [])):
+        return ["provenance"]
     return [{k: v for k, v in o.items() if k != "transient"} for o in cell.get("outputs", [])]
 
 
