@@ -129,7 +129,7 @@ func FermiDiracs(dst []float64, j float64, eta []float64) []float64 {
 		}
 		return dst
 	}
-	table := lanes.Table11{Rows: s.mid[:], From: fermiMidFrom, To: fermiMidTo, PerUnit: 2}
+	table := lanes.Table11{Rows: s.mid[:], From: fermiMidFrom, PerUnit: 2}
 	table.Fill(dst, eta, func(k int) float64 { return s.outside(eta[k]) })
 	return dst
 }

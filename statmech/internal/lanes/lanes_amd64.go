@@ -32,7 +32,8 @@ func moments8(m *Moments, e, weight *float64, groups int) int
 //go:noescape
 func chebyshev8(sum *[Chebyshevs][Width]float64, w, weight *float64, groups int, mid, half float64)
 
-// fill11 is the loop of Table11.Fill for groups of 8 numbers; see fill8.
+// fill12 is the loop of fillLong for groups of 8 numbers; see fill8. The rows are
+// of degree 12 or 11.
 //
 //go:noescape
-func fill11(dst, x *float64, inside *uint8, groups int, from, to, perUnit float64, rows *[12]float64) bool
+func fill12(dst, x *float64, inside *uint8, groups int, from, perUnit, segments float64, rows *float64, twelve bool) bool

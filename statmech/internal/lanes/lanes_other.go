@@ -20,6 +20,6 @@ func moments8(m *Moments, e, weight *float64, groups int) int { return 0 }
 func chebyshev8(sum *[Chebyshevs][Width]float64, w, weight *float64, groups int, mid, half float64) {
 }
 
-func fill11(dst, x *float64, inside *uint8, groups int, from, to, perUnit float64, rows *[12]float64) bool {
+func fill12(dst, x *float64, inside *uint8, groups int, from, perUnit, segments float64, rows *float64, twelve bool) bool {
 	return false
 }

@@ -8,7 +8,7 @@ import (
 // This file makes the tables of the Bose functions Li_s(z) = Σ zᵏ/kˢ. Orders
 // are given doubled, h = 2s.
 
-// boseOverZ returns Li_s(z)/z for -1 <= z <= 1/2.
+// boseOverZ returns Li_s(z)/z for -1 <= z <= 3/4.
 func boseOverZ(h int, z *big.Float) *big.Float {
 	if z.Cmp(num(-0.5)) < 0 {
 		return quo(fermi(h-2, log(neg(z))), neg(z)) // Li_s(-y) = -F_(s-1)(ln y)
@@ -63,6 +63,18 @@ func zetaOf(h int) *big.Float {
 	return zetaMemo[h]
 }
 
+// branch returns Γ(1-s) x^(s-1) for s = 1/2, 3/2, 5/2.
+func branch(h int, x *big.Float) *big.Float {
+	root := sqrt(mul(pi, x))
+	switch h {
+	case 1:
+		return quo(root, x)
+	case 3:
+		return mul(integer(-2), root)
+	}
+	return quo(mul(mul(integer(4), root), x), integer(3))
+}
+
 func boseTables() {
 	for _, h := range []int{1, 3, 4, 5, 6} {
 		regular := func(alpha *big.Float) *big.Float { return boseRegular(h, alpha) }
@@ -86,5 +98,26 @@ func boseTables() {
 				rows: [][]float64{onInterval(regular, log(integer(2)), 12)},
 			})
 		delete(zetaMemo, 2)
+		if h%2 == 0 {
+			continue
+		}
+		// The same in δ = 1-z, without a logarithm: α = -ln(1-δ).
+		alpha := func(delta *big.Float) *big.Float { return neg(log(sub(integer(1), delta))) }
+		write("table_"+name+"near.go",
+			table{
+				name: name + "Upper",
+				doc:  fmt.Sprintf("holds Li_s(z)/z on segments of width 1/16 from 1/2, in t = 16(z-1/2)-(i+1/2), s = %d/2", h),
+				rows: segments(func(z *big.Float) *big.Float { return boseOverZ(h, z) }, 0.5, 0.0625, 4, 12),
+			},
+			table{
+				name: name + "NearRegular",
+				doc:  fmt.Sprintf("holds the regular part of Li_s(1-delta) on segments of width 1/8 from 0, in t = 8 delta-(i+1/2), s = %d/2", h),
+				rows: segments(func(delta *big.Float) *big.Float { return regular(alpha(delta)) }, 0, 0.125, 3, 12),
+			},
+			table{
+				name: name + "NearBranch",
+				doc:  fmt.Sprintf("holds Gamma(1-s) (-ln(1-delta)/delta)^(s-1) on the same segments, s = %d/2", h),
+				rows: segments(func(delta *big.Float) *big.Float { return branch(h, quo(alpha(delta), delta)) }, 0, 0.125, 3, 12),
+			})
 	}
 }

@@ -1,4 +1,4 @@
-// Tables of polynomials of degree 11, eight arguments at a time; see table11.go.
+// Tables of polynomials of degree 11 and 12, eight arguments at a time; see table12.go.
 
 #include "textflag.h"
 #include "lanes_amd64.h"
@@ -9,23 +9,26 @@
 	VMOVUPD 64(R8)(first*1), y \
 	VINSERTF64X4 $1, 64(R8)(second*1), z, z
 
-// func fill11(dst, x *float64, inside *uint8, groups int, from, to, perUnit float64, rows *[12]float64) bool
+// func fill12(dst, x *float64, inside *uint8, groups int, from, perUnit, segments float64, rows *float64, twelve bool) bool
 //
-// Z0 = x, Z1 = i of the segment, Z2 = t, Z3 = t², Z4 = t⁴; Z31 = from, Z30 = to,
-// Z29 = perUnit, Z28 = 1/2, Z27 = 96, the bytes of a row. R13 = 64 bytes of the
+// Z0 = x, Z1 = i of the segment, Z2 = t, Z3 = t², Z4 = t⁴; Z31 = from, Z30 =
+// segments, Z29 = perUnit, Z26 = 0, Z28 = 1/2, Z27 = R9 = the bytes of a row, 96
+// or 104. R13 = 64 bytes of the
 // stack for the offsets, in one line of the cache.
-TEXT ·fill11(SB), 0, $128-65
+TEXT ·fill12(SB), 0, $128-73
 	MOVQ dst+0(FP), DI
 	MOVQ x+8(FP), SI
 	MOVQ inside+16(FP), R11
 	MOVQ groups+24(FP), CX
 	VBROADCASTSD from+32(FP), Z31
-	VBROADCASTSD to+40(FP), Z30
-	VBROADCASTSD perUnit+48(FP), Z29
+	VBROADCASTSD perUnit+40(FP), Z29
+	VBROADCASTSD segments+48(FP), Z30
+	VPXORQ Z26, Z26, Z26
 	MOVQ rows+56(FP), R8
 	SPREAD(HALF, Z28)
-	MOVQ $96, AX
-	VPBROADCASTQ AX, Z27
+	MOVBLZX twelve+64(FP), R10
+	LEAQ 96(R10*8), R9
+	VPBROADCASTQ R9, Z27
 	LEAQ 63(SP), R13
 	ANDQ $~63, R13
 	XORQ DX, DX
@@ -35,14 +38,14 @@ next:
 	CMPQ DX, CX
 	JGE  done
 	VMOVUPD (SI), Z0
-	VCMPPD $0x1d, Z31, Z0, K1
-	VCMPPD $0x11, Z30, Z0, K1, K2
+	VSUBPD Z31, Z0, Z2
+	VMULPD Z29, Z2, Z2
+	VCMPPD $0x1d, Z26, Z2, K1
+	VCMPPD $0x11, Z30, Z2, K1, K2
 	KORTESTB K2, K2
 	KMOVB K2, (R11)(DX*1)
 	JCC  some
 segment:
-	VSUBPD Z31, Z0, Z2
-	VMULPD Z29, Z2, Z2
 	VRNDSCALEPD $3, Z2, Z1
 	VBROADCASTSD X1, Z5
 	VCMPPD $0, Z5, Z1, K3
@@ -54,11 +57,10 @@ segment:
 	JCC  eight
 
 	// a = c3 t + c2 + t²(c5 t + c4)
-	// b = c7 t + c6 + t²(c9 t + c8) + t⁴(c11 t + c10)
+	// b = c7 t + c6 + t²(c9 t + c8) + t⁴(t² c12 + c11 t + c10)
 	// ((a + t⁴ b) t + c1) t + c0
 	VCVTTSD2SIQ X1, AX
-	LEAQ (AX)(AX*2), AX
-	SHLQ $5, AX
+	IMULQ R9, AX
 	ADDQ R8, AX
 	VMULPD.BCST 24(AX), Z2, Z0
 	VADDPD.BCST 16(AX), Z0, Z0
@@ -73,6 +75,11 @@ segment:
 	VMULPD Z3, Z7, Z7
 	VADDPD Z7, Z6, Z6
 	VMULPD.BCST 88(AX), Z2, Z7
+	TESTL R10, R10
+	JZ   oneEleven
+	VMULPD.BCST 96(AX), Z3, Z5
+	VADDPD Z7, Z5, Z7
+oneEleven:
 	VADDPD.BCST 80(AX), Z7, Z7
 	VMULPD Z4, Z7, Z7
 	VADDPD Z7, Z6, Z6
@@ -91,12 +98,10 @@ skip:
 	JMP  next
 
 some:
-	// Lanes outside are looked up at from and not written.
+	// Lanes outside are looked up in the first segment and not written.
 	MOVL $1, R12
 	JEQ  skip
-	VMOVAPD Z31, Z5
-	VMOVAPD Z0, K2, Z5
-	VMOVAPD Z5, Z0
+	VMOVAPD.Z Z2, K2, Z2
 	JMP  segment
 
 eight:
@@ -137,6 +142,14 @@ eight:
 	VMULPD Z3, Z7, Z7
 	VADDPD Z7, Z6, Z6
 	VMULPD Z11, Z2, Z7
+	TESTL R10, R10
+	JZ   eightEleven
+	KXNORB K4, K4, K4
+	VXORPD X8, X8, X8
+	VGATHERQPD 96(R8)(Z1*1), K4, Z8
+	VMULPD Z8, Z3, Z5
+	VADDPD Z7, Z5, Z7
+eightEleven:
 	VADDPD Z10, Z7, Z7
 	VMULPD Z4, Z7, Z7
 	VADDPD Z7, Z6, Z6
@@ -150,5 +163,5 @@ eight:
 
 done:
 	VZEROUPPER
-	MOVB R12, ret+64(FP)
+	MOVB R12, ret+72(FP)
 	RET
