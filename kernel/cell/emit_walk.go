@@ -1,7 +1,6 @@
 package cell
 
 import (
-	"fmt"
 	"go/ast"
 	"go/token"
 	"go/types"
@@ -55,7 +54,9 @@ func (e *emitter) visit(n ast.Node, stack []ast.Node) bool {
 	case *ast.ForStmt:
 		e.poll(n.Body)
 	case *ast.RangeStmt:
-		e.poll(n.Body)
+		if !e.brief(n) {
+			e.poll(n.Body)
+		}
 		if n.Tok == token.DEFINE {
 			e.insert(n.Body.Lbrace+1, e.unusedNames(n.Key, n.Value))
 		}
@@ -110,28 +111,6 @@ func (e *emitter) visit(n ast.Node, stack []ast.Node) bool {
 		e.ident(n, stack)
 	}
 	return true
-}
-
-// poll lets a loop or function notice that it is to stop.
-func (e *emitter) poll(b *ast.BlockStmt) { e.insert(b.Lbrace+1, e.pollText()) }
-
-func (e *emitter) pollText() string {
-	return fmt.Sprintf(" if %s != 0 { %s() }; ", e.guard("Stop"), e.guard("Halt"))
-}
-
-// calls tells whether a body calls anything, and so may recurse.
-func calls(b *ast.BlockStmt) bool {
-	found := false
-	ast.Inspect(b, func(n ast.Node) bool {
-		switch n.(type) {
-		case *ast.CallExpr:
-			found = true
-		case *ast.FuncLit:
-			return false
-		}
-		return !found
-	})
-	return found
 }
 
 // inList tells whether a statement stands in a list of statements.

@@ -81,7 +81,7 @@ func (p *page) provenance(d *notebook.Document) {
 var fields = []struct{ key, label string }{
 	{"levelsum", "Levelsum"}, {"go", "Go"}, {"interpreter", "interpreter"}, {"platform", "platform"},
 	{"constants", "physical constants"}, {"conventions", "default conventions"},
-	{"options", "options of the run"}, {"interpreted", "cells interpreted"}, {"compiled", "cells compiled"},
+	{"options", "options of the run"}, {"interpreted", "cells interpreted"}, {"compiled", "cells compiled"}, {"program", "of them as one program"},
 	{"stale", "stale values"}, {"seeds", "seeds of random numbers"},
 	{"code", "SHA-256 of the code"},
 }

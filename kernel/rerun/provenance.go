@@ -27,6 +27,9 @@ type Provenance struct {
 	// Interpreted and Compiled are the cells that were run so: "In[1-3], In[5]".
 	Interpreted string `json:"interpreted,omitempty"`
 	Compiled    string `json:"compiled,omitempty"`
+	// Program are those of Compiled that were one program, see Options.Whole;
+	// the others were compiled each by itself.
+	Program string `json:"program,omitempty"`
 	// Stale are values that are older at the end than what they were made of.
 	Stale []string `json:"stale,omitempty"`
 	// Code is the SHA-256 of the code cells that were run.
@@ -46,7 +49,7 @@ const provenanceKey = "levelsum"
 
 // provenanceFields are the keys in it that are ours.
 var provenanceFields = []string{"levelsum", "go", "interpreter", "platform", "constants", "conventions", "options",
-	"interpreted", "compiled", "stale", "code", "seeds", "data"}
+	"interpreted", "compiled", "program", "stale", "code", "seeds", "data"}
 
 // ReadProvenance returns what is stored, and nil if the document has not been
 // run by Levelsum.

@@ -122,7 +122,7 @@ func Run(ctx context.Context, d *notebook.Document, o Options) (*Report, error) 
 	}
 	defer session.Close()
 	from := &Provenance{Options: o.Words}
-	var interpreted, compiled []int
+	var interpreted, compiled, program []int
 	rec := &recorder{places: map[string][]place{}, hint: o.Hint, progress: o.Progress}
 	if o.Whole {
 		r.Program = compileWhole(ctx, session, rec, code)
@@ -154,6 +154,9 @@ func Run(ctx context.Context, d *notebook.Document, o Options) (*Report, error) 
 			interpreted = append(interpreted, i+1)
 		case "compiled":
 			compiled = append(compiled, i+1)
+			if step.program {
+				program = append(program, i+1)
+			}
 		}
 		r.Steps = append(r.Steps, step.Step)
 		if o.Step != nil {
@@ -171,7 +174,7 @@ func Run(ctx context.Context, d *notebook.Document, o Options) (*Report, error) 
 		}
 	}
 	from.takeState(context.WithoutCancel(ctx), session)
-	from.Interpreted, from.Compiled = cellNumbers(interpreted), cellNumbers(compiled)
+	from.Interpreted, from.Compiled, from.Program = cellNumbers(interpreted), cellNumbers(compiled), cellNumbers(program)
 	outputs := rec.finish()
 	for _, c := range code {
 		if err := c.SetOutputs(outputs[c.N]); err != nil {
@@ -229,6 +232,7 @@ func engineCell(n int, c *notebook.Cell) engine.Cell {
 
 type cellStep struct {
 	Step
+	program   bool // compiled together with others
 	restarted bool
 	origins   any
 }
@@ -266,6 +270,7 @@ func runCell(ctx context.Context, s Session, rec *recorder, n int, c *notebook.C
 		step.How = how
 	}
 	step.Alone, _ = o.How["alone"].(string)
+	step.program = o.How["program"] != nil
 	if o.Value != nil {
 		rec.add(c.N, notebook.Output{Kind: notebook.ExecuteResult, Count: n, Data: o.Value.Data, Metadata: unmarked(o.Value.Metadata)})
 	}

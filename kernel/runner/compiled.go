@@ -48,12 +48,13 @@ func (r *Runner) prepare(plan *cell.Plan, facts map[string]any) (job func(), how
 	if err := r.bind(unit, l.offers); err != nil {
 		return nil, "refused", why, err
 	}
+	if l.cells > 0 {
+		facts["program"] = l.cells
+	}
 	switch {
 	case l.used:
 		facts["again"] = true // compiled before, and as it was
-	case l.cells > 1:
-		facts["program"] = l.cells
-	default:
+	case l.cells == 0:
 		if alone := r.alone(plan.Source.N); alone != "" {
 			facts["alone"] = alone
 		}
@@ -68,7 +69,7 @@ func (r *Runner) prepare(plan *cell.Plan, facts map[string]any) (job func(), how
 // A loaded is a unit whose plugin has been opened.
 type loaded struct {
 	offers map[string]any // what the plugin offers of it, see pluginMain
-	cells  int            // how many units the plugin holds
+	cells  int            // of a program, how many units it holds; else 0
 	used   bool           // a cell has run it
 }
 
@@ -106,7 +107,7 @@ func (r *Runner) open(built *compile.Plugin, units ...*cell.Unit) error {
 	}
 	offers := *sym.(*map[string]map[string]any)
 	for _, u := range units {
-		r.plugins[u.Path] = &loaded{offers: offers[u.Path], cells: len(units)}
+		r.plugins[u.Path] = &loaded{offers: offers[u.Path]}
 		r.built.loaded(u)
 	}
 	r.opened++

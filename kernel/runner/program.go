@@ -115,7 +115,13 @@ func (r *Runner) loadAll(units []*cell.Unit, p *engine.Program) error {
 		return err
 	}
 	p.Compiled, p.Linked = built.Compiled, built.Linked
-	return r.open(built, units...)
+	if err := r.open(built, units...); err != nil {
+		return err
+	}
+	for _, u := range units {
+		r.plugins[u.Path].cells = len(units)
+	}
+	return nil
 }
 
 // noteFailed notes that a cell has failed, if that was not foreseen.

@@ -50,6 +50,7 @@ func TestInterruptEndsCells(t *testing.T) {
 	e := start(t)
 	for _, test := range []struct{ name, src string }{
 		{"loop", "x := 0\nfmt.Println(\"go\")\nfor { x++ }"},
+		{"loop without a look in it", "a := make([]float64, 1e6)\ns := 0.0\nfmt.Println(\"go\")\nfor { for i, x := range a { s += math.Sqrt(x) * float64(i) } }"},
 		{"recursion", "func fib(n int) int { if n < 2 { return n }; return fib(n-1) + fib(n-2) }\nfmt.Println(\"go\")\nfib(80)"},
 		{"sleep", "fmt.Println(\"go\")\ntime.Sleep(time.Hour)"},
 		{"receive", "c := make(chan int)\nfmt.Println(\"go\")\n<-c"},
