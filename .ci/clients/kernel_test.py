@@ -32,6 +32,7 @@ class LevelsumKernelTests(jupyter_kernel_test.KernelTests):
     code_clear_output = 'import "levelsum/display"\ndisplay.Current().Clear(true)'
     supported_history_operations = ("tail", "range", "search")
     code_history_pattern = "6 *"
+    code_page_something = "kernel.Journal()"
 
 
 if __name__ == "__main__":
