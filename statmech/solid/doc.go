@@ -38,3 +38,5 @@
 // Evaluations panic with a [*statmech.DomainError] if T is not positive and
 // finite or if a field of the model is outside its range.
 package solid
+
+//go:generate go run generate.go
