@@ -163,7 +163,7 @@ func TestServeUntilShutdown(t *testing.T) {
 	if info, err := os.Stat(journalPath(k.path)); err != nil || info.Mode().Perm() != 0o600 {
 		t.Errorf("journal: %v", err)
 	}
-	if got := exchange(t, control, "shutdown_request", `{"restart":true}`); got != "shutdown_reply" {
+	if got := exchange(t, control, "shutdown_request", `{"restart":false}`); got != "shutdown_reply" {
 		t.Errorf("answer %s", got)
 	}
 	k.left()
