@@ -164,6 +164,8 @@ def main():
         for side, list_ in samples[w].items():
             if tol is not None and not abs(list_[0]["value"] - want) <= tol * abs(want):
                 wrong.append(f"{w}: {side} gives {list_[0]['value']!r}, Go {want!r}")
+    run["medians"] = {w: {side: {k: statistics.median(s[k] for s in list_) for k in ("wall", "cpu", "bytes") if k in list_[0]}
+                          for side, list_ in sides.items()} for w, sides in samples.items()}
     if not abs(run["ising"]) <= 3:
         wrong.append(f"f: the energy is {run['ising']:.1f} standard uncertainties from the exact one")
     run["disagreements"] = wrong

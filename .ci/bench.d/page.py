@@ -15,7 +15,7 @@ GOALS = {
     "h": ("Monte Carlo, 1e6 draws of 11 inputs", {"numpy, Generator.normal": (2, 3.5), "GSL, ziggurat and qsort": (1.4,)}),
     "i1": ("F_1/2, 1e5 values", {"numpy, trapezoid": (150,), "GSL, gsl_sf_fermi_dirac_half": (6,)}),
     "i2": ("inverse of F_1/2, 1e5 values", {"numpy, Newton on the trapezoid": (150,)}),
-    "i3": ("Li_3/2, 1e5 values", {"numpy, trapezoid": (150,)}),
+    "i3": ("Li_3/2, 1e5 values", {"numpy, trapezoid of the smooth part": (150,)}),
     "j": ("SVG of 2,000 points with bars and a line", {"matplotlib, SVG": (15,)}),
     "k1": ("fib(27)", {"CPython": ()}),
     "k2": ("loop over 401 J and 500 T", {"CPython": ()}),

@@ -294,7 +294,7 @@ def _():
     return run
 
 
-@workload("i3 numpy, trapezoid")
+@workload("i3 numpy, trapezoid of the smooth part")
 def _():
     z = ramp(0, 1)
 
