@@ -321,6 +321,11 @@ func (k *Kit) compileIn(ctx context.Context, dir string, c *compiled) (string, e
 		args = append(args, file)
 	}
 	output, err := k.run(ctx, work, k.compile, args)
+	if err != nil && ctx.Err() == nil {
+		if other := k.replaced(); other != nil {
+			return "", other
+		}
+	}
 	var exit *exec.ExitError
 	if errors.As(err, &exit) && !k.gone() && exit.ExitCode() > 0 && !noSpace.MatchString(output) {
 		if ds := diagnostics(strings.ReplaceAll(output, work+string(filepath.Separator), "")); len(ds) > 0 && ds[0].Line > 0 {
@@ -399,6 +404,19 @@ func (k *Kit) run(ctx context.Context, dir, tool string, args []string) (string,
 // gone says whether the kit was removed since it was opened.
 func (k *Kit) gone() bool { return !exists(filepath.Join(k.Dir, manifestName)) }
 
+// replaced says whether Go was removed, or another one put in its place, since
+// the kit was opened.
+func (k *Kit) replaced() error {
+	have, err := rootVersion(k.Manifest.GOROOT)
+	switch {
+	case err != nil || !exists(k.compile):
+		return &Unavailable{Reason: "the Go toolchain in " + k.Manifest.GOROOT + " was removed while this kernel ran", Do: "install " + k.Manifest.Go + " again, or any newer Go and run install.sh again; then restart the kernel"}
+	case have != k.Manifest.Go:
+		return &Unavailable{Reason: fmt.Sprintf("levelsum was installed with %s, and while this kernel ran %s was put in its place", k.Manifest.Go, have), Do: "run install.sh again and restart the kernel"}
+	}
+	return nil
+}
+
 // toolError says why a tool did not do its work.
 func (k *Kit) toolError(tool string, err error, output string) error {
 	if errors.Is(err, context.Canceled) || errors.Is(err, context.DeadlineExceeded) {
@@ -406,6 +424,9 @@ func (k *Kit) toolError(tool string, err error, output string) error {
 	}
 	if noSpace.MatchString(output) {
 		return &CacheError{k.Cache.Dir, syscall.ENOSPC}
+	}
+	if other := k.replaced(); other != nil {
+		return other
 	}
 	if k.gone() {
 		return &Unavailable{Reason: "the packages compiled for cells were removed while this kernel ran, as levelsum install does after a new build", Do: "restart the kernel"}

@@ -149,6 +149,41 @@ func TestBrokenTools(t *testing.T) {
 	}
 }
 
+// Go is updated or removed while a kit is open: that is said, and not that the
+// cell is wrong.
+func TestGoReplacedWhileOpen(t *testing.T) {
+	for _, test := range []struct {
+		name    string
+		replace func(goroot string) error
+		want    string
+	}{
+		{"another version", func(goroot string) error {
+			return errors.Join(os.WriteFile(filepath.Join(goroot, "VERSION"), []byte("go1.99.1\n"), 0o666),
+				os.WriteFile(filepath.Join(goroot, "compile"), []byte("#!/bin/sh\necho \"$5.go:1:8: could not import fmt (object is [linux amd64 go1.26.8])\"; exit 1\n"), 0o777))
+		}, "while this kernel ran go1.99.1 was put in its place; run install.sh again and restart the kernel"},
+		{"none", os.RemoveAll, " was removed while this kernel ran; install go1."},
+	} {
+		t.Run(test.name, func(t *testing.T) {
+			var goroot string
+			k, err := compile.Open(altered(t, func(_ string, m *compile.Manifest) {
+				m.GOROOT, m.Tools = root(t, m.Go, map[string]string{"compile": "exit 1", "link": "exit 1"})
+				goroot = m.GOROOT
+			}), t.TempDir())
+			if err != nil {
+				t.Fatal(err)
+			}
+			if err := test.replace(goroot); err != nil {
+				t.Fatal(err)
+			}
+			_, err = k.Build(t.Context(), nil, pack("", "package main\nimport _ \"fmt\"\n"))
+			var u *compile.Unavailable
+			if !errors.As(err, &u) || !strings.Contains(err.Error(), test.want) {
+				t.Errorf("got %v, want %q", err, test.want)
+			}
+		})
+	}
+}
+
 func TestKitRemovedWhileOpen(t *testing.T) {
 	dir := altered(t, func(string, *compile.Manifest) {})
 	k, err := compile.Open(dir, t.TempDir())

@@ -213,7 +213,10 @@ func compileWhole(ctx context.Context, s Session, rec *recorder, code []*noteboo
 		cells[i] = engineCell(i+1, c)
 	}
 	p, err := w.Program(ctx, cells, rec.cell(0)) // what it hints at is shown, and nothing stored
-	if err != nil {
+	switch {
+	case ctx.Err() != nil: // the run is over
+		return nil
+	case err != nil:
 		p.Alone = err.Error()
 	}
 	return &p

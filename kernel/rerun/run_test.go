@@ -449,3 +449,27 @@ func TestRunWhole(t *testing.T) {
 		t.Error("a program though none was asked for")
 	}
 }
+
+// cancelling is a fake session in which the run is interrupted while cells are
+// compiled.
+type cancelling struct {
+	*fake
+	cancel func()
+}
+
+func (c *cancelling) Program(ctx context.Context, _ []engine.Cell, _ engine.Output) (engine.Program, error) {
+	c.cancel()
+	return engine.Program{}, ctx.Err()
+}
+
+func TestRunInterruptedWhileCompiling(t *testing.T) {
+	ctx, cancel := context.WithCancel(t.Context())
+	s := &cancelling{newFake(), cancel}
+	r, err := Run(ctx, doc(t, "loop", "print never"), Options{
+		Whole: true, Start: func(context.Context) (Session, error) { return s, nil },
+		Compiled: func(p engine.Program) { t.Errorf("told of a program: %+v", p) },
+	})
+	if err != nil || r.Program != nil || r.Stopped != "the run was interrupted" || r.NotRun != 1 {
+		t.Errorf("%v %+v", err, r)
+	}
+}
