@@ -67,7 +67,7 @@ func (p *plan) ladder(q *panelPlan, l scene.Ladder) {
 			ls = append(ls, labelled{i, y, y})
 		}
 	}
-	p.s.stroke(&pop, pen{paint: series(l.Colour).with(0.35), width: 5})
+	p.s.stroke(&pop, pen{paint: series(l.Colour).with(0.45), width: 5})
 	p.s.stroke(&levels, pen{paint: series(l.Colour), width: 1.3})
 	// From the bottom upwards, each label at least a line above the one below.
 	slices.SortStableFunc(ls, func(a, b labelled) int {
