@@ -82,6 +82,7 @@ var (
 	inCall       = regexp.MustCompile(`^multiple-value (.+) \(value of type \((.+)\)\) in `)
 	wantMethod   = regexp.MustCompile(`does not implement (\S+) \(missing method (\w+)\)`)
 	otherKind    = regexp.MustCompile(`^cannot use (.+) \(untyped (\w+) constant[^)]*\) as \S+ value in (assignment|variable declaration)`)
+	noField      = regexp.MustCompile(`^unknown field (\w+) in struct literal of type \S+$`)
 	notConstant  = regexp.MustCompile(`^(.+) \(.+\) is not constant$`)
 )
 
@@ -229,12 +230,43 @@ func (c *checking) advise(pos token.Pos, msg string) string {
 	if m := otherKind.FindStringSubmatch(msg); m != nil {
 		return c.otherKindHint(pos, m[1], m[2], m[3])
 	}
+	if m := noField.FindStringSubmatch(msg); m != nil {
+		return c.fieldsHint(pos, m[1])
+	}
 	if m := notConstant.FindStringSubmatch(msg); m != nil {
 		if s := around[*ast.ValueSpec](c, pos); s != nil && len(s.Names) == 1 && len(s.Values) == 1 {
 			return "write " + s.Names[0].Name + " := " + c.text(s.Values[0]) + " for a value that is computed"
 		}
 	}
 	return ""
+}
+
+// mostFields is how many fields a hint lists.
+const mostFields = 6
+
+// fieldsHint answers a field that a struct does not have.
+func (c *checking) fieldsHint(pos token.Pos, name string) string {
+	lit := c.literalAt(pos)
+	if lit == nil {
+		return ""
+	}
+	s, ok := under[*types.Struct](c.typeOf(lit))
+	if !ok {
+		return ""
+	}
+	var fields []string
+	for f := range s.Fields() {
+		if f.Exported() || isCell(f.Pkg()) {
+			fields = append(fields, f.Name())
+		}
+	}
+	if near := nearest(name, fields); len(near) > 0 {
+		return didYouMean(near)
+	}
+	if len(fields) > mostFields {
+		fields = append(fields[:mostFields], "...")
+	}
+	return "its fields are " + strings.Join(fields, ", ")
 }
 
 // otherKindHint answers a constant that is assigned to a variable of another

@@ -254,8 +254,10 @@ func (l *foreignLine) loop() string {
 		}
 		return ""
 	}
-	names := l.between(1, in)
-	names = strings.Trim(names, "() ")
+	names := strings.Trim(l.between(1, in), "() ")
+	if i := in + 2; l.word(i).tok == token.COLON && l.word(i+1).tok != token.EOF { // for i in 1:n
+		return fmt.Sprintf("write for %s := %s; %s <= %s; %s++ {", names, l.word(i-1).lit, names, l.word(i+1).lit, names)
+	}
 	over := l.condition(in + 1)
 	call := func(name string) (string, bool) {
 		inner, ok := strings.CutPrefix(over, name+"(")

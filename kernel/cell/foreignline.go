@@ -71,6 +71,8 @@ func (l *foreignLine) keyword() string {
 		if len(l.words) > 1 && l.word(1).tok != token.LPAREN {
 			return "write fmt.Println(" + l.between(1, len(l.words)) + ")"
 		}
+	case "assert":
+		return "write if !(" + l.between(1, len(l.words)) + ") { panic(\"...\") }"
 	case "with":
 		return "write f, err := os.Open(name), and defer f.Close() in a function"
 	case "end", "endif", "done", "fi":
@@ -100,6 +102,9 @@ func (l *foreignLine) keyword() string {
 func (l *foreignLine) choice() string {
 	i, e := l.find(token.IF), l.find(token.ELSE)
 	set := max(l.find(token.DEFINE), l.find(token.ASSIGN))
+	if set > 0 && i > set && e < 0 {
+		return "write if " + l.between(i+1, len(l.words)) + " { " + l.between(0, i) + " }"
+	}
 	if set < 0 || i < set || e < i {
 		return ""
 	}
@@ -324,6 +329,8 @@ func unitAlias(name string) string {
 		return "Angstrom"
 	case "pascal":
 		return "Pa"
+	case "atmosphere", "atmospheres":
+		return "Atm"
 	case "kjmol", "kj_mol", "kjpermole":
 		return "KJPerMol"
 	case "kcalmol", "kcalpermole":

@@ -148,6 +148,32 @@ func (c *checking) gasConstant(path []ast.Node) string {
 	return "write unit.R " + b.Op.String() + " unit.MolarEntropy(" + x + "), or unit.GasConstant for a plain number"
 }
 
+// symbolMembers are the methods that the symbols of formulas, and their names
+// elsewhere, stand for; of several the first that a type has.
+var symbolMembers = map[string][]string{
+	"cp": {"HeatCapacity", "HeatCapacityP"}, "cv": {"HeatCapacity", "HeatCapacityV"}, "c": {"HeatCapacity"}, "c_v": {"HeatCapacity"}, "c_p": {"HeatCapacity"},
+	"specificheat": {"HeatCapacity"}, "heat": {"HeatCapacity"}, "s": {"Entropy"}, "h": {"EnthalpyIncrement"}, "enthalpy": {"EnthalpyIncrement", "EnthalpyFromReference"},
+	"u": {"ThermalEnergy", "EnergyIncrement"}, "e": {"ThermalEnergy"}, "energy": {"ThermalEnergy"}, "internalenergy": {"ThermalEnergy", "EnthalpyIncrement"},
+	"g": {"GibbsFunction", "GibbsEnergy"}, "gibbs": {"GibbsFunction", "GibbsEnergy"}, "gibbsenergy": {"GibbsFunction"}, "freeenergy": {"HelmholtzEnergy", "GibbsFunction"},
+	"q": {"Reduced"}, "z": {"Reduced"}, "logq": {"Reduced"}, "partitionfunction": {"Reduced"}, "zpe": {"ZeroPointEnergy"},
+	"theta": {"Theta"}, "thetad": {"Theta"}, "m": {"Mass"},
+}
+
+// symbolMember answers a symbol in place of the method of a type of ours.
+func (c *checking) symbolMember(sel *ast.SelectorExpr) string {
+	members := c.membersOf(sel.X)
+	for _, m := range symbolMembers[strings.ToLower(sel.Sel.Name)] {
+		if !slices.Contains(members, m) {
+			continue
+		}
+		if m == "Reduced" {
+			return "write " + c.text(sel.X) + ".Reduced(T).LogQ for ln q"
+		}
+		return "write " + c.text(sel.X) + "." + m
+	}
+	return ""
+}
+
 // foreignMember answers a method that other languages give to slices, strings
 // and numbers.
 func (c *checking) foreignMember(sel *ast.SelectorExpr) string {
@@ -157,6 +183,9 @@ func (c *checking) foreignMember(sel *ast.SelectorExpr) string {
 		return ""
 	}
 	name := strings.ToLower(sel.Sel.Name)
+	if h := c.symbolMember(sel); h != "" {
+		return h
+	}
 	if quantity(t) != "" {
 		switch name {
 		case "to", "as", "convert", "value", "magnitude", "m_as":
@@ -192,6 +221,8 @@ func (c *checking) foreignMember(sel *ast.SelectorExpr) string {
 		return "write " + strings.ReplaceAll(callNames[name], "#", x)
 	case "max", "min":
 		return "write slices." + strings.ToUpper(name[:1]) + name[1:] + "(" + x + ")"
+	case "map", "filter", "apply", "foreach":
+		return "write a loop: for _, x := range " + x + " { ... }"
 	case "keys":
 		return "write for k := range " + x
 	case "items":
@@ -262,6 +293,12 @@ func (c *checking) unitHint(pkg, member string) string {
 	}
 	if u := unitAlias(member); u != "" {
 		return "write " + pkg + "." + u
+	}
+	switch strings.ToLower(member) {
+	case "molarheatcapacity", "heatcapacity":
+		return "write " + pkg + ".MolarEntropy: heat capacities have the type of entropies"
+	case "molarenthalpy", "enthalpy":
+		return "write " + pkg + ".MolarEnergy"
 	}
 	return ""
 }

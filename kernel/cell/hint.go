@@ -75,7 +75,22 @@ func (c *checking) unknownMember(pos token.Pos, pkg, member string) string {
 	if h := foreignCall(pkg, member, nil); h != "" {
 		return h
 	}
+	if strings.HasPrefix(c.pathOf(pkg), "levelsum/") {
+		// Another package of ours may have it.
+		out := c.membersNamed(func(m string) bool { return m == member }, c.fitting(beyond(c.pathAt(pos))))
+		if out = slices.DeleteFunc(out, func(m string) bool { return rankOfPath(c.pathOf(m[:strings.IndexByte(m, '.')])) > 0 }); len(out) > 0 {
+			return didYouMean(out)
+		}
+	}
 	return didYouMean(prefixed(pkg+".", nearest(member, c.exported(c.pathOf(pkg)))))
+}
+
+// beyond is the path without its innermost node.
+func beyond(path []ast.Node) []ast.Node {
+	if len(path) == 0 {
+		return nil
+	}
+	return path[1:]
 }
 
 // unknown says what a name that nothing declares may stand for: a package that
