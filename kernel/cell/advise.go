@@ -81,6 +81,7 @@ var (
 	wantString   = regexp.MustCompile(`^cannot use (.+) \(untyped string constant\) as (unit\.\w+) value in `)
 	inCall       = regexp.MustCompile(`^multiple-value (.+) \(value of type \((.+)\)\) in `)
 	wantMethod   = regexp.MustCompile(`does not implement (\S+) \(missing method (\w+)\)`)
+	otherMethod  = regexp.MustCompile(`\(wrong type for method \w+\).*want (.+)$`)
 	otherKind    = regexp.MustCompile(`^cannot use (.+) \(untyped (\w+) constant[^)]*\) as \S+ value in (assignment|variable declaration)`)
 	noField      = regexp.MustCompile(`^unknown field (\w+) in struct literal of type \S+$`)
 	notConstant  = regexp.MustCompile(`^(.+) \(.+\) is not constant$`)
@@ -120,6 +121,8 @@ func (c *checking) advise(pos token.Pos, msg string) string {
 		if ix := around[*ast.IndexExpr](c, pos); ix != nil {
 			return "write " + c.text(ix.X) + "[int(" + unbracketed(c.text(ix.Index)) + ")]"
 		}
+	case strings.HasPrefix(msg, "cannot index "):
+		return c.indexHint(pos)
 	case strings.HasSuffix(msg, "truncated to int"):
 		return "an int holds whole numbers: make it a float64, as in n := 3.0"
 	case strings.HasPrefix(msg, "invalid operation: cannot call ") && strings.HasSuffix(msg, "is not a function"):
@@ -152,7 +155,11 @@ func (c *checking) advise(pos token.Pos, msg string) string {
 	case strings.HasPrefix(msg, "too few values in struct literal"):
 		if lit := c.literalAt(pos); lit != nil {
 			if s, ok := under[*types.Struct](c.typeOf(lit)); ok && s.NumFields() > 0 && len(lit.Elts) > 0 {
-				return "write " + c.text(lit.Type) + "{" + s.Field(0).Name() + ": " + c.text(lit.Elts[0]) + "}: name the fields"
+				name := ""
+				if lit.Type != nil {
+					name = c.text(lit.Type)
+				}
+				return "write " + name + "{" + s.Field(0).Name() + ": " + c.text(lit.Elts[0]) + "}: name the fields"
 			}
 		}
 	case strings.HasPrefix(msg, "invalid operation: operator ! not defined on"):
@@ -164,6 +171,11 @@ func (c *checking) advise(pos token.Pos, msg string) string {
 		return c.powerHint(pos)
 	}
 	if m := notOperator.FindStringSubmatch(msg); m != nil {
+		if b := around[*ast.BinaryExpr](c, pos); b != nil {
+			if h := c.uncertainHint(b); h != "" {
+				return h
+			}
+		}
 		if b := around[*ast.BinaryExpr](c, pos); b != nil && b.Op == token.XOR {
 			return power(c.text(b.X), c.text(b.Y))
 		}
@@ -222,7 +234,13 @@ func (c *checking) advise(pos token.Pos, msg string) string {
 		return "write a unit constant: unit." + exampleUnit(strings.TrimPrefix(m[2], "unit."))
 	}
 	if m := inCall.FindStringSubmatch(msg); m != nil {
+		if e := c.exprAt(pos, m[1]); e != nil {
+			m[1] = c.text(e)
+		}
 		return fmt.Sprintf("write v, %s := %s first, then use v", lastName(m[2]), m[1])
+	}
+	if m := otherMethod.FindStringSubmatch(msg); m != nil {
+		return "write the method as " + m[1]
 	}
 	if m := wantMethod.FindStringSubmatch(msg); m != nil && m[1] != "error" {
 		return "it needs the method " + m[2] + " to be a " + m[1]
@@ -237,6 +255,23 @@ func (c *checking) advise(pos token.Pos, msg string) string {
 		if s := around[*ast.ValueSpec](c, pos); s != nil && len(s.Names) == 1 && len(s.Values) == 1 {
 			return "write " + s.Names[0].Name + " := " + c.text(s.Values[0]) + " for a value that is computed"
 		}
+	}
+	return ""
+}
+
+// indexHint answers x["name"] of what has fields or columns by that name.
+func (c *checking) indexHint(pos token.Pos) string {
+	ix := around[*ast.IndexExpr](c, pos)
+	if ix == nil {
+		return ""
+	}
+	name := strings.Trim(c.text(ix.Index), `"`)
+	members := c.membersOf(ix.X)
+	switch {
+	case slices.Contains(members, name):
+		return "write " + c.text(ix.X) + "." + name
+	case slices.Contains(members, "Column"):
+		return "write " + c.text(ix.X) + ".Column(" + c.text(ix.Index) + ")"
 	}
 	return ""
 }

@@ -114,7 +114,7 @@ func (c *checking) unusedHint(pos token.Pos, name string) string {
 		case key != nil && key.Pos() == pos:
 			return "write for " + over
 		case value != nil && value.Pos() == pos:
-			return "write for " + key.Name + " := " + over
+			return "write for " + c.text(r.Key) + " := " + over
 		}
 	}
 	if name == "err" {

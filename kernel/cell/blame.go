@@ -31,10 +31,10 @@ func (c *checking) blame(e types.Error) (*Decl, *Source) {
 // diagnose turns an error of go/types into a Diagnostic.
 func (c *checking) diagnose(e types.Error, src *Source) Diagnostic {
 	line, col := src.place(c.s.fset, e.Pos)
-	msg := strings.ReplaceAll(e.Msg, "\n\t", ", ")
+	msg := strings.ReplaceAll(strings.ReplaceAll(e.Msg, "\n\t\t", ", "), "\n\t", ", ")
 	msg = strings.ReplaceAll(msg, "\n", " ")
 	msg = strings.ReplaceAll(msg, `"cell".`, "")
-	return Diagnostic{Source: src, Line: line, Column: col, Msg: msg, Hint: c.hint(e.Pos, msg)}
+	return Diagnostic{Source: src, Line: line, Column: col, Msg: msg, Hint: c.safeHint(e.Pos, msg)}
 }
 
 // ignorable tells the errors that are none in a cell.

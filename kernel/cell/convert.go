@@ -32,6 +32,9 @@ func (c *checking) quantityHint(pos token.Pos, msg string) string {
 					if rest, ok := strings.CutPrefix(h, begin+op.String()+" "); ok {
 						return begin + a.Tok.String() + " " + rest
 					}
+					if x, y := c.typeOf(a.Lhs[0]), c.typeOf(a.Rhs[0]); x != nil && y != nil && isNumber(typeString(x)) && quantity(y) != "" && (op == token.ADD || op == token.SUB) {
+						return "write var " + c.text(a.Lhs[0]) + " " + typeString(y) + " to declare it"
+					}
 				}
 			}
 		}
@@ -45,6 +48,9 @@ func (c *checking) quantityHint(pos token.Pos, msg string) string {
 	if strings.Contains(msg, "has pointer receiver)") {
 		return "write &" + operand(x)
 	}
+	if from == "uncertain.Quantity" {
+		return c.uncertainArgument(x, to, where)
+	}
 	if many := c.manyOf(pos, from, to); many != "" {
 		return many
 	}
@@ -52,6 +58,9 @@ func (c *checking) quantityHint(pos token.Pos, msg string) string {
 		return h
 	}
 	if e := c.exprAt(pos, x); e != nil {
+		if h := c.counter(e, to); h != "" {
+			return h
+		}
 		x = c.text(e)
 	}
 	if t, ok := strings.CutSuffix(strings.TrimPrefix(where, "argument to "), ".In"); ok && strings.HasPrefix(where, "argument to ") {
@@ -90,6 +99,14 @@ func (c *checking) mismatchHint(b *ast.BinaryExpr) string {
 			return "write " + c.text(f.x) + "(" + f.other + ")"
 		default:
 			return "it is called as " + c.text(f.x) + parameters(s)
+		}
+	}
+	if h := c.uncertainHint(b); h != "" {
+		return h
+	}
+	for _, e := range []ast.Expr{b.X, b.Y} {
+		if h := c.counter(e, ""); h != "" {
+			return h
 		}
 	}
 	tx, ty := typeString(a), typeString(t)
@@ -159,6 +176,7 @@ func (c *checking) productHint(x, op, y, tx, ty string) string {
 		// E/(kT) is written with k by the method.
 		plain := timesConstant.ReplaceAllString(unbracketed(y), "")
 		if tx == "unit.Energy" && ty == "unit.Temperature" {
+			x = overConstant.ReplaceAllString(x, "")
 			return fmt.Sprintf("write %s.OverKT(%s) for the ratio to kT", operand(x), plain)
 		}
 		y = plain
@@ -176,6 +194,8 @@ func (c *checking) productHint(x, op, y, tx, ty string) string {
 
 var timesConstant = regexp.MustCompile(`^unit\.(Boltzmann|GasConstant) ?\* ?`)
 
+var overConstant = regexp.MustCompile(` ?/ ?unit\.(Boltzmann|GasConstant)$`)
+
 // methodTaking is the method of t, its name beginning as said, whose one
 // argument is an arg.
 func methodTaking(t, arg types.Type, prefix string) string {
@@ -187,6 +207,29 @@ func methodTaking(t, arg types.Type, prefix string) string {
 		ps := m.Signature().Params()
 		if strings.HasPrefix(m.Name(), prefix) && ps.Len() == 1 && types.Identical(ps.At(0).Type(), arg) {
 			return m.Name()
+		}
+	}
+	return ""
+}
+
+// counter answers the first variable of a range over quantities, which counts
+// them, used as one of them; to is the type that is wanted, "" for any.
+func (c *checking) counter(e ast.Expr, to string) string {
+	id, ok := e.(*ast.Ident)
+	if !ok {
+		return ""
+	}
+	for _, n := range c.pathAt(e.Pos()) {
+		r, ok := n.(*ast.RangeStmt)
+		if !ok {
+			continue
+		}
+		key, ok := r.Key.(*ast.Ident)
+		if !ok || key.Name != id.Name || r.Value != nil {
+			continue
+		}
+		if l, ok := under[*types.Slice](c.typeOf(r.X)); ok && quantity(l.Elem()) != "" && (to == "" || to == typeString(l.Elem())) {
+			return "write for _, " + id.Name + " := range " + c.text(r.X) + " { ... }: the first variable counts"
 		}
 	}
 	return ""

@@ -76,7 +76,7 @@ func (s *Scope) withHabits(src *Source, ds Diagnostics) Diagnostics {
 					break
 				}
 			}
-			d.Hint = l.hint(d.Column - 1)
+			d.Hint = l.safeHint(d.Column - 1)
 			known = known || d.Hint != ""
 		}
 		seen[d.Line] = len(out)
@@ -130,6 +130,18 @@ func (l *foreignLine) condition(i int) string {
 
 // english writes the words for logic as Go does.
 var english = strings.NewReplacer(" and ", " && ", " or ", " || ", "not ", "!", "True", "true", "False", "false", "None", "nil")
+
+// safeHint is hint, or "" should that fall over a line.
+func (l *foreignLine) safeHint(column int) (h string) {
+	if !l.s.bareHints {
+		defer func() {
+			if recover() != nil {
+				h = ""
+			}
+		}()
+	}
+	return l.hint(column)
+}
 
 // hint tries the habits one after the other.
 func (l *foreignLine) hint(column int) string {

@@ -211,6 +211,9 @@ func (l *foreignLine) literal() string {
 		if w.tok == token.LBRACK && l.word(j+1).tok == token.LBRACE {
 			return "write " + l.between(i, j+1) + "float64" + l.between(j+1, len(l.words))
 		}
+		if w.tok == token.LBRACE && l.word(i+1).tok == token.IDENT && l.word(i+2).tok == token.COLON {
+			return "write the type before {: a literal has one"
+		}
 		if w.tok == token.LBRACE && slices.ContainsFunc(l.words[i:min(j, len(l.words))], func(w word) bool { return w.tok == token.COLON }) {
 			return "write map[string]float64{" + inner + "}"
 		}

@@ -186,8 +186,13 @@ func (c *checking) foreignMember(sel *ast.SelectorExpr) string {
 	if h := c.symbolMember(sel); h != "" {
 		return h
 	}
+	if h := c.molarMember(sel); h != "" {
+		return h
+	}
 	if quantity(t) != "" {
 		switch name {
+		case "round", "format", "tofixed":
+			return "write fmt.Sprintf(\"%.2f\", " + x + ")"
 		case "to", "as", "convert", "value", "magnitude", "m_as":
 			return "write " + x + ".In(unit." + unitOrExample(quantity(t)) + ")"
 		}

@@ -20,6 +20,19 @@ var (
 	notExported = regexp.MustCompile(`^name (\S+) not exported by package (\S+)$`)
 )
 
+// safeHint is hint, or "" should that fall over a cell: what is wrong is said all
+// the same.
+func (c *checking) safeHint(pos token.Pos, msg string) (h string) {
+	if !c.s.bareHints {
+		defer func() {
+			if recover() != nil {
+				h = ""
+			}
+		}()
+	}
+	return c.hint(pos, msg)
+}
+
 // hint answers an error at pos by the spelling that works, "" if it knows none.
 func (c *checking) hint(pos token.Pos, msg string) string {
 	if h := c.quantityHint(pos, msg); h != "" {

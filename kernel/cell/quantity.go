@@ -64,6 +64,12 @@ func (c *checking) quantities(plan *Plan) Diagnostics {
 				say(b.OpPos, fmt.Sprintf("product of two quantities of the kind unit.%s", q),
 					"write float64(x) * y to scale y by a number; products of physics have methods, as S.Times(T)")
 			}
+			if b, ok := e.(*ast.BinaryExpr); ok && (b.Op == token.MUL || b.Op == token.QUO) {
+				if k, x := constantFactor(b, info); k != nil {
+					say(b.OpPos, fmt.Sprintf("unit.%s has a unit of its own, so the result is no unit.%s", k.Name(), q), c.constantHint(b, k, x, info))
+					return true
+				}
+			}
 			if call, ok := e.(*ast.CallExpr); ok && len(call.Args) == 1 && info.Types[call.Fun].IsType() {
 				x := call.Args[0]
 				from := quantity(info.Types[x].Type)
@@ -117,6 +123,46 @@ func (c *checking) quantities(plan *Plan) Diagnostics {
 		check(st, plan.sinfo)
 	}
 	return out
+}
+
+// constantFactor finds the physical constant, a plain number in SI with a unit
+// that Go does not see, by which a quantity is multiplied or divided, and that
+// quantity; nil if there is none. A number that was made a quantity just for
+// that says what it is.
+func constantFactor(b *ast.BinaryExpr, info *types.Info) (k *types.Const, x ast.Expr) {
+	for _, e := range [][2]ast.Expr{{b.X, b.Y}, {b.Y, b.X}} {
+		c, ok := constantOf(e[0], info)
+		if !ok || c.Pkg() == nil || c.Pkg().Path() != unitPath || !untypedConst(c) || c.Name() == "FineStructureConstant" {
+			continue
+		}
+		if quantity(orInvalid(info.Types[e[1]].Type)) != "" && !untyped(e[1], info) && !scaled(e[1], info) {
+			return c, e[1]
+		}
+	}
+	return nil, nil
+}
+
+// constantHint is the method for a product or quotient of a quantity x with a
+// physical constant.
+func (c *checking) constantHint(b *ast.BinaryExpr, k *types.Const, x ast.Expr, info *types.Info) string {
+	op := b.Op.String()
+	text := operand(unbracketed(c.text(x)))
+	q := quantity(info.Types[x].Type)
+	if x == b.X || b.Op == token.MUL {
+		if m := map[string]string{
+			"Temperature*Boltzmann": "AsEnergy()", "Energy/Boltzmann": "AsTemperature()", "Energy*Avogadro": "PerMole()", "MolarEnergy/Avogadro": "PerParticle()",
+			"Frequency*Planck": "AsEnergy()", "Energy/Planck": "AsFrequency()", "MolarEntropy/Avogadro": "PerParticle()", "Mass*Avogadro": "PerMole()",
+		}[q+op+k.Name()]; m != "" {
+			return "write " + text + "." + m
+		}
+		if q == "Temperature" && k.Name() == "GasConstant" && b.Op == token.MUL {
+			return "write unit.R.Times(" + unbracketed(c.text(x)) + ")"
+		}
+		if k.Name() == "GasConstant" && q == "MolarEntropy" {
+			return "write " + text + ".In(unit.R)"
+		}
+	}
+	return "write it with plain numbers in SI: " + text + ".SI()"
 }
 
 // asNumber reports whether the last of stack, a ratio, becomes a plain number:

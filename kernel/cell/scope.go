@@ -45,7 +45,8 @@ type entity struct {
 // A Scope is what the cells of a session have declared. It is not safe for
 // concurrent use.
 type Scope struct {
-	clone bool // made by Clone, to look ahead
+	clone     bool // made by Clone, to look ahead
+	bareHints bool // a test wants to see what a hint falls over
 
 	fset     *token.FileSet
 	importer types.Importer

@@ -1,0 +1,4 @@
+package cell
+
+// BareHints lets a panic while a hint is looked for through.
+func (s *Scope) BareHints() { s.bareHints = true }
