@@ -20,7 +20,7 @@ import (
 func (r *Runner) prepare(plan *cell.Plan, facts map[string]any) (job func(), how, why string, err error) {
 	why = "a directive"
 	if r.compileAll {
-		why = "every cell is"
+		why = "a run with every cell compiled"
 	} else if !plan.Force {
 		var script *cell.Script
 		if script, why = plan.Interpret(&r.interp); script != nil {

@@ -10,10 +10,10 @@ import (
 )
 
 // startCompiled starts an engine that interprets nothing.
-func startCompiled(t testing.TB) *engine.Engine {
+func startCompiled(t testing.TB, env ...string) *engine.Engine {
 	t.Helper()
 	e, err := engine.Start(t.Context(), engine.Options{
-		Command: []string{host.Exe, "engine"}, Dir: t.TempDir(), Env: []string{"LEVELSUM_CACHE=" + host.Cache}, Compiled: true,
+		Command: []string{host.Exe, "engine"}, Dir: t.TempDir(), Env: append([]string{"LEVELSUM_CACHE=" + host.Cache}, env...), Compiled: true,
 	})
 	if err != nil {
 		t.Fatal(err)
@@ -186,6 +186,20 @@ func TestProgramMixed(t *testing.T) {
 	}
 	if plugins(t) != linked {
 		t.Error("a cell was linked by itself")
+	}
+}
+
+// TestProgramWithoutCompiler says why nothing is compiled; no cell is
+// interpreted in its stead.
+func TestProgramWithoutCompiler(t *testing.T) {
+	e := startCompiled(t, "PATH=/nowhere")
+	p, err := e.Program(t.Context(), numbered("1 + 1"), &capture{})
+	if err != nil || !strings.Contains(p.Alone, "is not found; install ") {
+		t.Errorf("%v %+v", err, p)
+	}
+	out, c := run(t, e, 1, "1 + 1")
+	if out.Fault == nil || !strings.HasPrefix(out.Fault.Message, "a run with every cell compiled needs the compiled tier, which is not there: the C compiler ") {
+		t.Errorf("%s", told(out, c))
 	}
 }
 
