@@ -184,7 +184,7 @@ func (t *levelTable) reduced(T float64) (Reduced, bool) {
 		bins = append(bins, s)
 		q += s.z
 		mean += float64(s.c*s.z) + float64(alpha*s.z1)
-		size += math.Abs(s.c) * s.z
+		size += float64(math.Abs(s.c) * s.z)
 	}
 	mean /= q
 	ok := size <= loss*mean*q
@@ -193,7 +193,7 @@ func (t *levelTable) reduced(T float64) (Reduced, bool) {
 	for _, s := range bins {
 		d := s.c - mean
 		variance += float64(float64(d*d)*s.z) + float64(2*d*alpha*s.z1) + float64(alpha*alpha*s.z2)
-		size += float64(d*d) * s.z
+		size += float64(float64(d*d) * s.z)
 	}
 	ok = ok && size <= loss*variance && (q > 1.1 || q < 0.9)
 	return Reduced{LogQ: math.Log(q), U: mean, C: variance / q}, ok

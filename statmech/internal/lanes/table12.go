@@ -41,7 +41,7 @@ func poly12(c *[13]float64, t float64) float64 {
 func (s *Table11) Fill(dst, x []float64, rest func(k int) float64) {
 	dst = dst[:len(x)]
 	for k := fillLong(dst, x, s.From, s.PerUnit, len(s.Rows), &s.Rows[0][0], false, rest); k < len(x); k++ {
-		if y := (x[k] - s.From) * s.PerUnit; y >= 0 && y < float64(len(s.Rows)) {
+		if y := float64((x[k] - s.From) * s.PerUnit); y >= 0 && y < float64(len(s.Rows)) {
 			i := int(y)
 			dst[k] = poly11(&s.Rows[i], y-(float64(i)+0.5))
 		} else {
@@ -54,7 +54,7 @@ func (s *Table11) Fill(dst, x []float64, rest func(k int) float64) {
 func (s *Table12) Fill(dst, x []float64, rest func(k int) float64) {
 	dst = dst[:len(x)]
 	for k := fillLong(dst, x, s.From, s.PerUnit, len(s.Rows), &s.Rows[0][0], true, rest); k < len(x); k++ {
-		if y := (x[k] - s.From) * s.PerUnit; y >= 0 && y < float64(len(s.Rows)) {
+		if y := float64((x[k] - s.From) * s.PerUnit); y >= 0 && y < float64(len(s.Rows)) {
 			dst[k] = s.At(x[k])
 		} else {
 			dst[k] = rest(k)
@@ -64,7 +64,7 @@ func (s *Table12) Fill(dst, x []float64, rest func(k int) float64) {
 
 // At returns the value at an x inside.
 func (s *Table12) At(x float64) float64 {
-	y := (x - s.From) * s.PerUnit
+	y := float64((x - s.From) * s.PerUnit)
 	i := int(y)
 	return poly12(&s.Rows[i], y-(float64(i)+0.5))
 }
