@@ -258,11 +258,11 @@ func TestTableOfMixedScales(t *testing.T) {
 // Words are set as labels are, and keep their hyphens.
 func TestTableOfWords(t *testing.T) {
 	tab := Table{Columns: []Column{
-		{Quantity: "name", Values: []string{"θ_D", "third-law H_2O", "run_7 <b>", strings.Repeat("long ", 8)}},
+		{Quantity: "name", Values: []string{"θ_D", "third-law H_2O", "run_7 <b>", `C:\beta ` + strings.Repeat("long ", 8)}},
 		{Quantity: "unit", Values: []string{"K", "J K-1 mol-1", "1", "cm-1"}},
 	}}
 	v := tab.View()
-	for _, want := range []string{">θ_D<", "<i>θ</i><sub>D</sub>", "third-law H<sub>2</sub>O", "run_7 &lt;b&gt;", "min-width:16em", "J\u00a0K<sup>−1</sup>\u00a0mol<sup>−1</sup>"} {
+	for _, want := range []string{">θ_D<", "<i>θ</i><sub>D</sub>", "third-law H<sub>2</sub>O", "run_7 &lt;b&gt;", `C:\beta`, "min-width:16em", "J\u00a0K<sup>−1</sup>\u00a0mol<sup>−1</sup>"} {
 		if has := strings.Contains(v.Data["text/html"].(string), want); has == (want == ">θ_D<") {
 			t.Errorf("%q in the HTML: %v\n%s", want, has, v.Data["text/html"])
 		}

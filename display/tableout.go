@@ -191,8 +191,11 @@ const longText = 28
 
 // typeset is how text in a cell is set: as a label, a unit in a column of units.
 func (c *sheetColumn) typeset(s string) []mark.Run {
-	if c.quantity == "unit" {
+	switch {
+	case c.quantity == "unit":
 		return mark.AsWritten(s)
+	case strings.Contains(s, `\`): // a path, not a Greek letter
+		return []mark.Run{{Text: s}}
 	}
 	return mark.Label(s)
 }

@@ -25,8 +25,9 @@
 // # Text
 //
 // Names of quantities are written with _{}, ^{} and Greek letters, \theta or
-// θ: "C_{p,m}". Symbols come out italic, words and units upright. Text from
-// data is escaped in every form.
+// θ: "C_{p,m}". Symbols come out italic, words, units and formulas of
+// substances ("H_2O") upright; \mathrm{...} makes upright what else would not
+// be. Text from data is escaped in every form.
 //
 // # Refusals
 //
