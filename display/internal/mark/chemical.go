@@ -61,6 +61,9 @@ func chemical(s string) (n int, sure certainty) {
 	if r, _ := utf8.DecodeRuneInString(s[n:]); strings.ContainsRune("₀₁", r) && n < len(s) {
 		return 0, noFormula
 	}
+	if word, _, _ := strings.Cut(s[n:], " "); fileEnding(word) {
+		return 0, noFormula
+	}
 	if kinds == 1 && single {
 		if strings.IndexByte("HNOFIPS", first) < 0 {
 			return 0, noFormula
@@ -68,6 +71,13 @@ func chemical(s string) (n int, sure certainty) {
 		return n, perhaps
 	}
 	return n, surely
+}
+
+// fileEnding reports whether the rest of a word ends it like the name of a
+// file: Cu_7.csv, NaCl_2-b.txt.
+func fileEnding(s string) bool {
+	i := strings.LastIndexByte(s, '.')
+	return i >= 0 && letters(s[i+1:]) != ""
 }
 
 // element returns the length of the symbol of an element at the front of s.

@@ -70,6 +70,9 @@ func TestSubstances(t *testing.T) {
 		{`\text{run_{2}, C_p}`, "run<sub>2</sub>, C<sub>p</sub>", "run<sub>2</sub>, C<sub>p</sub>"},
 		{`g_i exp(-\epsilon_i/kT)`, "<i>g</i><sub><i>i</i></sub> exp(−<i>ε</i><sub><i>i</i></sub>/<i>kT</i>)", "<i>g</i><sub><i>i</i></sub> exp(-<i>ε</i><sub><i>i</i></sub>/kT)"},
 		{"H°-H°(298.15 K)", "<i>H</i>°−<i>H</i>°(298.15 K)", "H°-H°(298.15 K)"},
+		{"Cu_7.csv", "Cu<sub>7</sub>.csv", "Cu_7.csv"},
+		{"of NaCl_2-b.txt", "of NaCl<sub>2</sub>-<i>b</i>.txt", "of NaCl_2-b.txt"},
+		{"of CO_2.", "of CO<sub>2</sub>.", "of CO<sub>2</sub>."},
 		{"third-law S", "third-law <i>S</i>", "third-law S"},
 		{"E - E_0", "<i>E</i> − <i>E</i><sub>0</sub>", "E - <i>E</i><sub>0</sub>"},
 	} {
