@@ -7,7 +7,7 @@ import (
 )
 
 // What cells show is kept below the rate at which the usual server of notebooks
-// starts to throw output away, 1000 messages and 1 MB a second over three
+// starts to throw output away, 1000 messages and 1 MB of text a second over three
 // seconds: in any three seconds at most burst + 3 rate.
 const (
 	bytesPerSecond    = 650_000

@@ -232,7 +232,11 @@ func (o *output) flush() {
 func (o *output) publish(e event) {
 	kind, content := e.message()
 	m := wire.New(o.s.sender.Header(kind), o.r.msg.RawHeader, content)
-	o.s.flow.pass(o.s.ctx, len(m.Content))
+	bytes := 0
+	if e.kind == textEvent { // of values the server counts the messages only
+		bytes = len(m.Content)
+	}
+	o.s.flow.pass(o.s.ctx, bytes)
 	o.s.publishMessage(m)
 }
 

@@ -334,3 +334,23 @@ func TestFlow(t *testing.T) {
 		})
 	}
 }
+
+// Large figures are not held back: it is text whose bytes the server counts.
+func TestLargeValuesPassAtOnce(t *testing.T) {
+	f := &fake{cells: cellMap{"x": func(r *running) engine.Outcome {
+		for range 4 {
+			r.Show(display.Text(strings.Repeat("x", 4<<20)), "", false)
+		}
+		return engine.Outcome{}
+	}}}
+	k := serveFake(t, f)
+	c := connect(k)
+	if got := c.shown(c.run("x", nil)); len(got) != 5 {
+		t.Errorf("published %d messages, want 5", len(got))
+	}
+	k.session.flow.mu.Lock()
+	defer k.session.flow.mu.Unlock()
+	if k.session.flow.bytes < 0 {
+		t.Errorf("what follows is held back by %g bytes", -k.session.flow.bytes)
+	}
+}
