@@ -1,6 +1,10 @@
 package display
 
-import "fmt"
+import (
+	"fmt"
+	"slices"
+	"strings"
+)
 
 // ProvenanceMediaType is the media type under which [Provenance] stores what it
 // tells.
@@ -68,10 +72,25 @@ func (s Sources) View() View {
 	}
 	for _, o := range s.Origins {
 		if o.Use != "" {
-			names, values = append(names, "seed"), append(values, fmt.Sprintf("%d (%s)", o.Seed, o.Use))
 			continue
 		}
 		names, values = append(names, "data", "SHA-256"), append(values, fmt.Sprintf("%s, %d rows", o.File, o.Rows), o.SHA256)
+	}
+	for i, o := range s.Origins {
+		if o.Use == "" || slices.ContainsFunc(s.Origins[:i], func(p Origin) bool { return p.Use == o.Use }) {
+			continue
+		}
+		var seeds []uint64
+		for _, p := range s.Origins {
+			if p.Use == o.Use {
+				seeds = append(seeds, p.Seed)
+			}
+		}
+		word := "seed"
+		if len(seeds) > 1 {
+			word = "seeds"
+		}
+		names, values = append(names, word), append(values, fmt.Sprintf("%s (%s)", Ranges(seeds), o.Use))
 	}
 	v := Table{Caption: "Provenance", Limit: max(len(names), 1),
 		Columns: []Column{{Quantity: "what", Values: names}, {Quantity: "value", Values: values}}}.View()
@@ -79,4 +98,25 @@ func (s Sources) View() View {
 	v.Data[ProvenanceMediaType] = map[string]any{
 		"facts": append(facts, s.Facts...), "origins": append([]Origin{}, s.Origins...)}
 	return v
+}
+
+// Ranges writes whole numbers in ascending order, each once: "1-100, 205".
+func Ranges(ns []uint64) string {
+	ns = slices.Clone(ns)
+	slices.Sort(ns)
+	ns = slices.Compact(ns)
+	var parts []string
+	for i := 0; i < len(ns); {
+		j := i
+		for j+1 < len(ns) && ns[j+1] == ns[j]+1 {
+			j++
+		}
+		part := fmt.Sprint(ns[i])
+		if j > i {
+			part += fmt.Sprintf("-%d", ns[j])
+		}
+		parts = append(parts, part)
+		i = j + 1
+	}
+	return strings.Join(parts, ", ")
 }

@@ -24,9 +24,12 @@ func TestProvenance(t *testing.T) {
 	defer SetSink(nil)
 	FileRead("run <1>.csv", strings.Repeat("a1", 32), 35)
 	SeedUsed("fit.Bootstrap, 100 refits", 7)
+	for _, seed := range []uint64{3, 1, 9, 2, 3} {
+		SeedUsed("many", seed)
+	}
 	v := Provenance().View()
 	want := "Provenance\nwhat     value\n-------  " + strings.Repeat("-", 64) + "\nGo       go1.26.8\ndata     run <1>.csv, 35 rows\nSHA-256  " +
-		strings.Repeat("a1", 32) + "\nseed     7 (fit.Bootstrap, 100 refits)"
+		strings.Repeat("a1", 32) + "\nseed     7 (fit.Bootstrap, 100 refits)\nseeds    1-3, 9 (many)"
 	if got := v.Data["text/plain"]; got != want {
 		t.Errorf("got\n%s\nwant\n%s", got, want)
 	}

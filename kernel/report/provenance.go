@@ -99,7 +99,7 @@ func (p *page) recorded(own map[string]any, entry func(string, any)) {
 			var lines []any
 			for _, y := range list {
 				m, _ := y.(map[string]any)
-				lines = append(lines, fmt.Sprintf("%v (%v)", m["seed"], m["use"]))
+				lines = append(lines, fmt.Sprintf("%v (%v)", m["seeds"], m["use"]))
 			}
 			x = lines
 		}

@@ -101,11 +101,6 @@ func History(d *notebook.Document) []Remark {
 	return all
 }
 
-// listed writes numbers of cells: 2-5, 7.
-func listed(ns []int) string {
-	return strings.NewReplacer("In[", "", "]", "").Replace(cellNumbers(ns))
-}
-
 // staleMarks returns what the engine has written beside the outputs of a cell.
 func staleMarks(c *notebook.Cell) []string {
 	var out []string

@@ -10,6 +10,7 @@ import (
 	"slices"
 	"strings"
 
+	"levelsum/display"
 	"levelsum/kernel/notebook"
 )
 
@@ -38,10 +39,12 @@ type Provenance struct {
 	Data  []DataFile `json:"data,omitempty"`
 }
 
-// A Seed is one that random numbers were made from.
+// A Seed tells the seeds that random numbers for one use were made from.
 type Seed struct {
-	Use  string `json:"use"`
-	Seed uint64 `json:"seed"`
+	Use   string `json:"use"`
+	Seeds string `json:"seeds"` // "1-100, 205"
+
+	list []uint64
 }
 
 // provenanceKey is where a document keeps its provenance.
@@ -163,7 +166,12 @@ func (p *Provenance) takeOrigins(x any) {
 	}
 	for _, o := range list {
 		if o.Use != "" {
-			p.Seeds = append(p.Seeds, Seed{o.Use, o.Seed})
+			i := slices.IndexFunc(p.Seeds, func(s Seed) bool { return s.Use == o.Use })
+			if i < 0 {
+				i = len(p.Seeds)
+				p.Seeds = append(p.Seeds, Seed{Use: o.Use})
+			}
+			p.Seeds[i].list = append(p.Seeds[i].list, o.Seed)
 		} else {
 			p.Data = append(p.Data, DataFile{File: o.File, SHA256: o.SHA256, Rows: o.Rows})
 		}
@@ -183,27 +191,28 @@ func (p *Provenance) finish(d *notebook.Document, dir string) error {
 	}
 	slices.SortStableFunc(p.Data, func(a, b DataFile) int { return strings.Compare(a.File, b.File) })
 	slices.SortStableFunc(p.Seeds, func(a, b Seed) int { return strings.Compare(a.Use, b.Use) })
-	p.Seeds = slices.Compact(p.Seeds)
+	for i := range p.Seeds {
+		p.Seeds[i].Seeds = display.Ranges(p.Seeds[i].list)
+	}
 	p.Code = CodeHash(d)
 	return nil
 }
 
-// cellNumbers writes numbers of runs in ascending order: "In[1-3], In[5]".
+// cellNumbers writes numbers of runs: "In[1-3], In[5]".
 func cellNumbers(ns []int) string {
-	var parts []string
-	for i := 0; i < len(ns); {
-		j := i
-		for j+1 < len(ns) && ns[j+1] == ns[j]+1 {
-			j++
-		}
-		if j > i {
-			parts = append(parts, fmt.Sprintf("In[%d-%d]", ns[i], ns[j]))
-		} else {
-			parts = append(parts, fmt.Sprintf("In[%d]", ns[i]))
-		}
-		i = j + 1
+	if len(ns) == 0 {
+		return ""
 	}
-	return strings.Join(parts, ", ")
+	return "In[" + strings.ReplaceAll(listed(ns), ", ", "], In[") + "]"
+}
+
+// listed writes numbers: "1-3, 5".
+func listed(ns []int) string {
+	var us []uint64
+	for _, n := range ns {
+		us = append(us, uint64(n))
+	}
+	return display.Ranges(us)
 }
 
 // compareProvenance says what was different when the stored outputs were made.
@@ -256,13 +265,12 @@ func orNone(s string) string {
 
 func compareSeeds(old, cur []Seed) []Finding {
 	list := func(seeds []Seed, use string) string {
-		var out []string
 		for _, s := range seeds {
 			if s.Use == use {
-				out = append(out, fmt.Sprint(s.Seed))
+				return s.Seeds
 			}
 		}
-		return strings.Join(out, ", ")
+		return ""
 	}
 	var uses []string
 	for _, s := range slices.Concat(cur, old) {

@@ -25,7 +25,7 @@ var aboutOld = [][2]string{{"Levelsum", "1.2.3"}, {"Go", "go1.26.8"}, {"interpre
 const hash = "72ae35ffe63aee5b116646419be0bba6a137717e2d7d39c213aaec6c2b1d760c"
 
 func TestProvenanceIsStoredInOnePlace(t *testing.T) {
-	source := []string{"read b.csv " + hash + " 7\nseed 4 uncertain.MonteCarlo\nseed 4 uncertain.MonteCarlo", "# prose", "read a.csv " + hash + " 2"}
+	source := []string{"read b.csv " + hash + " 7\nseed 4 uncertain.MonteCarlo\nseed 4 uncertain.MonteCarlo", "# prose", "seed 11 uncertain.MonteCarlo\nseed 6 uncertain.MonteCarlo\nseed 5 uncertain.MonteCarlo\nread a.csv " + hash + " 2"}
 	d := doc(t, source...)
 	if err := d.SetMetadata("kept", "levelsum", "foreign"); err != nil {
 		t.Fatal(err)
@@ -36,7 +36,7 @@ func TestProvenanceIsStoredInOnePlace(t *testing.T) {
 		Version: "1.2.3", Go: "go1.26.8", Interpreter: "yaegi v0.16.1", Platform: "linux/amd64", Constants: "CODATA 2022",
 		Conventions: []string{"p° = 1 bar", "k = 1"}, Options: []string{"-native", "-limit 1m0s"}, Interpreted: "In[1-2]",
 		Stale: []string{"y of In[1]: x was changed by In[2]"}, Code: CodeHash(d),
-		Seeds: []Seed{{"uncertain.MonteCarlo", 4}},
+		Seeds: []Seed{{Use: "uncertain.MonteCarlo", Seeds: "4-6, 11"}},
 		Data:  []DataFile{{File: "a.csv", SHA256: hash, Rows: 2}, {File: "b.csv", SHA256: hash, Rows: 7}},
 	})
 	if got := fmt.Sprintf("%+v", p); err != nil || got != want {

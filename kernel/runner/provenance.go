@@ -2,7 +2,6 @@ package runner
 
 import (
 	"encoding/json"
-	"fmt"
 	"os"
 	"path/filepath"
 	"runtime"
@@ -33,6 +32,7 @@ type provenance struct {
 
 	mu      sync.Mutex // guards what follows
 	origins []display.Origin
+	seen    map[display.Origin]bool
 	told    int // so many of them have been told to the parent
 	how     []cellHow
 	stale   []string // what the running cell reads and is older than it should be
@@ -97,7 +97,11 @@ func (s sink) Record(o display.Origin) {
 	}
 	p.mu.Lock()
 	defer p.mu.Unlock()
-	if !slices.Contains(p.origins, o) {
+	if !p.seen[o] {
+		if p.seen == nil {
+			p.seen = map[display.Origin]bool{}
+		}
+		p.seen[o] = true
 		p.origins = append(p.origins, o)
 	}
 }
@@ -133,10 +137,10 @@ func (s sink) Provenance() display.Sources {
 	p.mu.Lock()
 	defer p.mu.Unlock()
 	for _, how := range []string{"interpreted", "compiled"} {
-		var cells []int
+		var cells []uint64
 		for _, c := range p.how {
 			if c.how == how {
-				cells = append(cells, c.cell)
+				cells = append(cells, uint64(max(0, c.cell)))
 			}
 		}
 		add("cells "+how, cellNumbers(cells))
@@ -149,24 +153,11 @@ func (s sink) Provenance() display.Sources {
 }
 
 // cellNumbers writes numbers of cells: "In[1-3], In[5]".
-func cellNumbers(ns []int) string {
-	ns = slices.Clone(ns)
-	slices.Sort(ns)
-	ns = slices.Compact(ns)
-	var parts []string
-	for i := 0; i < len(ns); {
-		j := i
-		for j+1 < len(ns) && ns[j+1] == ns[j]+1 {
-			j++
-		}
-		if j > i {
-			parts = append(parts, fmt.Sprintf("In[%d-%d]", ns[i], ns[j]))
-		} else {
-			parts = append(parts, fmt.Sprintf("In[%d]", ns[i]))
-		}
-		i = j + 1
+func cellNumbers(ns []uint64) string {
+	if len(ns) == 0 {
+		return ""
 	}
-	return strings.Join(parts, ", ")
+	return "In[" + strings.ReplaceAll(display.Ranges(ns), ", ", "], In[") + "]"
 }
 
 // interpreterVersion names the interpreter that is linked in.

@@ -24,6 +24,7 @@ func init() {
 		"OneColumn":           reflect.ValueOf(constant.MakeFromLiteral("86", token.FLOAT, 0)),
 		"Provenance":          reflect.ValueOf(display.Provenance),
 		"ProvenanceMediaType": reflect.ValueOf(constant.MakeFromLiteral("\"application/vnd.levelsum.provenance+json\"", token.STRING, 0)),
+		"Ranges":              reflect.ValueOf(display.Ranges),
 		"Render":              reflect.ValueOf(display.Render),
 		"Result":              reflect.ValueOf(display.Result),
 		"ResultMediaType":     reflect.ValueOf(constant.MakeFromLiteral("\"application/vnd.levelsum.result+json\"", token.STRING, 0)),

@@ -62,6 +62,7 @@ func NewSimulation(lattice Torus, T unit.Temperature, seed uint64) (*Simulation,
 	s := &Simulation{lattice: lattice, t: T, seed: seed, spins: newSpins(lattice.Rows, lattice.Columns),
 		digits: newDigits(math.Exp(-4 * lattice.J.OverKT(T)))}
 	s.random = newPCG(seed)
+	display.SeedUsed("lattice.NewSimulation", seed)
 	return s, nil
 }
 
