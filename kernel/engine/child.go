@@ -71,6 +71,12 @@ func startChild(ctx context.Context, o Options, handle func(*child, *Event, stri
 		}
 		return nil, fmt.Errorf("engine: the process that runs cells does not start: %w", err)
 	}
+	// Now, and not when this returns: while an end that is written to is open
+	// here, the death of a child that never gets ready is not seen.
+	for _, f := range toClose {
+		f.Close()
+	}
+	toClose = nil
 	c := &child{cmd: cmd, w: NewWriter(reqW), req: reqW, handle: handle, exited: make(chan error, 1), ended: make(chan struct{}), waiting: map[int]chan *Event{}}
 	ready := make(chan *Event, 1)
 	c.waiting[0] = ready
