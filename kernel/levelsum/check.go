@@ -1,6 +1,7 @@
 package main
 
 import (
+	"bytes"
 	"context"
 	"encoding/json"
 	"encoding/xml"
@@ -109,9 +110,11 @@ func checkWith(args []string, stdout, stderr io.Writer, start runner) int {
 	case *asJUnit:
 		err = writeJUnit(stdout, all)
 	default:
+		var b bytes.Buffer
 		for _, c := range all {
-			c.print(stdout)
+			c.print(&b)
 		}
+		_, err = stdout.Write(b.Bytes())
 	}
 	if err != nil {
 		fmt.Fprintf(stderr, "levelsum: check: %v\n", err)
