@@ -19,7 +19,7 @@ func (p *Plan) findResult() {
 
 // finishResult decides, now that types are known, whether the last expression
 // is shown: a call without results is not, nor what fmt.Print and its kin
-// return.
+// return, nor the error that is all a call returns: the cell fails with that.
 func (p *Plan) finishResult() {
 	if p.result == nil {
 		return
@@ -29,7 +29,7 @@ func (p *Plan) finishResult() {
 		p.result = nil
 		return
 	}
-	if call, ok := ast.Unparen(p.result).(*ast.CallExpr); ok && p.prints(call) {
+	if call, ok := ast.Unparen(p.result).(*ast.CallExpr); ok && (p.prints(call) || p.mayFail(call)) {
 		p.result = nil
 		return
 	}
@@ -50,6 +50,15 @@ func (p *Plan) finishResult() {
 func (p *Plan) prints(call *ast.CallExpr) bool {
 	f := p.callee(call)
 	return f != nil && f.Pkg() != nil && f.Pkg().Path() == "fmt" && (strings.HasPrefix(f.Name(), "Print") || strings.HasPrefix(f.Name(), "Fprint"))
+}
+
+// mayFail tells a call whose only result is an error, save those that make one.
+func (p *Plan) mayFail(call *ast.CallExpr) bool {
+	if p.sinfo.Types[call.Fun].IsType() || !types.Identical(p.sinfo.TypeOf(call), errorType) {
+		return false
+	}
+	f := p.callee(call)
+	return f == nil || f.FullName() != "fmt.Errorf" && (f.Pkg() == nil || f.Pkg().Path() != "errors")
 }
 
 // callee is the function or method that a call names, nil for a call of a value.

@@ -18,6 +18,7 @@ func TestCasesWithoutCompiler(t *testing.T) {
 		t.Fatal(err)
 	}
 	defer e.Close()
+	said := 0 // how often the engine says by itself what is missing
 	right, refused := 0, 0
 	for i, c := range cases {
 		tr := want[c.file+" "+c.name]
@@ -27,6 +28,11 @@ func TestCasesWithoutCompiler(t *testing.T) {
 		// Each statement is a cell of its own, so that some are interpreted.
 		src := strings.Join(importsOf(c.decls+"\n"+c.stmts), "\n") + "\n" + c.decls + "\n" + c.stmts
 		out, cap := run(t, e, i+1, src)
+		if s := cap.err(); strings.HasPrefix(s, "note: only simple statements run here") {
+			if said++; !strings.Contains(s, "install") {
+				t.Errorf("the note does not say what to do: %s", s)
+			}
+		}
 		switch {
 		case out.Fault != nil && out.Fault.Name == "refused":
 			refused++
@@ -42,6 +48,9 @@ func TestCasesWithoutCompiler(t *testing.T) {
 		}
 	}
 	t.Logf("%d right, %d refused", right, refused)
+	if said != 1 {
+		t.Errorf("the engine said %d times what is missing, want once", said)
+	}
 	for _, src := range []string{"x := 2.5", "x * 2", "cu := solid.Debye{Theta: 343 * unit.K}", "cu.HeatCapacity(300 * unit.K)"} {
 		if out, _ := run(t, e, 1, src); out.Fault != nil {
 			t.Errorf("%s: %s", src, strings.Join(out.Fault.Trace, "\n"))

@@ -118,6 +118,16 @@ func (r *Runner) open(built *compile.Plugin, units ...*cell.Unit) error {
 	return nil
 }
 
+// sayWithoutKit says once, with the first cell, that cells are not compiled here
+// and what is missing.
+func (r *Runner) sayWithoutKit() {
+	if r.noKit == nil || r.saidNoKit {
+		return
+	}
+	r.saidNoKit = true
+	r.send(engine.Event{Op: "warn", Text: fmt.Sprintf("note: only simple statements run here, no loops, functions or types: %v\n", r.noKit)})
+}
+
 // unitPackage is the package of a unit.
 func unitPackage(u *cell.Unit) compile.Package {
 	return compile.Package{Path: u.Path, Files: map[string][]byte{"cell.go": []byte(u.Text)}}

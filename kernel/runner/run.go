@@ -28,6 +28,7 @@ func (r *Runner) run(c engine.Cell) engine.Outcome {
 	for _, n := range out.Notes {
 		r.send(engine.Event{Op: "warn", Text: "warning: " + n + "\n"})
 	}
+	r.sayWithoutKit()
 	r.origin.setStale(staleLines(r.scope.StaleIn(plan)))
 	guard.Reset()
 	guard.SetCell(c.N)

@@ -21,10 +21,11 @@ import (
 
 // A Runner is one session.
 type Runner struct {
-	w     *engine.Writer
-	scope *cell.Scope
-	kit   *compile.Kit // nil without the compiled tier
-	noKit error        // why
+	w         *engine.Writer
+	scope     *cell.Scope
+	kit       *compile.Kit // nil without the compiled tier
+	noKit     error        // why
+	saidNoKit bool
 
 	acks   chan struct{}
 	asking sync.Mutex // one question at a time
