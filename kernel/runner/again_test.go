@@ -71,7 +71,7 @@ func plugins(t *testing.T) int {
 	seen.Lock()
 	defer seen.Unlock()
 	err := filepath.WalkDir(filepath.Join(host.Cache, "built"), func(path string, d fs.DirEntry, err error) error {
-		if err == nil && strings.HasSuffix(path, ".so") {
+		if err == nil && strings.HasSuffix(path, ".so") && d.Name() != "plugin.so" { // that one is being linked
 			seen.plugins[path] = true
 		}
 		return nil

@@ -3,6 +3,7 @@ package runner_test
 import (
 	"errors"
 	"strings"
+	"sync"
 	"testing"
 	"time"
 
@@ -11,7 +12,10 @@ import (
 
 // typing is a capture whose reader types these lines, one for each question.
 func typing(lines ...string) *capture {
+	var mu sync.Mutex // questions come from goroutines of their own
 	return &capture{answer: func(string) (string, error) {
+		mu.Lock()
+		defer mu.Unlock()
 		if len(lines) == 0 {
 			return "", errors.New("nothing more is typed")
 		}
@@ -122,7 +126,7 @@ func TestClosedStandardFiles(t *testing.T) {
 		"os.Stdout.Close()\nos.Stderr.Close()\nos.Stdin.Close()",
 		"for _, fd := range []uintptr{1, 2, 5, 6} { os.NewFile(fd, \"mine\").Close() }\nx := 2",
 		"os.Stdout = nil\nos.Stderr = nil\ny := 3",
-		"f, err := os.CreateTemp(\".\", \"f\")\nif err != nil { panic(err) }\nos.Stdout.Close()\nos.Stdout = f\nf.Close()",
+		"f, err := os.CreateTemp(\".\", \"f\")\nif err != nil { panic(err) }\nos.Stdout.Close()\nos.Stdout = f\n_ = f.Close()",
 	} {
 		if o, _ := run(t, e, n+1, src); o.Fault != nil {
 			t.Errorf("%s: %+v", src, o.Fault)
