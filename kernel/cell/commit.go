@@ -1,6 +1,9 @@
 package cell
 
-import "go/types"
+import (
+	"go/token"
+	"go/types"
+)
 
 // Commit makes the plan part of the scope: its declarations, and the session
 // variables for which reached is true (a cell that failed half-way has not
@@ -46,6 +49,9 @@ func (s *Scope) Commit(p *Plan, reached func(name string) bool) (lost []string) 
 		obj := v
 		if v.Parent() == nil || v.Parent().Parent() != types.Universe {
 			obj = types.NewVar(v.Pos(), p.pkg, v.Name(), v.Type())
+			// The first scope that an object is put into is written into it, and
+			// cells are checked ahead while others run.
+			types.NewScope(types.Universe, token.NoPos, token.NoPos, "").Insert(obj)
 		}
 		s.setVar(v.Name(), obj, slot)
 		s.remarks[v.Name()] = remarks[v.Name()]
