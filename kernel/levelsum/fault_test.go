@@ -85,8 +85,10 @@ func faults(t *testing.T, host *kittest.Host) {
 	} {
 		t.Run(test.name, func(t *testing.T) {
 			f, other := f.in(t), other.in(t)
-			if compile.Race && test.name == "two goroutines write one map" {
-				return // the race detector has its own words
+			if compile.Race && (test.name == "two goroutines write one map" || test.name == "panic in a goroutine of the cell") {
+				// It reports the one in its own words; at text that lies in a plugin it may
+				// end the process: ThreadSanitizer, failed to restore address.
+				t.Skip("the race detector ends the process; the gate runs this without it")
 			}
 			id := f.post(test.src)
 			after(t, f, other, id, []string{f.post("y := 1"), f.post("z := 2")}, test.want)

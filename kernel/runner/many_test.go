@@ -13,7 +13,7 @@ import (
 	"levelsum/kernel/engine"
 )
 
-var declaring = flag.Int("declaring", 300, "how many declaring cells TestManyDeclaringCells runs in one session")
+var declaring = flag.Int("declaring", 60, "how many declaring cells TestManyDeclaringCells runs in one session; the gate runs 300")
 
 // status reads a figure of a process from /proc, in kB.
 func status(t testing.TB, pid int, name string) int {
