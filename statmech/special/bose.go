@@ -153,7 +153,7 @@ func (b *boseSeries) middle(z float64) float64 {
 		y = 8 + 8*z // the same, exact for small |z| too
 	}
 	i := min(int(y), len(b.mid)-1)
-	return z * poly12(&b.mid[i], y-(float64(i)+0.5))
+	return z * lanes.Poly12(&b.mid[i], y-(float64(i)+0.5))
 }
 
 // nearOne returns Li_s(e^-α) for 0 <= α <= ln 2.
@@ -161,7 +161,7 @@ func (b *boseSeries) nearOne(alpha float64) float64 {
 	if alpha == 0 {
 		return b.atOne
 	}
-	regular := poly12(b.one, alpha)
+	regular := lanes.Poly12(b.one, alpha)
 	var singular float64
 	switch b.twoS {
 	case 1:

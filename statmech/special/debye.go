@@ -62,22 +62,10 @@ func (s *debyeSeries) inside(x float64) float64 {
 	i := int(y)
 	c := &s.Rows[i]
 	t := y - (float64(i) + 0.5)
-	return poly8(c, t)
+	return lanes.Poly8(c, t)
 }
 
-// poly8 evaluates degree 8 pairwise in t², the last two steps plain Horner: the
-// short chain of dependent operations is what makes it fast, and the last
-// steps decide the rounding.
-func poly8(c *[9]float64, t float64) float64 {
-	t2 := float64(t * t)
-	t4 := float64(t2 * t2)
-	q := float64(c[3]*t) + c[2]
-	q += float64(t2 * (float64(c[5]*t) + c[4]))
-	q += float64(t4 * (float64(t2*c[8]) + float64(c[7]*t) + c[6]))
-	return float64((float64(q*t)+c[1])*t) + c[0]
-}
-
-// slope8 is the derivative of poly8 in t.
+// slope8 is the derivative of [lanes.Poly8] in t.
 func slope8(c *[9]float64, t float64) float64 {
 	p := 8 * c[8]
 	p = float64(p*t) + 7*c[7]

@@ -1,6 +1,10 @@
 package special
 
-import "math"
+import (
+	"math"
+
+	"levelsum/statmech/internal/lanes"
+)
 
 // This file holds the thermal functions of one mode of a Debye spectrum in d
 // dimensions: g(ω) = d ωᵈ⁻¹/ω_Dᵈ up to ω_D, x = ħω_D/kT = θ/T.
@@ -154,7 +158,7 @@ func DebyeCSlopes(c, slope []float64, d int, x []float64) (cs, slopes []float64)
 			i := int(y)
 			t := y - (float64(i) + 0.5)
 			row := &s.Rows[i]
-			c[k], slope[k] = poly8(row, t), 4*slope8(row, t)
+			c[k], slope[k] = lanes.Poly8(row, t), 4*slope8(row, t)
 			continue
 		}
 		c[k], slope[k] = s.outside(v), DebyeCSlope(d, v)

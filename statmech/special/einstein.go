@@ -4,6 +4,7 @@ import (
 	"math"
 
 	"levelsum/statmech/internal/heats"
+	"levelsum/statmech/internal/lanes"
 )
 
 // This file holds the thermal functions of one harmonic mode (Einstein's
@@ -36,7 +37,7 @@ func EinsteinC(x float64) float64 {
 		}
 		y := 4 * x
 		i := int(y)
-		return poly8(&heats.Einstein.Rows[i], y-(float64(i)+0.5))
+		return lanes.Poly8(&heats.Einstein.Rows[i], y-(float64(i)+0.5))
 	}
 	return einsteinTail(x)
 }
@@ -185,7 +186,7 @@ func EinsteinCSlopes(c, slope, x []float64) (cs, slopes []float64) {
 			i := int(y)
 			t := y - (float64(i) + 0.5)
 			row := &heats.Einstein.Rows[i]
-			c[k], slope[k] = poly8(row, t), 4*slope8(row, t)
+			c[k], slope[k] = lanes.Poly8(row, t), 4*slope8(row, t)
 			continue
 		}
 		c[k], slope[k] = EinsteinC(v), EinsteinCSlope(v)

@@ -51,7 +51,7 @@ func (s *fermiSeries) at(eta float64) float64 {
 	if eta >= fermiMidFrom && eta < fermiMidTo {
 		y := 2 * (eta - fermiMidFrom)
 		i := int(y)
-		return poly11(&s.mid[i], y-(float64(i)+0.5))
+		return lanes.Poly11(&s.mid[i], y-(float64(i)+0.5))
 	}
 	return s.outside(eta)
 }
@@ -60,12 +60,12 @@ func (s *fermiSeries) outside(eta float64) float64 {
 	switch {
 	case eta < fermiMidFrom:
 		y := math.Exp(eta)
-		return y * poly12(s.low, y)
+		return y * lanes.Poly12(s.low, y)
 	case math.IsInf(eta, 1) || math.IsNaN(eta):
 		return eta
 	}
 	inverse := 1 / eta
-	return halfInteger(eta, s.twoJ+2) * poly12(s.high, inverse*inverse)
+	return halfInteger(eta, s.twoJ+2) * lanes.Poly12(s.high, inverse*inverse)
 }
 
 // halfInteger returns x^(h/2) for h = 1 … 8.
@@ -156,13 +156,13 @@ func FermiDiracHalfInverse(F float64) float64 {
 		}
 		return math.NaN()
 	case F < fermiInverseLowTo:
-		return math.Log(F) + float64(F*poly12(&fermiInverseLow[0], F))
+		return math.Log(F) + float64(F*lanes.Poly12(&fermiInverseLow[0], F))
 	case F >= fermiInverseHighFrom:
 		return fermiInverseHigh(F)
 	}
 	y := 4 * (math.Log(F) + 1)
 	i := min(max(int(y), 0), len(fermiInverseMid)-1)
-	return poly11(&fermiInverseMid[i], y-(float64(i)+0.5))
+	return lanes.Poly11(&fermiInverseMid[i], y-(float64(i)+0.5))
 }
 
 const (

@@ -31,9 +31,10 @@ type Table8 struct {
 	End  float64 // len(Rows)/4
 }
 
-// poly8 evaluates a row pairwise in t², the last two steps plain Horner: a
-// short chain of dependent operations, and the last steps decide the rounding.
-func poly8(c *[9]float64, t float64) float64 {
+// Poly8 evaluates a row of degree 8 pairwise in t², the last two steps plain
+// Horner: a short chain of dependent operations, and the last steps decide the
+// rounding.
+func Poly8(c *[9]float64, t float64) float64 {
 	t2 := float64(t * t)
 	t4 := float64(t2 * t2)
 	q := float64(c[3]*t) + c[2]
@@ -49,7 +50,7 @@ func (s *Table8) inside(x float64) (float64, bool) {
 	}
 	y := 4 * x
 	i := int(y)
-	return poly8(&s.Rows[i], y-(float64(i)+0.5)), true
+	return Poly8(&s.Rows[i], y-(float64(i)+0.5)), true
 }
 
 // Fill writes s(x[k]) to dst[k], and rest(k) where x[k] is not inside (0, End);

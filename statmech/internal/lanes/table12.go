@@ -16,9 +16,9 @@ type Table12 struct {
 	From, PerUnit float64
 }
 
-// poly11 and poly12 evaluate a row pairwise in t² and t⁴, the last two steps
-// plain Horner; see poly8.
-func poly11(c *[12]float64, t float64) float64 {
+// Poly11 evaluates a row of degree 11 pairwise in t² and t⁴, the last two steps
+// plain Horner; see [Poly8].
+func Poly11(c *[12]float64, t float64) float64 {
 	t2 := float64(t * t)
 	t4 := float64(t2 * t2)
 	a := float64(c[3]*t) + c[2] + float64(t2*(float64(c[5]*t)+c[4]))
@@ -27,7 +27,8 @@ func poly11(c *[12]float64, t float64) float64 {
 	return float64((float64((a+float64(t4*b))*t)+c[1])*t) + c[0]
 }
 
-func poly12(c *[13]float64, t float64) float64 {
+// Poly12 is [Poly11] with degree 12.
+func Poly12(c *[13]float64, t float64) float64 {
 	t2 := float64(t * t)
 	t4 := float64(t2 * t2)
 	a := float64(c[3]*t) + c[2] + float64(t2*(float64(c[5]*t)+c[4]))
@@ -43,7 +44,7 @@ func (s *Table11) Fill(dst, x []float64, rest func(k int) float64) {
 	for k := fillLong(dst, x, s.From, s.PerUnit, len(s.Rows), &s.Rows[0][0], false, rest); k < len(x); k++ {
 		if y := float64((x[k] - s.From) * s.PerUnit); y >= 0 && y < float64(len(s.Rows)) {
 			i := int(y)
-			dst[k] = poly11(&s.Rows[i], y-(float64(i)+0.5))
+			dst[k] = Poly11(&s.Rows[i], y-(float64(i)+0.5))
 		} else {
 			dst[k] = rest(k)
 		}
@@ -66,7 +67,7 @@ func (s *Table12) Fill(dst, x []float64, rest func(k int) float64) {
 func (s *Table12) At(x float64) float64 {
 	y := float64((x - s.From) * s.PerUnit)
 	i := int(y)
-	return poly12(&s.Rows[i], y-(float64(i)+0.5))
+	return Poly12(&s.Rows[i], y-(float64(i)+0.5))
 }
 
 // fillLong does what the vector loop can and returns how many that was.
