@@ -44,17 +44,7 @@ func (c *checking) doubtful(plan *Plan) Diagnostics {
 			return true
 		})
 	}
-	for _, d := range c.redo {
-		if d.Source == c.p.src {
-			look(d.node, plan.info)
-		}
-	}
-	for _, d := range c.p.lead {
-		look(d, plan.info)
-	}
-	for _, st := range c.p.stmts {
-		look(st, plan.sinfo)
-	}
+	c.eachNew(plan, look)
 	return append(out, c.floorComments()...)
 }
 

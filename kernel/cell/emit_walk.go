@@ -93,6 +93,20 @@ func (e *emitter) visit(n ast.Node, stack []ast.Node) bool {
 		}
 	case *ast.StructType:
 		e.structType(n)
+	case *ast.AssignStmt, *ast.DeclStmt:
+		return e.declaring(n, parent)
+	case *ast.SelectorExpr:
+		return e.selector(n, stack)
+	case *ast.Ident:
+		e.ident(n, stack)
+	}
+	return true
+}
+
+// declaring rewrites a statement that may declare variables, and says whether
+// its parts are still to be looked at.
+func (e *emitter) declaring(n, parent ast.Node) bool {
+	switch n := n.(type) {
 	case *ast.AssignStmt:
 		if n.Tok == token.DEFINE && e.definesOuter(n) {
 			e.replace(n.TokPos, n.TokPos+2, "=")
@@ -105,10 +119,6 @@ func (e *emitter) visit(n ast.Node, stack []ast.Node) bool {
 			return false
 		}
 		e.unusedIn(n, parent)
-	case *ast.SelectorExpr:
-		return e.selector(n, stack)
-	case *ast.Ident:
-		e.ident(n, stack)
 	}
 	return true
 }

@@ -193,6 +193,22 @@ func (c *checking) each(f func(ast.Node)) {
 	}
 }
 
+// eachNew calls f with every declaration and statement of the cell itself, and
+// what is known of the types in it.
+func (c *checking) eachNew(plan *Plan, f func(ast.Node, *types.Info)) {
+	for _, d := range c.redo {
+		if d.Source == c.p.src {
+			f(d.node, plan.info)
+		}
+	}
+	for _, d := range c.p.lead {
+		f(d, plan.info)
+	}
+	for _, st := range c.p.stmts {
+		f(st, plan.sinfo)
+	}
+}
+
 // membersOf lists the fields and methods of an expression that has been checked.
 func (c *checking) membersOf(x ast.Expr) []string {
 	var t types.Type

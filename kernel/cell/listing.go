@@ -299,18 +299,8 @@ func (e *emitter) visitListed(n, parent ast.Node) bool {
 				e.insert(n.Body.Lbrace+1, text)
 			}
 		}
-	case *ast.AssignStmt:
-		if n.Tok == token.DEFINE && e.definesOuter(n) {
-			e.replace(n.TokPos, n.TokPos+2, "=")
-		} else if n.Tok == token.DEFINE {
-			e.unusedIn(n, parent)
-		}
-	case *ast.DeclStmt:
-		if g, ok := n.Decl.(*ast.GenDecl); ok && g.Tok == token.VAR && e.declaresOuter(g) {
-			e.outerVar(g)
-			return false
-		}
-		e.unusedIn(n, parent)
+	case *ast.AssignStmt, *ast.DeclStmt:
+		return e.declaring(n, parent)
 	case *ast.Ident:
 		e.identListed(n)
 	}

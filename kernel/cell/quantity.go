@@ -111,17 +111,7 @@ func (c *checking) quantities(plan *Plan) Diagnostics {
 			return true
 		})
 	}
-	for _, d := range c.redo {
-		if d.Source == c.p.src {
-			check(d.node, plan.info)
-		}
-	}
-	for _, d := range c.p.lead {
-		check(d, plan.info)
-	}
-	for _, st := range c.p.stmts {
-		check(st, plan.sinfo)
-	}
+	c.eachNew(plan, check)
 	return out
 }
 
